@@ -1,0 +1,94 @@
+import type { Box, Mm, Point } from "../drawing/geometry.js";
+import type { Anchor, PartId } from "../drawing/marks.js";
+import type { Symbol, Turn } from "../symbols/symbol.js";
+
+/** The part of a sheet a circuit may use: inside the frame, clear of the title block and its revision table. */
+export interface PageArea {
+  /** Whole usable rectangle. */
+  area: Box;
+  /** The corner taken by the title block within `area` (bottom right); circuits stay out of it. */
+  reserved: Box;
+  /** Zone name (e.g. "C3") of a point on the sheet. */
+  zoneOf(point: Point): string;
+}
+
+/** A circuit sheet with everything in place. References inside it are not yet worded: room is kept for them. */
+export interface CircuitSheet {
+  kind: "ladder" | "fluid";
+  circuit: PartId;
+  /** 1-based number in the whole set. */
+  number: number;
+  title: string;
+  symbols: PlacedSymbol[];
+  wires: PlacedWire[];
+  dots: PlacedDot[];
+  texts: PlacedText[];
+  /** Plain strokes that are neither symbol nor wire: cam marks, header ticks, enclosure frames. */
+  strokes: { part?: PartId; role: string; path: Point[]; width: Mm; dash?: Mm[] }[];
+}
+
+export interface PlacedSymbol {
+  part: PartId;
+  /** The device or component designation it belongs to, if it has one. */
+  device?: string;
+  symbol: Symbol;
+  at: Point;
+  turn: Turn;
+}
+
+/** A straight-run line from bend to bend. `node` is the electrical potential or the fluid node it belongs to. */
+export interface PlacedWire {
+  part: PartId;
+  node: number;
+  role: "wire" | "rail" | "working" | "pilot" | "drain" | "exhaust" | "link";
+  points: Point[];
+  width: Mm;
+  dash?: Mm[];
+}
+
+export interface PlacedDot {
+  part: PartId;
+  at: Point;
+  diameter: Mm;
+}
+
+/** Text standing on its baseline at `at`. A reference is worded later and never needs more than `room`. */
+export interface PlacedText {
+  part?: PartId;
+  role: "designation" | "terminal" | "port" | "wire-number" | "line-number" | "function" | "value" | "rail" | "reference" | "note" | "margin";
+  at: Point;
+  anchor: Anchor;
+  height: Mm;
+  rotated?: boolean;
+  text: string | Reference;
+}
+
+export type Reference = ReferenceTo & { room: Mm };
+
+export type ReferenceTo =
+  /** Under a contact: where its coil is, `(201)`. */
+  | { to: "coil"; device: string }
+  /** At a coil: the lines of its contacts, normally closed ones underlined. */
+  | { to: "contacts"; device: string }
+  /** At a switch contact: the cylinder or fluid point that operates it and where that is drawn, `CLAMP 1/B4`. */
+  | { to: "switch-place"; device: string }
+  /** At a solenoid on a rung: its valve and where it is drawn, `V1 1/C3`. */
+  | { to: "valve"; device: string }
+  /** At a solenoid or switch on a fluid sheet: the ladder line of its coil or contacts, `(204)`. */
+  | { to: "ladder-line"; device: string }
+  /** At a point that goes on elsewhere: name, sheet and line. */
+  | { to: "point"; point: string; from: PartId };
+
+/** Where each part stands in the set. */
+export interface Place {
+  sheet: number;
+  /** The printed line number (ladder) — absent on fluid sheets. */
+  line?: number;
+  zone: string;
+  box: Box;
+}
+
+export interface Layout {
+  sheets: CircuitSheet[];
+  places: ReadonlyMap<PartId, Place>;
+}

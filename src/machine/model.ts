@@ -1,0 +1,318 @@
+import type { SourceRange } from "../language/diagnostic.js";
+import type { Quantity } from "../language/quantity.js";
+import type { SequenceBlock } from "../language/tree.js";
+
+/** Names one thing that can be drawn. `CR1` is a device, `CR1:13-14` one contact of it, `V1/left` one end of a valve. */
+export type PartId = string;
+
+/** A value and who decided it. Only author against author is a conflict. */
+export type Decided<T> = { value: T; by: "author"; at: SourceRange } | { value: T; by: string };
+
+/** The whole machine: every name resolved, every unit converted. Every later stage reads this and nothing else. */
+export interface Machine {
+  drawing: DrawingInfo;
+  /** Electrical devices by designation in order of declaration; solenoids stand where their valve declares them. */
+  devices: ReadonlyMap<string, Device>;
+  /** Fluid components by designation over all circuits. Unnamed ones (a local silencer or tank) are only in their circuit. */
+  components: ReadonlyMap<string, FluidComponent>;
+  supplies: Supply[];
+  circuits: Circuit[];
+  /** Electrical nodes over all ladders in drawing order; rails first. */
+  potentials: Potential[];
+  /** `cycle` and `trial` blocks as written. */
+  sequences: SequenceBlock[];
+}
+
+export type Circuit = LadderCircuit | FluidCircuit;
+
+export interface DrawingInfo {
+  title: string;
+  number: string;
+  owner: string;
+  creator: string;
+  approvedBy: string;
+  department: string;
+  documentType: string;
+  status: string;
+  /** YYYY-MM-DD; the last revision's date unless given. Empty when there is none: nothing is taken from the clock. */
+  date: string;
+  language: string;
+  revisions: { index: string; date: string; text: string }[];
+  notes: string[];
+  convention: "north-american" | "international";
+  paper: PaperName;
+  template: string;
+  lineNumbers: "by-sheet" | "running";
+  wireNumbers: "by-line" | "running";
+  units: "metric" | "inch";
+}
+
+export type PaperName =
+  | "A4" | "A3" | "A2" | "A1" | "A0" | "ANSI-A" | "ANSI-B" | "ANSI-C" | "ANSI-D" | "ANSI-E";
+
+// ---------------------------------------------------------------- electrical
+
+/** Device kinds that can stand in a rung today. A new kind is added here first; the compiler then finds every table that needs it. */
+export type DeviceKind =
+  | "relay" | "contactor" | "timer" | "push-button" | "emergency-stop" | "selector-switch" | "limit-switch"
+  | "proximity-switch" | "pressure-switch" | "overload" | "solenoid" | "pilot-light" | "horn" | "motor";
+
+export interface Device {
+  name: string;
+  kind: DeviceKind;
+  text?: string;
+  note?: string;
+  /** The maker's order code. */
+  orderCode?: string;
+  location?: string;
+  at: SourceRange;
+  /** Ratings and settings as printed, in reading order: `1.5 s`, `30 W`. */
+  values: string[];
+  /** Declared poles: normally open and normally closed. Absent: as many as are used. */
+  poles?: { no: number; nc: number };
+  /** Timers. */
+  delay?: { mode: "on-delay" | "off-delay"; time: Quantity };
+  /** Push-buttons. */
+  button?: { action: "momentary" | "maintained"; mushroom: boolean };
+  /** Selector switches: positions in order and the one drawn. */
+  selector?: { positions: string[]; start: string };
+  colour?: string;
+  /** Limit and proximity switches: where on the machine they are operated. */
+  place?: SwitchPlace;
+  /** Pressure switches: the fluid point they sense, with its settings. */
+  senses?: { component?: string; port?: string; point?: string; rising?: Quantity; falling?: Quantity };
+  /** Overloads: the motor guarded. */
+  guards?: string;
+  /** Solenoids: the valve that carries them and at which end. */
+  valve?: { name: string; side: "left" | "right" };
+  /** Uses in rungs, in drawing order. */
+  contacts: ContactUse[];
+  loads: LoadUse[];
+}
+
+/** A stretch of a cylinder's stroke in mm from retracted, in which a switch is operated. */
+export interface SwitchPlace {
+  cylinder: string;
+  from: number;
+  to: number;
+  /** How the author put it. */
+  written: "retracted" | "extended" | "at" | "from-to";
+}
+
+export interface Supply {
+  name: string;
+  voltage?: Quantity;
+  current: "AC" | "DC";
+  /** The live rail (left or top) and the return rail (right or bottom). */
+  rails: [string, string];
+  fuse?: { name: string; rating: string };
+  at: SourceRange;
+}
+
+export interface LadderCircuit {
+  kind: "ladder";
+  id: PartId;
+  title: string;
+  supply: Supply;
+  rungs: Rung[];
+  /** Rungs before which the author asked for a new sheet, with its title. */
+  sheetBreaks: { before: number; title?: string }[];
+  at: SourceRange;
+}
+
+export interface Rung {
+  id: PartId;
+  title?: string;
+  /** Where its left and right ends join: a rail, or a point written first or last in the rung. */
+  start: RungEnd;
+  end: RungEnd;
+  path: SeriesPath;
+  at: SourceRange;
+}
+
+export type RungEnd = { kind: "rail"; node: NodeId } | { kind: "point"; point: string; node: NodeId };
+
+/** Things one after another from the live side to the return side. Never nested directly in another series. */
+export interface SeriesPath {
+  kind: "series";
+  items: (ParallelPath | RungElement)[];
+  from: NodeId;
+  to: NodeId;
+}
+
+/** Two or more branches between the same two nodes. A branch with no items is a plain wire. */
+export interface ParallelPath {
+  kind: "parallel";
+  branches: SeriesPath[];
+  from: NodeId;
+  to: NodeId;
+}
+
+export type RungElement = ContactUse | LoadUse | PointUse;
+
+/** One contact of a device in a rung. `from` is its left node, `to` its right node. */
+export interface ContactUse {
+  kind: "contact";
+  id: PartId;
+  device: string;
+  form: "NO" | "NC";
+  /** A timer's delayed contact. */
+  timed: boolean;
+  /** Selector switches: the position in which it is closed (NO) or open (NC). */
+  position?: string;
+  /** e.g. ["13", "14"]; empty strings for a device whose contacts carry no numbers. */
+  terminals: Decided<[string, string]>;
+  from: NodeId;
+  to: NodeId;
+  rung: PartId;
+  at: SourceRange;
+}
+
+export interface LoadUse {
+  kind: "load";
+  id: PartId;
+  device: string;
+  terminals: Decided<[string, string]>;
+  from: NodeId;
+  to: NodeId;
+  rung: PartId;
+  at: SourceRange;
+}
+
+/** A `@point` within a rung; it has no length. */
+export interface PointUse {
+  kind: "point";
+  id: PartId;
+  point: string;
+  from: NodeId;
+  /** Same as `from`. */
+  to: NodeId;
+  rung: PartId;
+  at: SourceRange;
+}
+
+export type NodeId = number;
+
+/** Everything joined by wire with no device between. */
+export interface Potential {
+  id: NodeId;
+  /** Set for a rail. */
+  rail?: string;
+  /** Points that name it. */
+  points: string[];
+  /** Wire number, as printed over the wire. Rails carry their own name. Running numbers are known here; by-line numbers are filled after layout. */
+  number: Decided<string>;
+}
+
+// ---------------------------------------------------------------- fluid
+
+export type Medium = "hydraulic" | "pneumatic";
+
+export type FluidKind =
+  | "tank" | "pump" | "electric-motor" | "compressor" | "air-supply" | "service-unit" | "filter" | "cylinder" | "valve" | "relief-valve"
+  | "check-valve" | "pilot-operated-check-valve" | "throttle" | "one-way-flow-control" | "silencer" | "gauge"
+  | "pressure-switch" | "shut-off-valve" | "exhaust";
+
+export interface FluidCircuit {
+  kind: "fluid";
+  id: PartId;
+  title: string;
+  medium: Medium;
+  components: FluidComponent[];
+  nodes: FluidNode[];
+  /** Stretches as written, one for each pair of neighbours, in order. */
+  lines: FluidLine[];
+  /** Components before which the author asked for a new sheet. */
+  sheetBreaks: { before: number; title?: string }[];
+  at: SourceRange;
+}
+
+export interface FluidComponent {
+  id: PartId;
+  /** Absent for a component the author only called by its kind. */
+  name?: string;
+  kind: FluidKind;
+  medium: Medium;
+  text?: string;
+  /** The data printed beside it: `40/16 × 60`, `5.5 bar`. */
+  values: string[];
+  ports: FluidPort[];
+  cylinder?: CylinderSpec;
+  valve?: ValveSpec;
+  /** Pumps: the electric motor device that drives it, if it has one. */
+  drivenBy?: string;
+  at: SourceRange;
+}
+
+/**
+ * Port names by kind (the symbols use the same):
+ * tank `T`; pump, compressor `S` (suction) `P`; air-supply `1`; service-unit, filter `in` `out`; cylinder `cap` `rod`;
+ * hydraulic valve `P T A B X Y`; pneumatic valve `1 2 3 4 5 12 14`; 2/2 valves `P A` or `1 2`; relief-valve `P T`;
+ * check-valve `in` `out` (free flow in → out); pilot-operated-check-valve `in` `out` `X`; throttle, shut-off-valve `in` `out`;
+ * one-way-flow-control `in` `out` (free flow in → out); silencer, exhaust `in`; gauge, pressure-switch `P`.
+ */
+export interface FluidPort {
+  name: string;
+  node?: FluidNodeId;
+  plugged: boolean;
+}
+
+export type FluidNodeId = number;
+
+/** Everything joined by line with no component between. */
+export interface FluidNode {
+  id: FluidNodeId;
+  points: string[];
+  ports: { component: PartId; port: string }[];
+}
+
+export interface FluidLine {
+  id: PartId;
+  role: "working" | "pilot" | "drain" | "exhaust";
+  node: FluidNodeId;
+  ends: [FluidEnd, FluidEnd];
+  hose: boolean;
+  size?: Quantity;
+  at: SourceRange;
+}
+
+export type FluidEnd = { kind: "port"; component: PartId; port: string } | { kind: "point"; point: string };
+
+export interface CylinderSpec {
+  action: "double-acting" | "single-acting";
+  bore?: Quantity;
+  rod?: Quantity;
+  stroke?: Quantity;
+  cushion: "none" | "fixed" | "adjustable";
+  /** Single-acting: what brings it back; `load` when nothing is said. `spring-extend` pushes the rod out. */
+  returnedBy?: "spring" | "spring-extend" | "load";
+  /** mm from retracted. */
+  start: number;
+  /** Switches along the stroke, in order of place. */
+  switches: { device: string; from: number; to: number }[];
+}
+
+export type ActuatorKind =
+  | "solenoid" | "proportional-solenoid" | "piloted-solenoid" | "spring" | "detent" | "pilot" | "push-button" | "lever" | "pedal" | "roller"
+  | "plunger";
+
+export interface ValveActuator {
+  kind: ActuatorKind;
+  /** The coil's designation. */
+  solenoid?: string;
+  override: boolean;
+}
+
+export interface ValveSpec {
+  ports: 2 | 3 | 4 | 5;
+  positions: 2 | 3;
+  /** What each box joins, left to right, in the codes of `src/symbols/valve-positions.ts`, e.g. ["P>A·B>T", "P>B·A>T"]. */
+  boxes: string[];
+  /** The box its lines are drawn to when nothing acts: 0 is leftmost. Absent for a valve with no normal position. */
+  normal?: number;
+  /** `start` as written. */
+  start?: "left" | "right";
+  /** Innermost first. */
+  left: ValveActuator[];
+  right: ValveActuator[];
+}
