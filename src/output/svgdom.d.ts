@@ -1,0 +1,4 @@
+declare module "svgdom" {
+  /** An empty SVG document in a window without a screen. */
+  export function createSVGWindow(): Window & typeof globalThis;
+}
