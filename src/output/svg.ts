@@ -65,6 +65,7 @@ function styleFor(sheet: DrawnSheet, world: World): string {
     `text{font-family:"${family}",sans-serif;font-kerning:none;font-variant-ligatures:none;white-space:pre;fill:#000}`,
     "path{fill:none;stroke:#000;stroke-linecap:round;stroke-linejoin:round}",
     "path.fill{fill:#000;stroke:none}",
+    "path.dashed{stroke-linecap:butt}",
     ".paper{fill:#fff}",
     ".link rect{fill:none;pointer-events:all}",
   ].join("\n");
@@ -86,15 +87,15 @@ function drawBucket(root: Svg, bucket: Bucket, set: DrawingSet): void {
     if (mark.kind === "text") {
       drawText(group, mark, role);
     } else {
-      const look = mark.kind === "fill" ? ["fill", role] : [role];
+      // Round ends would close the gaps of a dashed line.
+      const look = mark.kind === "fill" ? "fill" : mark.dash ? "dashed" : undefined;
       const path = add(group, "path");
-      const names = look.filter((name) => name !== undefined);
+      const names = [look, role].filter((name) => name !== undefined);
       if (names.length > 0) path.attr({ class: names.join(" ") });
       path.attr({ d: pathData(mark.path) });
       if (mark.kind === "stroke") {
         path.attr({ "stroke-width": decimal(mark.width) });
-        // Round ends would close the gaps of a dashed line.
-        if (mark.dash) path.attr({ "stroke-dasharray": mark.dash.map(decimal).join(" "), "stroke-linecap": "butt" });
+        if (mark.dash) path.attr({ "stroke-dasharray": mark.dash.map(decimal).join(" ") });
       }
       if (mark.ink) path.attr({ style: `${mark.kind === "fill" ? "fill" : "stroke"}:${colour(mark.ink)}` });
     }

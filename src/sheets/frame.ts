@@ -86,19 +86,18 @@ function fields(paper: Paper, side: "across" | "down", from: Mm, to: Mm): { inde
   return shown;
 }
 
-/** At the middles of the sheet's sides; the lower one stops at the frame where the title block stands on it. */
+/** At the middles of the sheet's sides; the lower one stops at the frame, for the strip with the title block stands on it. */
 function centringMarks(page: Page, outer: { x: Mm; y: Mm; width: Mm; height: Mm }): Mark[] {
-  const { frame, paper, titleBlock } = page;
+  const { frame, paper } = page;
   const x = paper.size.width / 2;
   const y = paper.size.height / 2;
   const right = frame.x + frame.width;
   const bottom = frame.y + frame.height;
-  const covered = (titleBlock.x < x && x < titleBlock.x + titleBlock.width) || paper.standard === "asme";
   const inward = paper.standard === "iso" ? centringReach : 0;
   const mark = (from: Point, to: Point): Mark => ({ kind: "stroke", role: "centring", path: polyline([from, to]), width: frameWidth });
   return [
     mark({ x, y: outer.y }, { x, y: frame.y + inward }),
-    mark({ x, y: outer.y + outer.height }, { x, y: covered ? bottom : bottom - inward }),
+    mark({ x, y: outer.y + outer.height }, { x, y: bottom }),
     mark({ x: outer.x, y }, { x: frame.x + inward, y }),
     mark({ x: outer.x + outer.width, y }, { x: right - inward, y }),
   ];
