@@ -23,6 +23,8 @@ export interface CircuitSheet {
   wires: PlacedWire[];
   dots: PlacedDot[];
   texts: PlacedText[];
+  /** What a reader of this sheet must know, e.g. that a valve is drawn as it stands at the start; printed with the general notes. */
+  notes?: string[];
   /** Plain strokes that are neither symbol nor wire: cam marks, header ticks, enclosure frames. */
   strokes: { part?: PartId; role: string; path: Point[]; width: Mm; dash?: Mm[] }[];
 }

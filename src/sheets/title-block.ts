@@ -1,7 +1,7 @@
 import type { Box } from "../drawing/geometry.js";
 import type { Mark } from "../drawing/marks.js";
 import { polyline, rectangle } from "../drawing/path.js";
-import { fitText, wrapText } from "../drawing/text.js";
+import { fitText, measureText, wrapText } from "../drawing/text.js";
 import type { DrawingInfo } from "../machine/model.js";
 import type { Page } from "./page.js";
 import { fillTemplate, type Template } from "./template.js";
@@ -61,8 +61,8 @@ function revisionMarks(box: Box, revisions: DrawingInfo["revisions"]): Mark[] {
   const header = box.height - rows * rowHeight;
   const columns = [
     { title: "Rev.", width: 9, value: (r: DrawingInfo["revisions"][number]) => r.index },
-    { title: "Date", width: 19.5, value: (r: DrawingInfo["revisions"][number]) => r.date },
-    { title: "Change", width: box.width - 28.5, value: (r: DrawingInfo["revisions"][number]) => r.text },
+    { title: "Date", width: 21, value: (r: DrawingInfo["revisions"][number]) => r.date },
+    { title: "Change", width: box.width - 30, value: (r: DrawingInfo["revisions"][number]) => r.text },
   ];
   const marks: Mark[] = [{ kind: "stroke", role: "form", path: rectangle(box), width: 0.5 }];
   const right = box.x + box.width;
@@ -76,9 +76,11 @@ function revisionMarks(box: Box, revisions: DrawingInfo["revisions"]): Mark[] {
     if (x > box.x) marks.push({ kind: "stroke", role: "form", path: polyline([{ x, y: box.y }, { x, y: box.y + box.height }]), width: 0.25 });
     marks.push({ kind: "text", role: "label", at: { x: x + inset, y: box.y + header - 1.6 }, text: column.title, height: 1.8, anchor: "start" });
     for (const [row, revision] of shown.entries()) {
-      const text = fitText(column.value(revision), 2.5, column.width - 2 * inset);
+      const room = column.width - 2 * inset;
+      const height = measureText(column.value(revision), 2.5) > room ? 1.8 : 2.5;
+      const text = fitText(column.value(revision), height, room);
       const y = box.y + header + (row + 1) * rowHeight - 1.3;
-      if (text !== "") marks.push({ kind: "text", role: "field", at: { x: x + inset, y }, text, height: 2.5, anchor: "start" });
+      if (text !== "") marks.push({ kind: "text", role: "field", at: { x: x + inset, y }, text, height, anchor: "start" });
     }
     x += column.width;
   }

@@ -1,0 +1,125 @@
+import type { Box } from "../drawing/geometry.js";
+import type { PartId } from "../drawing/marks.js";
+import type { Layout, Place } from "../layout/placement.js";
+import type { ContactUse, Device, Machine } from "../machine/model.js";
+import type { ContactReference, CrossReferenceRow } from "../schedules/rows.js";
+
+/** Something drawn, and where. */
+export interface Appearance {
+  part: PartId;
+  place: Place;
+}
+
+/** Where the devices of a machine are drawn: the lookups behind references, links and outline. */
+export interface Appearances {
+  machine: Machine;
+  layout: Layout;
+  rows: ReadonlyMap<string, CrossReferenceRow>;
+  /** A device's coil, lamp or other load. */
+  loadOf(device: string): Appearance | undefined;
+  /** A device's contacts in drawing order. */
+  contactsOf(device: string): (Appearance & { contact: ContactUse })[];
+  /** On a fluid sheet: a solenoid at its valve, a switch at the cam that works it or the line that it senses. */
+  fluidSideOf(device: string): Appearance | undefined;
+  /** A fluid component. */
+  component(name: string): Appearance | undefined;
+  /** The contact a row of the cross-reference speaks of. */
+  contactOf(device: string, reference: ContactReference): PartId | undefined;
+  /** The device of which a part is a contact or a load in a rung. */
+  deviceOf(part: PartId): { device: string; use: "contact" | "load" } | undefined;
+  /** The ends of a point on all sheets of a kind. */
+  pointEnds(kind: "ladder" | "fluid", point: string): { from: PartId; place: Place }[];
+}
+
+/** Looks up every appearance once. */
+export function findAppearances(machine: Machine, layout: Layout, rows: readonly CrossReferenceRow[]): Appearances {
+  const at = (part: PartId | undefined): Appearance | undefined => {
+    const place = part === undefined ? undefined : layout.places.get(part);
+    return part !== undefined && place ? { part, place } : undefined;
+  };
+  const marked = cams(layout);
+  const ends = endsOfPoints(layout);
+  const contactsOf = (device: string) =>
+    (machine.devices.get(device)?.contacts ?? []).flatMap((contact) => {
+      const found = at(contact.id);
+      return found ? [{ ...found, contact }] : [];
+    });
+  const component = (name: string) => at(machine.components.get(name)?.id);
+  const fluidSideOf = (name: string) => {
+    const device = machine.devices.get(name);
+    return marked.get(name) ?? onValve(device, at) ?? component(name) ?? component(device ? (operatorOf(device) ?? "") : "");
+  };
+  const uses = new Map<PartId, { device: string; use: "contact" | "load" }>();
+  for (const device of machine.devices.values()) {
+    for (const { id } of device.contacts) uses.set(id, { device: device.name, use: "contact" });
+    for (const { id } of device.loads) uses.set(id, { device: device.name, use: "load" });
+  }
+  return {
+    machine,
+    layout,
+    rows: new Map(rows.map((row) => [row.coil, row])),
+    loadOf: (device) => at(machine.devices.get(device)?.loads[0]?.id),
+    contactsOf,
+    fluidSideOf,
+    component,
+    contactOf: (device, reference) =>
+      contactsOf(device).find(
+        ({ place, contact }) =>
+          place.sheet === reference.sheet &&
+          place.line === reference.line &&
+          terminalsOf(contact) === reference.terminals &&
+          contact.form === reference.type,
+      )?.part,
+    deviceOf: (part) => uses.get(part),
+    pointEnds: (kind, point) => ends.get(`${kind} ${point}`) ?? [],
+  };
+}
+
+/** A contact's terminals as they are written, `13-14`; empty when it has none. */
+export function terminalsOf(contact: ContactUse): string {
+  return contact.terminals.value.filter((terminal) => terminal !== "").join("-");
+}
+
+/** The cylinder or fluid point that works a switch. */
+export function operatorOf(device: Device): string | undefined {
+  return device.place?.cylinder ?? device.senses?.component ?? device.senses?.point;
+}
+
+function onValve(device: Device | undefined, at: (part: PartId) => Appearance | undefined): Appearance | undefined {
+  if (!device?.valve) return undefined;
+  return at(`${device.valve.name}/${device.valve.side}`) ?? at(device.valve.name);
+}
+
+/** Parts on fluid sheets that carry a reference to a device's ladder line: its cam mark or its end of a valve. */
+function cams(layout: Layout): Map<string, Appearance> {
+  const found = new Map<string, Appearance>();
+  for (const sheet of layout.sheets) {
+    for (const { text, part, at, height } of sheet.texts) {
+      if (typeof text === "string" || text.to !== "ladder-line" || part === undefined || found.has(text.device)) continue;
+      const place = layout.places.get(part) ?? placeless(sheet.number, { x: at.x, y: at.y - height, width: text.room, height });
+      found.set(text.device, { part, place });
+    }
+  }
+  return found;
+}
+
+function endsOfPoints(layout: Layout): Map<string, { from: PartId; place: Place }[]> {
+  const ends = new Map<string, { from: PartId; place: Place }[]>();
+  for (const sheet of layout.sheets) {
+    for (const { text, at, height } of sheet.texts) {
+      if (typeof text === "string" || text.to !== "point") continue;
+      const key = `${sheet.kind} ${text.point}`;
+      const known = layout.places.get(text.from);
+      // A part that runs over several sheets has its place on one of them only.
+      const place =
+        known?.sheet === sheet.number ? known : placeless(sheet.number, { x: at.x, y: at.y - height, width: text.room, height });
+      ends.set(key, [...(ends.get(key) ?? []), { from: text.from, place }]);
+    }
+  }
+  return ends;
+}
+
+/** The place of something that the layout gave none: its sheet and box are known, its zone is left out. */
+function placeless(sheet: number, box: Box): Place {
+  return { sheet, zone: "", box };
+}

@@ -1,0 +1,106 @@
+import type { ContactReference, CrossReferenceRow } from "../schedules/rows.js";
+import { type Appearances, operatorOf } from "./appearances.js";
+import type { Piece } from "./references.js";
+import type { Cell, Table } from "./table.js";
+
+/** What stands below the tables to explain their entries. */
+export const tableNotes = [
+  "Each contact: its terminals, then sheet.line. NO is normally open, NC normally closed.",
+  "Not a certification. Isolate and verify before work.",
+];
+
+/** The cross-reference as tables: every coil and other load with its contacts and its valve, then every switch with what works it. */
+export function crossReferenceTables(rows: readonly CrossReferenceRow[], appearances: Appearances): Table[] {
+  const isLoad = (row: CrossReferenceRow) => (appearances.machine.devices.get(row.coil)?.loads.length ?? 0) > 0;
+  return [coilTable(rows.filter(isLoad), appearances), switchTable(rows.filter((row) => !isLoad(row)), appearances)].filter(
+    (table) => table.rows.length > 0,
+  );
+}
+
+function coilTable(rows: CrossReferenceRow[], appearances: Appearances): Table {
+  return {
+    title: "Coils and other loads",
+    columns: [
+      { title: "Coil", share: 20 },
+      { title: "Kind", share: 23 },
+      { title: "Function", share: 62 },
+      { title: "Line", share: 18 },
+      { title: "NO contacts", share: 62 },
+      { title: "NC contacts", share: 62 },
+      { title: "Valve", share: 27 },
+    ],
+    rows: rows.map((row) => {
+      const home = appearances.loadOf(row.coil)?.part;
+      return [
+        { text: row.coil, to: home, bold: true },
+        { text: kindName(row.kind) },
+        { text: row.text },
+        { entries: [{ text: `${row.sheet}.${row.line}`, to: home }] },
+        contacts(row, "NO", appearances),
+        contacts(row, "NC", appearances),
+        valve(row, appearances),
+      ];
+    }),
+  };
+}
+
+function switchTable(rows: CrossReferenceRow[], appearances: Appearances): Table {
+  return {
+    title: "Switches and other contacts",
+    columns: [
+      { title: "Device", share: 20 },
+      { title: "Kind", share: 23 },
+      { title: "Function", share: 62 },
+      { title: "Operated by", share: 45 },
+      { title: "NO contacts", share: 62 },
+      { title: "NC contacts", share: 62 },
+    ],
+    rows: rows.map((row) => [
+      { text: row.coil, to: appearances.contactsOf(row.coil)[0]?.part, bold: true },
+      { text: kindName(row.kind) },
+      { text: row.text },
+      operatedBy(row, appearances),
+      contacts(row, "NO", appearances),
+      contacts(row, "NC", appearances),
+    ]),
+  };
+}
+
+function contacts(row: CrossReferenceRow, type: ContactReference["type"], appearances: Appearances): Cell {
+  const entries = row.contacts
+    .filter((contact) => contact.type === type)
+    .map((contact): Piece => {
+      const to = appearances.contactOf(row.coil, contact);
+      const terminals = [contact.terminals, contact.timed ? "timed" : ""].filter((part) => part !== "").join(" ");
+      return { text: `${terminals}${terminals === "" ? "" : "  "}${contact.sheet}.${contact.line}`, ...(to === undefined ? {} : { to }) };
+    });
+  return { entries };
+}
+
+function valve(row: CrossReferenceRow, appearances: Appearances): Cell {
+  if (!row.valve) return { text: "" };
+  const { name, sheet, zone } = row.valve;
+  const to = appearances.fluidSideOf(row.coil)?.part;
+  return { text: `${name} ${sheet}${zone === "" ? "" : `/${zone}`}`, ...(to === undefined ? {} : { to }) };
+}
+
+function operatedBy(row: CrossReferenceRow, appearances: Appearances): Cell {
+  const device = appearances.machine.devices.get(row.coil);
+  const operator = device ? operatorOf(device) : undefined;
+  if (!device || operator === undefined) return { text: "" };
+  const found = appearances.fluidSideOf(row.coil);
+  const where = found ? `${found.place.sheet}${found.place.zone === "" ? "" : `/${found.place.zone}`}` : "";
+  const stretch = device.place ? placeName(device.place) : "";
+  const text = [operator, stretch, where].filter((part) => part !== "").join(" ");
+  return { text, ...(found ? { to: found.part } : {}) };
+}
+
+function placeName({ written, from, to }: { written: string; from: number; to: number }): string {
+  if (written === "retracted" || written === "extended") return written;
+  return from === to ? `at ${from} mm` : `${from} to ${to} mm`;
+}
+
+function kindName(kind: string): string {
+  const words = kind.replaceAll("-", " ");
+  return words.charAt(0).toUpperCase() + words.slice(1);
+}

@@ -1,0 +1,209 @@
+import { textBox } from "../drawing/extent.js";
+import type { Box, Mm } from "../drawing/geometry.js";
+import type { Mark, PartId } from "../drawing/marks.js";
+import { fitText, measureText } from "../drawing/text.js";
+import type { CircuitSheet, Place, PlacedText, Reference } from "../layout/placement.js";
+import { type Appearance, type Appearances, operatorOf } from "./appearances.js";
+
+/** A reference put into words: texts in a row, each of which may lead somewhere. */
+export interface Wording {
+  pieces: Piece[];
+}
+
+export interface Piece {
+  text: string;
+  to?: PartId;
+  underline?: boolean;
+}
+
+/** The marks of a reference: the fullest wording that fits its room, with a link on each piece that leads somewhere. */
+export function referenceMarks(text: PlacedText & { text: Reference }, sheet: CircuitSheet, appearances: Appearances): Mark[] {
+  const reference = text.text;
+  if (reference.to === "contacts") return contactListMarks(text, reference.room, contactPieces(reference.device, sheet, appearances));
+  const wordings = wordingsOf(reference, sheet, appearances);
+  const [first] = wordings;
+  if (!first) return [];
+  const wide = (wording: Wording, height: Mm) => measureText(plain(wording), height) > reference.room;
+  for (const height of text.height > least ? [text.height, least] : [text.height]) {
+    const fitting = wordings.find((wording) => !wide(wording, height));
+    if (fitting) return rowMarks(text, fitting.pieces, height, 0);
+  }
+  const shortest = wordings.at(-1) as Wording;
+  const height = Math.min(text.height, least);
+  return rowMarks(text, [{ text: fitText(plain(shortest), height, reference.room), to: shortest.pieces[0]?.to }], height, 0);
+}
+
+/** No reference is set smaller than this. */
+const least: Mm = 1.8;
+
+const plain = ({ pieces }: Wording) => pieces.map((piece) => piece.text).join("");
+
+/** The ways to word a reference, fullest first; none if what it speaks of is drawn nowhere. */
+function wordingsOf(reference: Reference, sheet: CircuitSheet, appearances: Appearances): Wording[] {
+  switch (reference.to) {
+    case "coil":
+      return bracketed(appearances.loadOf(reference.device), sheet, appearances);
+    case "switch-place": {
+      const device = appearances.machine.devices.get(reference.device);
+      return named(device ? operatorOf(device) : undefined, appearances.fluidSideOf(reference.device));
+    }
+    case "valve": {
+      const name = appearances.machine.devices.get(reference.device)?.valve?.name;
+      return named(name, appearances.fluidSideOf(reference.device) ?? (name ? appearances.component(name) : undefined));
+    }
+    case "ladder-line":
+      return ladderLines(reference.device, sheet, appearances);
+    case "point":
+      return elsewhere(reference, sheet, appearances);
+    case "contacts":
+      return [{ pieces: contactPieces(reference.device, sheet, appearances) }];
+  }
+}
+
+function bracketed(found: Appearance | undefined, sheet: CircuitSheet, appearances: Appearances): Wording[] {
+  if (!found) return [];
+  return [{ pieces: [{ text: `(${lineName(found.place, sheet, appearances)})`, to: found.part }] }];
+}
+
+/** `CLAMP 1/B4`, and where there is no room for the name only the place. */
+function named(name: string | undefined, found: Appearance | undefined): Wording[] {
+  if (!found) return name === undefined ? [] : [{ pieces: [{ text: name }] }];
+  const where = zoneName(found.place);
+  return [...(name === undefined ? [] : [`${name} ${where}`]), where].map((text) => ({ pieces: [{ text, to: found.part }] }));
+}
+
+/** `(204)`; for a switch with several contacts `(203, 207)`, as many as there is room for. */
+function ladderLines(device: string, sheet: CircuitSheet, appearances: Appearances): Wording[] {
+  const load = appearances.loadOf(device);
+  if (load) return bracketed(load, sheet, appearances);
+  const contacts = appearances.contactsOf(device);
+  const wordings: Wording[] = [];
+  for (let shown = contacts.length; shown > 0; shown--) {
+    const end = shown < contacts.length ? ", …)" : ")";
+    const pieces = contacts.slice(0, shown).map(({ part, place }, index): Piece => {
+      const line = lineName(place, sheet, appearances);
+      return { text: `${index === 0 ? "(" : ""}${line}${index === shown - 1 ? end : ", "}`, to: part };
+    });
+    wordings.push({ pieces });
+  }
+  return wordings;
+}
+
+/** A point's other ends: `run 2/204`, on a fluid sheet `P 2/B1`. */
+function elsewhere(reference: Reference & { to: "point" }, sheet: CircuitSheet, appearances: Appearances): Wording[] {
+  const others = appearances.pointEnds(sheet.kind, reference.point).filter(({ place }) => place.sheet !== sheet.number);
+  // One end on each other sheet is enough, and the sheets that follow are read first.
+  const onceEach = others.filter(({ place }, index) => others.findIndex((other) => other.place.sheet === place.sheet) === index);
+  const ordered = [
+    ...onceEach.filter(({ place }) => place.sheet > sheet.number),
+    ...onceEach.filter(({ place }) => place.sheet < sheet.number).reverse(),
+  ];
+  if (ordered.length === 0) return [{ pieces: [{ text: reference.point }] }];
+  const wordings: Wording[] = [];
+  for (let shown = ordered.length; shown > 0; shown--) {
+    const pieces = ordered.slice(0, shown).map(({ from, place }, index): Piece => {
+      const where = place.line === undefined ? zoneName(place) : `${place.sheet}/${place.line}`;
+      return { text: `${index === 0 ? `${reference.point} ` : ", "}${where}`, to: from };
+    });
+    wordings.push({ pieces });
+  }
+  return wordings;
+}
+
+/** `1/B4`; only the sheet where the zone is not known. */
+function zoneName({ sheet, zone }: Place): string {
+  return zone === "" ? String(sheet) : `${sheet}/${zone}`;
+}
+
+/** A ladder line as another place speaks of it. Lines numbered by sheet name their sheet themselves; running ones need it said when it is another. */
+function lineName(place: Place, from: CircuitSheet, { machine }: Appearances): string {
+  const line = place.line === undefined ? zoneName(place) : String(place.line);
+  if (place.line === undefined) return line;
+  if (machine.drawing.convention === "international") return `/${place.sheet}.${line}`;
+  return machine.drawing.lineNumbers === "running" && place.sheet !== from.number ? `${place.sheet}/${line}` : line;
+}
+
+/** The lines of a coil's contacts, normally closed ones underlined. */
+function contactPieces(device: string, sheet: CircuitSheet, appearances: Appearances): Piece[] {
+  return (appearances.rows.get(device)?.contacts ?? []).map((reference) => {
+    const to = appearances.contactOf(device, reference);
+    const text = lineName({ sheet: reference.sheet, line: reference.line, zone: "", box: nowhere }, sheet, appearances);
+    return { text, ...(to === undefined ? {} : { to }), ...(reference.type === "NC" ? { underline: true } : {}) };
+  });
+}
+
+const nowhere: Box = { x: 0, y: 0, width: 0, height: 0 };
+
+/**
+ * The contact lines of a coil, beside its rung. They are wrapped about the height of the rung line and set smaller when they
+ * are many; what has no room even then is left to the cross-reference sheet, and `…` says so.
+ */
+function contactListMarks(text: PlacedText, room: Mm, pieces: Piece[]): Mark[] {
+  if (pieces.length === 0) return [];
+  const settings = [
+    { height: text.height, pitch: text.height * 1.6, rows: 2 },
+    { height: least, pitch: 3, rows: 3 },
+  ];
+  for (const [index, { height, pitch, rows }] of settings.entries()) {
+    const wrapped = wrapPieces(pieces, height, room);
+    const last = index === settings.length - 1;
+    if (wrapped.length > rows && !last) continue;
+    const shown = wrapped.slice(0, rows);
+    if (wrapped.length > rows) endWithMore(shown.at(-1) as Piece[], height, room);
+    const rise = ((shown.length - 1) * pitch) / 2;
+    return shown.flatMap((row, line) => rowMarks(text, row, height, line * pitch - rise));
+  }
+  return [];
+}
+
+/** Rows of pieces with `, ` between them, each row no wider than the room unless a single piece is. */
+function wrapPieces(pieces: Piece[], height: Mm, room: Mm): Piece[][] {
+  const rows: Piece[][] = [];
+  let row: Piece[] = [];
+  for (const [index, piece] of pieces.entries()) {
+    const comma = index < pieces.length - 1 ? "," : "";
+    // A line under the number must not run on under the comma.
+    const next = piece.underline && comma ? [piece, { text: comma }] : [{ ...piece, text: piece.text + comma }];
+    const longer = [...row, ...(row.length > 0 ? [{ text: " " }] : []), ...next];
+    if (row.length > 0 && measureText(plain({ pieces: longer }), height) > room) {
+      rows.push(row);
+      row = next;
+    } else row = longer;
+  }
+  if (row.length > 0) rows.push(row);
+  return rows;
+}
+
+function endWithMore(row: Piece[], height: Mm, room: Mm): void {
+  const more = { text: " …" };
+  while (row.length > 1 && measureText(plain({ pieces: [...row, more] }), height) > room) row.pop();
+  while (row.length > 0 && (row.at(-1) as Piece).text === " ") row.pop();
+  row.push(more);
+}
+
+/** Pieces side by side at the place of a text, moved down by `drop`. */
+function rowMarks(text: PlacedText, pieces: Piece[], height: Mm, drop: Mm): Mark[] {
+  const marks: Mark[] = [];
+  const common = { kind: "text", role: text.role, height, ...(text.part === undefined ? {} : { part: text.part }) } as const;
+  const total = measureText(plain({ pieces }), height);
+  const before = text.anchor === "start" ? 0 : text.anchor === "middle" ? total / 2 : total;
+  let along = -before;
+  for (const piece of pieces) {
+    const width = measureText(piece.text, height);
+    const at = text.rotated ? { x: text.at.x + drop, y: text.at.y - along } : { x: text.at.x + along, y: text.at.y + drop };
+    along += width;
+    if (piece.text.trim() === "") continue;
+    const mark: Mark & { kind: "text" } = { ...common, at, text: piece.text, anchor: "start" };
+    if (text.rotated) mark.rotated = true;
+    if (piece.underline) mark.underline = true;
+    marks.push(mark);
+    if (piece.to !== undefined) marks.push({ kind: "link", box: roundabout(textBox(mark)), to: piece.to });
+  }
+  return marks;
+}
+
+/** A finger's breadth more than the text itself. */
+export function roundabout({ x, y, width, height }: Box): Box {
+  const pad = 0.6;
+  return { x: x - pad, y: y - pad, width: width + 2 * pad, height: height + 2 * pad };
+}
