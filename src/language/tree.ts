@@ -14,6 +14,8 @@ export interface Tree {
 
 export interface Located {
   at: SourceRange;
+  /** Set on a statement of which a part could not be read. The slip is already reported; what follows from it need not be. */
+  incomplete?: true;
 }
 
 /** A keyword or designation with its place. */

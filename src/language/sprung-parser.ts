@@ -1,0 +1,89 @@
+import type { CstNode, Grammar, LangiumParser, Lexer, LexerResult, TokenBuilder } from "langium";
+import { createDefaultCoreModule, createDefaultSharedCoreModule, DefaultTokenBuilder, EmptyFileSystem, inject } from "langium";
+import type { Document } from "./generated/ast.js";
+import { SprungGeneratedModule, SprungGeneratedSharedModule } from "./generated/module.js";
+import type { Problem, Tokens } from "./token.js";
+
+// The build packs this file and all it imports into one, because reading Langium's many small files takes several times
+// as long as the work. It must therefore import nothing of this project that others import too, save types.
+
+/** What the grammar's rules made of a text: its syntax nodes, and what was wrong with it. */
+export interface Parsed {
+  document: Document;
+  problems: Problem[];
+  /** Tokens no rule took. There are none while the lexer keeps its promise; a fuzz test holds it to that. */
+  leftOver: { start: number; end: number }[];
+}
+
+/** Gives a parser for whole texts, reading tokens from the given lexer. Building it takes some tens of milliseconds. */
+export function createSprungParser(tokenize: (text: string) => Tokens): (text: string) => Parsed {
+  let problems: Problem[] = [];
+  const shared = inject(createDefaultSharedCoreModule(EmptyFileSystem), SprungGeneratedSharedModule);
+  const services = inject(createDefaultCoreModule({ shared }), SprungGeneratedModule, {
+    parser: {
+      Lexer: (own: { Grammar: Grammar; parser: { TokenBuilder: TokenBuilder } }) =>
+        new OwnLexer(new DefaultTokenBuilder(), own.Grammar, (text) => {
+          const result = tokenize(text);
+          problems = result.problems;
+          return result;
+        }),
+      // One token ahead decides everywhere, which is much quicker than looking as far as it takes.
+      ParserConfig: () => ({ maxLookahead: 1, recoveryEnabled: true, nodeLocationTracking: "full", skipValidations: true }),
+    },
+  });
+  const parser: LangiumParser = services.parser.LangiumParser;
+  return (text) => {
+    const result = parser.parse<Document>(text);
+    const leftOver = result.parserErrors.map(({ token }) => ({
+      start: Number.isFinite(token.startOffset) ? token.startOffset : text.length,
+      end: Number.isFinite(token.endOffset) ? (token.endOffset as number) + 1 : text.length,
+    }));
+    return { document: result.value, problems, leftOver };
+  };
+}
+
+/** Where a syntax node stands in the text; undefined for one without a token of its own. */
+export function nodeExtent(node: { $cstNode?: CstNode | undefined }): { start: number; end: number } | undefined {
+  const cst = node.$cstNode;
+  if (!cst) return undefined;
+  const { offset, end } = cst;
+  return end === 0 && offset === 0 ? undefined : { start: offset, end };
+}
+
+type IToken = LexerResult["tokens"][number];
+
+/** Hands the project's own tokens to the parser in its form. */
+class OwnLexer implements Lexer {
+  readonly definition: Lexer["definition"];
+
+  constructor(
+    builder: TokenBuilder,
+    grammar: Grammar,
+    private readonly cut: (text: string) => Tokens,
+  ) {
+    const types = builder.buildTokens(grammar) as Lexer["definition"][string][];
+    this.definition = Object.fromEntries(types.map((type) => [type.name, type]));
+  }
+
+  tokenize(text: string): LexerResult {
+    const { tokens } = this.cut(text);
+    return { tokens: tokens.map((token) => this.translate(token, text)), hidden: [], errors: [], report: { diagnostics: [] } };
+  }
+
+  /** Lines and columns are left at 1: places are told from offsets alone. */
+  private translate({ type, start, end }: Tokens["tokens"][number], text: string): IToken {
+    const tokenType = this.definition[type];
+    if (!tokenType) throw new Error(`The grammar has no token ${type}.`);
+    return {
+      image: text.slice(start, end),
+      startOffset: start,
+      endOffset: end - 1,
+      startLine: 1,
+      endLine: 1,
+      startColumn: start + 1,
+      endColumn: end,
+      tokenType,
+      tokenTypeIdx: tokenType.tokenTypeIdx as number,
+    };
+  }
+}
