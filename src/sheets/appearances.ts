@@ -1,4 +1,4 @@
-import type { Box } from "../drawing/geometry.js";
+import type { Box, Point } from "../drawing/geometry.js";
 import type { PartId } from "../drawing/marks.js";
 import type { Layout, Place } from "../layout/placement.js";
 import type { ContactUse, Device, Machine } from "../machine/model.js";
@@ -32,13 +32,18 @@ export interface Appearances {
 }
 
 /** Looks up every appearance once. */
-export function findAppearances(machine: Machine, layout: Layout, rows: readonly CrossReferenceRow[]): Appearances {
+export function findAppearances(
+  machine: Machine,
+  layout: Layout,
+  rows: readonly CrossReferenceRow[],
+  zoneOf: (point: Point) => string,
+): Appearances {
   const at = (part: PartId | undefined): Appearance | undefined => {
     const place = part === undefined ? undefined : layout.places.get(part);
     return part !== undefined && place ? { part, place } : undefined;
   };
-  const marked = cams(layout);
-  const ends = endsOfPoints(layout);
+  const marked = cams(layout, zoneOf);
+  const ends = endsOfPoints(layout, zoneOf);
   const contactsOf = (device: string) =>
     (machine.devices.get(device)?.contacts ?? []).flatMap((contact) => {
       const found = at(contact.id);
@@ -91,19 +96,19 @@ function onValve(device: Device | undefined, at: (part: PartId) => Appearance | 
 }
 
 /** Parts on fluid sheets that carry a reference to a device's ladder line: its cam mark or its end of a valve. */
-function cams(layout: Layout): Map<string, Appearance> {
+function cams(layout: Layout, zoneOf: (point: Point) => string): Map<string, Appearance> {
   const found = new Map<string, Appearance>();
   for (const sheet of layout.sheets) {
     for (const { text, part, at, height } of sheet.texts) {
       if (typeof text === "string" || text.to !== "ladder-line" || part === undefined || found.has(text.device)) continue;
-      const place = layout.places.get(part) ?? placeless(sheet.number, { x: at.x, y: at.y - height, width: text.room, height });
+      const place = layout.places.get(part) ?? placeless(sheet.number, at, height, zoneOf);
       found.set(text.device, { part, place });
     }
   }
   return found;
 }
 
-function endsOfPoints(layout: Layout): Map<string, { from: PartId; place: Place }[]> {
+function endsOfPoints(layout: Layout, zoneOf: (point: Point) => string): Map<string, { from: PartId; place: Place }[]> {
   const ends = new Map<string, { from: PartId; place: Place }[]>();
   for (const sheet of layout.sheets) {
     for (const { text, at, height } of sheet.texts) {
@@ -111,15 +116,15 @@ function endsOfPoints(layout: Layout): Map<string, { from: PartId; place: Place 
       const key = `${sheet.kind} ${text.point}`;
       const known = layout.places.get(text.from);
       // A part that runs over several sheets has its place on one of them only.
-      const place =
-        known?.sheet === sheet.number ? known : placeless(sheet.number, { x: at.x, y: at.y - height, width: text.room, height });
+      const place = known?.sheet === sheet.number ? known : placeless(sheet.number, at, height, zoneOf);
       ends.set(key, [...(ends.get(key) ?? []), { from: text.from, place }]);
     }
   }
   return ends;
 }
 
-/** The place of something that the layout gave none: its sheet and box are known, its zone is left out. */
-function placeless(sheet: number, box: Box): Place {
-  return { sheet, zone: "", box };
+/** The place of something to which the layout gave none: where its reference stands. */
+function placeless(sheet: number, at: Point, height: number, zoneOf: (point: Point) => string): Place {
+  const box: Box = { x: at.x, y: at.y - height, width: height, height };
+  return { sheet, zone: zoneOf(at), box };
 }

@@ -10,7 +10,7 @@ import { circuitMarks } from "./circuit-marks.js";
 import { crossReferenceTables, tableNotes } from "./cross-reference-tables.js";
 import { frameMarks } from "./frame.js";
 import { outlineOf } from "./outline.js";
-import { type Page, pageOf } from "./page.js";
+import { type Page, pageOf, zoneOf } from "./page.js";
 import { papers } from "./paper.js";
 import { setTables } from "./table.js";
 import { readTemplate, templateNames } from "./template.js";
@@ -27,7 +27,7 @@ const circuitNotes = ["Drawn de-energized, unpressurized, at start of cycle.", "
 export function composeSheets(machine: Machine, layout: Layout, rows: readonly CrossReferenceRow[], world: World): DrawingSet {
   const { drawing } = machine;
   const page = pageOf(papers[drawing.paper] ?? papers.A3);
-  const appearances = findAppearances(machine, layout, rows);
+  const appearances = findAppearances(machine, layout, rows, (point) => zoneOf(page.paper, point));
 
   const contents: Content[] = layout.sheets.map((sheet) => ({
     number: sheet.number,

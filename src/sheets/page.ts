@@ -14,8 +14,11 @@ export interface Page {
   area: Box;
 }
 
-/** How far the centring marks reach into the frame (about 5 mm, ISO 5457 from memory) and nothing else comes nearer to it. */
+/** How far the centring marks reach into the frame: about 5 mm, ISO 5457 from memory. */
 export const centringReach: Mm = 5;
+
+/** Nothing of a circuit or table comes nearer to the frame than this, clear of the centring marks. */
+const clearance: Mm = 7;
 
 /** Height of the notes and revisions where they stand above a title block of the whole width. */
 const upperStrip: Mm = 25;
@@ -40,10 +43,10 @@ export function pageOf(paper: Paper): Page {
   const notes = { ...strip, width: strip.width - revisionWidth };
   const revisions = { ...strip, x: notes.x + notes.width, width: revisionWidth };
   const area = {
-    x: frame.x + centringReach,
-    y: frame.y + centringReach,
-    width: frame.width - 2 * centringReach,
-    height: strip.y - frame.y - 2 * centringReach,
+    x: frame.x + clearance,
+    y: frame.y + clearance,
+    width: frame.width - 2 * clearance,
+    height: strip.y - frame.y - clearance - centringReach,
   };
   return { paper, frame, titleBlock, revisions, notes, area };
 }

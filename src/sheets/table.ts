@@ -21,6 +21,7 @@ const padding: Mm = 1.5;
 const headHeight: Mm = 7;
 const titleHeight: Mm = 9;
 const gapBetween: Mm = 10;
+const entryGap: Mm = 4;
 /** Text in a cell takes no more lines than this; entries take as many as they need. */
 const mostLines = 3;
 
@@ -35,7 +36,8 @@ export function setTables(tables: readonly Table[], box: Box): Mark[][] {
   const bottom = box.y + box.height;
   for (const table of tables) {
     const widths = columnWidths(table, box.width);
-    const rows = table.rows.flatMap((row) => setRow(row, widths, Math.floor((box.height - titleHeight - headHeight - 2 * padding) / pitch)));
+    const steps = entrySteps(table);
+    const rows = table.rows.flatMap((row) => setRow(row, widths, steps, Math.floor((box.height - titleHeight - headHeight - 2 * padding) / pitch)));
     const [first] = rows;
     if (!first) continue;
     if (y > box.y) {
@@ -112,8 +114,8 @@ interface SetRow {
 }
 
 /** A row in lines; more than one row if it would be higher than a sheet. */
-function setRow(cells: Cell[], widths: Mm[], most: number): SetRow[] {
-  const lines = cells.map((cell, index) => cellLines(cell, (widths[index] as Mm) - 2 * padding));
+function setRow(cells: Cell[], widths: Mm[], steps: Mm[], most: number): SetRow[] {
+  const lines = cells.map((cell, index) => cellLines(cell, (widths[index] as Mm) - 2 * padding, steps[index] as Mm));
   const count = Math.max(1, ...lines.map((cell) => cell.length));
   const rows: SetRow[] = [];
   for (let from = 0; from < count; from += most) {
@@ -126,17 +128,14 @@ function setRow(cells: Cell[], widths: Mm[], most: number): SetRow[] {
 
 type CellLine = (Piece & { x: Mm; bold?: boolean })[];
 
-function cellLines(cell: Cell, room: Mm): CellLine[] {
+function cellLines(cell: Cell, room: Mm, step: Mm): CellLine[] {
   if ("text" in cell) {
     return wrapText(cell.text, textHeight, room, mostLines, cell.bold).map((text) => [
       { text, x: 0, ...(cell.to === undefined ? {} : { to: cell.to }), ...(cell.bold ? { bold: true } : {}) },
     ]);
   }
   if (cell.entries.length === 0) return [];
-  // Entries stand in columns of one breadth, so that the eye can run down them.
-  const widest = Math.max(...cell.entries.map((entry) => measureText(entry.text, textHeight)));
-  const step = widest + 4;
-  const perLine = Math.max(1, Math.floor((room + 4) / step));
+  const perLine = Math.max(1, Math.floor((room + entryGap) / step));
   const lines: CellLine[] = [];
   for (let from = 0; from < cell.entries.length; from += perLine) {
     lines.push(
@@ -144,6 +143,18 @@ function cellLines(cell: Cell, room: Mm): CellLine[] {
     );
   }
   return lines;
+}
+
+/** Entries of a column stand one breadth apart in all rows, so that the eye can run down them. */
+function entrySteps(table: Table): Mm[] {
+  return table.columns.map((_, index) => {
+    let widest = 0;
+    for (const row of table.rows) {
+      const cell = row[index];
+      if (cell && "entries" in cell) for (const { text } of cell.entries) widest = Math.max(widest, measureText(text, textHeight));
+    }
+    return widest + entryGap;
+  });
 }
 
 function rowMarks(lines: CellLine[][], widths: Mm[], left: Mm, top: Mm): Mark[] {
