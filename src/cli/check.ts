@@ -1,5 +1,6 @@
 import { type Examined, examine } from "../compile.js";
 import type { Diagnostic } from "../language/diagnostic.js";
+import { writeJson } from "../output/json.js";
 import { useColor } from "./color.js";
 import type { Desk } from "./desk.js";
 import type { ExitCode } from "./exit-code.js";
@@ -17,7 +18,7 @@ export async function check(files: readonly string[], { json, color }: CheckOpti
   const examined: Examined[] = [];
   for (const file of files) examined.push(await examine(file, world));
   const all = examined.flatMap(({ diagnostics }) => diagnostics);
-  if (json) desk.out(`${JSON.stringify(all.map(asData), null, 2)}\n`);
+  if (json) desk.out(writeJson(all.map(asData)));
   else desk.out(wordFindings(examined, useColor(desk, "out", color)) || "No errors, no warnings.\n");
   return exitCodeFor(all, files);
 }

@@ -12,7 +12,7 @@ export async function worldFor(files: readonly string[], desk: Desk): Promise<Wo
 }
 
 /** Codes of findings that mean: the file named on the command line was never seen. */
-const notRead: ReadonlySet<string> = new Set(["file-missing", "file-unreadable", "file-is-folder"]);
+const notRead: ReadonlySet<string> = new Set(["file-missing", "file-unreadable", "file-folder"]);
 
 /** How a command ends that found this in the files it was given. */
 export function exitCodeFor(diagnostics: readonly Diagnostic[], files: readonly string[]): ExitCode {
