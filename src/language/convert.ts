@@ -132,7 +132,13 @@ class Conversion {
     for (const field of node.fields) {
       const [first, ...items] = this.items(field.items);
       if (first?.kind === "word") fields.push({ name: { text: first.text, at: first.at }, items, ...this.located(field) });
-      else if (first) this.report("field-expected", this.extent(field.items[0] as Syntax.Item), "A line of the drawing block begins with the name of a field.", "Write it as in “number TS-2040”.");
+      else if (first)
+        this.report(
+          "field-expected",
+          this.extent(field.items[0] as Syntax.Item),
+          "A line of the drawing block begins with the name of a field.",
+          "Write it as in “number TS-2040”.",
+        );
     }
     return { kind: "drawing", ...(title && { title }), fields, ...this.located(node) };
   }
@@ -141,7 +147,13 @@ class Conversion {
     const { title, rest } = this.head(node, node.head);
     this.refuse(rest);
     if (title) this.includes.push({ path: title.text, at: title.at, index: this.statements.length });
-    else if (rest.length === 0) this.report("text-expected", this.extent(node), "The path of the file is missing behind “include”.", 'Write it as in include "valves.sprung".');
+    else if (rest.length === 0)
+      this.report(
+        "text-expected",
+        this.extent(node),
+        "The path of the file is missing behind “include”.",
+        'Write it as in include "valves.sprung".',
+      );
   }
 
   private ladder(node: Syntax.Ladder): void {
@@ -164,7 +176,8 @@ class Conversion {
       else if (statement.$type === "Declaration") {
         const declaration = this.declaration(statement);
         if (declaration) block.statements.push(declaration);
-      } else if (statement.$type === "Line" || statement.$type === "Plug") this.misplaced(statement, statement.keyword, "belongs inside a fluid circuit");
+      } else if (statement.$type === "Line" || statement.$type === "Plug")
+        this.misplaced(statement, statement.keyword, "belongs inside a fluid circuit");
       else this.lift(statement, "ladder");
     }
   }
@@ -189,7 +202,10 @@ class Conversion {
   }
 
   /** A block that stands in another: it is understood as if it stood behind it. */
-  private lift(node: Syntax.Drawing | Syntax.Include | Syntax.Ladder | Syntax.Fluid | Syntax.Sequence | Syntax.Unsupported, within: string): void {
+  private lift(
+    node: Syntax.Drawing | Syntax.Include | Syntax.Ladder | Syntax.Fluid | Syntax.Sequence | Syntax.Unsupported,
+    within: string,
+  ): void {
     this.misplaced(node, node.keyword, `cannot stand inside “${within}”`, `Put it outside the braces of “${within}”.`);
     this.topStatement(node);
   }
@@ -256,7 +272,12 @@ class Conversion {
     const title = node.title && this.text(node.title);
     if (!node.colon) {
       const behind = node.title ? this.extent(node.title) : { start: extent.start, end: extent.start + "rung".length };
-      this.report("colon-missing", { start: behind.end - 1, end: behind.end }, "A “:” is missing before the rung's path.", 'Write it as in rung "Start": PB1 -> CR1.');
+      this.report(
+        "colon-missing",
+        { start: behind.end - 1, end: behind.end },
+        "A “:” is missing before the rung's path.",
+        'Write it as in rung "Start": PB1 -> CR1.',
+      );
     }
     return { kind: "rung", ...(title && { title }), path: this.series(node.path, extent.end), ...this.located(node) };
   }
@@ -271,7 +292,13 @@ class Conversion {
       else if (item.$type === "Point") items.push({ kind: "point", name: item.name.slice(1), at: this.range(item) });
       else if (item.$type === "Arrow") {
         if (arrow === undefined) arrow = items.length;
-        else this.report("arrow-twice", this.extent(item), "A second “->” stands in the same path.", "What is driven stands behind one “->”; put several loads in ( a | b ).");
+        else
+          this.report(
+            "arrow-twice",
+            this.extent(item),
+            "A second “->” stands in the same path.",
+            "What is driven stands behind one “->”; put several loads in ( a | b ).",
+          );
       } else this.strayInPath(item);
     }
     const at = this.extentOf(node) ? this.range(node) : this.source.range(place, place);
@@ -281,11 +308,21 @@ class Conversion {
   private strayInPath(node: Syntax.Stray): void {
     const extent = this.extent(node);
     const { text } = node;
-    if (text === "|") this.report("branch-without-bracket", extent, "“|” stands outside brackets.", "Put the branches in brackets: ( a | b ).");
-    else if (text.startsWith('"')) this.report("unexpected-text", extent, "A text has no place in a rung's path.", "The function text stands before the colon.");
-    else if (text === ":") this.report("unexpected-symbol", extent, "“:” has no place here.", "Terminals stand directly behind a name, as in “CR1:13-14”.");
-    else if (text === ",") this.report("unexpected-symbol", extent, "“,” has no place in a rung's path.", "Contacts in series stand side by side.");
-    else this.report("unexpected-symbol", extent, `“${text}” has no place in a rung's path.`, text === "--" ? "Contacts in series stand side by side; “->” stands before the load." : undefined);
+    if (text === "|")
+      this.report("branch-without-bracket", extent, "“|” stands outside brackets.", "Put the branches in brackets: ( a | b ).");
+    else if (text.startsWith('"'))
+      this.report("unexpected-text", extent, "A text has no place in a rung's path.", "The function text stands before the colon.");
+    else if (text === ":")
+      this.report("unexpected-symbol", extent, "“:” has no place here.", "Terminals stand directly behind a name, as in “CR1:13-14”.");
+    else if (text === ",")
+      this.report("unexpected-symbol", extent, "“,” has no place in a rung's path.", "Contacts in series stand side by side.");
+    else
+      this.report(
+        "unexpected-symbol",
+        extent,
+        `“${text}” has no place in a rung's path.`,
+        text === "--" ? "Contacts in series stand side by side; “->” stands before the load." : undefined,
+      );
   }
 
   private parallel(node: Syntax.Parallel): Parallel {
@@ -336,7 +373,13 @@ class Conversion {
     if (node.$type === "Point") return { kind: "point", name: node.name.slice(1), at: this.range(node) };
     const { start, end } = this.extent(node);
     const portStart = start + node.name.length;
-    if (node.pins) this.report("unexpected-symbol", { start: end - node.pins.length, end }, "Terminals have no place in a fluid line.", "A port stands behind a dot, as in “V1.A”.");
+    if (node.pins)
+      this.report(
+        "unexpected-symbol",
+        { start: end - node.pins.length, end },
+        "Terminals have no place in a fluid line.",
+        "A port stands behind a dot, as in “V1.A”.",
+      );
     return {
       kind: "component",
       name: { text: node.name, at: this.source.range(start, portStart) },
@@ -352,7 +395,12 @@ class Conversion {
     const items = this.items(head);
     const [first, ...rest] = items;
     if (first?.kind === "text") return { title: { text: first.text, at: first.at }, rest };
-    if (first?.kind === "word" && node.$type !== "Include" && node.$type !== "Fluid" && !(node.$type === "Ladder" && first.text === "supply")) {
+    if (
+      first?.kind === "word" &&
+      node.$type !== "Include" &&
+      node.$type !== "Fluid" &&
+      !(node.$type === "Ladder" && first.text === "supply")
+    ) {
       this.report("text-not-quoted", this.extentOfRange(first.at), "A title stands in quotation marks.", `Write "${first.text}".`);
       return { title: { text: first.text, at: first.at }, rest };
     }
@@ -365,7 +413,12 @@ class Conversion {
     if (!first) return;
     const written = "text" in first ? first.text : `@${first.name}`;
     const near = nearest(written, known);
-    this.report("unexpected-word", this.extentOfRange(first.at), `“${written}” has no place here.`, near ? `Did you mean “${near}”?` : undefined);
+    this.report(
+      "unexpected-word",
+      this.extentOfRange(first.at),
+      `“${written}” has no place here.`,
+      near ? `Did you mean “${near}”?` : undefined,
+    );
   }
 
   private items(nodes: Syntax.Item[], reader: Reader = { signs: 0 }): Item[] {
@@ -400,7 +453,8 @@ class Conversion {
       case "Sign":
         if (node.text === ",") return { kind: "symbol", text: ",", at };
         // One complaint a statement: the other signs follow from the first.
-        if (reader.signs++ === 0) this.report("unexpected-symbol", this.extent(node), `“${node.text}” has no place here.`, signHints[node.text]);
+        if (reader.signs++ === 0)
+          this.report("unexpected-symbol", this.extent(node), `“${node.text}” has no place here.`, signHints[node.text]);
         return undefined;
     }
   }

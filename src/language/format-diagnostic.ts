@@ -98,7 +98,9 @@ function expand(text: string, start: number): { text: string; width: number } {
 /** Control characters by their picture, so that no text can steer the terminal. */
 function visible(text: string): string {
   // biome-ignore lint/suspicious/noControlCharactersInRegex: these are what is looked for
-  return text.replace(/[\u0000-\u001f]/g, (char) => String.fromCharCode(0x2400 + char.charCodeAt(0))).replace(/[\u007f-\u009f\u202a-\u202e\u2066-\u2069]/g, "\ufffd");
+  return text
+    .replace(/[\u0000-\u001f]/g, (char) => String.fromCharCode(0x2400 + char.charCodeAt(0)))
+    .replace(/[\u007f-\u009f\u202a-\u202e\u2066-\u2069]/g, "\ufffd");
 }
 
 /** Terminal cells of a character: none for combining marks, two for the wide scripts of East Asia and for pictographs (Unicode, UAX #11). */

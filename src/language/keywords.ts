@@ -2,7 +2,7 @@
 export const topKeywords = ["drawing", "include", "ladder", "fluid", "cycle", "trial", "power"] as const;
 
 /** Words that open a statement within a circuit. */
-export const circuitKeywords = ["sheet", "rung", "line", "pilot", "drain", "exhaust", "plug"] as const;
+const circuitKeywords = ["sheet", "rung", "line", "pilot", "drain", "exhaust", "plug"] as const;
 
 /** The lines of a fluid circuit by what they carry. */
 export const lineKeywords: readonly string[] = ["line", "pilot", "drain", "exhaust"];
@@ -13,8 +13,4 @@ const all: ReadonlySet<string> = new Set([...topKeywords, ...circuitKeywords]);
 
 export function isKeyword(word: string): word is Keyword {
   return all.has(word);
-}
-
-export function isTopKeyword(word: string): boolean {
-  return (topKeywords as readonly string[]).includes(word);
 }

@@ -1,6 +1,6 @@
-import { circuitKeywords, isKeyword, isTopKeyword, lineKeywords, topKeywords } from "./keywords.js";
+import { isKeyword, lineKeywords, topKeywords } from "./keywords.js";
 import { nearest } from "./nearest.js";
-import { matchEnd, type Pattern, skipBalanced, unclosedBraces } from "./scan.js";
+import { matchEnd, type Shape, skipBalanced, unclosedBraces } from "./scan.js";
 import type { Problem, Token, Tokens } from "./token.js";
 
 /** Brackets and braces within one another beyond this are no drawing. */
@@ -84,8 +84,8 @@ class Lexing {
     return this.text[this.at] ?? "";
   }
 
-  private match(pattern: Pattern, at = this.at): number {
-    return matchEnd(pattern, this.text, at);
+  private match(shape: Shape, at = this.at): number {
+    return matchEnd(shape, this.text, at);
   }
 
   private emit(type: string, start: number, end: number): void {
@@ -178,7 +178,12 @@ class Lexing {
   }
 
   private mustHaveEnded(block: Block, column: number): boolean {
-    if (/^(?:(?:drawing|include|ladder|fluid|cycle|trial|power)[ \t]*"|supply[ \t]+[\w-]+[ \t]+\d)/.test(this.text.slice(this.at, this.at + 120))) return true;
+    if (
+      /^(?:(?:drawing|include|ladder|fluid|cycle|trial|power)[ \t]*"|supply[ \t]+[\w-]+[ \t]+\d)/.test(
+        this.text.slice(this.at, this.at + 120),
+      )
+    )
+      return true;
     return block.contentIndent !== undefined && block.contentIndent > block.indent && column <= block.indent;
   }
 
@@ -320,7 +325,12 @@ class Lexing {
       if (kind !== "items") this.statement = undefined;
       return;
     }
-    this.report("brace-not-expected", open, open + 1, statement ? `“${statement.keyword || "This statement"}” takes no “{”.` : "A “{” belongs behind the statement it is for.");
+    this.report(
+      "brace-not-expected",
+      open,
+      open + 1,
+      statement ? `“${statement.keyword || "This statement"}” takes no “{”.` : "A “{” belongs behind the statement it is for.",
+    );
     this.blocks.push({ ...this.block, open, through: true, resume: undefined });
   }
 
@@ -390,7 +400,9 @@ class Lexing {
 
   private closeBracket(statement: StatementState): void {
     if (statement.brackets.pop() === undefined) {
-      this.report("branch-not-opened", this.at, this.at + 1, "This “)” closes nothing.", { hint: "Leave it out, or open the branches with “(”." });
+      this.report("branch-not-opened", this.at, this.at + 1, "This “)” closes nothing.", {
+        hint: "Leave it out, or open the branches with “(”.",
+      });
     } else this.emit(")", this.at, this.at + 1);
     this.at++;
   }
@@ -515,7 +527,9 @@ class Lexing {
       } else if (this.char === "@") this.readPoint();
       else if (!this.readUnknown()) {
         const end = this.char === '"' ? Math.max(this.match("text"), start + 1) : start + 1;
-        this.report("end-expected", start, end, "A line goes from port to port.", { hint: "Write its ends as in “V1.A -- CYL.cap” or “@P -- V1.P”." });
+        this.report("end-expected", start, end, "A line goes from port to port.", {
+          hint: "Write its ends as in “V1.A -- CYL.cap” or “@P -- V1.P”.",
+        });
         this.at = end;
       }
       return;
@@ -591,9 +605,9 @@ class Lexing {
   }
 
   /** A word with what is glued to it: `CLAMP+`, `V1.A`, `T1.inst:55-56`. */
-  private readWord(pattern: "name" | "wordWithSlash"): void {
+  private readWord(shape: "name" | "wordWithSlash"): void {
     const start = this.at;
-    let end = this.match(pattern);
+    let end = this.match(shape);
     const sign = this.match("strokeSign", end);
     if (sign > 0) end = sign;
     this.emit("WORD", start, end);
@@ -632,12 +646,16 @@ class Lexing {
     let end = this.match("text");
     if (end < 0) {
       end = this.endOfOpenText(start);
-      this.report("text-not-closed", start, end, "This text has no closing quotation mark.", { hint: 'Put a " behind it, in the same line.' });
+      this.report("text-not-closed", start, end, "This text has no closing quotation mark.", {
+        hint: 'Put a " behind it, in the same line.',
+      });
     } else {
       for (const escape of this.text.slice(start, end).matchAll(/\\(.)/g)) {
         if (escape[1] === '"' || escape[1] === "\\") continue;
         const place = start + escape.index;
-        this.report("unknown-escape", place, place + 2, `“\\${escape[1]}” means nothing in a text.`, { hint: "Write \\\\ for a backslash and \\\" for a quotation mark." });
+        this.report("unknown-escape", place, place + 2, `“\\${escape[1]}” means nothing in a text.`, {
+          hint: 'Write \\\\ for a backslash and \\" for a quotation mark.',
+        });
       }
     }
     this.emit("TEXT", start, end);
@@ -671,7 +689,9 @@ class Lexing {
     const typographic = this.match("typographicText");
     if (typographic > 0 && this.statement) {
       const end = typographic;
-      this.report("unexpected-character", start, start + 1, `“${this.char}” is no quotation mark of this language.`, { hint: 'Write plain ones: "…".' });
+      this.report("unexpected-character", start, start + 1, `“${this.char}” is no quotation mark of this language.`, {
+        hint: 'Write plain ones: "…".',
+      });
       this.emit("TEXT", start, end);
       this.at = end;
       return true;
@@ -703,11 +723,8 @@ const signHints: [string, string][] = [
 /** A sign as it can be printed: control characters by their number. */
 function show(written: string): string {
   const first = written.codePointAt(0) ?? 0;
-  const printable = first > 0x20 && !(first >= 0x7f && first < 0xa1) && !(first >= 0x200b && first <= 0x200f) && first !== 0xfeff && first !== 0xfffd;
+  const printable =
+    first > 0x20 && !(first >= 0x7f && first < 0xa1) && !(first >= 0x200b && first <= 0x200f) && first !== 0xfeff && first !== 0xfffd;
   if (printable) return `“${written.length > 12 ? `${[...written].slice(0, 12).join("")}…` : written}”`;
   return `The character U+${first.toString(16).toUpperCase().padStart(4, "0")}`;
 }
-
-/** Words that may open a statement, for hints. */
-export const statementWords: readonly string[] = [...topKeywords, ...circuitKeywords];
-export { isTopKeyword };

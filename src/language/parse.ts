@@ -23,7 +23,13 @@ export function parse(text: string, file: string): { tree: Tree; diagnostics: Di
   for (const { start, end } of leftOver) problems.push({ code: "unexpected-word", message: "This has no place here.", start, end });
   const { statements, includes } = convert(document, source, problems, nodeExtent);
   if (document.statements.length === 0 && problems.length === 0) {
-    problems.push({ code: "empty-file", message: "This file describes nothing.", start: 0, end: 0, hint: "Begin with a device, such as “relay CR1”, or a rung." });
+    problems.push({
+      code: "empty-file",
+      message: "This file describes nothing.",
+      start: 0,
+      end: 0,
+      hint: "Begin with a device, such as “relay CR1”, or a rung.",
+    });
   }
   const diagnostics = problems.sort((a, b) => a.start - b.start || a.end - b.end).map((problem) => toDiagnostic(problem, source));
   markIncomplete(statements, diagnostics);
@@ -34,11 +40,29 @@ export function parse(text: string, file: string): { tree: Tree; diagnostics: Di
 function findUnreadable(text: string): { problem: Problem; stop: boolean } | undefined {
   const nul = text.indexOf("\0");
   if (nul >= 0) {
-    return { stop: true, problem: { code: "not-text", message: "This file is not text.", start: nul, end: nul + 1, hint: "A drawing is a plain text file, usually ending in .sprung." } };
+    return {
+      stop: true,
+      problem: {
+        code: "not-text",
+        message: "This file is not text.",
+        start: nul,
+        end: nul + 1,
+        hint: "A drawing is a plain text file, usually ending in .sprung.",
+      },
+    };
   }
   const broken = text.indexOf("\ufffd");
   if (broken < 0) return undefined;
-  return { stop: false, problem: { code: "not-text", message: "A character here is not UTF-8.", start: broken, end: broken + 1, hint: "Save the file as UTF-8." } };
+  return {
+    stop: false,
+    problem: {
+      code: "not-text",
+      message: "A character here is not UTF-8.",
+      start: broken,
+      end: broken + 1,
+      hint: "Save the file as UTF-8.",
+    },
+  };
 }
 
 function toDiagnostic(problem: Problem, source: SourceText): Diagnostic {

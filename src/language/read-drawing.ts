@@ -9,7 +9,10 @@ import type { Statement, Tree } from "./tree.js";
  * of the first file. A file included twice is read once, where it is first asked for. `sources` holds the text of every file read,
  * by the name its diagnostics carry.
  */
-export async function readDrawing(path: string, world: World): Promise<{ tree: Tree; diagnostics: Diagnostic[]; sources: Map<string, string> }> {
+export async function readDrawing(
+  path: string,
+  world: World,
+): Promise<{ tree: Tree; diagnostics: Diagnostic[]; sources: Map<string, string> }> {
   const reading: Reading = { world, root: folderOf(path), diagnostics: [], sources: new Map(), open: [] };
   const start: SourceRange = { file: path, line: 1, column: 1, endLine: 1, endColumn: 1 };
   const statements = await readFile(path, start, undefined, reading);
@@ -45,7 +48,13 @@ async function readFile(file: string, at: SourceRange, written: string | undefin
     const name = written ?? file;
     if (written === undefined) reading.sources.set(file, "");
     const code = read.problem === "not-text" ? "not-text" : written === undefined ? `file-${read.problem}` : `include-${read.problem}`;
-    report(reading, code, at, unreadable(name, read.problem), read.problem === "not-text" ? { hint: "A drawing is a plain text file in UTF-8, usually ending in .sprung." } : {});
+    report(
+      reading,
+      code,
+      at,
+      unreadable(name, read.problem),
+      read.problem === "not-text" ? { hint: "A drawing is a plain text file in UTF-8, usually ending in .sprung." } : {},
+    );
     return [];
   }
   reading.sources.set(file, withoutMark(read.text));
@@ -86,7 +95,8 @@ function folderOf(path: string): string {
 
 /** The file an include means, or undefined if that is not below the root folder. */
 function within(root: string, folder: string, path: string): string | undefined {
-  if (path.includes("\\") || path.includes("\0") || path.startsWith("/") || path.startsWith("~") || /^[a-zA-Z][a-zA-Z0-9+.-]*:/.test(path)) return undefined;
+  if (path.includes("\\") || path.includes("\0") || path.startsWith("/") || path.startsWith("~") || /^[a-zA-Z][a-zA-Z0-9+.-]*:/.test(path))
+    return undefined;
   const steps: string[] = folder.slice(root.length).split("/").filter(Boolean);
   for (const step of path.split("/")) {
     if (step === "" || step === ".") continue;

@@ -1,6 +1,7 @@
-import type { CstNode, Grammar, LangiumParser, Lexer, LexerResult, TokenBuilder } from "langium";
-import { createDefaultCoreModule, createDefaultSharedCoreModule, DefaultTokenBuilder, EmptyFileSystem, inject } from "langium";
+import type { CstNode, Grammar, LangiumParser, Lexer, LexerResult } from "langium";
+import { AstUtils, createDefaultCoreModule, createDefaultSharedCoreModule, EmptyFileSystem, GrammarAST, inject } from "langium";
 import type { Document } from "./generated/ast.js";
+import { SprungTerminals } from "./generated/ast.js";
 import { SprungGeneratedModule, SprungGeneratedSharedModule } from "./generated/module.js";
 import type { Problem, Tokens } from "./token.js";
 
@@ -21,8 +22,8 @@ export function createSprungParser(tokenize: (text: string) => Tokens): (text: s
   const shared = inject(createDefaultSharedCoreModule(EmptyFileSystem), SprungGeneratedSharedModule);
   const services = inject(createDefaultCoreModule({ shared }), SprungGeneratedModule, {
     parser: {
-      Lexer: (own: { Grammar: Grammar; parser: { TokenBuilder: TokenBuilder } }) =>
-        new OwnLexer(new DefaultTokenBuilder(), own.Grammar, (text) => {
+      Lexer: (own: { Grammar: Grammar }) =>
+        new OwnLexer(own.Grammar, (text) => {
           const result = tokenize(text);
           problems = result.problems;
           return result;
@@ -57,12 +58,13 @@ class OwnLexer implements Lexer {
   readonly definition: Lexer["definition"];
 
   constructor(
-    builder: TokenBuilder,
     grammar: Grammar,
     private readonly cut: (text: string) => Tokens,
   ) {
-    const types = builder.buildTokens(grammar) as Lexer["definition"][string][];
-    this.definition = Object.fromEntries(types.map((type) => [type.name, type]));
+    const names = new Set(Object.keys(SprungTerminals));
+    for (const node of AstUtils.streamAllContents(grammar)) if (GrammarAST.isKeyword(node)) names.add(node.value);
+    // The parser tells tokens by their type alone; a pattern is never tried.
+    this.definition = Object.fromEntries([...names].map((name) => [name, { name, PATTERN: /[^]/ }]));
   }
 
   tokenize(text: string): LexerResult {

@@ -138,8 +138,7 @@ export interface LineStatement extends Located {
 
 export type LineEnd =
   /** `V1.A`, `FC1`, or a kind word for an unnamed component (`silencer`, `tank`). */
-  | ({ kind: "component"; name: Word; port?: Word } & Located)
-  | ({ kind: "point"; name: string } & Located);
+  ({ kind: "component"; name: Word; port?: Word } & Located) | ({ kind: "point"; name: string } & Located);
 
 /** `plug V1.B, V1.A`. */
 export interface PlugStatement extends Located {

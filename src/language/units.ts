@@ -18,33 +18,100 @@ const inch3 = 16.387064; // cm³
 const gallon = 3.785411784; // l
 const cubicFoot = 28.316846592; // l
 const unitRows: Record<Dimension, UnitRow[]> = {
-  length: [["mm", 1], ["cm", 10], ["m", 1000], ["in inch", 25.4], ["ft", 304.8]],
+  length: [
+    ["mm", 1],
+    ["cm", 10],
+    ["m", 1000],
+    ["in inch", 25.4],
+    ["ft", 304.8],
+  ],
   pressure: [
-    ["bar", 1], ["mbar", 0.001], ["kPa", 0.01], ["MPa", 10], ["Pa", 1e-5], ["hPa", 0.001], ["psi PSI psig", 0.06894757293168361],
+    ["bar", 1],
+    ["mbar", 0.001],
+    ["kPa", 0.01],
+    ["MPa", 10],
+    ["Pa", 1e-5],
+    ["hPa", 0.001],
+    ["psi PSI psig", 0.06894757293168361],
     ["inHg", 0.03386389],
   ],
-  time: [["s sec", 1], ["ms", 0.001], ["min", 60], ["h", 3600]],
-  voltage: [["V", 1], ["mV", 0.001], ["kV", 1000]],
-  current: [["A", 1], ["mA", 0.001], ["kA", 1000]],
-  power: [["W", 1], ["kW", 1000], ["mW", 0.001], ["MW", 1e6], ["hp HP", 745.6998715822702]],
-  "apparent-power": [["VA", 1], ["kVA", 1000]],
-  frequency: [["Hz", 1], ["kHz", 1000]],
+  time: [
+    ["s sec", 1],
+    ["ms", 0.001],
+    ["min", 60],
+    ["h", 3600],
+  ],
+  voltage: [
+    ["V", 1],
+    ["mV", 0.001],
+    ["kV", 1000],
+  ],
+  current: [
+    ["A", 1],
+    ["mA", 0.001],
+    ["kA", 1000],
+  ],
+  power: [
+    ["W", 1],
+    ["kW", 1000],
+    ["mW", 0.001],
+    ["MW", 1e6],
+    ["hp HP", 745.6998715822702],
+  ],
+  "apparent-power": [
+    ["VA", 1],
+    ["kVA", 1000],
+  ],
+  frequency: [
+    ["Hz", 1],
+    ["kHz", 1000],
+  ],
   speed: [["rpm 1/min r/min rev/min", 1]],
   displacement: [
-    ["cm3/rev cm³/rev cm3/r cc/rev ml/rev", 1], ["in3/rev in³/rev cu-in/rev", inch3], ["l/rev L/rev dm3/rev dm³/rev", 1000],
+    ["cm3/rev cm³/rev cm3/r cc/rev ml/rev", 1],
+    ["in3/rev in³/rev cu-in/rev", inch3],
+    ["l/rev L/rev dm3/rev dm³/rev", 1000],
   ],
   flow: [
-    ["l/min L/min lpm dm3/min dm³/min Nl/min", 1], ["gpm gal/min", gallon], ["m3/min m³/min", 1000], ["m3/h m³/h", 1000 / 60],
-    ["l/s L/s", 60], ["cm3/min cm³/min ml/min", 0.001], ["cfm scfm ft3/min ft³/min", cubicFoot], ["in3/min in³/min", inch3 / 1000],
+    ["l/min L/min lpm dm3/min dm³/min Nl/min", 1],
+    ["gpm gal/min", gallon],
+    ["m3/min m³/min", 1000],
+    ["m3/h m³/h", 1000 / 60],
+    ["l/s L/s", 60],
+    ["cm3/min cm³/min ml/min", 0.001],
+    ["cfm scfm ft3/min ft³/min", cubicFoot],
+    ["in3/min in³/min", inch3 / 1000],
   ],
   volume: [
-    ["l L dm3 dm³", 1], ["cm3 cm³ ml cc", 0.001], ["m3 m³", 1000], ["gal", gallon], ["in3 in³", inch3 / 1000], ["ft3 ft³", cubicFoot],
+    ["l L dm3 dm³", 1],
+    ["cm3 cm³ ml cc", 0.001],
+    ["m3 m³", 1000],
+    ["gal", gallon],
+    ["in3 in³", inch3 / 1000],
+    ["ft3 ft³", cubicFoot],
   ],
-  temperature: [["°C degC", 1], ["°F degF", 5 / 9, -160 / 9], ["K", 1, -273.15]],
-  mass: [["kg", 1], ["g", 0.001], ["lb", 0.45359237]],
-  force: [["N", 1], ["kN", 1000], ["daN", 10], ["lbf", 4.4482216152605]],
+  temperature: [
+    ["°C degC", 1],
+    ["°F degF", 5 / 9, -160 / 9],
+    ["K", 1, -273.15],
+  ],
+  mass: [
+    ["kg", 1],
+    ["g", 0.001],
+    ["lb", 0.45359237],
+  ],
+  force: [
+    ["N", 1],
+    ["kN", 1000],
+    ["daN", 10],
+    ["lbf", 4.4482216152605],
+  ],
   angle: [["deg °", 1]],
-  resistance: [["ohm Ω \u2126", 1], ["kohm kΩ k\u2126", 1000], ["Mohm MΩ M\u2126", 1e6]],
+  resistance: [
+    ["ohm Ω \u2126", 1],
+    ["kohm kΩ k\u2126", 1000],
+    ["Mohm MΩ M\u2126", 1e6],
+  ],
   filtration: [["um µm \u03bcm micron", 1]],
 };
 
@@ -64,13 +131,13 @@ export function unitsOf(dimension: Dimension): string[] {
   return unitRows[dimension].map(([spellings]) => spellings.split(" ")[0] as string);
 }
 
-/** Whether the word is a unit this language knows. */
-export function isUnit(word: string): boolean {
-  return units.has(word);
+/** Whether exactly this is the spelling of a unit. */
+export function isUnit(written: string): boolean {
+  return units.has(written);
 }
 
-/** Every unit spelling, longest first, so that `cm3/rev` is found before `cm`. */
-export const unitSpellings: readonly string[] = [...units.keys()].sort((a, b) => b.length - a.length || (a < b ? -1 : 1));
+/** Characters in the longest spelling of a unit. */
+export const longestUnit: number = Math.max(...[...units.keys()].map((spelling) => spelling.length));
 
 /**
  * Reads a number with its unit: `40 mm`, `1.5s`, `3/8 in`, `1-1/2 in`, `-5 °C`.
