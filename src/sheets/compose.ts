@@ -36,7 +36,7 @@ export function composeSheets(machine: Machine, layout: Layout, rows: readonly C
     notes: [...circuitNotes, ...drawing.notes, ...(sheet.notes ?? [])],
   }));
   let next = Math.max(0, ...contents.map(({ number }) => number)) + 1;
-  for (const marks of setTables(crossReferenceTables(rows, appearances), page.area)) {
+  for (const marks of setTables(crossReferenceTables(rows, appearances), columnsOf(page.area))) {
     contents.push({ number: next++, title: "Cross-reference", marks, notes: tableNotes });
   }
   if (contents.length === 0) contents.push({ number: 1, title: "", marks: [], notes: circuitNotes });
@@ -58,6 +58,15 @@ export function composeSheets(machine: Machine, layout: Layout, rows: readonly C
     parts: partNames(appearances, layout),
     outline: outlineOf(appearances).filter(({ home }) => home !== undefined && anchors.has(home)),
   };
+}
+
+/** Tables on a large sheet stand in columns side by side: a line the width of the sheet is hard to follow. */
+function columnsOf(area: Box): Box[] {
+  const least = 260;
+  const gap = 12;
+  const count = Math.max(1, Math.floor((area.width + gap) / (least + gap)));
+  const width = (area.width - (count - 1) * gap) / count;
+  return Array.from({ length: count }, (_, i) => ({ ...area, x: area.x + i * (width + gap), width }));
 }
 
 interface Content {

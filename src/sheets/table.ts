@@ -26,57 +26,101 @@ const entryGap: Mm = 4;
 const mostLines = 3;
 
 /**
- * Sets tables one below the other into boxes of one size, as many as it takes, and repeats title and heads where a table
- * goes on. A row is never divided, unless it is higher than a whole box.
- * @returns the marks of each box, the first one first
+ * Sets tables one below the other into the boxes of a sheet, and of as many sheets like it as it takes; title and heads are
+ * repeated where a table goes on. A row is never divided, unless it is higher than a whole box.
+ * @param boxes where a sheet has room, all of one size, in reading order
+ * @returns the marks of each sheet, the first one first
  */
-export function setTables(tables: readonly Table[], box: Box): Mark[][] {
-  const sheets: Mark[][] = [[]];
-  let y = box.y;
-  const bottom = box.y + box.height;
+export function setTables(tables: readonly Table[], boxes: readonly Box[]): Mark[][] {
+  const pen = new Pen(boxes);
   for (const table of tables) {
-    const widths = columnWidths(table, box.width);
+    const { width, height } = pen.box;
+    const widths = columnWidths(table, width);
     const steps = entrySteps(table);
-    const rows = table.rows.flatMap((row) => setRow(row, widths, steps, Math.floor((box.height - titleHeight - headHeight - 2 * padding) / pitch)));
+    const most = Math.max(1, Math.floor((height - titleHeight - headHeight - 2 * padding) / pitch));
+    const rows = table.rows.flatMap((row) => setRow(row, widths, steps, most));
     const [first] = rows;
     if (!first) continue;
-    if (y > box.y) {
-      y += gapBetween;
-      if (y + titleHeight + headHeight + first.height > bottom) y = newSheet(sheets, box);
+    if (pen.used) {
+      pen.y += gapBetween;
+      if (!pen.hasRoom(titleHeight + headHeight + first.height)) pen.nextBox();
     }
-    let top = startTable(sheets, table, widths, box, y, false);
-    y = top + headHeight;
+    let top = startTable(pen, table, widths, false);
     for (const row of rows) {
-      if (y + row.height > bottom + 0.001) {
-        closeTable(sheets, widths, box, top, y);
-        y = newSheet(sheets, box);
-        top = startTable(sheets, table, widths, box, y, true);
-        y = top + headHeight;
+      if (!pen.hasRoom(row.height)) {
+        closeTable(pen, widths, top);
+        pen.nextBox();
+        top = startTable(pen, table, widths, true);
       }
-      (sheets.at(-1) as Mark[]).push(...row.at(box.x, y));
-      y += row.height;
-      rule(sheets, box, y, 0.18);
+      pen.draw(...row.at(pen.box.x, pen.y));
+      pen.y += row.height;
+      rule(pen, pen.y, 0.18);
     }
-    closeTable(sheets, widths, box, top, y);
+    closeTable(pen, widths, top);
   }
-  return sheets.filter((marks) => marks.length > 0);
+  return pen.sheets.filter((marks) => marks.length > 0);
 }
 
-function newSheet(sheets: Mark[][], box: Box): Mm {
-  sheets.push([]);
-  return box.y;
+/** Where setting has come to. */
+class Pen {
+  readonly sheets: Mark[][] = [[]];
+  y: Mm;
+  private index = 0;
+
+  constructor(private readonly boxes: readonly Box[]) {
+    this.y = this.box.y;
+  }
+
+  get box(): Box {
+    return this.boxes[this.index] as Box;
+  }
+
+  get used(): boolean {
+    return this.y > this.box.y;
+  }
+
+  hasRoom(height: Mm): boolean {
+    return this.y + height <= this.box.y + this.box.height + 0.001;
+  }
+
+  nextBox(): void {
+    this.index = (this.index + 1) % this.boxes.length;
+    if (this.index === 0) this.sheets.push([]);
+    this.y = this.box.y;
+  }
+
+  draw(...marks: Mark[]): void {
+    (this.sheets.at(-1) as Mark[]).push(...marks);
+  }
 }
 
+/** Every column as wide as what must not be broken in it; what is left is shared out by what each column may have. */
 function columnWidths(table: Table, width: Mm): Mm[] {
   const total = table.columns.reduce((sum, column) => sum + column.share, 0);
-  return table.columns.map((column) => (column.share / total) * width);
+  const least = table.columns.map(({ title }, index) => {
+    const cells = table.rows.map((row) => row[index] as Cell);
+    return 2 * padding + Math.max(measureText(title, textHeight, true), ...cells.map(unbreakable)) + 0.01;
+  });
+  const needed = least.reduce((sum, each) => sum + each, 0);
+  if (needed >= width) return least.map((each) => (each * width) / needed);
+  const wishes = table.columns.map(({ share }, index) => Math.max(0, (share / total) * width - (least[index] as Mm)));
+  const wished = wishes.reduce((sum, each) => sum + each, 0);
+  return least.map((each, index) => each + ((width - needed) * (wishes[index] as Mm)) / wished);
+}
+
+/** Words longer than this may be broken after all. */
+const longWord: Mm = 32;
+
+function unbreakable(cell: Cell): Mm {
+  if ("entries" in cell) return Math.max(0, ...cell.entries.map((entry) => measureText(entry.text, textHeight)));
+  return Math.min(longWord, Math.max(0, ...cell.text.split(/\s+/).map((word) => measureText(word, textHeight, cell.bold))));
 }
 
 /** Title and heads; gives back the upper edge of the heads. */
-function startTable(sheets: Mark[][], table: Table, widths: Mm[], box: Box, y: Mm, again: boolean): Mm {
-  const marks = sheets.at(-1) as Mark[];
+function startTable(pen: Pen, table: Table, widths: Mm[], again: boolean): Mm {
+  const { box, y } = pen;
   const title = fitText(again ? `${table.title} (continued)` : table.title, 3.5, box.width, true);
-  marks.push({ kind: "text", role: "heading", at: { x: box.x, y: y + 4.5 }, text: title, height: 3.5, anchor: "start", bold: true });
+  pen.draw({ kind: "text", role: "heading", at: { x: box.x, y: y + 4.5 }, text: title, height: 3.5, anchor: "start", bold: true });
   const top = y + titleHeight;
   let x = box.x;
   for (const [index, column] of table.columns.entries()) {
@@ -84,28 +128,28 @@ function startTable(sheets: Mark[][], table: Table, widths: Mm[], box: Box, y: M
     const height = measureText(column.title, textHeight, true) > room ? 1.8 : textHeight;
     const text = fitText(column.title, height, room, true);
     const at = { x: x + padding, y: top + (headHeight + height) / 2 };
-    marks.push({ kind: "text", role: "heading", at, text, height, anchor: "start", bold: true });
+    pen.draw({ kind: "text", role: "heading", at, text, height, anchor: "start", bold: true });
     x += widths[index] as Mm;
   }
-  rule(sheets, box, top, 0.5);
-  rule(sheets, box, top + headHeight, 0.35);
+  rule(pen, top, 0.5);
+  rule(pen, top + headHeight, 0.35);
+  pen.y = top + headHeight;
   return top;
 }
 
 /** Columns' rules and the lower edge. */
-function closeTable(sheets: Mark[][], widths: Mm[], box: Box, top: Mm, bottom: Mm): void {
-  const marks = sheets.at(-1) as Mark[];
-  let x = box.x;
+function closeTable(pen: Pen, widths: Mm[], top: Mm): void {
+  let { x } = pen.box;
   for (const width of [0, ...widths]) {
     x += width;
-    marks.push({ kind: "stroke", role: "table", path: polyline([{ x, y: top }, { x, y: bottom }]), width: 0.18 });
+    pen.draw({ kind: "stroke", role: "table", path: polyline([{ x, y: top }, { x, y: pen.y }]), width: 0.18 });
   }
-  rule(sheets, box, bottom, 0.5);
+  rule(pen, pen.y, 0.5);
 }
 
-function rule(sheets: Mark[][], box: Box, y: Mm, width: Mm): void {
-  const path = polyline([{ x: box.x, y }, { x: box.x + box.width, y }]);
-  (sheets.at(-1) as Mark[]).push({ kind: "stroke", role: "table", path, width });
+function rule(pen: Pen, y: Mm, width: Mm): void {
+  const { x, width: across } = pen.box;
+  pen.draw({ kind: "stroke", role: "table", path: polyline([{ x, y }, { x: x + across, y }]), width });
 }
 
 interface SetRow {
