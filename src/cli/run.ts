@@ -1,4 +1,4 @@
-import { Command, CommanderError } from "commander";
+import { Command, CommanderError, InvalidArgumentError } from "commander";
 import type { CheckOptions } from "./check.js";
 import type { Desk } from "./desk.js";
 import type { DrawOptions } from "./draw.js";
@@ -44,7 +44,7 @@ export async function run(args: readonly string[], desk: Desk): Promise<ExitCode
       "  $ spoolrung draw samples/tray-stamper.sprung\n  $ spoolrung draw press.sprung --pdf --out prints\n  $ generate-drawing | spoolrung draw -",
     )
       .argument("<file...>", "drawings to draw; - is standard input")
-      .option("-o, --out <dir>", "folder to write to; made if missing", "drawings")
+      .option("-o, --out <dir>", "folder to write to; made if missing", folderName, "drawings")
       .option("--svg", "write SVG only, unless --pdf is given too")
       .option("--pdf", "write PDF only, unless --svg is given too")
       .option("-q, --quiet", "print errors only"),
@@ -84,7 +84,7 @@ export async function run(args: readonly string[], desk: Desk): Promise<ExitCode
 
   withColor(
     command("symbols", "Draw every symbol the program has as a chart.", "  $ spoolrung symbols\n  $ spoolrung symbols --pdf --out prints")
-      .option("-o, --out <dir>", "folder to write to; made if missing", "drawings")
+      .option("-o, --out <dir>", "folder to write to; made if missing", folderName, "drawings")
       .option("--svg", "write SVG only, unless --pdf is given too")
       .option("--pdf", "write PDF only, unless --svg is given too"),
   ).action(async (_, made: Command) => {
@@ -113,6 +113,11 @@ Exit codes:
   2  the command was wrong, a file could not be read, or the output could not be written
 
 Colour follows the terminal, NO_COLOR, --color and --no-color.`;
+
+function folderName(text: string): string {
+  if (text === "") throw new InvalidArgumentError("A folder has a name.");
+  return text;
+}
 
 function versionOf(desk: Desk): string {
   const text = new TextDecoder().decode(desk.readAsset("package.json"));

@@ -66,6 +66,7 @@ const reasons: Record<string, string> = {
   EPERM: "not permitted",
   EROFS: "the file system is read-only",
   ENOSPC: "the disk is full",
+  EFBIG: "the file is larger than is allowed",
   EDQUOT: "the disk quota is used up",
   ENOTDIR: "a file stands where a folder is needed",
   EEXIST: "a file stands where a folder is needed",
