@@ -72,8 +72,12 @@ export interface Device {
   poles?: { no: number; nc: number };
   /** Timers. */
   delay?: { mode: "on-delay" | "off-delay"; time: Quantity };
-  /** Push-buttons. */
-  button?: { action: "momentary" | "maintained"; mushroom: boolean };
+  /** Coils: rated power, its inrush, and how long the armature takes. */
+  coil?: { power?: Quantity; inrush?: Quantity; pickup?: Quantity; dropout?: Quantity };
+  /** Push-buttons. `lamp` is the pilot light in the button. */
+  button?: { action: "momentary" | "maintained"; mushroom: boolean; lamp?: string };
+  /** Proximity switches. */
+  wires?: 2 | 3;
   /** Selector switches: positions in order and the one drawn. */
   selector?: { positions: string[]; start: string };
   colour?: string;
@@ -97,12 +101,15 @@ export interface SwitchPlace {
   to: number;
   /** How the author put it. */
   written: "retracted" | "extended" | "at" | "from-to";
+  /** Where the text says so. */
+  at?: SourceRange;
 }
 
 export interface Supply {
   name: string;
   voltage?: Quantity;
   current: "AC" | "DC";
+  frequency?: Quantity;
   /** The live rail (left or top) and the return rail (right or bottom). */
   rails: [string, string];
   fuse?: { name: string; rating: string };
@@ -127,6 +134,8 @@ export interface Rung {
   start: RungEnd;
   end: RungEnd;
   path: SeriesPath;
+  /** Something in it could not be understood and has its diagnostic: what is left may not join up, and is not judged further. */
+  incomplete?: boolean;
   at: SourceRange;
 }
 
@@ -234,13 +243,19 @@ export interface FluidComponent {
   kind: FluidKind;
   medium: Medium;
   text?: string;
+  note?: string;
+  /** The maker's order code. */
+  orderCode?: string;
+  location?: string;
   /** The data printed beside it: `40/16 × 60`, `5.5 bar`. */
   values: string[];
   ports: FluidPort[];
   cylinder?: CylinderSpec;
   valve?: ValveSpec;
-  /** Pumps: the electric motor device that drives it, if it has one. */
+  /** Pumps: the motor that drives it, if it has one. A motor declared as a device also stands in the circuit as an `electric-motor`. */
   drivenBy?: string;
+  /** Relief valves: the pressure they open at. */
+  setting?: Quantity;
   at: SourceRange;
 }
 

@@ -1,0 +1,94 @@
+import type { Parallel, PathItem, PathReference, Series } from "../language/tree.js";
+import { deviceRoles } from "./kinds.js";
+import type { DeviceKind } from "./model.js";
+import type { Report } from "./report.js";
+import { withArticle } from "./report.js";
+
+/** Brackets within brackets beyond any real circuit; deeper ones are not read. */
+export const deepest = 100;
+
+/**
+ * Says of each name in a rung whether it stands there as a contact or as what is driven.
+ *
+ * Before `->` everything is a contact. Behind it the first thing that can be driven is the load, or the first bracket whose
+ * every branch can be; what follows is on the return side and is a contact again, unless it can only be driven.
+ */
+export class Roles {
+  private readonly loads = new Set<PathReference>();
+  /** Whether anything in the rung was not understood. */
+  incomplete = false;
+
+  constructor(
+    private readonly kindOf: (name: string) => DeviceKind | undefined,
+    private readonly report: Report,
+  ) {}
+
+  isLoad(reference: PathReference): boolean {
+    return this.loads.has(reference);
+  }
+
+  decide(series: Series, driven = false, depth = 0): void {
+    if (depth > deepest) return;
+    const arrow = series.arrow ?? (driven ? 0 : series.items.length);
+    for (const item of series.items.slice(0, arrow)) this.beforeArrow(item, depth);
+    const behind = series.items.slice(arrow);
+    if (behind.length > 0) this.behindArrow(behind, depth, series.arrow !== undefined);
+  }
+
+  private beforeArrow(item: PathItem, depth: number): void {
+    if (item.kind === "parallel") for (const branch of item.branches) this.decide(branch, false, depth + 1);
+    else if (item.kind === "reference" && this.onlyDriven(item)) {
+      this.loads.add(item);
+      this.incomplete = true;
+      this.report.error("arrow-missing", item.name.at, `${item.name.text} is ${withArticle(this.kindOf(item.name.text) as string)}: "->" stands before what is driven.`, {
+        hint: `Write -> ${item.name.text}.`,
+      });
+    }
+  }
+
+  private behindArrow(items: readonly PathItem[], depth: number, ownArrow: boolean): void {
+    const found = items.findIndex((item) => this.canBeLoad(item, depth));
+    const load = found >= 0 ? found : items.findIndex((item) => item.kind === "parallel" && this.holdsLoad(item, depth));
+    if (load < 0 && ownArrow) this.nothingDriven(items);
+    items.forEach((item, index) => {
+      if (item.kind === "parallel") for (const branch of item.branches) this.decide(branch, index === load, depth + 1);
+      else if (item.kind === "reference" && (index === load || this.onlyDriven(item))) this.loads.add(item);
+    });
+  }
+
+  private nothingDriven(items: readonly PathItem[]): void {
+    this.incomplete = true;
+    const first = items.find((item) => item.kind === "reference");
+    if (!first || first.kind !== "reference") return;
+    const kind = this.kindOf(first.name.text);
+    // An unknown or unsuitable name has its own message.
+    if (kind === undefined || kind === "motor") return;
+    const what = first.negated && deviceRoles[kind].load ? `/${first.name.text} is a contact` : `${first.name.text} is ${withArticle(kind)}`;
+    this.report.error("not-a-load", first.at, `${what}, which cannot be driven: nothing behind "->" is a load.`, {
+      hint: "A relay, contactor, timer, solenoid, pilot-light or horn is driven.",
+    });
+  }
+
+  private canBeLoad(item: PathItem, depth: number): boolean {
+    if (item.kind === "parallel") return depth < deepest && item.branches.every((branch) => this.branchHoldsLoad(branch, depth + 1));
+    return item.kind === "reference" && this.mayBeDriven(item);
+  }
+
+  private holdsLoad(item: Parallel, depth: number): boolean {
+    return depth < deepest && item.branches.some((branch) => this.branchHoldsLoad(branch, depth + 1));
+  }
+
+  private branchHoldsLoad(branch: Series, depth: number): boolean {
+    return branch.arrow !== undefined || branch.items.some((item) => this.canBeLoad(item, depth));
+  }
+
+  private mayBeDriven({ negated, name, part }: PathReference): boolean {
+    const kind = this.kindOf(name.text);
+    return kind !== undefined && !negated && part === undefined && deviceRoles[kind].load;
+  }
+
+  private onlyDriven(reference: PathReference): boolean {
+    const kind = this.kindOf(reference.name.text);
+    return kind !== undefined && this.mayBeDriven(reference) && !deviceRoles[kind].contacts;
+  }
+}

@@ -1,0 +1,279 @@
+import type { SourceRange } from "../language/diagnostic.js";
+import type { LadderBlock, Parallel, PathItem, PathReference, Rung as RungSyntax, Series } from "../language/tree.js";
+import { deviceRoles } from "./kinds.js";
+import type {
+  ContactUse, Device, LadderCircuit, LoadUse, NodeId, ParallelPath, Rung, RungElement, RungEnd, SeriesPath, Supply,
+} from "./model.js";
+import type { Names } from "./names.js";
+import { NodeJoiner } from "./nodes.js";
+import { didYouMean, listed, type Report, withArticle } from "./report.js";
+import { deepest, Roles } from "./roles.js";
+
+/** Turns rungs into paths with electrical nodes. Nodes are provisional until `finish`. */
+export class RungBuilder {
+  private readonly nodes = new NodeJoiner();
+  private readonly rails = new Map<string, NodeId>();
+  /** The rail a joined node is, keyed by the joiner's node. */
+  private readonly railOf = new Map<NodeId, string>();
+  private readonly points = new Map<string, NodeId>();
+  private readonly ladders: LadderCircuit[] = [];
+
+  constructor(
+    private readonly devices: ReadonlyMap<string, Device>,
+    private readonly names: Names,
+    private readonly report: Report,
+  ) {}
+
+  readLadder(block: LadderBlock, id: string, supply: Supply): LadderCircuit {
+    const ladder: LadderCircuit = { kind: "ladder", id, title: block.title?.text ?? "", supply, rungs: [], sheetBreaks: [], at: block.at };
+    this.ladders.push(ladder);
+    const rails = supply.rails.map((rail) => this.rail(rail)) as [NodeId, NodeId];
+    for (const statement of block.statements) {
+      if (statement.kind === "rung") {
+        const rung = this.readRung(statement, `${id}/rung${ladder.rungs.length + 1}`, rails);
+        if (rung) ladder.rungs.push(rung);
+      } else if (statement.kind === "sheet-break") {
+        ladder.sheetBreaks.push({ before: ladder.rungs.length, title: statement.title?.text });
+      }
+    }
+    return ladder;
+  }
+
+  /** Gives every node its final number in reading order, rails first, and returns what names each. */
+  finish(): { rail?: string; points: string[] }[] {
+    const final = new Map<NodeId, NodeId>();
+    const named: { rail?: string; points: string[] }[] = [];
+    const number = (node: NodeId): NodeId => {
+      const root = this.nodes.find(node);
+      const known = final.get(root);
+      if (known !== undefined) return known;
+      final.set(root, named.length);
+      return named.push({ points: [] }) - 1;
+    };
+    for (const [rail, node] of this.rails) (named[number(node)] as { rail?: string }).rail = rail;
+    for (const { rungs } of this.ladders) {
+      for (const rung of rungs) {
+        rung.start.node = number(rung.start.node);
+        numberPath(rung.path, number);
+        rung.end.node = number(rung.end.node);
+      }
+    }
+    for (const [point, node] of this.points) named[number(node)]?.points.push(point);
+    return named;
+  }
+
+  private rail(name: string): NodeId {
+    const known = this.rails.get(name);
+    if (known !== undefined) return known;
+    const node = this.nodes.add();
+    this.rails.set(name, node);
+    this.railOf.set(node, name);
+    return node;
+  }
+
+  private point(name: string): NodeId {
+    const known = this.points.get(name);
+    if (known !== undefined) return known;
+    const node = this.nodes.add();
+    this.points.set(name, node);
+    return node;
+  }
+
+  private join(a: NodeId, b: NodeId, at: SourceRange): void {
+    const [one, other] = [this.railOf.get(this.nodes.find(a)), this.railOf.get(this.nodes.find(b))];
+    if (one !== undefined && other !== undefined && one !== other) {
+      this.report.error("rails-joined", at, `This wire joins the rails ${one} and ${other}.`);
+      return;
+    }
+    const root = this.nodes.join(a, b);
+    const rail = one ?? other;
+    if (rail !== undefined) this.railOf.set(root, rail);
+  }
+
+  private readRung(syntax: RungSyntax, id: string, rails: [NodeId, NodeId]): Rung | undefined {
+    const items = [...syntax.path.items];
+    if (items.length === 0) return undefined; // the parser has said so
+    const roles = new Roles((name) => this.devices.get(name)?.kind, this.report);
+    roles.decide(syntax.path);
+    const work: RungWork = { id, roles, points: new Map(), incomplete: false };
+
+    const start: RungEnd = { kind: "rail", node: rails[0] };
+    const end: RungEnd = { kind: "rail", node: rails[1] };
+    const rung: Rung = { id, title: syntax.title?.text, start, end, path: { kind: "series", items: [], from: -1, to: -1 }, at: syntax.title?.at ?? syntax.at };
+    const [first] = items;
+    if (first?.kind === "point") {
+      rung.start = { kind: "point", point: first.name, node: this.point(first.name) };
+      items.shift();
+    }
+    const last = items.at(-1);
+    if (last?.kind === "point") {
+      rung.end = { kind: "point", point: last.name, node: this.point(last.name) };
+      items.pop();
+    }
+    if (items.length === 0 && rung.end.kind === "rail") {
+      this.report.error("rung-empty", syntax.path.at, "This rung has no device.");
+      rung.incomplete = true;
+      return rung;
+    }
+    rung.path = this.readSeries(items, rung.start.node, rung.end.node, work, syntax.path.at, 0);
+    if (work.incomplete || roles.incomplete) rung.incomplete = true;
+    return rung;
+  }
+
+  private readSeries(syntax: readonly PathItem[], from: NodeId, to: NodeId, work: RungWork, at: SourceRange, depth: number): SeriesPath {
+    const items = this.flatten(syntax, work, depth);
+    const parts: SeriesPath["items"] = [];
+    // The last thing with a length ends at `to`; points behind it lie on `to`.
+    const lastLong = items.findLastIndex((item) => item.kind !== "point");
+    let here = from;
+    if (lastLong < 0) this.join(from, to, at);
+    items.forEach((item, index) => {
+      if (item.kind === "point") {
+        this.join(here, this.point(item.name), item.at);
+        parts.push({ kind: "point", id: pointId(work, item.name), point: item.name, from: here, to: here, rung: work.id, at: item.at });
+        return;
+      }
+      const next = index === lastLong ? to : this.nodes.add();
+      const part = item.kind === "parallel" ? this.readParallel(item, here, next, work, depth) : this.readReference(item, here, next, work);
+      // What could not be read leaves a gap rather than a wire that is not there.
+      if (part) parts.push(part);
+      else work.incomplete = true;
+      here = next;
+    });
+    return { kind: "series", items: parts, from, to };
+  }
+
+  /** Brackets with one branch are no more than what stands in them. */
+  private flatten(items: readonly PathItem[], work: RungWork, depth: number): PathItem[] {
+    return items.flatMap((item): PathItem[] => {
+      if (item.kind === "reference" && this.isTerminal(item)) {
+        work.incomplete = true;
+        return [];
+      }
+      if (item.kind !== "parallel" || item.branches.length !== 1) return [item];
+      if (depth > deepest) return [item];
+      return this.flatten((item.branches[0] as Series).items, work, depth + 1);
+    });
+  }
+
+  private readParallel(syntax: Parallel, from: NodeId, to: NodeId, work: RungWork, depth: number): ParallelPath | undefined {
+    if (depth > deepest) {
+      this.report.error("nested-too-deep", syntax.at, `Brackets may stand ${deepest} deep within each other.`);
+      return undefined;
+    }
+    const branches = syntax.branches.map((branch) => this.readSeries(branch.items, from, to, work, branch.at, depth + 1));
+    return { kind: "parallel", branches, from, to };
+  }
+
+  /** `X1:4`, a terminal on a strip: the wire goes straight through it. */
+  private isTerminal(reference: PathReference): boolean {
+    if (!reference.terminals || reference.terminals.text.includes("-") || this.devices.has(reference.name.text)) return false;
+    if (this.names.kindOf(reference.name.text) !== undefined && !this.names.isLost(reference.name.text)) return false;
+    this.report.error("not-yet-supported", reference.at, `Terminals in a rung are not yet supported.`);
+    return true;
+  }
+
+  private readReference(reference: PathReference, from: NodeId, to: NodeId, work: RungWork): RungElement | undefined {
+    const { name, part, negated, at } = reference;
+    const device = this.devices.get(name.text);
+    if (!device) {
+      this.unknownDevice(reference);
+      return undefined;
+    }
+    if (device.kind === "motor") {
+      this.report.error("not-yet-supported", at, `${name.text} is a motor; power circuits are not yet supported.`, {
+        hint: "Drive its contactor in the rung.",
+      });
+      return undefined;
+    }
+    const shared = { device: device.name, from, to, rung: work.id, at };
+    if (work.roles.isLoad(reference)) {
+      const load: LoadUse = { kind: "load", id: "", terminals: { value: ["", ""], by: "unallotted" }, ...shared };
+      pin(load, reference, this.report);
+      device.loads.push(load);
+      return load;
+    }
+    if (!deviceRoles[device.kind].contacts) {
+      this.report.error("no-contacts", at, `${name.text} is ${withArticle(device.kind)} and has no contacts.`);
+      return undefined;
+    }
+    const contact: ContactUse = {
+      kind: "contact", id: "", form: negated ? "NC" : "NO", timed: device.kind === "timer" && part === undefined,
+      terminals: { value: ["", ""], by: "unallotted" }, ...shared,
+    };
+    if (!this.readPart(contact, device, reference)) return undefined;
+    pin(contact, reference, this.report);
+    device.contacts.push(contact);
+    return contact;
+  }
+
+  private readPart(contact: ContactUse, device: Device, { part, name, at }: PathReference): boolean {
+    if (device.kind === "selector-switch") {
+      const positions = device.selector?.positions ?? [];
+      if (!part) {
+        this.report.error("position-missing", at, `In which position of ${name.text}? It has ${listed(positions, "and")}.`, { hint: `Write ${name.text}.${positions[0]}.` });
+        return false;
+      }
+      if (!positions.includes(part.text)) {
+        this.report.error("unknown-position", part.at, `${name.text} has no position ${part.text}: it has ${listed(positions, "and")}.`, didYouMean(part.text, positions));
+        return false;
+      }
+      contact.position = part.text;
+      return true;
+    }
+    if (!part || (device.kind === "timer" && part.text === "inst")) return true;
+    this.report.error("unknown-part", part.at, `${name.text} is ${withArticle(device.kind)} and has no part ${part.text}.`,
+      device.kind === "timer" ? { hint: `Its instantaneous contact is ${name.text}.inst.` } : {});
+    return false;
+  }
+
+  private unknownDevice({ name }: PathReference): void {
+    if (this.names.isLost(name.text)) return;
+    const kind = this.names.kindOf(name.text);
+    if (kind === undefined) {
+      const coil = /^\d*(SOL|Y|MB)/.test(name.text) ? `A solenoid is declared by its valve, as in "valve V1 5/2 left solenoid ${name.text} right spring".` : `Declare it, as in "relay ${name.text}".`;
+      this.names.unknown(name, (other) => Object.hasOwn(deviceRoles, other), coil);
+      return;
+    }
+    const coils = [...this.devices.values()].filter(({ valve }) => valve?.name === name.text).map((coil) => coil.name);
+    this.report.error("wrong-kind", name.at, `${name.text} is ${withArticle(kind)}, which cannot stand in a rung.`,
+      coils.length > 0 ? { hint: `Its coil is ${listed(coils)}.` } : {});
+  }
+}
+
+interface RungWork {
+  id: string;
+  roles: Roles;
+  /** How often each point was met in this rung. */
+  points: Map<string, number>;
+  incomplete: boolean;
+}
+
+function pointId({ id, points }: RungWork, name: string): string {
+  const times = (points.get(name) ?? 0) + 1;
+  points.set(name, times);
+  return times === 1 ? `${id}/@${name}` : `${id}/@${name}/${times}`;
+}
+
+/** Takes the terminals the author pinned: `CR1:23-24`. */
+function pin(use: ContactUse | LoadUse, { terminals, name }: PathReference, report: Report): void {
+  if (!terminals) return;
+  const pair = /^([A-Za-z0-9]+)-([A-Za-z0-9]+)$/.exec(terminals.text);
+  if (!pair || pair[1] === pair[2]) {
+    report.error("terminals-wrong", terminals.at, `A contact has two terminals, as in ${name.text}:13-14.`);
+    return;
+  }
+  use.terminals = { value: [pair[1] as string, pair[2] as string], by: "author", at: terminals.at };
+}
+
+function numberPath(path: SeriesPath | ParallelPath, number: (node: NodeId) => NodeId): void {
+  path.from = number(path.from);
+  for (const part of path.kind === "series" ? path.items : path.branches) {
+    if (part.kind === "series" || part.kind === "parallel") numberPath(part, number);
+    else {
+      part.from = number(part.from);
+      part.to = part.kind === "point" ? part.from : number(part.to);
+    }
+  }
+  path.to = number(path.to);
+}
