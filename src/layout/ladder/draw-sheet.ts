@@ -1,0 +1,171 @@
+import type { Box, Mm, Point } from "../../drawing/geometry.js";
+import type { PartId } from "../../drawing/marks.js";
+import type { LadderCircuit, NodeId } from "../../machine/model.js";
+import type { CircuitSheet, Place, PlacedText } from "../placement.js";
+import type { Arrangement } from "./arrangement.js";
+import type { RungSheet } from "./break-sheets.js";
+import { boundaryOf, type Cell, type Link, loadColumn, returnRail, type Stop } from "./grid.js";
+import { joinWires, type Straight } from "./join-wires.js";
+import { endingSize, numberRise } from "./measure-rungs.js";
+import type { Columns } from "./set-columns.js";
+
+/** What a sheet is drawn from, once every column, line and number is known. */
+export interface SheetGiven {
+  circuit: LadderCircuit;
+  sheet: RungSheet;
+  number: number;
+  title: string;
+  columns: Columns;
+  arrangement: Arrangement;
+  /** The live and the return rail. */
+  rails: [NodeId, NodeId];
+  /** Where the live rail and the room of the first line meet. */
+  origin: Point;
+  /** Ends of the rails, across from the origin. */
+  railFrom: Mm;
+  railTo: Mm;
+  /** Printed number of the sheet's first line. */
+  firstLine: number;
+  /** Links that end or begin on this sheet, or pass over it. */
+  links: Link[];
+  zoneOf(point: Point): string;
+}
+
+export interface DrawnLadderSheet {
+  sheet: CircuitSheet;
+  places: [PartId, Place][];
+}
+
+/** Sets everything of a sheet down in millimetres. */
+export function drawSheet(given: SheetGiven): DrawnLadderSheet {
+  const { circuit, sheet, number, title, columns, arrangement, rails, origin, firstLine, links, zoneOf } = given;
+  const out: CircuitSheet = { kind: "ladder", circuit: circuit.id, number, title, symbols: [], wires: [], dots: [], texts: [], strokes: [] };
+  const places: [PartId, Place][] = [];
+  const pieces: Straight[] = [];
+  const at = (along: Mm, across: Mm): Point => {
+    const { x, y } = arrangement.orient(along, across);
+    return { x: tidy(origin.x + x), y: tidy(origin.y + y) };
+  };
+  const text = (placed: PlacedText, by: Point) => out.texts.push({ ...placed, at: { x: tidy(placed.at.x + by.x), y: tidy(placed.at.y + by.y) } });
+  const place = (part: PartId, line: number, box: Box) =>
+    places.push([part, { sheet: number, line, zone: zoneOf({ x: box.x + box.width / 2, y: box.y + box.height / 2 }), box }]);
+  const across = (rung: number, line: number) => sheet.rungs[rung - sheet.first]?.lines[line];
+
+  let line = firstLine;
+  const lineOf = new Map<number, number>();
+  for (const [index, { rung, lines }] of sheet.rungs.entries()) {
+    const { grid, dressed, numbers, margins, endings } = rung;
+    lineOf.set(index + sheet.first, line);
+    const stop = (end: Stop): Mm => {
+      if ("boundary" in end) return columns.boundary(end.boundary);
+      const reach = dressed.get(end.cell)?.reach ?? 0;
+      return columns.middle(end.cell.column) + (end.pin === 0 ? -reach : reach);
+    };
+    for (const [cell, look] of dressed) {
+      const centre = at(columns.middle(cell.column), lines[cell.line] as Mm);
+      const origin = { x: tidy(centre.x + look.shift.x), y: tidy(centre.y + look.shift.y) };
+      out.symbols.push({ part: cell.use.id, device: cell.use.device, symbol: look.symbol, at: origin, turn: look.turn });
+      for (const words of look.texts) text(words, centre);
+      place(cell.use.id, line + cell.line, { ...look.box, x: look.box.x + centre.x, y: look.box.y + centre.y });
+    }
+    for (const run of grid.runs) {
+      const y = lines[run.line] as Mm;
+      pieces.push({ node: run.node, from: { along: stop(run.from), across: y }, to: { along: stop(run.to), across: y } });
+    }
+    for (const up of grid.uprights) {
+      const x = columns.boundary(up.boundary);
+      pieces.push({ node: up.node, from: { along: x, across: lines[up.fromLine] as Mm }, to: { along: x, across: lines[up.toLine] as Mm } });
+    }
+    for (const wanted of numbers) {
+      const { words, room } = arrangement.wireNumber(wanted.node);
+      const anchor = wanted.beside ? "start" : "middle";
+      const by = at(columns.boundary(wanted.boundary) + (wanted.beside ? 0.9 : 0), (lines[wanted.line] as Mm) - numberRise.gap);
+      if (room > 0) text({ part: wirePart(circuit, wanted.node), role: "wire-number", at: { x: 0, y: 0 }, anchor, height: numberRise.height, text: words }, by);
+    }
+    for (const { line: row, block } of margins) for (const words of block.texts) text(words, at(columns.span, lines[row] as Mm));
+    for (const ending of endings) {
+      const part = endingPart(rung.grid.rung.id, ending.point, ending.kind);
+      const x = columns.boundary(ending.boundary);
+      const y = lines[ending.line] as Mm;
+      const { lead, head, half, gap, drop } = endingSize;
+      const room = arrangement.endingRoom(ending.point);
+      const reference = { to: "point", point: ending.point, from: part, room } as const;
+      const words = { part, role: "reference", height: 2.5, text: reference } as const;
+      if (ending.kind === "start") {
+        arrow(part, [[x - lead - head, y - half], [x - lead, y], [x - lead - head, y + half], [x - lead - head, y - half]]);
+        pieces.push({ node: ending.node, from: { along: x - lead, across: y }, to: { along: x, across: y } });
+        text({ ...words, at: { x: 0, y: half }, anchor: "end" }, at(x - lead - head - gap, y));
+      } else if (ending.kind === "end") {
+        arrow(part, [[x + lead, y], [x + lead, y - half], [x + lead + head, y], [x + lead, y + half], [x + lead, y]]);
+        pieces.push({ node: ending.node, from: { along: x, across: y }, to: { along: x + lead, across: y } });
+        text({ ...words, at: { x: 0, y: half }, anchor: "start" }, at(x + lead + head + gap, y));
+      } else {
+        arrow(part, [[x, y + drop], [x - half, y + drop], [x, y + drop + head], [x + half, y + drop], [x, y + drop]]);
+        pieces.push({ node: ending.node, from: { along: x, across: y }, to: { along: x, across: y + drop } });
+        text({ ...words, at: { x: 0, y: 0 }, anchor: "middle" }, at(x, y + drop + head + gap + 2.5));
+      }
+      const mark = at(x, y);
+      place(part, line + ending.line, { x: mark.x - 3, y: mark.y - 3, width: 6, height: 6 });
+    }
+    const start = at(columns.boundary(grid.start), lines[0] as Mm);
+    place(grid.rung.id, line, { x: start.x, y: start.y - 4, width: columns.span - columns.boundary(grid.start), height: (lines.at(-1) as Mm) - (lines[0] as Mm) + 8 });
+    for (const y of lines) {
+      text({ role: "line-number", at: { x: -4, y: 1.25 }, anchor: "end", height: 2.5, text: String(line) }, at(0, y));
+      line++;
+    }
+  }
+
+  for (const link of links) {
+    const from = across(link.from.rung, link.from.line);
+    const to = across(link.to.rung, link.to.line);
+    if (from === undefined && to === undefined) continue;
+    const x = columns.boundary(link.boundary);
+    const { head, half } = endingSize;
+    if (from !== undefined && to !== undefined) pieces.push({ node: link.node, from: { along: x, across: from }, to: { along: x, across: to } });
+    else if (from !== undefined) {
+      // Above the words that say where the rails go on.
+      const end = given.railTo - head - 4.5;
+      pieces.push({ node: link.node, from: { along: x, across: from }, to: { along: x, across: end } });
+      broken(link, "foot", [[x, end], [x - half, end], [x, end + head], [x + half, end], [x, end]], at(x + half + 0.8, end + head));
+    } else if (to !== undefined) {
+      const end = given.railFrom + head;
+      pieces.push({ node: link.node, from: { along: x, across: end }, to: { along: x, across: to } });
+      broken(link, "head", [[x - half, end - head], [x, end], [x + half, end - head], [x - half, end - head]], at(x + half + 0.8, end));
+    }
+  }
+  const span = columns.span;
+  for (const [index, node] of rails.entries()) {
+    const x = index === 0 ? 0 : span;
+    out.wires.push({ part: railPart(circuit, index), node, role: "rail", points: [at(x, given.railFrom), at(x, given.railTo)], width: 0.5 });
+  }
+  const onRail = (along: Mm) => Math.abs(along) < 0.01 || Math.abs(along - span) < 0.01;
+  const joined = joinWires(pieces, onRail);
+  for (const { node, points } of joined.wires) {
+    out.wires.push({ part: wirePart(circuit, node), node, role: "wire", points: points.map(({ x, y }) => at(x, y)), width: 0.25 });
+  }
+  for (const dot of joined.dots) out.dots.push({ part: wirePart(circuit, dot.node), at: at(dot.at.x, dot.at.y), diameter: 1.25 });
+  return { sheet: out, places };
+
+  function arrow(part: PartId, points: [Mm, Mm][]) {
+    out.strokes.push({ part, role: "continuation", path: points.map(([x, y]) => at(x, y)), width: 0.25 });
+  }
+
+  /** A link that goes on on another sheet: an arrow at the end of the rails. */
+  function broken(link: Link, end: "head" | "foot", points: [Mm, Mm][], by: Point) {
+    const rung = end === "foot" ? link.from.rung : link.to.rung;
+    const grid = sheet.rungs[rung - sheet.first]?.rung.grid;
+    const point = grid?.sites.find((site) => site.node === link.node)?.point ?? "";
+    const part = endingPart(grid?.rung.id ?? circuit.id, point, end);
+    arrow(part, points);
+    text({ part, role: "reference", at: { x: 0, y: 0 }, anchor: "start", height: 2.5, text: { to: "point", point, from: part, room: arrangement.endingRoom(point) } }, by);
+    const printed = (lineOf.get(rung) ?? firstLine) + (end === "foot" ? link.from.line : link.to.line);
+    place(part, printed, { x: by.x - 3, y: by.y - 3, width: 6, height: 6 });
+  }
+}
+
+/** Positions to a thousandth of a millimetre, so that sums of the same lengths are the same. */
+const tidy = (value: Mm): Mm => Math.round(value * 1000) / 1000;
+
+export const wirePart = (circuit: LadderCircuit, node: NodeId): PartId => `${circuit.id}/wire${node}`;
+const railPart = (circuit: LadderCircuit, index: number): PartId => `${circuit.id}/rail${index + 1}`;
+const endingPart = (rung: PartId, point: string, kind: string): PartId => `${rung}/@${point}/${kind}`;

@@ -1,0 +1,80 @@
+import type { ContactUse, LoadUse, NodeId, Rung } from "../../machine/model.js";
+
+/**
+ * The ladder grid, before any millimetre. Columns run along the current, from the live rail to the return rail; lines
+ * follow each other across it. Column c lies between boundaries c and c + 1. Loads stand in `loadColumn`, what lies behind
+ * them in the columns after it; how far along the sheet that is depends on the widest rung beside it.
+ */
+export const loadColumn = 1_000_000;
+
+/** The boundary where the return rail runs. The live rail is boundary 0. */
+export const returnRail = 2_000_000;
+
+/** A contact or load in its place. */
+export interface Cell {
+  use: ContactUse | LoadUse;
+  /** Counted from the rung's first line. */
+  line: number;
+  column: number;
+}
+
+/** An end of a stretch of wire: a boundary, or one of the two pins of a cell. */
+export type Stop = { boundary: number } | { cell: Cell; pin: 0 | 1 };
+
+/** Wire along a line. */
+export interface Run {
+  line: number;
+  from: Stop;
+  to: Stop;
+  node: NodeId;
+}
+
+/** Wire from line to line on a boundary. */
+export interface Upright {
+  boundary: number;
+  fromLine: number;
+  toLine: number;
+  node: NodeId;
+}
+
+/** Where a `@point` lies in its rung. */
+export interface PointSite {
+  node: NodeId;
+  point: string;
+  line: number;
+  boundary: number;
+  /** The part whose place stands for it in references. */
+  part: string;
+}
+
+/** A rung in its place on the grid. */
+export interface RungGrid {
+  rung: Rung;
+  /** How many lines it takes. */
+  lines: number;
+  /** The boundary it begins and ends on. */
+  start: number;
+  end: number;
+  cells: Cell[];
+  runs: Run[];
+  uprights: Upright[];
+  sites: PointSite[];
+}
+
+/** Wire on a boundary from a rung to a later one that shares its point. */
+export interface Link {
+  node: NodeId;
+  boundary: number;
+  from: { rung: number; line: number };
+  to: { rung: number; line: number };
+}
+
+/** The boundary a stop lies on. */
+export function boundaryOf(stop: Stop): number {
+  return "boundary" in stop ? stop.boundary : stop.cell.column + stop.pin;
+}
+
+/** The node that lies on a boundary of a line, if anything does. */
+export function nodeAt(grid: RungGrid, line: number, boundary: number): NodeId | undefined {
+  return grid.runs.find((run) => run.line === line && boundaryOf(run.from) <= boundary && boundary <= boundaryOf(run.to))?.node;
+}

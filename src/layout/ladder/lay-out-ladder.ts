@@ -1,0 +1,139 @@
+import type { Mm } from "../../drawing/geometry.js";
+import { measureText } from "../../drawing/text.js";
+import type { PartId } from "../../drawing/marks.js";
+import type { ContactUse, LadderCircuit, LoadUse, Machine, NodeId, Rung } from "../../machine/model.js";
+import type { Symbol } from "../../symbols/symbol.js";
+import type { CircuitSheet, PageArea, Place, PlacedText } from "../placement.js";
+import { breakSheets, type RungSheet } from "./break-sheets.js";
+import { drawSheet } from "./draw-sheet.js";
+import { joinPoints } from "./join-points.js";
+import { measureRungs } from "./measure-rungs.js";
+import { northAmerican } from "./north-american.js";
+import { contactWidth, returnWidth } from "./place-parts.js";
+import { setColumns } from "./set-columns.js";
+
+/** The numbers a ladder's first sheet and first line get. */
+export interface Numbering {
+  sheet: number;
+  /** With line numbers running on, the first one. */
+  line: number;
+}
+
+export interface LadderLayout {
+  sheets: CircuitSheet[];
+  places: [PartId, Place][];
+  /** The line number after the last. */
+  nextLine: number;
+}
+
+/**
+ * Lays a ladder out on as many sheets as it needs.
+ * @param symbolOf the symbol of a contact or load in the state drawn
+ * @param page the room on each sheet
+ */
+export function layOutLadder(circuit: LadderCircuit, machine: Machine, symbolOf: (use: ContactUse | LoadUse) => Symbol, page: PageArea, numbering: Numbering): LadderLayout {
+  const rails = railNodes(circuit, machine);
+  const rungs = circuit.rungs.map((rung) => onRails(rung, rails));
+  if (rungs.length === 0) return { sheets: [], places: [], nextLine: numbering.line };
+  const room = shareWidth(page.area.width, rungs);
+  const arrangement = northAmerican({ machine, symbolOf, margin: room.margin, scale: room.scale });
+
+  // 1. Every part has a column and a line on the grid; shared points are joined or end in a reference.
+  const joined = joinPoints(rungs, new Set(circuit.sheetBreaks.map(({ before }) => before)), new Set());
+  // 2. Every text is measured; every line knows the room it needs.
+  const measured = measureRungs(joined, new Set(rails), arrangement);
+  // 3. Every rung is whole on one sheet; line numbers are known.
+  const depth = page.area.height - headRoom - footRoom;
+  const broken = breakSheets(measured, circuit.sheetBreaks, depth, { least: 15 * room.scale, step: 1.25 });
+  const firstLines = numberLines(broken, machine, numbering);
+  // 4. Every sheet is set down in millimetres.
+  const places: [PartId, Place][] = [];
+  const sheets = broken.map((sheet, index) => {
+    const number = numbering.sheet + index;
+    const columns = setColumns(sheet.rungs.map(({ rung }) => rung), room.span, { usual: 30 * room.scale, widest: 38 * room.scale, gap: 8 * room.scale }, arrangement);
+    const origin = { x: page.area.x + lineNumberRoom, y: page.area.y + headRoom };
+    const railFrom = -headRoom + railHead;
+    const railTo = sheet.depth + footRoom - railFoot;
+    const links = joined.links.filter(({ from, to }) => [from.rung, to.rung].some((rung) => rung >= sheet.first && rung < sheet.first + sheet.rungs.length));
+    const drawn = drawSheet({
+      circuit, sheet, number, title: sheet.title ?? circuit.title, columns, arrangement, rails, origin, railFrom, railTo,
+      firstLine: firstLines[index] as number, links, zoneOf: (point) => page.zoneOf(point),
+    });
+    nameRails(drawn.sheet, circuit, columns.span, origin, railFrom, railTo, {
+      ...(index > 0 ? { from: endOf(broken, firstLines, index - 1, numbering) } : {}),
+      ...(index < broken.length - 1 ? { to: startOf(firstLines, index + 1, numbering) } : {}),
+    });
+    places.push(...drawn.places);
+    return drawn.sheet;
+  });
+  const lines = broken.at(-1)?.rungs.reduce((sum, { lines }) => sum + lines.length, 0) ?? 0;
+  return { sheets, places, nextLine: (firstLines.at(-1) ?? numbering.line) + lines };
+}
+
+/** Room for line numbers left of the live rail, mm. */
+const lineNumberRoom: Mm = 14;
+/** Over the first line: the rails' names, and the rails down to it. */
+const headRoom: Mm = 14;
+/** From the top of the sheet's room to where the rails begin. */
+const railHead: Mm = 5;
+const footRoom: Mm = 9;
+const railFoot: Mm = 1;
+
+/** The widest ladder from rail to rail that still reads well, mm. */
+const widestSpan: Mm = 310;
+
+/** Shares the width of a sheet between line numbers, rungs, references and function texts, and chooses the symbols' module. */
+function shareWidth(width: Mm, rungs: readonly Rung[]) {
+  const margin = { references: clamp(width * 0.065, 15, 26), words: clamp(width * 0.125, 24, 60) };
+  const span = Math.min(width - lineNumberRoom - margin.references - margin.words - 8, widestSpan);
+  const columns = Math.max(...rungs.map(({ path, start }) => contactWidth(path) + (start.kind === "point" ? 1 : 0))) + 1 + Math.max(...rungs.map(({ path }) => returnWidth(path)));
+  const scale = columns * 30 <= span ? 1 : 0.72;
+  return { margin, span, scale };
+}
+
+const clamp = (value: number, least: number, most: number) => Math.min(Math.max(value, least), most);
+
+function railNodes(circuit: LadderCircuit, machine: Machine): [NodeId, NodeId] {
+  return circuit.supply.rails.map((rail) => machine.potentials.find((potential) => potential.rail === rail)?.id ?? -1) as [NodeId, NodeId];
+}
+
+/** A rung whose point is the rail itself begins or ends on the rail. */
+function onRails(rung: Rung, [live, back]: [NodeId, NodeId]): Rung {
+  const start: Rung["start"] = rung.start.node === live ? { kind: "rail", node: live } : rung.start;
+  const end: Rung["end"] = rung.end.node === back ? { kind: "rail", node: back } : rung.end;
+  return { ...rung, start, end };
+}
+
+/** The number of the first line of each sheet. */
+function numberLines(sheets: readonly RungSheet[], machine: Machine, numbering: Numbering): number[] {
+  let running = numbering.line;
+  return sheets.map((sheet, index) => {
+    const first = machine.drawing.lineNumbers === "running" ? running : (numbering.sheet + index) * 100 + 1;
+    running += sheet.rungs.reduce((sum, { lines }) => sum + lines.length, 0);
+    return first;
+  });
+}
+
+const startOf = (firstLines: readonly number[], index: number, numbering: Numbering) => `sheet ${numbering.sheet + index}, line ${firstLines[index]}`;
+const endOf = (sheets: readonly RungSheet[], firstLines: readonly number[], index: number, numbering: Numbering) =>
+  `sheet ${numbering.sheet + index}, line ${(firstLines[index] as number) + (sheets[index] as RungSheet).rungs.reduce((sum, { lines }) => sum + lines.length, 0) - 1}`;
+
+/** Names the rails at their heads, and says where they come from and go on. */
+function nameRails(sheet: CircuitSheet, circuit: LadderCircuit, span: Mm, origin: { x: Mm; y: Mm }, from: Mm, to: Mm, other: { from?: string; to?: string }) {
+  const { rails, voltage, current } = circuit.supply;
+  const say = (x: Mm, y: Mm, anchor: PlacedText["anchor"], height: Mm, role: PlacedText["role"], text: string) =>
+    sheet.texts.push({ role, at: { x: origin.x + x, y: origin.y + y }, anchor, height, text });
+  say(0, from - 1.3, "middle", 3.5, "rail", rails[0]);
+  say(span, from - 1.3, "middle", 3.5, "rail", rails[1]);
+  const volts = voltage ? `${voltage.text}${/[AD]C/.test(voltage.text) ? "" : ` ${current}`}` : current;
+  if (other.from === undefined) say(span / 2, from - 1.3, "middle", 2.5, "note", volts);
+  const inset = Math.max(measureText(rails[0], 3.5), measureText(rails[1], 3.5)) / 2 + 2;
+  if (other.from !== undefined) {
+    say(inset, from - 1.3, "start", 2.5, "note", `from ${other.from}`);
+    say(span - inset, from - 1.3, "end", 2.5, "note", `from ${other.from}`);
+  }
+  if (other.to !== undefined) {
+    say(2, to, "start", 2.5, "note", `to ${other.to}`);
+    say(span - 2, to, "end", 2.5, "note", `to ${other.to}`);
+  }
+}

@@ -1,0 +1,92 @@
+import type { Mm } from "../../drawing/geometry.js";
+import type { LoadUse, NodeId } from "../../machine/model.js";
+import type { Arrangement, Block, Dressed } from "./arrangement.js";
+import { boundaryOf, type Cell, type RungGrid } from "./grid.js";
+import type { Ending, Joined } from "./join-points.js";
+
+/** A number over a wire. `beside`: an upright comes down onto the wire there, so the number stands behind it. */
+export interface NumberPlace {
+  node: NodeId;
+  line: number;
+  boundary: number;
+  beside: boolean;
+}
+
+/** A rung with all its texts measured. */
+export interface MeasuredRung {
+  grid: RungGrid;
+  dressed: Map<Cell, Dressed>;
+  numbers: NumberPlace[];
+  margins: { line: number; block: Block }[];
+  endings: Ending[];
+  /** Room each line needs before and behind it, across. */
+  lines: { above: Mm; below: Mm }[];
+}
+
+/** Where an ending's arrow and text stand off the wire, mm. */
+export const endingSize = { lead: 3.5, head: 2.5, half: 1.25, gap: 0.9, drop: 3 } as const;
+
+/** Height of a wire number with its distance from the wire, mm. */
+export const numberRise = { gap: 0.8, height: 2.5 } as const;
+
+/** Dresses every part, chooses where each wire carries its number, and says how much room every line needs. */
+export function measureRungs({ grids, links, endings }: Joined, rails: ReadonlySet<NodeId>, arrangement: Arrangement): MeasuredRung[] {
+  const endingsOf = groupBy(endings, (ending) => ending.rung);
+  const arrivals = groupBy(links, (link) => link.to.rung);
+  return grids.map((grid, index) => {
+    const dressed = new Map(grid.cells.map((cell) => [cell, arrangement.dress(cell.use)]));
+    const lines = Array.from({ length: grid.lines }, () => ({ above: numberRise.gap + numberRise.height + 0.4, below: 1 as Mm }));
+    const claim = (line: number, above: Mm, below: Mm) => {
+      const room = lines[line];
+      if (!room) return;
+      room.above = Math.max(room.above, above);
+      room.below = Math.max(room.below, below);
+    };
+    for (const [cell, { above, below }] of dressed) claim(cell.line, above, below);
+    const margins = marginsOf(grid, arrangement);
+    for (const { line, block } of margins) claim(line, block.above, block.below);
+    const own = endingsOf.get(index) ?? [];
+    for (const { kind, line } of own) {
+      if (kind === "drop") claim(line, 0, endingSize.drop + endingSize.head + endingSize.gap + 2.5 * 1.3);
+    }
+    const fromAbove = new Set((arrivals.get(index) ?? []).map(({ node, boundary }) => `${node} ${boundary}`));
+    const numbers = placeNumbers(grid, rails, fromAbove, own);
+    return { grid, dressed, numbers, margins, endings: own, lines };
+  });
+}
+
+/** The number of each potential stands once in a rung: on the uppermost of its wires, as near to its source as it can. */
+function placeNumbers(grid: RungGrid, rails: ReadonlySet<NodeId>, fromAbove: ReadonlySet<string>, endings: readonly Ending[]): NumberPlace[] {
+  const best = new Map<NodeId, NumberPlace>();
+  for (const run of grid.runs) {
+    if (rails.has(run.node)) continue;
+    const boundary = boundaryOf(run.from);
+    const known = best.get(run.node);
+    if (known && (known.line < run.line || (known.line === run.line && known.boundary <= boundary))) continue;
+    const starts = endings.some((ending) => ending.kind === "start" && ending.node === run.node && ending.boundary === boundary);
+    best.set(run.node, { node: run.node, line: run.line, boundary, beside: starts || fromAbove.has(`${run.node} ${boundary}`) });
+  }
+  return [...best.values()].sort((a, b) => a.line - b.line || a.boundary - b.boundary);
+}
+
+/** The rung's title on its first line and every load's text on its own. */
+function marginsOf(grid: RungGrid, arrangement: Arrangement): MeasuredRung["margins"] {
+  const loads = new Map<number, LoadUse>();
+  for (const { use, line } of grid.cells) if (use.kind === "load" && !loads.has(line)) loads.set(line, use);
+  const lines = [...new Set([0, ...loads.keys()])].sort((a, b) => a - b);
+  return lines.map((line) => {
+    const load = loads.get(line);
+    const title = line === 0 ? grid.rung.title : undefined;
+    return { line, block: arrangement.margin({ ...(title ? { title } : {}), ...(load ? { load } : {}) }) };
+  });
+}
+
+function groupBy<T>(list: readonly T[], key: (item: T) => number): Map<number, T[]> {
+  const groups = new Map<number, T[]>();
+  for (const item of list) {
+    const group = groups.get(key(item));
+    if (group) group.push(item);
+    else groups.set(key(item), [item]);
+  }
+  return groups;
+}

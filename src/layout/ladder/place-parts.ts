@@ -1,0 +1,148 @@
+import type { NodeId, ParallelPath, Rung, RungElement, SeriesPath } from "../../machine/model.js";
+import { type Cell, loadColumn, type RungGrid, returnRail, type Stop } from "./grid.js";
+
+type Item = ParallelPath | RungElement;
+
+/** Where a rung begins and, if a shared point fixes it, ends; and boundaries its points should meet if they can. */
+export interface RungEnds {
+  start: number;
+  end?: number;
+  meet: ReadonlyMap<NodeId, number>;
+}
+
+/**
+ * Gives every part of a rung its line and column. The main path keeps to the first line; branches hang below it, each on a
+ * line of its own; every last load of a path stands in the load column. In what comes out no two wires cross, because a
+ * branch lies wholly between the uprights of its parallel, and below all that stands before it there.
+ */
+export function placeRung(rung: Rung, ends: RungEnds): RungGrid {
+  const grid: RungGrid = { rung, lines: 1, start: ends.start, end: ends.start, cells: [], runs: [], uprights: [], sites: [] };
+  const path = rung.path;
+  const main = new Set<Item>(path.items);
+  const natural = bearsLoad(path) ? loadColumn + 1 + returnWidth(path) : ends.start + widthOf(path);
+  grid.end = rung.end.kind === "rail" ? returnRail : (ends.end ?? natural);
+  grid.lines = placeSeries(path, 0, ends.start, grid.end);
+  if (rung.start.kind === "point") note(rung.start.point, rung.start.node, 0, ends.start, rung.id);
+  if (rung.end.kind === "point") note(rung.end.point, rung.end.node, 0, grid.end, rung.id);
+  return grid;
+
+  /** Places a path from boundary to boundary and says how many lines it took. */
+  function placeSeries(series: SeriesPath, line: number, from: number, to: number): number {
+    const at = lastLoad(series);
+    if (at < 0) return follow(series.items, series.from, series.to, line, { boundary: from }, from, to);
+    const head = series.items.slice(0, at);
+    const load = series.items[at] as Item;
+    const after = series.items.slice(at + 1);
+    const before = advance(head, line, { boundary: from }, from, undefined);
+    let lines = before.lines;
+    if (load.kind === "parallel") {
+      run(line, before.stop, { boundary: before.boundary }, load.from);
+      const join = after.some((item) => item.kind !== "point")
+        ? loadColumn + 1 + Math.max(0, ...load.branches.map(returnWidth))
+        : to;
+      lines = Math.max(lines, placeBranches(load, line, before.boundary, join));
+      return Math.max(lines, follow(after, load.to, series.to, line, { boundary: join }, join, to));
+    }
+    const cell = put(load as Cell["use"], line, loadColumn);
+    run(line, before.stop, { cell, pin: 0 }, load.from);
+    return Math.max(lines, follow(after, load.to, series.to, line, { cell, pin: 1 }, loadColumn + 1, to));
+  }
+
+  /** Places items and draws the wire on to the end. */
+  function follow(items: Item[], first: NodeId, last: NodeId, line: number, stop: Stop, boundary: number, to: number): number {
+    const after = advance(items, line, stop, boundary, to);
+    run(line, after.stop, { boundary: to }, items.length === 0 ? first : last);
+    return after.lines;
+  }
+
+  /** Places items one behind the other; a parallel that nothing follows is stretched to `to`. */
+  function advance(items: Item[], line: number, stop: Stop, boundary: number, to: number | undefined) {
+    let lines = 1;
+    let lastPart = items.length - 1;
+    while (lastPart >= 0 && items[lastPart]?.kind === "point") lastPart--;
+    items.forEach((item, index) => {
+      if (item.kind === "point") {
+        // Moving on to an upright that comes down from above is safe only on the main path, where nothing is beside it.
+        const meet = main.has(item) ? ends.meet.get(item.from) : undefined;
+        if (meet !== undefined && meet > boundary && meet < loadColumn) boundary = meet;
+        note(item.point, item.from, line, boundary, item.id);
+      } else if (item.kind === "parallel") {
+        const join = index === lastPart && to !== undefined ? to : boundary + widthOfItem(item);
+        run(line, stop, { boundary }, item.from);
+        lines = Math.max(lines, placeBranches(item, line, boundary, join));
+        stop = { boundary: join };
+        boundary = join;
+      } else {
+        const cell = put(item, line, boundary);
+        run(line, stop, { cell, pin: 0 }, item.from);
+        stop = { cell, pin: 1 };
+        boundary++;
+      }
+    });
+    return { lines, stop, boundary };
+  }
+
+  function placeBranches(parallel: ParallelPath, line: number, from: number, to: number): number {
+    let next = line;
+    let lowest = line;
+    for (const branch of parallel.branches) {
+      lowest = next;
+      next += placeSeries(branch, next, from, to);
+    }
+    if (from > 0) grid.uprights.push({ boundary: from, fromLine: line, toLine: lowest, node: parallel.from });
+    if (to < returnRail) grid.uprights.push({ boundary: to, fromLine: line, toLine: lowest, node: parallel.to });
+    return next - line;
+  }
+
+  function put(use: Cell["use"], line: number, column: number): Cell {
+    const cell = { use, line, column };
+    grid.cells.push(cell);
+    return cell;
+  }
+
+  function run(line: number, from: Stop, to: Stop, node: NodeId) {
+    if ("boundary" in from && "boundary" in to && from.boundary === to.boundary) return;
+    grid.runs.push({ line, from, to, node });
+  }
+
+  function note(point: string, node: NodeId, line: number, boundary: number, part: string) {
+    grid.sites.push({ node, point, line, boundary, part });
+  }
+}
+
+/** How many columns a path takes if its loads stood among its contacts. */
+export function widthOf(series: SeriesPath): number {
+  return series.items.reduce((sum, item) => sum + widthOfItem(item), 0);
+}
+
+function widthOfItem(item: Item): number {
+  if (item.kind === "point") return 0;
+  return item.kind === "parallel" ? Math.max(1, ...item.branches.map(widthOf)) : 1;
+}
+
+/** How many columns a path takes before the load column. */
+export function contactWidth(series: SeriesPath): number {
+  const at = lastLoad(series);
+  if (at < 0) return widthOf(series);
+  const load = series.items[at] as Item;
+  const inside = load.kind === "parallel" ? Math.max(0, ...load.branches.map(contactWidth)) : 0;
+  return series.items.slice(0, at).reduce((sum, item) => sum + widthOfItem(item), 0) + inside;
+}
+
+/** How many columns a path takes behind the load column. */
+export function returnWidth(series: SeriesPath): number {
+  const at = lastLoad(series);
+  if (at < 0) return 0;
+  const load = series.items[at] as Item;
+  const inside = load.kind === "parallel" ? Math.max(0, ...load.branches.map(returnWidth)) : 0;
+  return inside + series.items.slice(at + 1).reduce((sum, item) => sum + widthOfItem(item), 0);
+}
+
+export function bearsLoad(series: SeriesPath): boolean {
+  return lastLoad(series) >= 0;
+}
+
+/** The last item that is or holds a load; loads before it stand among the contacts. */
+function lastLoad(series: SeriesPath): number {
+  return series.items.findLastIndex((item) => item.kind === "load" || (item.kind === "parallel" && item.branches.some(bearsLoad)));
+}
