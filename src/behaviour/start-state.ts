@@ -1,5 +1,3 @@
-import type { Machine } from "../machine/model.js";
-
 /** The machine at rest: power off, pressure off, no cycle begun. All drawings show this state. */
 export interface StartState {
   /** Each cylinder's rod, mm from retracted. */
@@ -11,5 +9,3 @@ export interface StartState {
   /** Valves with no normal position whose box was taken from their cylinder or from `start`: they get a note on the sheet. */
   restingByStart: ReadonlySet<string>;
 }
-
-export declare function startOfCycle(machine: Machine): StartState;

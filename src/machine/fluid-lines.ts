@@ -18,9 +18,7 @@ export interface CircuitDraft {
 }
 
 /** Where a line touches something. */
-type Joint =
-  | { kind: "port"; draft: ComponentDraft; port: string }
-  | { kind: "point"; point: string };
+type Joint = ({ kind: "port"; draft: ComponentDraft; port: string } | { kind: "point"; point: string }) & { at?: SourceRange };
 
 /** One end in a line: where a line comes to it from the left and goes on from it to the right. */
 interface ReadEnd {
@@ -146,7 +144,7 @@ export class LineBuilder {
 
   private readEnd(draft: CircuitDraft, end: LineEnd, arrives: boolean, leaves: boolean): ReadEnd | undefined {
     if (end.kind === "point") {
-      const joint: Joint = { kind: "point", point: end.name };
+      const joint: Joint = { kind: "point", point: end.name, at: end.at };
       this.point(draft, end.name);
       return { arriving: joint, leaving: joint, at: end.at };
     }
@@ -191,7 +189,7 @@ export class LineBuilder {
         return undefined;
       }
       target.namedPorts.add(port);
-      const joint: Joint = { kind: "port", draft: target, port };
+      const joint: Joint = { kind: "port", draft: target, port, at: end.at };
       return { arriving: joint, leaving: joint, at: end.at };
     }
     const through = throughPorts(component.kind, ports);
@@ -201,8 +199,8 @@ export class LineBuilder {
       return undefined;
     }
     return {
-      ...(arrives && { arriving: { kind: "port", draft: target, port: through.arriving } as const }),
-      ...(leaves && { leaving: { kind: "port", draft: target, port: through.leaving } as const }),
+      ...(arrives && { arriving: { kind: "port", draft: target, port: through.arriving, at: end.at } as const }),
+      ...(leaves && { leaving: { kind: "port", draft: target, port: through.leaving, at: end.at } as const }),
       at: end.at,
     };
   }
@@ -454,7 +452,8 @@ export function wrongMedium(kind: FluidKind, medium: FluidCircuit["medium"]): st
 }
 
 function endOf(joint: Joint): FluidEnd {
-  return joint.kind === "point" ? { kind: "point", point: joint.point } : { kind: "port", component: joint.draft.component.id, port: joint.port };
+  const at = joint.at && { at: joint.at };
+  return joint.kind === "point" ? { kind: "point", point: joint.point, ...at } : { kind: "port", component: joint.draft.component.id, port: joint.port, ...at };
 }
 
 /** From the start of one place to the end of another. */

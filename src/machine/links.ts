@@ -121,7 +121,7 @@ export function linkPressureSwitches(
         report.error("point-ambiguous", on.at, `@${on.name} is a point of ${listed(homes.map(({ circuit }) => `"${circuit.title}"`), "and")}: give it different names.`);
       }
       device.senses.point = on.name;
-      lines.tap(home, sensor ?? putSensor(device, home, byName), "P", { kind: "point", point: on.name });
+      lines.tap(home, sensor ?? putSensor(device, home, byName), "P", { kind: "point", point: on.name, at: on.at });
       continue;
     }
     if (on.kind !== "part" && on.kind !== "word") {
@@ -147,7 +147,7 @@ export function linkPressureSwitches(
     } else {
       device.senses.component = name;
       device.senses.port = port;
-      lines.tap(home, sensor ?? putSensor(device, home, byName), "P", { kind: "port", draft: target, port });
+      lines.tap(home, sensor ?? putSensor(device, home, byName), "P", { kind: "port", draft: target, port, at: on.at });
     }
   }
 }

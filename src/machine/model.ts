@@ -291,7 +291,7 @@ export interface FluidLine {
   at: SourceRange;
 }
 
-export type FluidEnd = { kind: "port"; component: PartId; port: string } | { kind: "point"; point: string };
+export type FluidEnd = ({ kind: "port"; component: PartId; port: string } | { kind: "point"; point: string }) & { at?: SourceRange };
 
 export interface CylinderSpec {
   action: "double-acting" | "single-acting";

@@ -1,0 +1,22 @@
+import type { ContactUse, FluidCircuit, LadderCircuit, LoadUse, Machine, ParallelPath, RungElement, SeriesPath } from "./model.js";
+
+export function laddersOf({ circuits }: Machine): LadderCircuit[] {
+  return circuits.filter((circuit) => circuit.kind === "ladder");
+}
+
+export function fluidsOf({ circuits }: Machine): FluidCircuit[] {
+  return circuits.filter((circuit) => circuit.kind === "fluid");
+}
+
+/** Everything that stands in a path, in reading order. */
+export function* elementsOf(path: SeriesPath | ParallelPath): Generator<RungElement> {
+  for (const part of path.kind === "series" ? path.items : path.branches) {
+    if (part.kind === "series" || part.kind === "parallel") yield* elementsOf(part);
+    else yield part;
+  }
+}
+
+/** The contacts and loads of a path: what has length. */
+export function* usesOf(path: SeriesPath | ParallelPath): Generator<ContactUse | LoadUse> {
+  for (const element of elementsOf(path)) if (element.kind !== "point") yield element;
+}
