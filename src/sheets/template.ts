@@ -34,7 +34,8 @@ export function templateNames(world: World): string[] {
   return world
     .listAssets(folder)
     .filter((name) => name.endsWith(".svg"))
-    .map((name) => name.slice(0, -".svg".length));
+    .map((name) => name.slice(0, -".svg".length))
+    .sort();
 }
 
 /** Reads a carried form. Throws if the file is missing or no form: that is a broken installation. */
