@@ -144,7 +144,7 @@ class Conversion {
   }
 
   private include(node: Syntax.Include): void {
-    const { title, rest } = this.head(node, node.head);
+    const { title, rest } = this.head(node, node.head, "A path");
     this.refuse(rest);
     if (title) this.includes.push({ path: title.text, at: title.at, index: this.statements.length });
     else if (rest.length === 0)
@@ -357,10 +357,22 @@ class Conversion {
     return {
       kind: "line",
       role: this.keyword(start, node.keyword),
-      groups: node.groups.map((group) => group.ends.map((end) => this.lineEnd(end))),
+      groups: this.lineGroups(node),
       items: this.items(node.items),
       ...this.located(node),
     };
+  }
+
+  /** The ends between one `--` and the next: `V1.3, V1.5 -- silencer` joins both ports with what follows. */
+  private lineGroups(node: Syntax.Line): LineEnd[][] {
+    const groups: LineEnd[][] = [[]];
+    for (const chain of node.groups) {
+      chain.ends.forEach((end, index) => {
+        if (index > 0) groups.push([]);
+        groups.at(-1)?.push(this.lineEnd(end));
+      });
+    }
+    return groups;
   }
 
   private plug(node: Syntax.Plug): PlugStatement {
@@ -391,7 +403,7 @@ class Conversion {
   // ------------------------------------------------------------ items
 
   /** The text in front, and what is left of a block's first line. */
-  private head(node: Syntax.Statement, head: Syntax.Item[]): { title?: Word; rest: Item[] } {
+  private head(node: Syntax.Statement, head: Syntax.Item[], what = "A title"): { title?: Word; rest: Item[] } {
     const items = this.items(head);
     const [first, ...rest] = items;
     if (first?.kind === "text") return { title: { text: first.text, at: first.at }, rest };
@@ -401,7 +413,7 @@ class Conversion {
       node.$type !== "Fluid" &&
       !(node.$type === "Ladder" && first.text === "supply")
     ) {
-      this.report("text-not-quoted", this.extentOfRange(first.at), "A title stands in quotation marks.", `Write "${first.text}".`);
+      this.report("text-not-quoted", this.extentOfRange(first.at), `${what} stands in quotation marks.`, `Write "${first.text}".`);
       return { title: { text: first.text, at: first.at }, rest };
     }
     return { rest: items };

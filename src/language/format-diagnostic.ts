@@ -97,7 +97,6 @@ function expand(text: string, start: number): { text: string; width: number } {
 
 /** Control characters by their picture, so that no text can steer the terminal. */
 function visible(text: string): string {
-  // biome-ignore lint/suspicious/noControlCharactersInRegex: these are what is looked for
   return text
     .replace(/[\u0000-\u001f]/g, (char) => String.fromCharCode(0x2400 + char.charCodeAt(0)))
     .replace(/[\u007f-\u009f\u202a-\u202e\u2066-\u2069]/g, "\ufffd");
@@ -105,8 +104,8 @@ function visible(text: string): string {
 
 /** Terminal cells of a character: none for combining marks, two for the wide scripts of East Asia and for pictographs (Unicode, UAX #11). */
 function cellsOf(char: string): number {
-  if (/^[\p{Mn}\p{Me}\u200b-\u200f\ufe00-\ufe0f\ufeff]$/u.test(char)) return 0;
   const code = char.codePointAt(0) ?? 0;
+  if (/^(?:\p{Mn}|\p{Me})$/u.test(char) || (code >= 0x200b && code <= 0x200f) || code === 0xfeff) return 0;
   if (code < 0x1100) return 1;
   const wide =
     code <= 0x115f ||

@@ -2,7 +2,11 @@
 Object.groupBy ??= (items, keyOf) => {
   const groups = Object.create(null);
   let index = 0;
-  for (const item of items) (groups[keyOf(item, index++)] ??= []).push(item);
+  for (const item of items) {
+    const key = keyOf(item, index++);
+    groups[key] ??= [];
+    groups[key].push(item);
+  }
   return groups;
 };
 process.argv.splice(2, 0, "generate");

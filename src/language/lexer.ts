@@ -71,8 +71,11 @@ class Lexing {
 
   run(): Tokens {
     while (this.at < this.text.length) this.readOne();
-    this.endStatement();
-    while (this.block.kind !== "file") this.closeUnclosed(this.text.length);
+    this.endInner(this.text.length);
+    while (this.block.kind !== "file") {
+      this.closeUnclosed(this.text.length);
+      this.endInner(this.text.length);
+    }
     return { tokens: this.tokens, problems: this.problems };
   }
 
@@ -93,7 +96,7 @@ class Lexing {
   }
 
   private report(code: string, start: number, end: number, message: string, more: Partial<Problem> = {}): void {
-    this.problems.push({ code, message, start, end, ...more });
+    this.problems.push({ code, message, start, end, ...(this.statement && { statement: this.statement.keywordStart }), ...more });
   }
 
   // ------------------------------------------------------------ lines
@@ -158,9 +161,9 @@ class Lexing {
       if (statement.brackets.length === 0) this.reportGoesOn();
       this.endStatement();
     }
-    if (this.missingBraces > 0 && this.char !== "}" && this.char !== "{") {
-      while (this.missingBraces > 0 && this.block.kind !== "file" && this.mustHaveEnded(this.block, column)) {
-        this.endStatement();
+    if (this.char !== "}" && this.char !== "{") {
+      while (this.block.kind !== "file" && this.mustHaveEnded(this.block, column)) {
+        this.endInner(this.at);
         this.closeUnclosed(this.at);
       }
     }
@@ -177,14 +180,17 @@ class Lexing {
     if (sign !== "then") this.tokens.pop();
   }
 
+  /**
+   * Whether the block cannot go on at this line. How far lines are indented counts only where the text has a brace too few, or
+   * where a block begins that belongs at the top.
+   */
   private mustHaveEnded(block: Block, column: number): boolean {
-    if (
-      /^(?:(?:drawing|include|ladder|fluid|cycle|trial|power)[ \t]*"|supply[ \t]+[\w-]+[ \t]+\d)/.test(
-        this.text.slice(this.at, this.at + 120),
-      )
-    )
-      return true;
-    return block.contentIndent !== undefined && block.contentIndent > block.indent && column <= block.indent;
+    const line = this.text.slice(this.at, this.at + 200);
+    if (block.kind === "items" && /^(?:rung[ \t]*[":]|sheet[ \t]*")/.test(line)) return true;
+    const outdented = block.contentIndent !== undefined && block.contentIndent > block.indent && column <= block.indent;
+    const opensBlock = /^(?:(?:drawing|include|ladder|fluid|cycle|trial|power)[ \t]*"|supply[ \t]+[\w-]+[ \t]+\d)/.test(line);
+    if (opensBlock && (outdented || block.kind === "items")) return true;
+    return this.missingBraces > 0 && (opensBlock || outdented);
   }
 
   /** Whether the line at this offset can only be a new statement. */
@@ -297,6 +303,11 @@ class Lexing {
     if (last.type === "--" || last.type === ",") this.tokens.pop();
   }
 
+  /** Ends the statement within the present braces; what stands in a declaration's braces belongs to the declaration. */
+  private endInner(end: number): void {
+    if (this.block.kind !== "items") this.endStatement(end);
+  }
+
   // ------------------------------------------------------------ braces
 
   private openBrace(): void {
@@ -325,12 +336,14 @@ class Lexing {
       if (kind !== "items") this.statement = undefined;
       return;
     }
-    this.report(
-      "brace-not-expected",
-      open,
-      open + 1,
-      statement ? `“${statement.keyword || "This statement"}” takes no “{”.` : "A “{” belongs behind the statement it is for.",
-    );
+    if (!this.block.through) {
+      this.report(
+        "brace-not-expected",
+        open,
+        open + 1,
+        statement?.keyword ? `“${statement.keyword}” takes no “{”.` : "A “{” has no place here.",
+      );
+    }
     this.blocks.push({ ...this.block, open, through: true, resume: undefined });
   }
 
@@ -344,8 +357,7 @@ class Lexing {
     }
     const block = this.blocks.pop() as Block;
     if (block.through) return;
-    if (block.kind === "items") this.closeBrackets();
-    else this.endStatement(at);
+    if (block.kind !== "items") this.endStatement(at);
     this.finishBlock(block, at, at + 1);
   }
 
@@ -407,10 +419,6 @@ class Lexing {
     this.at++;
   }
 
-  private closeBrackets(): void {
-    while (this.statement && this.statement.brackets.length > 0) this.closeBracketFor(this.statement);
-  }
-
   /**
    * Closes the innermost open bracket of an ended statement. If the rung's only arrow stands in it, it is taken to end there:
    * what is driven seldom stands in a branch alone.
@@ -456,7 +464,7 @@ class Lexing {
   private readPath(statement: StatementState): void {
     const start = this.at;
     const isFirst = this.tokens.length === statement.first + 1;
-    if (!statement.colon && isFirst && this.char !== '"') this.readBareTitle(statement);
+    if (!statement.colon && isFirst && this.char !== '"') this.readBareTitle();
     if (this.at !== start) return;
     const two = this.text.slice(start, start + 2);
     if (this.char === "(") this.openBracket(statement);
@@ -479,7 +487,7 @@ class Lexing {
   }
 
   /** A rung's function text written without quotation marks. */
-  private readBareTitle(statement: StatementState): void {
+  private readBareTitle(): void {
     const match = /^([^":()|@\r\n/#>]+):(?=[ \t\r\n]|$)/.exec(this.text.slice(this.at, this.match("restOfLine")));
     if (!match?.[1]?.trim()) return;
     const end = this.at + match[1].trimEnd().length;
@@ -567,13 +575,12 @@ class Lexing {
   }
 
   private readItem(): void {
-    const start = this.at;
-    if (this.char === '"') return this.readText();
-    if (this.char === "@") return this.readPoint();
-    if (/[\d+-]/.test(this.char) && this.readNumber()) return;
-    if (this.match("name") > 0) return this.readWord("wordWithSlash");
-    if (this.char === "-" && this.match("name", start + 1) > 0) return this.readTypedDash();
-    if (!this.readUnknown()) this.readSymbol();
+    if (this.char === '"') this.readText();
+    else if (this.char === "@") this.readPoint();
+    else if (/[\d+-]/.test(this.char) && this.readNumber()) return;
+    else if (this.match("name") > 0) this.readWord("wordWithSlash");
+    else if (this.char === "-" && this.match("name", this.at + 1) > 0) this.readTypedDash();
+    else if (!this.readUnknown()) this.readSymbol();
   }
 
   /** A number, with its unit if one follows. False if the digits begin a word, as in `1CR`, `13-14` or `5/2`. */
@@ -650,10 +657,10 @@ class Lexing {
         hint: 'Put a " behind it, in the same line.',
       });
     } else {
-      for (const escape of this.text.slice(start, end).matchAll(/\\(.)/g)) {
-        if (escape[1] === '"' || escape[1] === "\\") continue;
-        const place = start + escape.index;
-        this.report("unknown-escape", place, place + 2, `“\\${escape[1]}” means nothing in a text.`, {
+      for (const sequence of this.text.slice(start, end).matchAll(/\\(.)/g)) {
+        if (sequence[1] === '"' || sequence[1] === "\\") continue;
+        const place = start + sequence.index;
+        this.report("unknown-escape", place, place + 2, `“\\${sequence[1]}” means nothing in a text.`, {
           hint: 'Write \\\\ for a backslash and \\" for a quotation mark.',
         });
       }
@@ -689,7 +696,7 @@ class Lexing {
     const typographic = this.match("typographicText");
     if (typographic > 0 && this.statement) {
       const end = typographic;
-      this.report("unexpected-character", start, start + 1, `“${this.char}” is no quotation mark of this language.`, {
+      this.report("unexpected-character", start, start + 1, "Typographic quotation marks hold no text here.", {
         hint: 'Write plain ones: "…".',
       });
       this.emit("TEXT", start, end);

@@ -31,8 +31,12 @@ export function parse(text: string, file: string): { tree: Tree; diagnostics: Di
       hint: "Begin with a device, such as “relay CR1”, or a rung.",
     });
   }
+  markIncomplete(
+    statements,
+    problems.map(({ start, statement }) => statement ?? start).sort((a, b) => a - b),
+    source,
+  );
   const diagnostics = problems.sort((a, b) => a.start - b.start || a.end - b.end).map((problem) => toDiagnostic(problem, source));
-  markIncomplete(statements, diagnostics);
   return { tree: { file, statements }, diagnostics, includes };
 }
 
@@ -78,22 +82,21 @@ function toDiagnostic(problem: Problem, source: SourceText): Diagnostic {
   };
 }
 
-/** Marks every statement in which a diagnostic stands, the innermost ones and the blocks around them. The diagnostics are in order. */
-function markIncomplete(statements: readonly Markable[], diagnostics: Diagnostic[]): void {
+/** Marks every statement in which a problem stands, the innermost ones and the blocks around them. The places are in order. */
+function markIncomplete(statements: readonly Markable[], places: readonly number[], source: SourceText): void {
   for (const statement of statements) {
-    const { line, column, endLine, endColumn } = statement.at;
+    const start = source.offset(statement.at.line, statement.at.column);
     let low = 0;
-    let high = diagnostics.length;
+    let high = places.length;
     while (low < high) {
       const middle = (low + high) >> 1;
-      const { at } = diagnostics[middle] as Diagnostic;
-      if (at.line < line || (at.line === line && at.column < column)) low = middle + 1;
+      if ((places[middle] as number) < start) low = middle + 1;
       else high = middle;
     }
-    const first = diagnostics[low]?.at;
-    if (!first || first.line > endLine || (first.line === endLine && first.column > endColumn)) continue;
+    const first = places[low];
+    if (first === undefined || first > source.offset(statement.at.endLine, statement.at.endColumn)) continue;
     statement.incomplete = true;
-    if (statement.statements) markIncomplete(statement.statements, diagnostics);
+    if (statement.statements) markIncomplete(statement.statements, places, source);
   }
 }
 

@@ -141,8 +141,8 @@ export function matchEnd(shape: Shape, text: string, at: number): number {
 }
 
 /**
- * The offset behind the bracket that closes the one at `open`, texts and comments aside. Where none does: the beginning of the
- * first line that `stopAt` picks, the brace in which a round bracket was left open, or the end of the text.
+ * The offset behind the bracket that closes the one at `open`, texts and comments aside. Where none does: the end of
+ * the line before the first that `stopAt` picks, the brace in which a round bracket was left open, or the end of the text.
  */
 export function skipBalanced(text: string, open: number, stopAt: (lineStart: number) => boolean): { end: number; closed: boolean } {
   const opening = text[open];
@@ -155,7 +155,7 @@ export function skipBalanced(text: string, open: number, stopAt: (lineStart: num
     if (sign === opening) depth++;
     else if (sign === closing && --depth === 0) return { end: marks.lastIndex, closed: true };
     else if (opening === "(" && (sign === "{" || sign === "}")) return { end: mark.index, closed: false };
-    else if (/[\r\n]/.test(sign[0] as string) && stopAt(lineContent(text, marks.lastIndex))) return { end: marks.lastIndex, closed: false };
+    else if (/[\r\n]/.test(sign[0] as string) && stopAt(lineContent(text, marks.lastIndex))) return { end: mark.index, closed: false };
   }
   return { end: text.length, closed: false };
 }

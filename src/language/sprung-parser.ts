@@ -33,6 +33,7 @@ export function createSprungParser(tokenize: (text: string) => Tokens): (text: s
     },
   });
   const parser: LangiumParser = services.parser.LangiumParser;
+  skipHiddenNodes(parser);
   return (text) => {
     const result = parser.parse<Document>(text);
     const leftOver = result.parserErrors.map(({ token }) => ({
@@ -64,7 +65,7 @@ class OwnLexer implements Lexer {
     const names = new Set(Object.keys(SprungTerminals));
     for (const node of AstUtils.streamAllContents(grammar)) if (GrammarAST.isKeyword(node)) names.add(node.value);
     // The parser tells tokens by their type alone; a pattern is never tried.
-    this.definition = Object.fromEntries([...names].map((name) => [name, { name, PATTERN: /[^]/ }]));
+    this.definition = Object.fromEntries([...names].map((name) => [name, { name, PATTERN: /./ }]));
   }
 
   tokenize(text: string): LexerResult {
@@ -77,7 +78,8 @@ class OwnLexer implements Lexer {
     const tokenType = this.definition[type];
     if (!tokenType) throw new Error(`The grammar has no token ${type}.`);
     return {
-      image: text.slice(start, end),
+      // A misspelt keyword that was understood is handed on as the keyword.
+      image: isKeyword(type) ? type : text.slice(start, end),
       startOffset: start,
       endOffset: end - 1,
       startLine: 1,
@@ -88,4 +90,17 @@ class OwnLexer implements Lexer {
       tokenTypeIdx: tokenType.tokenTypeIdx as number,
     };
   }
+}
+
+function isKeyword(type: string): boolean {
+  return /^[a-z]/.test(type);
+}
+
+/**
+ * The lexer hands on no comments or blanks, but the parser still looks among all neighbours for the place of none of them, which
+ * takes minutes for a line of a hundred thousand words. Its builder is therefore spared the call.
+ */
+function skipHiddenNodes(parser: LangiumParser): void {
+  const { nodeBuilder } = parser as unknown as { nodeBuilder?: { addHiddenNodes?: () => void } };
+  if (nodeBuilder?.addHiddenNodes) nodeBuilder.addHiddenNodes = () => {};
 }

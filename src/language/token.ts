@@ -14,6 +14,8 @@ export interface Problem {
   hint?: string;
   seeAlso?: { message: string; start: number; end: number };
   data?: Record<string, unknown>;
+  /** Where the statement begins in which it was found, if that is not plain from its own place. */
+  statement?: number;
 }
 
 export interface Tokens {

@@ -126,7 +126,7 @@ export interface FluidBlock extends Located {
   statements: (Declaration | LineStatement | PlugStatement | SheetBreak)[];
 }
 
-/** `line a -- b, c -- d hose size 12 mm`: groups of ends joined in order. */
+/** `line a -- b, c -- d hose size 12 mm`: the groups between one `--` and the next, `[[a], [b, c], [d]]`, joined in order. */
 export interface LineStatement extends Located {
   kind: "line";
   /** `line`, `pilot`, `drain` or `exhaust`. */

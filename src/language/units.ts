@@ -32,7 +32,7 @@ const unitRows: Record<Dimension, UnitRow[]> = {
     ["MPa", 10],
     ["Pa", 1e-5],
     ["hPa", 0.001],
-    ["psi PSI psig", 0.06894757293168361],
+    ["psi PSI psig", 0.0689475729316836],
     ["inHg", 0.03386389],
   ],
   time: [
