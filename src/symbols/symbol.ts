@@ -15,7 +15,10 @@ export type Shape =
   /** Text that belongs to the symbol itself (`M`, `3~`); it stays upright when the symbol is turned. `at` is the middle of its capitals. */
   | { kind: "text"; at: Point; text: string; height: Mm; anchor: Anchor };
 
-/** A symbol in mm about its own origin, y down. The box holds every stroke and port, without stroke width. */
+/** A place for a text of 2.5 mm or less: its baseline stands on the point. */
+export type Spot = Point & { anchor: Anchor };
+
+/** A symbol in mm about its own origin, y down. The box holds every stroke, port and own text, without stroke width. */
 export interface Symbol {
   /** e.g. `north-american/contact-no`, or the recipe of a composed valve. */
   name: string;
@@ -24,10 +27,12 @@ export interface Symbol {
   ports: Port[];
   shapes: Shape[];
   /**
-   * Places for text by name, e.g. `designation`, `value`, `left-solenoid`: baseline-middle points that layout may use.
-   * A symbol file marks them with `<circle class="spot" data-name=…>`.
+   * Places for text by name, e.g. `designation`, `terminal-in`, `port-P`, `left-solenoid`: points that layout may use.
+   * A symbol file marks them with `<circle class="spot" data-name=…>`. Not counted in the box.
    */
-  spots: Record<string, Point & { anchor: Anchor }>;
+  spots: Record<string, Spot>;
+  /** Valves: where each control is drawn, in the order of the valve's ends, left before right, innermost first. */
+  actuators?: { side: "left" | "right"; solenoid?: string; box: Box }[];
 }
 
 /** A symbol set down: turned by quarter turns counter-clockwise as seen, mirrored left-right before turning. */
