@@ -139,7 +139,7 @@ export interface Rung {
   at: SourceRange;
 }
 
-export type RungEnd = { kind: "rail"; node: NodeId } | { kind: "point"; point: string; node: NodeId };
+export type RungEnd = { kind: "rail"; node: NodeId } | { kind: "point"; point: string; node: NodeId; at: SourceRange };
 
 /** Things one after another from the live side to the return side. Never nested directly in another series. */
 export interface SeriesPath {

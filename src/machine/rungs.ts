@@ -102,12 +102,12 @@ export class RungBuilder {
     const rung: Rung = { id, title: syntax.title?.text, start, end, path: { kind: "series", items: [], from: -1, to: -1 }, at: syntax.title?.at ?? syntax.at };
     const [first] = items;
     if (first?.kind === "point") {
-      rung.start = { kind: "point", point: first.name, node: this.point(first.name) };
+      rung.start = { kind: "point", point: first.name, node: this.point(first.name), at: first.at };
       items.shift();
     }
     const last = items.at(-1);
     if (last?.kind === "point") {
-      rung.end = { kind: "point", point: last.name, node: this.point(last.name) };
+      rung.end = { kind: "point", point: last.name, node: this.point(last.name), at: last.at };
       items.pop();
     }
     if (items.length === 0 && rung.end.kind === "rail") {

@@ -1,0 +1,16 @@
+import { deviceRoles } from "../machine/kinds.js";
+import { rule } from "./rule.js";
+
+/** A relay that is never driven but has contacts has a rule of its own, and so has a valve's coil. */
+export const coilNeverDriven = rule<{ device: string }>({
+  code: "coil-never-driven",
+  severity: "warning",
+  says: ({ device }) => `Nothing drives ${device}.`,
+  hint: ({ device }) => `Write a rung that ends in -> ${device}, or take it out.`,
+  find: ({ machine, networks }) =>
+    networks.gaps
+      ? []
+      : [...machine.devices.values()]
+          .filter(({ kind, loads, contacts }) => deviceRoles[kind].load && kind !== "solenoid" && loads.length === 0 && contacts.length === 0)
+          .map(({ name, at }) => ({ device: name, at })),
+});
