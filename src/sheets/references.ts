@@ -89,20 +89,23 @@ function ladderLines(device: string, sheet: CircuitSheet, appearances: Appearanc
   return wordings;
 }
 
-/** A point's other ends: `run 2/204`, on a fluid sheet `P 2/B1`. */
+/** A point's other ends: `run 2/204`, on a fluid sheet `P 2/B1`, and `run 104` or `P B1` where they are all on this sheet. */
 function elsewhere(reference: Reference & { to: "point" }, sheet: CircuitSheet, appearances: Appearances): Wording[] {
-  const others = appearances.pointEnds(sheet.kind, reference.point).filter(({ place }) => place.sheet !== sheet.number);
+  const all = appearances.pointEnds(sheet.kind, reference.point).filter(({ from }) => from !== reference.from);
+  const others = all.filter(({ place }) => place.sheet !== sheet.number);
   // One end on each other sheet is enough, and the sheets that follow are read first.
   const onceEach = others.filter(({ place }, index) => others.findIndex((other) => other.place.sheet === place.sheet) === index);
   const ordered = [
     ...onceEach.filter(({ place }) => place.sheet > sheet.number),
     ...onceEach.filter(({ place }) => place.sheet < sheet.number).reverse(),
   ];
+  if (ordered.length === 0) ordered.push(...all);
   if (ordered.length === 0) return [{ pieces: [{ text: reference.point }] }];
   const wordings: Wording[] = [];
   for (let shown = ordered.length; shown > 0; shown--) {
     const pieces = ordered.slice(0, shown).map(({ from, place }, index): Piece => {
-      const where = place.line === undefined ? zoneName(place) : `${place.sheet}/${place.line}`;
+      const within = place.line === undefined ? place.zone : String(place.line);
+      const where = place.sheet === sheet.number ? within : within === "" ? String(place.sheet) : `${place.sheet}/${within}`;
       return { text: `${index === 0 ? `${reference.point} ` : ", "}${where}`, to: from };
     });
     wordings.push({ pieces });

@@ -58,7 +58,7 @@ export function handMade(change: Partial<DrawingInfo> = {}): { machine: Machine;
     role: to.to === "contacts" ? "margin" : "reference", at: where, anchor, height: 2.5, text: { ...to, room }, ...(part ? { part } : {}),
   });
   const ladder = (number: number, title: string, texts: PlacedText[]): CircuitSheet => ({
-    kind: "ladder", circuit: "Control", number, title, texts, strokes: [], dots: [{ part: `node ${number}`, at: { x: 80, y: 55 }, diameter: 0.75 }],
+    kind: "ladder", circuit: "Control", number, title, texts, strokes: [{ part: `run ${number}`, role: "continuation", path: [{ x: 60, y: 39 }, { x: 63, y: 39 }], width: 0.25 }], dots: [{ part: `node ${number}`, at: { x: 80, y: 55 }, diameter: 0.75 }],
     symbols: [...devices.values()].flatMap((each) => [...each.contacts, ...each.loads]).flatMap((use) => {
       const place = places.get(use.id) as Place;
       const symbol = use.kind === "contact" ? contactSymbol : coilSymbol;
@@ -71,13 +71,13 @@ export function handMade(change: Partial<DrawingInfo> = {}): { machine: Machine;
       reference({ to: "coil", device: "CR1" }, { x: 65, y: y(102) + 6 }, 12, "CR1:13-14"),
       reference({ to: "switch-place", device: "LS1" }, { x: 65, y: y(103) + 6 }, 22, "LS1:21-22"),
       reference({ to: "contacts", device: "CR1" }, { x: 175, y: y(101) + 1.2 }, 40, "CR1", "start"),
-      reference({ to: "point", point: "run", from: "rail 1" }, { x: 65, y: 100 }, 30, "rail 1", "start"),
+      reference({ to: "point", point: "run", from: "run 1" }, { x: 65, y: 100 }, 30, "run 1", "start"),
       { role: "designation", part: "CR1", at: { x: 155, y: y(101) - 6 }, anchor: "middle", height: 2.5, text: "CR1" },
     ]),
     ladder(2, "Outputs", [
       reference({ to: "coil", device: "CR1" }, { x: 65, y: y(201) + 6 }, 12, "CR1:21-22"),
       reference({ to: "valve", device: "SOL1" }, { x: 175, y: y(201) + 1.2 }, 30, "SOL1", "start"),
-      reference({ to: "point", point: "run", from: "rail 2" }, { x: 65, y: 40 }, 30, "rail 2", "start"),
+      reference({ to: "point", point: "run", from: "run 2" }, { x: 65, y: 40 }, 30, "run 2", "start"),
     ]),
     {
       kind: "fluid", circuit: "Pneumatics", number: 3, title: "Pneumatics", wires: [], dots: [], notes: ["V1 is drawn as it stands at the start."],
