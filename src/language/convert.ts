@@ -137,7 +137,7 @@ class Conversion {
           "field-expected",
           this.extent(field.items[0] as Syntax.Item),
           "A line of the drawing block begins with the name of a field.",
-          "Write it as in “number TS-2040”.",
+          'Write it as in "number TS-2040".',
         );
     }
     return { kind: "drawing", ...(title && { title }), fields, ...this.located(node) };
@@ -151,7 +151,7 @@ class Conversion {
       this.report(
         "text-expected",
         this.extent(node),
-        "The path of the file is missing behind “include”.",
+        'The path of the file is missing behind "include".',
         'Write it as in include "valves.sprung".',
       );
   }
@@ -166,7 +166,7 @@ class Conversion {
       block.supply = { text: second.text, at: second.at };
       left = rest.slice(2);
     } else if (first?.kind === "word" && first.text === "supply") {
-      this.report("name-missing", this.extentOfRange(first.at), "The name of the supply is missing behind “supply”.");
+      this.report("name-missing", this.extentOfRange(first.at), 'The name of the supply is missing behind "supply".');
       left = rest.slice(1);
     }
     this.refuse(left, ["supply"]);
@@ -206,7 +206,7 @@ class Conversion {
     node: Syntax.Drawing | Syntax.Include | Syntax.Ladder | Syntax.Fluid | Syntax.Sequence | Syntax.Unsupported,
     within: string,
   ): void {
-    this.misplaced(node, node.keyword, `cannot stand inside “${within}”`, `Put it outside the braces of “${within}”.`);
+    this.misplaced(node, node.keyword, `cannot stand inside "${within}"`, `Put it outside the braces of "${within}".`);
     this.topStatement(node);
   }
 
@@ -245,7 +245,7 @@ class Conversion {
         "statement-expected",
         this.extent(first),
         "A statement begins with a word that says what it is.",
-        dashes ? "Write “line” first." : "Write it as in “relay CR1”.",
+        dashes ? 'Write "line" first.' : 'Write it as in "relay CR1".',
       );
       return undefined;
     }
@@ -275,7 +275,7 @@ class Conversion {
       this.report(
         "colon-missing",
         { start: behind.end - 1, end: behind.end },
-        "A “:” is missing before the rung's path.",
+        `A ":" is missing before the rung's path.`,
         'Write it as in rung "Start": PB1 -> CR1.',
       );
     }
@@ -296,8 +296,8 @@ class Conversion {
           this.report(
             "arrow-twice",
             this.extent(item),
-            "A second “->” stands in the same path.",
-            "What is driven stands behind one “->”; put several loads in ( a | b ).",
+            'A second "->" stands in the same path.',
+            'What is driven stands behind one "->"; put several loads in ( a | b ).',
           );
       } else this.strayInPath(item);
     }
@@ -309,19 +309,19 @@ class Conversion {
     const extent = this.extent(node);
     const { text } = node;
     if (text === "|")
-      this.report("branch-without-bracket", extent, "“|” stands outside brackets.", "Put the branches in brackets: ( a | b ).");
+      this.report("branch-without-bracket", extent, '"|" stands outside brackets.', "Put the branches in brackets: ( a | b ).");
     else if (text.startsWith('"'))
       this.report("unexpected-text", extent, "A text has no place in a rung's path.", "The function text stands before the colon.");
     else if (text === ":")
-      this.report("unexpected-symbol", extent, "“:” has no place here.", "Terminals stand directly behind a name, as in “CR1:13-14”.");
+      this.report("unexpected-symbol", extent, '":" has no place here.', 'Terminals stand directly behind a name, as in "CR1:13-14".');
     else if (text === ",")
-      this.report("unexpected-symbol", extent, "“,” has no place in a rung's path.", "Contacts in series stand side by side.");
+      this.report("unexpected-symbol", extent, `"," has no place in a rung's path.`, "Contacts in series stand side by side.");
     else
       this.report(
         "unexpected-symbol",
         extent,
-        `“${text}” has no place in a rung's path.`,
-        text === "--" ? "Contacts in series stand side by side; “->” stands before the load." : undefined,
+        `"${text}" has no place in a rung's path.`,
+        text === "--" ? 'Contacts in series stand side by side; "->" stands before the load.' : undefined,
       );
   }
 
@@ -390,7 +390,7 @@ class Conversion {
         "unexpected-symbol",
         { start: end - node.pins.length, end },
         "Terminals have no place in a fluid line.",
-        "A port stands behind a dot, as in “V1.A”.",
+        'A port stands behind a dot, as in "V1.A".',
       );
     return {
       kind: "component",
@@ -428,8 +428,8 @@ class Conversion {
     this.report(
       "unexpected-word",
       this.extentOfRange(first.at),
-      `“${written}” has no place here.`,
-      near ? `Did you mean “${near}”?` : undefined,
+      `"${written}" has no place here.`,
+      near ? `Did you mean "${near}"?` : undefined,
     );
   }
 
@@ -452,7 +452,7 @@ class Conversion {
       case "Quantity": {
         const quantity = parseQuantity(node.text);
         if (quantity) return { kind: "quantity", quantity, text: quantity.text, at };
-        this.report("number-unreadable", this.extent(node), `“${node.text}” is no number.`);
+        this.report("number-unreadable", this.extent(node), `"${node.text}" is no number.`);
         return undefined;
       }
       case "BareNumber":
@@ -466,7 +466,7 @@ class Conversion {
         if (node.text === ",") return { kind: "symbol", text: ",", at };
         // One complaint a statement: the other signs follow from the first.
         if (reader.signs++ === 0)
-          this.report("unexpected-symbol", this.extent(node), `“${node.text}” has no place here.`, signHints[node.text]);
+          this.report("unexpected-symbol", this.extent(node), `"${node.text}" has no place here.`, signHints[node.text]);
         return undefined;
     }
   }
@@ -504,7 +504,7 @@ class Conversion {
 
   private misplaced(node: Syntax.Statement, keyword: string, where: string, hint?: string): void {
     const { start } = this.extent(node);
-    this.report("misplaced", { start, end: start + keyword.length }, `“${keyword}” ${where}.`, hint);
+    this.report("misplaced", { start, end: start + keyword.length }, `"${keyword}" ${where}.`, hint);
   }
 
   private report(code: string, { start, end }: Extent, message: string, hint?: string): void {
@@ -514,8 +514,8 @@ class Conversion {
 
 const signHints: Record<string, string> = {
   "->": 'An arrow belongs in a rung: rung "…": PB1 -> CR1.',
-  "--": `Dashes join the ends of a line, which begins with “${lineKeywords.join("”, “")}”.`,
-  ":": "Terminals stand directly behind a name, as in “X1:4”.",
+  "--": `Dashes join the ends of a line, which begins with "${lineKeywords.join('", "')}".`,
+  ":": 'Terminals stand directly behind a name, as in "X1:4".',
   "(": "Branches belong in a rung.",
   ")": "Branches belong in a rung.",
   "|": "Branches belong in a rung.",

@@ -173,8 +173,8 @@ class Lexing {
   private reportGoesOn(): void {
     const last = this.tokens[this.tokens.length - 1] as Token;
     const sign = this.text.slice(last.start, last.end);
-    this.report("statement-unfinished", last.start, last.end, `The line ends in “${sign}”, but nothing follows it.`, {
-      hint: `Write what comes behind “${sign}”, or leave it out.`,
+    this.report("statement-unfinished", last.start, last.end, `The line ends in "${sign}", but nothing follows it.`, {
+      hint: `Write what comes behind "${sign}", or leave it out.`,
     });
     if (this.statement) this.statement.due = false;
     if (sign !== "then") this.tokens.pop();
@@ -234,8 +234,8 @@ class Lexing {
     statement.keyword = keyword ?? written;
     if (keyword) {
       if (keyword !== written) {
-        this.report("unknown-keyword", start, end, `“${written}” opens no statement.`, {
-          hint: `Did you mean “${keyword}”?`,
+        this.report("unknown-keyword", start, end, `"${written}" opens no statement.`, {
+          hint: `Did you mean "${keyword}"?`,
           data: { nearest: keyword },
         });
       }
@@ -279,7 +279,7 @@ class Lexing {
     if (this.readUnknown()) return;
     const line = this.text.slice(start, this.match("untilBrace")).trimEnd();
     this.report("statement-expected", start, start + Math.max(1, line.length), "A statement begins with a word.", {
-      hint: `Write what it is first, such as ${this.block.kind === "fluid" ? "“line” or “valve V1”" : this.block.kind === "circuit" ? "“rung:”" : "“relay CR1”"}.`,
+      hint: `Write what it is first, such as ${firstWords[this.block.kind] ?? '"relay CR1"'}.`,
     });
     this.at = start + Math.max(1, line.length);
   }
@@ -299,7 +299,7 @@ class Lexing {
   private reportEndMissing(statement: StatementState, last: Token): void {
     const sign = this.text.slice(last.start, last.end);
     statement.due = false;
-    this.report("end-missing", last.start, last.end, `A port, a component or an @point is missing behind “${sign}”.`);
+    this.report("end-missing", last.start, last.end, `A port, a component or an @point is missing behind "${sign}".`);
     if (last.type === "--" || last.type === ",") this.tokens.pop();
   }
 
@@ -341,7 +341,7 @@ class Lexing {
         "brace-not-expected",
         open,
         open + 1,
-        statement?.keyword ? `“${statement.keyword}” takes no “{”.` : "A “{” has no place here.",
+        statement?.keyword ? `"${statement.keyword}" takes no "{".` : 'A "{" has no place here.',
       );
     }
     this.blocks.push({ ...this.block, open, through: true, resume: undefined });
@@ -352,7 +352,7 @@ class Lexing {
     this.at++;
     if (this.block.kind === "file" && !this.block.through) {
       this.endStatement(at);
-      this.report("block-not-opened", at, at + 1, "This “}” closes nothing.", { hint: "Leave it out, or look for a “{” missing above." });
+      this.report("block-not-opened", at, at + 1, 'This "}" closes nothing.', { hint: 'Leave it out, or look for a "{" missing above.' });
       return;
     }
     const block = this.blocks.pop() as Block;
@@ -381,11 +381,11 @@ class Lexing {
   private reportBlockOpen(keyword: string, open: number, start: number): void {
     this.problems.push({
       code: "block-not-closed",
-      message: `The “{” of “${keyword}” is never closed.`,
+      message: `The "{" of "${keyword}" is never closed.`,
       start: open,
       end: open + 1,
-      hint: "Put a “}” behind its last line.",
-      seeAlso: { message: `“${keyword}” begins here.`, start, end: start + keyword.length },
+      hint: 'Put a "}" behind its last line.',
+      seeAlso: { message: `"${keyword}" begins here.`, start, end: start + keyword.length },
     });
   }
 
@@ -412,8 +412,8 @@ class Lexing {
 
   private closeBracket(statement: StatementState): void {
     if (statement.brackets.pop() === undefined) {
-      this.report("branch-not-opened", this.at, this.at + 1, "This “)” closes nothing.", {
-        hint: "Leave it out, or open the branches with “(”.",
+      this.report("branch-not-opened", this.at, this.at + 1, 'This ")" closes nothing.', {
+        hint: 'Leave it out, or open the branches with "(".',
       });
     } else this.emit(")", this.at, this.at + 1);
     this.at++;
@@ -428,7 +428,7 @@ class Lexing {
     const open = this.tokens[index] as Token;
     const deepHere = this.problems.some((problem) => problem.code === "nesting-too-deep" && problem.start >= open.start);
     if (!deepHere) {
-      this.report("branch-not-closed", open.start, open.end, "This “(” is never closed.", { hint: "Put a “)” behind the last branch." });
+      this.report("branch-not-closed", open.start, open.end, 'This "(" is never closed.', { hint: 'Put a ")" behind the last branch.' });
     }
     let place = this.tokens.length;
     const arrowsBefore = this.tokens.slice(statement.first, index).some((token) => token.type === "->");
@@ -507,7 +507,7 @@ class Lexing {
       this.readWord("name");
       return;
     }
-    this.report("name-missing", start, start + 1, "A name is missing behind “/”.", { hint: "Write it as in “/CR1”." });
+    this.report("name-missing", start, start + 1, 'A name is missing behind "/".', { hint: 'Write it as in "/CR1".' });
     this.at++;
   }
 
@@ -518,7 +518,7 @@ class Lexing {
     if (sign && !(sign === "--" && joiner === ",")) {
       this.at += sign.length;
       if (statement.due) {
-        this.report("end-missing", start, this.at, `A port, a component or an @point is missing before “${sign}”.`);
+        this.report("end-missing", start, this.at, `A port, a component or an @point is missing before "${sign}".`);
         return;
       }
       this.emit(sign, start, this.at);
@@ -536,7 +536,7 @@ class Lexing {
       else if (!this.readUnknown()) {
         const end = this.char === '"' ? Math.max(this.match("text"), start + 1) : start + 1;
         this.report("end-expected", start, end, "A line goes from port to port.", {
-          hint: "Write its ends as in “V1.A -- CYL.cap” or “@P -- V1.P”.",
+          hint: 'Write its ends as in "V1.A -- CYL.cap" or "@P -- V1.P".',
         });
         this.at = end;
       }
@@ -546,7 +546,7 @@ class Lexing {
     const behind = behindName > 0 ? behindName : name;
     const goesOn = name > 0 && /^[ \t]*(?:--|,)/.test(this.text.slice(behind, behind + 80));
     if (name > 0 && (isPoint || behindName > 0 || goesOn)) {
-      this.report("dash-missing", start, behind, `A “${joiner}” is missing before “${this.text.slice(start, behind)}”.`);
+      this.report("dash-missing", start, behind, `A "${joiner}" is missing before "${this.text.slice(start, behind)}".`);
       const last = this.tokens[this.tokens.length - 1] as Token;
       this.emit(joiner, last.end, last.end);
       if (isPoint) this.readPoint();
@@ -623,8 +623,8 @@ class Lexing {
       this.emit("PORT", end, port);
       end = port;
     } else if (this.text[end] === ".") {
-      this.report("name-missing", start, end + 1, `A name is missing behind “${this.text.slice(start, end + 1)}”.`, {
-        hint: "Write the part directly behind the dot, as in “V1.A”.",
+      this.report("name-missing", start, end + 1, `A name is missing behind "${this.text.slice(start, end + 1)}".`, {
+        hint: 'Write the part directly behind the dot, as in "V1.A".',
       });
       end++;
     }
@@ -644,7 +644,7 @@ class Lexing {
       this.at = end;
       return;
     }
-    this.report("name-missing", start, start + 1, "A name is missing behind “@”.", { hint: "Write it as in “@run”." });
+    this.report("name-missing", start, start + 1, 'A name is missing behind "@".', { hint: 'Write it as in "@run".' });
     this.at++;
   }
 
@@ -660,7 +660,7 @@ class Lexing {
       for (const sequence of this.text.slice(start, end).matchAll(/\\(.)/g)) {
         if (sequence[1] === '"' || sequence[1] === "\\") continue;
         const place = start + sequence.index;
-        this.report("unknown-escape", place, place + 2, `“\\${sequence[1]}” means nothing in a text.`, {
+        this.report("unknown-escape", place, place + 2, `"\\${sequence[1]}" means nothing in a text.`, {
           hint: 'Write \\\\ for a backslash and \\" for a quotation mark.',
         });
       }
@@ -690,7 +690,7 @@ class Lexing {
     const start = this.at;
     if (this.text.startsWith("//", start)) {
       this.at = this.match("restOfLine");
-      this.report("unexpected-character", start, start + 2, "“//” opens no comment.", { hint: "A comment begins with #." });
+      this.report("unexpected-character", start, start + 2, '"//" opens no comment.', { hint: "A comment begins with #." });
       return true;
     }
     const typographic = this.match("typographicText");
@@ -714,9 +714,12 @@ class Lexing {
   }
 }
 
+/** How a statement may begin. */
+const firstWords: Partial<Record<BlockKind, string>> = { fluid: '"line" or "valve V1"', circuit: '"rung:"' };
+
 const signHints: [string, string][] = [
   [";", "A statement ends with its line."],
-  ["=", "Write the value directly behind the word, as in “bore 40 mm”."],
+  ["=", 'Write the value directly behind the word, as in "bore 40 mm".'],
   ["[", "Branches stand in round brackets: ( a | b )."],
   ["]", "Branches stand in round brackets: ( a | b )."],
   ["→", "Write ->."],
@@ -724,7 +727,7 @@ const signHints: [string, string][] = [
   ["—", "Write --."],
   ["'", 'Texts stand in double quotation marks: "…".'],
   ["&", "Contacts in series stand side by side."],
-  ["!", "A normally closed contact is written with a slash, as in “/CR1”."],
+  ["!", 'A normally closed contact is written with a slash, as in "/CR1".'],
 ];
 
 /** A sign as it can be printed: control characters by their number. */
@@ -732,6 +735,6 @@ function show(written: string): string {
   const first = written.codePointAt(0) ?? 0;
   const printable =
     first > 0x20 && !(first >= 0x7f && first < 0xa1) && !(first >= 0x200b && first <= 0x200f) && first !== 0xfeff && first !== 0xfffd;
-  if (printable) return `“${written.length > 12 ? `${[...written].slice(0, 12).join("")}…` : written}”`;
+  if (printable) return `"${written.length > 12 ? `${[...written].slice(0, 12).join("")}…` : written}"`;
   return `The character U+${first.toString(16).toUpperCase().padStart(4, "0")}`;
 }

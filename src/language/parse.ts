@@ -28,7 +28,7 @@ export function parse(text: string, file: string): { tree: Tree; diagnostics: Di
       message: "This file describes nothing.",
       start: 0,
       end: 0,
-      hint: "Begin with a device, such as “relay CR1”, or a rung.",
+      hint: 'Begin with a device, such as "relay CR1", or a rung.',
     });
   }
   markIncomplete(

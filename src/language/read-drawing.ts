@@ -36,9 +36,9 @@ async function readFile(file: string, at: SourceRange, written: string | undefin
   const loop = reading.open.findIndex((outer) => outer.file === file);
   if (loop >= 0 || reading.open.length >= longestChain) {
     const chain = reading.open.slice(loop >= 0 ? loop + 1 : 0).slice(0, 10);
-    report(reading, "include-loop", at, loop >= 0 ? `“${written}” includes itself.` : `Includes stand more than ${longestChain} deep.`, {
+    report(reading, "include-loop", at, loop >= 0 ? `"${written}" includes itself.` : `Includes stand more than ${longestChain} deep.`, {
       hint: "Leave out one of the includes.",
-      seeAlso: chain.map((step) => ({ message: `“${step.file}” is included here.`, at: step.at })),
+      seeAlso: chain.map((step) => ({ message: `"${step.file}" is included here.`, at: step.at })),
     });
     return [];
   }
@@ -67,8 +67,8 @@ async function readFile(file: string, at: SourceRange, written: string | undefin
     for (; done < include.index; done++) statements.push(tree.statements[done] as Statement);
     const target = within(reading.root, folderOf(file), include.path);
     if (target === undefined) {
-      report(reading, "include-outside-folder", include.at, `“${include.path}” leads out of the folder of the drawing.`, {
-        hint: `Write a path below ${reading.root === "" ? "the drawing's folder" : reading.root}, with “/” between folders.`,
+      report(reading, "include-outside-folder", include.at, `"${include.path}" leads out of the folder of the drawing.`, {
+        hint: `Write a path below ${reading.root === "" ? "the drawing's folder" : reading.root}, with "/" between folders.`,
       });
     } else for (const statement of await readFile(target, include.at, include.path, reading)) statements.push(statement);
   }
@@ -78,10 +78,10 @@ async function readFile(file: string, at: SourceRange, written: string | undefin
 }
 
 function unreadable(name: string, problem: "missing" | "unreadable" | "not-text" | "folder"): string {
-  if (problem === "missing") return `There is no file “${name}”.`;
-  if (problem === "folder") return `“${name}” is a folder.`;
-  if (problem === "not-text") return `“${name}” is not text.`;
-  return `“${name}” cannot be read.`;
+  if (problem === "missing") return `There is no file "${name}".`;
+  if (problem === "folder") return `"${name}" is a folder.`;
+  if (problem === "not-text") return `"${name}" is not text.`;
+  return `"${name}" cannot be read.`;
 }
 
 function report(reading: Reading, code: string, at: SourceRange, message: string, more: Partial<Diagnostic> = {}): void {
