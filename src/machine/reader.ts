@@ -91,12 +91,12 @@ export class ItemReader {
     return undefined;
   }
 
-  /** A designation: a bare word, or a number standing as one. */
+  /** A designation or potential: a bare word, a number standing as one, or a value written in one, such as `0V`. */
   name(property: Word, what: string): Word | undefined {
-    const item = this.peek();
-    if (item?.kind === "word" || item?.kind === "number") {
+    const name = nameOf(this.peek());
+    if (name) {
       this.index++;
-      return { text: item.text, at: item.at };
+      return name;
     }
     this.missing(property, what);
     return undefined;
