@@ -26,5 +26,11 @@ export function underline(mark: TextMark): { path: Segment[]; width: number } {
         { x: box.x, y: mark.at.y + drop },
         { x: box.x + box.width, y: mark.at.y + drop },
       ];
-  return { path: [{ op: "M", ...from }, { op: "L", ...to }], width: Math.max(0.18, mark.height * 0.08) };
+  return {
+    path: [
+      { op: "M", ...from },
+      { op: "L", ...to },
+    ],
+    width: Math.max(0.18, mark.height * 0.08),
+  };
 }

@@ -16,12 +16,19 @@ export type Anchor = "start" | "middle" | "end";
  * What a sheet consists of. Text stands on its baseline at `at`; `height` is the height of its capitals (ISO 3098), and
  * `rotated` turns it 90° counter-clockwise so that it reads from the right. `ink` is black unless given.
  */
-export type Mark = { part?: PartId; /** Class names for the SVG, e.g. "wire". */ role?: string } & (
+export type Mark = { part?: PartId /** Class names for the SVG, e.g. "wire". */; role?: string } & (
   | { kind: "stroke"; path: Segment[]; width: Mm; dash?: Mm[]; ink?: string }
   | { kind: "fill"; path: Segment[]; ink?: string }
   | {
-      kind: "text"; at: Point; text: string; height: Mm; anchor: Anchor;
-      rotated?: boolean; bold?: boolean; underline?: boolean; ink?: string;
+      kind: "text";
+      at: Point;
+      text: string;
+      height: Mm;
+      anchor: Anchor;
+      rotated?: boolean;
+      bold?: boolean;
+      underline?: boolean;
+      ink?: string;
     }
   /** A region that leads to where `to` is drawn. */
   | { kind: "link"; box: Box; to: PartId }

@@ -36,8 +36,7 @@ export function circle(centre: Point, radius: Mm): Segment[] {
 export function movePath(path: readonly Segment[], by: Point): Segment[] {
   return path.map((s) => {
     if (s.op === "Z") return s;
-    if (s.op === "C")
-      return { ...s, x1: s.x1 + by.x, y1: s.y1 + by.y, x2: s.x2 + by.x, y2: s.y2 + by.y, x: s.x + by.x, y: s.y + by.y };
+    if (s.op === "C") return { ...s, x1: s.x1 + by.x, y1: s.y1 + by.y, x2: s.x2 + by.x, y2: s.y2 + by.y, x: s.x + by.x, y: s.y + by.y };
     return { ...s, x: s.x + by.x, y: s.y + by.y };
   });
 }
@@ -62,7 +61,7 @@ export function arcCurves(from: Point, arc: Segment & { op: "A" }): (Segment & {
   if (!arc.sweep && turn >= 0) turn -= 2 * Math.PI;
   const count = Math.max(1, Math.ceil(Math.abs(turn) / (Math.PI / 2) - 1e-9));
   const step = turn / count;
-  const reach = ((4 / 3) * Math.tan(step / 4)) * radius;
+  const reach = (4 / 3) * Math.tan(step / 4) * radius;
   const curves: (Segment & { op: "C" })[] = [];
   for (let i = 0; i < count; i++) {
     const a = start + i * step;

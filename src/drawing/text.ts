@@ -20,7 +20,7 @@ const equivalents: ReadonlyMap<string, string> = new Map([
 ]);
 
 /** Steer printing or direction but show nothing themselves: joiners, direction and variation marks. */
-const invisible = /[\u00ad\u061c\u180e\u200b-\u200f\u2028-\u202e\u2060-\u206f\ufe00-\ufe0f\ufeff\u{e0000}-\u{e0fff}]/gu;
+const invisible = /[\p{Cf}\p{Variation_Selector}]/gu;
 
 /**
  * The text as it is drawn: composed, each control character a space or nothing, and every character the font lacks
@@ -29,7 +29,10 @@ const invisible = /[\u00ad\u061c\u180e\u200b-\u200f\u2028-\u202e\u2060-\u206f\uf
 export function printable(text: string): string {
   if (/^[ -~]*$/.test(text)) return text;
   let out = "";
-  for (const character of text.normalize("NFC").replace(/[\t\n\v\f\r\u0085\u2028\u2029]+/g, " ").replace(invisible, "")) {
+  for (const character of text
+    .normalize("NFC")
+    .replace(/[\t\n\v\f\r\u0085\u2028\u2029]+/g, " ")
+    .replace(invisible, "")) {
     const code = character.codePointAt(0) as number;
     if (code < 0x20 || (code >= 0x7f && code < 0xa0)) continue;
     const drawn = equivalents.get(character) ?? character;
@@ -74,7 +77,9 @@ export function wrapText(text: string, height: Mm, width: Mm, maxLines: number, 
   if (maxLines < 1) return [];
   const lines: string[] = [];
   for (const paragraph of text.split(/\r\n|[\n\r\u2028\u2029]/)) {
-    const words = printable(paragraph).split(" ").filter((word) => word !== "");
+    const words = printable(paragraph)
+      .split(" ")
+      .filter((word) => word !== "");
     let line = "";
     for (let word of words) {
       const longer = line === "" ? word : `${line} ${word}`;

@@ -10,8 +10,15 @@ export function fontFile(world: World, bold: boolean): Uint8Array {
 
 /** The carried pieces of the font for SVG and the characters each is for. */
 const subsets = [
-  { name: "latin", range: "U+0000-00FF,U+0131,U+0152-0153,U+02BB-02BC,U+02C6,U+02DA,U+02DC,U+2000-206F,U+20AC,U+2122,U+2191,U+2193,U+2212,U+2215" },
-  { name: "latin-ext", range: "U+0100-0130,U+0132-0151,U+0154-02BA,U+02BD-02C5,U+02C7-02CC,U+02CE-02D7,U+02DD-02FF,U+1E00-1E9F,U+1EF2-1EFF,U+20A0-20AB,U+20AD-20C0,U+2113" },
+  {
+    name: "latin",
+    range: "U+0000-00FF,U+0131,U+0152-0153,U+02BB-02BC,U+02C6,U+02DA,U+02DC,U+2000-206F,U+20AC,U+2122,U+2191,U+2193,U+2212,U+2215",
+  },
+  {
+    name: "latin-ext",
+    range:
+      "U+0100-0130,U+0132-0151,U+0154-02BA,U+02BD-02C5,U+02C7-02CC,U+02CE-02D7,U+02DD-02FF,U+1E00-1E9F,U+1EF2-1EFF,U+20A0-20AB,U+20AD-20C0,U+2113",
+  },
   { name: "greek", range: "U+0370-03FF" },
   { name: "cyrillic", range: "U+0301,U+0400-045F,U+0490-0491,U+04B0-04B1,U+2116" },
 ];

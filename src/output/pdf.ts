@@ -184,7 +184,10 @@ function drawSegment(document: Document, s: Segment, at: Point): Point {
 function drawText(document: Document, mark: Mark & { kind: "text" }): void {
   const shown = printable(mark.text);
   if (shown.trim() === "") return;
-  document.font(mark.bold ? "bold" : "regular").fontSize(fontSize(mark.height) * pt).fillColor(colour(mark.ink));
+  document
+    .font(mark.bold ? "bold" : "regular")
+    .fontSize(fontSize(mark.height) * pt)
+    .fillColor(colour(mark.ink));
   const box = textBox({ ...mark, text: shown });
   const start = mark.rotated ? { x: mark.at.x, y: box.y + box.height } : { x: box.x, y: mark.at.y };
   if (mark.rotated) document.save().rotate(-90, { origin: [start.x * pt, start.y * pt] });

@@ -147,21 +147,21 @@ function colour(ink: string): string {
 
 /** SVG path data of a path. */
 export function pathData(path: readonly Segment[]): string {
-  return path
-    .map((s) => {
-      switch (s.op) {
-        case "M":
-        case "L":
-          return `${s.op}${decimal(s.x)} ${decimal(s.y)}`;
-        case "C":
-          return `C${[s.x1, s.y1, s.x2, s.y2, s.x, s.y].map(decimal).join(" ")}`;
-        case "A":
-          return `A${decimal(s.radius)} ${decimal(s.radius)} 0 ${s.large ? 1 : 0} ${s.sweep ? 1 : 0} ${decimal(s.x)} ${decimal(s.y)}`;
-        case "Z":
-          return "Z";
-      }
-    })
-    .join("");
+  return path.map(segmentData).join("");
+}
+
+function segmentData(s: Segment): string {
+  switch (s.op) {
+    case "M":
+    case "L":
+      return `${s.op}${decimal(s.x)} ${decimal(s.y)}`;
+    case "C":
+      return `C${[s.x1, s.y1, s.x2, s.y2, s.x, s.y].map(decimal).join(" ")}`;
+    case "A":
+      return `A${decimal(s.radius)} ${decimal(s.radius)} 0 ${s.large ? 1 : 0} ${s.sweep ? 1 : 0} ${decimal(s.x)} ${decimal(s.y)}`;
+    case "Z":
+      return "Z";
+  }
 }
 
 /** At most three decimals, never an exponent, never `-0`. A number that is none is written as 0 so that the file stays readable. */

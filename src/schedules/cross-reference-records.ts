@@ -2,7 +2,19 @@ import type { CrossReferenceRow } from "./rows.js";
 
 /** The heads of the cross-reference as flat records. */
 export const crossReferenceHeads = [
-  "coil", "kind", "text", "sheet", "line", "contact", "timed", "terminals", "contact sheet", "contact line", "valve", "valve sheet", "valve zone",
+  "coil",
+  "kind",
+  "text",
+  "sheet",
+  "line",
+  "contact",
+  "timed",
+  "terminals",
+  "contact sheet",
+  "contact line",
+  "valve",
+  "valve sheet",
+  "valve zone",
 ] as const;
 
 /** The cross-reference as flat records under `crossReferenceHeads`, one for each contact, and one for a coil that has none. */
@@ -11,7 +23,15 @@ export function crossReferenceRecords(rows: readonly CrossReferenceRow[]): (stri
     const start = [row.coil, row.kind, row.text, row.sheet, row.line];
     const end = row.valve ? [row.valve.name, row.valve.sheet, row.valve.zone] : ["", "", ""];
     if (row.contacts.length === 0) return [[...start, "", "", "", "", "", ...end]];
-    return row.contacts.map(({ type, timed, terminals, sheet, line }) => [...start, type, timed ? "timed" : "", terminals, sheet, line, ...end]);
+    return row.contacts.map(({ type, timed, terminals, sheet, line }) => [
+      ...start,
+      type,
+      timed ? "timed" : "",
+      terminals,
+      sheet,
+      line,
+      ...end,
+    ]);
   });
 }
 

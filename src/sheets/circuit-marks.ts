@@ -23,19 +23,10 @@ export function circuitMarks(sheet: CircuitSheet, appearances: Appearances): Mar
 }
 
 function symbolMarks({ part, symbol, at, turn }: PlacedSymbol): Mark[] {
-  const turned = turnSymbol(symbol, turn);
-  return turned.shapes.map((shape): Mark => {
-    switch (shape.kind) {
-      case "stroke":
-        return { ...shape, part, role: "symbol", path: movePath(shape.path, at) };
-      case "fill":
-        return { ...shape, part, role: "symbol", path: movePath(shape.path, at) };
-      case "text": {
-        // A symbol's text is placed by its middle, a mark by its baseline.
-        const baseline: Point = { x: at.x + shape.at.x, y: at.y + shape.at.y + shape.height / 2 };
-        return { ...shape, part, role: "symbol", at: baseline };
-      }
-    }
+  return turnSymbol(symbol, turn).shapes.map((shape): Mark => {
+    if (shape.kind !== "text") return { ...shape, part, role: "symbol", path: movePath(shape.path, at) };
+    // A symbol's text is placed by its middle, a mark by its baseline.
+    return { ...shape, part, role: "symbol", at: { x: at.x + shape.at.x, y: at.y + shape.at.y + shape.height / 2 } };
   });
 }
 
@@ -43,7 +34,9 @@ function textMarks(text: PlacedText, sheet: CircuitSheet, appearances: Appearanc
   if (isReference(text)) return referenceMarks(text, sheet, appearances);
   const { part, role, at, anchor, height, rotated } = text;
   if (typeof text.text !== "string" || text.text.trim() === "") return [];
-  return [{ kind: "text", role, at, anchor, height, text: text.text, ...(part === undefined ? {} : { part }), ...(rotated ? { rotated } : {}) }];
+  return [
+    { kind: "text", role, at, anchor, height, text: text.text, ...(part === undefined ? {} : { part }), ...(rotated ? { rotated } : {}) },
+  ];
 }
 
 function isReference(text: PlacedText): text is PlacedText & { text: Reference } {

@@ -109,11 +109,13 @@ function partNames({ machine }: Appearances, layout: Layout): Map<PartId, { devi
   for (const sheet of layout.sheets) {
     for (const { part, device } of sheet.symbols) if (device !== undefined) parts.set(part, { device, title: device });
     for (const { part, text } of sheet.texts) {
-      if (part !== undefined && typeof text !== "string" && text.to === "ladder-line") parts.set(part, { device: text.device, title: text.device });
+      if (part !== undefined && typeof text !== "string" && text.to === "ladder-line")
+        parts.set(part, { device: text.device, title: text.device });
     }
   }
   const title = (...words: (string | undefined)[]) => words.filter((word) => word !== undefined && word !== "").join(" – ");
-  for (const component of machine.components.values()) parts.set(component.id, { device: component.name, title: title(component.name, component.text) });
+  for (const component of machine.components.values())
+    parts.set(component.id, { device: component.name, title: title(component.name, component.text) });
   for (const device of machine.devices.values()) {
     for (const contact of device.contacts) {
       parts.set(contact.id, { device: device.name, title: title([device.name, terminalsOf(contact)].join(" ").trim(), device.text) });

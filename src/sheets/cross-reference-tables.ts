@@ -12,9 +12,13 @@ export const tableNotes = [
 /** The cross-reference as tables: every coil and other load with its contacts and its valve, then every switch with what works it. */
 export function crossReferenceTables(rows: readonly CrossReferenceRow[], appearances: Appearances): Table[] {
   const isLoad = (row: CrossReferenceRow) => (appearances.machine.devices.get(row.coil)?.loads.length ?? 0) > 0;
-  return [coilTable(rows.filter(isLoad), appearances), switchTable(rows.filter((row) => !isLoad(row)), appearances)].filter(
-    (table) => table.rows.length > 0,
-  );
+  return [
+    coilTable(rows.filter(isLoad), appearances),
+    switchTable(
+      rows.filter((row) => !isLoad(row)),
+      appearances,
+    ),
+  ].filter((table) => table.rows.length > 0);
 }
 
 function coilTable(rows: CrossReferenceRow[], appearances: Appearances): Table {

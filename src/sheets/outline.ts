@@ -17,14 +17,21 @@ export function outlineOf(appearances: Appearances): DrawingSet["outline"] {
     const home = load?.part ?? component?.part ?? contacts[0]?.part ?? fluid?.part;
     if (home === undefined) return [];
     const uses = contacts.map(({ part, place, contact }) => ({
-      title: [`${contact.form} ${terminalsOf(contact)}`.trim(), `sheet ${place.sheet}`, place.line === undefined ? "" : `line ${place.line}`]
+      title: [
+        `${contact.form} ${terminalsOf(contact)}`.trim(),
+        `sheet ${place.sheet}`,
+        place.line === undefined ? "" : `line ${place.line}`,
+      ]
         .filter((word) => word !== "")
         .join(", "),
       part,
     }));
     if (fluid && fluid.part !== home) {
       const { sheet, zone } = fluid.place;
-      uses.push({ title: [`on sheet ${sheet}`, zone === "" ? "" : `zone ${zone}`].filter((word) => word !== "").join(", "), part: fluid.part });
+      uses.push({
+        title: [`on sheet ${sheet}`, zone === "" ? "" : `zone ${zone}`].filter((word) => word !== "").join(", "),
+        part: fluid.part,
+      });
     }
     return [{ device: name, title, home, uses }];
   });

@@ -8,7 +8,7 @@ import { type Piece, roundabout } from "./references.js";
 /** A table to be set on as many sheets as it needs. */
 export interface Table {
   title: string;
-  columns: { title: string; /** Share of the width. */ share: number }[];
+  columns: { title: string /** Share of the width. */; share: number }[];
   rows: Cell[][];
 }
 
@@ -142,14 +142,30 @@ function closeTable(pen: Pen, widths: Mm[], top: Mm): void {
   let { x } = pen.box;
   for (const width of [0, ...widths]) {
     x += width;
-    pen.draw({ kind: "stroke", role: "table", path: polyline([{ x, y: top }, { x, y: pen.y }]), width: 0.18 });
+    pen.draw({
+      kind: "stroke",
+      role: "table",
+      path: polyline([
+        { x, y: top },
+        { x, y: pen.y },
+      ]),
+      width: 0.18,
+    });
   }
   rule(pen, pen.y, 0.5);
 }
 
 function rule(pen: Pen, y: Mm, width: Mm): void {
   const { x, width: across } = pen.box;
-  pen.draw({ kind: "stroke", role: "table", path: polyline([{ x, y }, { x: x + across, y }]), width });
+  pen.draw({
+    kind: "stroke",
+    role: "table",
+    path: polyline([
+      { x, y },
+      { x: x + across, y },
+    ]),
+    width,
+  });
 }
 
 interface SetRow {
@@ -183,7 +199,9 @@ function cellLines(cell: Cell, room: Mm, step: Mm): CellLine[] {
   const lines: CellLine[] = [];
   for (let from = 0; from < cell.entries.length; from += perLine) {
     lines.push(
-      cell.entries.slice(from, from + perLine).map((entry, index) => ({ ...entry, text: fitText(entry.text, textHeight, room), x: index * step })),
+      cell.entries
+        .slice(from, from + perLine)
+        .map((entry, index) => ({ ...entry, text: fitText(entry.text, textHeight, room), x: index * step })),
     );
   }
   return lines;

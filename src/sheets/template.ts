@@ -117,12 +117,20 @@ function straightPath(data: string, name: string): Segment[] {
   const path: Segment[] = [];
   let at: Point = { x: 0, y: 0 };
   for (const [, op, rest] of data.matchAll(/([A-Za-z])([^A-Za-z]*)/g)) {
-    const numbers = (rest as string).split(/[ ,]+/).filter((part) => part !== "").map(Number);
+    const numbers = (rest as string)
+      .split(/[ ,]+/)
+      .filter((part) => part !== "")
+      .map(Number);
     const [first = 0, second = 0] = numbers;
-    if (op === "Z") path.push({ op });
-    else if (op === "M" || op === "L") path.push({ op, ...(at = { x: first, y: second }) });
-    else if (op === "H" || op === "V") path.push({ op: "L", ...(at = op === "H" ? { x: first, y: at.y } : { x: at.x, y: first }) });
+    if (op === "Z") {
+      path.push({ op });
+      continue;
+    }
+    if (op === "M" || op === "L") at = { x: first, y: second };
+    else if (op === "H") at = { x: first, y: at.y };
+    else if (op === "V") at = { x: at.x, y: first };
     else throw new Error(`Template ${name}: path command ${op} cannot stand in a template.`);
+    path.push({ op: op === "M" ? "M" : "L", ...at });
   }
   return path;
 }

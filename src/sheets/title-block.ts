@@ -39,7 +39,15 @@ export function stripMarks(
   const at = { x: frame.x + frame.width - template.size.width, y: frame.y + frame.height - template.size.height };
   const top = page.notes.y;
   const marks: Mark[] = [
-    { kind: "stroke", role: "form", path: polyline([{ x: frame.x, y: top }, { x: frame.x + frame.width, y: top }]), width: 0.5 },
+    {
+      kind: "stroke",
+      role: "form",
+      path: polyline([
+        { x: frame.x, y: top },
+        { x: frame.x + frame.width, y: top },
+      ]),
+      width: 0.5,
+    },
     ...fillTemplate(template, at, titleFields(drawing, sheet)),
     ...revisionMarks(page.revisions, drawing.revisions),
     ...noteMarks(page.notes, sheet.notes),
@@ -47,7 +55,15 @@ export function stripMarks(
   if (titleBlock.y === top) return marks;
   return [
     ...marks,
-    { kind: "stroke", role: "form", path: polyline([{ x: frame.x, y: titleBlock.y }, { x: frame.x + frame.width, y: titleBlock.y }]), width: 0.5 },
+    {
+      kind: "stroke",
+      role: "form",
+      path: polyline([
+        { x: frame.x, y: titleBlock.y },
+        { x: frame.x + frame.width, y: titleBlock.y },
+      ]),
+      width: 0.5,
+    },
   ];
 }
 
@@ -68,13 +84,37 @@ function revisionMarks(box: Box, revisions: DrawingInfo["revisions"]): Mark[] {
   const right = box.x + box.width;
   for (let row = 0; row < rows; row++) {
     const y = box.y + header + row * rowHeight;
-    marks.push({ kind: "stroke", role: "form", path: polyline([{ x: box.x, y }, { x: right, y }]), width: 0.25 });
+    marks.push({
+      kind: "stroke",
+      role: "form",
+      path: polyline([
+        { x: box.x, y },
+        { x: right, y },
+      ]),
+      width: 0.25,
+    });
   }
   const shown = revisions.slice(-rows);
   let x = box.x;
   for (const column of columns) {
-    if (x > box.x) marks.push({ kind: "stroke", role: "form", path: polyline([{ x, y: box.y }, { x, y: box.y + box.height }]), width: 0.25 });
-    marks.push({ kind: "text", role: "label", at: { x: x + inset, y: box.y + header - 1.6 }, text: column.title, height: 1.8, anchor: "start" });
+    if (x > box.x)
+      marks.push({
+        kind: "stroke",
+        role: "form",
+        path: polyline([
+          { x, y: box.y },
+          { x, y: box.y + box.height },
+        ]),
+        width: 0.25,
+      });
+    marks.push({
+      kind: "text",
+      role: "label",
+      at: { x: x + inset, y: box.y + header - 1.6 },
+      text: column.title,
+      height: 1.8,
+      anchor: "start",
+    });
     for (const [row, revision] of shown.entries()) {
       const room = column.width - 2 * inset;
       const height = measureText(column.value(revision), 2.5) > room ? 1.8 : 2.5;

@@ -8,7 +8,14 @@ describe("arcs as curves", () => {
 
   test("end where the arc ends and stay on one circle", () => {
     fc.assert(
-      fc.property(coordinate, coordinate, coordinate, coordinate, fc.double({ min: 0.5, max: 200, noNaN: true }), fc.boolean(), fc.boolean(),
+      fc.property(
+        coordinate,
+        coordinate,
+        coordinate,
+        coordinate,
+        fc.double({ min: 0.5, max: 200, noNaN: true }),
+        fc.boolean(),
+        fc.boolean(),
         (x1, y1, x, y, radius, large, sweep) => {
           fc.pre(Math.hypot(x - x1, y - y1) > 0.01);
           const curves = arcCurves({ x: x1, y: y1 }, { op: "A", radius, large, sweep, x, y });
@@ -30,7 +37,8 @@ describe("arcs as curves", () => {
           }
           // The turn is more than half a circle exactly when the large arc is asked for.
           if (Math.hypot(x - x1, y - y1) < 1.99 * r) expect(length > Math.PI).toBe(large);
-        }),
+        },
+      ),
     );
   });
 
@@ -44,7 +52,15 @@ describe("arcs as curves", () => {
 test("shapes close and start where they say", () => {
   expect(rectangle({ x: 1, y: 2, width: 3, height: 4 }).at(-1)).toEqual({ op: "Z" });
   expect(circle({ x: 5, y: 5 }, 2)[0]).toEqual({ op: "M", x: 3, y: 5 });
-  expect(polyline([{ x: 0, y: 0 }, { x: 1, y: 1 }])).toEqual([{ op: "M", x: 0, y: 0 }, { op: "L", x: 1, y: 1 }]);
+  expect(
+    polyline([
+      { x: 0, y: 0 },
+      { x: 1, y: 1 },
+    ]),
+  ).toEqual([
+    { op: "M", x: 0, y: 0 },
+    { op: "L", x: 1, y: 1 },
+  ]);
 });
 
 test("the box of a text follows its anchor, and a turned one reads upwards", () => {

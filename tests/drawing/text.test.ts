@@ -28,7 +28,9 @@ describe("the table of widths, held against the font itself by fontkit", () => {
       .filter((code) => code >= 0x20 && !(code >= 0x7f && code < 0xa0))
       .map((code) => String.fromCodePoint(code))
       .filter((character) => printable(character) === character)
-      .filter((character) => Math.abs(measureText(character, 2.5, name === "bold") - widthByFontkit(character, 2.5, name === "bold")) > 1e-9);
+      .filter(
+        (character) => Math.abs(measureText(character, 2.5, name === "bold") - widthByFontkit(character, 2.5, name === "bold")) > 1e-9,
+      );
     expect(wrong).toEqual([]);
   });
 

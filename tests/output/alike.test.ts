@@ -5,7 +5,7 @@ import { describe, expect, test } from "vitest";
 import { writePdf } from "../../src/output/pdf.js";
 import { writeSvg } from "../../src/output/svg.js";
 import { assets } from "../support/assets.js";
-import { chromiumPicture, have, pdfToPicture } from "../support/tools.js";
+import { chromiumPicture, have, haveBrowser, pdfToPicture } from "../support/tools.js";
 import { exampleSet } from "./example.js";
 
 const set = exampleSet();
@@ -15,9 +15,13 @@ const pdf = await writePdf(set, assets);
 const scale = 8;
 
 function resvgPicture(text: string, width: number): PNG {
-  const fontFiles = ["Regular", "SemiBold"].map((face) => new URL(`../../templates/fonts/SourceSans3-${face}.ttf`, import.meta.url).pathname);
+  const fontFiles = ["Regular", "SemiBold"].map(
+    (face) => new URL(`../../templates/fonts/SourceSans3-${face}.ttf`, import.meta.url).pathname,
+  );
   const font = { loadSystemFonts: false, fontFiles, defaultFontFamily: "Source Sans 3" };
-  return PNG.sync.read(Buffer.from(new Resvg(text, { fitTo: { mode: "width", value: width }, font, background: "white" }).render().asPng()));
+  return PNG.sync.read(
+    Buffer.from(new Resvg(text, { fitTo: { mode: "width", value: width }, font, background: "white" }).render().asPng()),
+  );
 }
 
 /** Share of the dark pixels of either picture that have nothing dark within two pixels in the other. */
@@ -29,7 +33,10 @@ function unlike(a: PNG, b: PNG): number {
   };
   let ink = 0;
   let alone = 0;
-  for (const [one, other] of [[a, b], [b, a]] as const) {
+  for (const [one, other] of [
+    [a, b],
+    [b, a],
+  ] as const) {
     for (let y = 0; y < one.height; y++) {
       for (let x = 0; x < one.width; x++) {
         if (!dark(one, x, y)) continue;
@@ -49,9 +56,13 @@ describe.each([0, 1])("sheet of index %i looks the same", (index) => {
   const [width, height] = [sheet.size.width * scale, sheet.size.height * scale];
   const byResvg = resvgPicture(svg[index] as string, width);
 
-  test.skipIf(!have("chromium"))("in resvg and Chromium", () => {
-    expect(unlike(byResvg, chromiumPicture(svg[index] as string, width, height))).toBeLessThan(0.005);
-  }, 60_000);
+  test.skipIf(!haveBrowser())(
+    "in resvg and Chromium",
+    () => {
+      expect(unlike(byResvg, chromiumPicture(svg[index] as string, width, height))).toBeLessThan(0.005);
+    },
+    60_000,
+  );
 
   test.skipIf(!have("pdftoppm"))("as SVG and as PDF", () => {
     expect(unlike(byResvg, pdfToPicture(pdf, index + 1, width, height))).toBeLessThan(0.005);

@@ -17,7 +17,15 @@ function readCsv(text: string): string[][] {
 
 describe("comma-separated values (RFC 4180)", () => {
   test("quotes what must be quoted and ends lines with CRLF", () => {
-    expect(writeCsv(["coil", "text"], [["CR1", 'say "go", twice'], ["CR2", "a\nb"]])).toBe('coil,text\r\nCR1,"say ""go"", twice"\r\nCR2,"a\nb"\r\n');
+    expect(
+      writeCsv(
+        ["coil", "text"],
+        [
+          ["CR1", 'say "go", twice'],
+          ["CR2", "a\nb"],
+        ],
+      ),
+    ).toBe('coil,text\r\nCR1,"say ""go"", twice"\r\nCR2,"a\nb"\r\n');
   });
 
   test("no text can be taken for a formula", () => {

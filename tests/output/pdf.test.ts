@@ -11,7 +11,10 @@ const pdf = await readPdf(bytes);
 describe("a PDF read back by pdfjs", () => {
   test("has a page of true size for each sheet", () => {
     const sizes = pdf.pages.map(({ sizeMm }) => sizeMm.map((length) => Math.round(length * 100) / 100));
-    expect(sizes).toEqual([[150, 105], [105, 150]]);
+    expect(sizes).toEqual([
+      [150, 105],
+      [105, 150],
+    ]);
   });
 
   test("says what it is", () => {
@@ -35,7 +38,8 @@ describe("a PDF read back by pdfjs", () => {
   test("keeps its text", () => {
     // pdfjs gives text back in compatibility form, the micro sign as mu.
     const texts = pdf.pages[0]?.texts;
-    for (const text of ["CR1", "Start <& \"go\"> 'AV' fi", "207", "6 bar upward", "Clamp, größer Ωµ"]) expect(texts).toContain(text.normalize("NFKC"));
+    for (const text of ["CR1", "Start <& \"go\"> 'AV' fi", "207", "6 bar upward", "Clamp, größer Ωµ"])
+      expect(texts).toContain(text.normalize("NFKC"));
   });
 
   test("links coil and contact both ways, and leaves out a link to nothing", () => {
@@ -55,7 +59,8 @@ describe("a PDF read back by pdfjs", () => {
       { title: "Sheet 1 – Control", page: 1, items: [] },
       { title: "Sheet 2 – Outputs", page: 2, items: [] },
       {
-        title: "Devices", page: 1,
+        title: "Devices",
+        page: 1,
         items: [{ title: "CR1 – Running", page: 1, items: [{ title: "NO 13-14, sheet 2, line 201", page: 2, items: [] }] }],
       },
     ]);

@@ -116,7 +116,15 @@ describe("SVG sheets", () => {
 
 describe("parts of it", () => {
   test("numbers have at most three decimals, no exponent and no minus zero", () => {
-    expect([1 / 3, -1e-9, 1e-7, 12, 1.0005, Number.NaN, Number.POSITIVE_INFINITY].map(decimal)).toEqual(["0.333", "0", "0", "12", "1.001", "0", "0"]);
+    expect([1 / 3, -1e-9, 1e-7, 12, 1.0005, Number.NaN, Number.POSITIVE_INFINITY].map(decimal)).toEqual([
+      "0.333",
+      "0",
+      "0",
+      "12",
+      "1.001",
+      "0",
+      "0",
+    ]);
   });
 
   test("different parts have different ids", () => {
@@ -129,7 +137,9 @@ describe("parts of it", () => {
   });
 
   test("paths", () => {
-    expect(pathData([{ op: "M", x: 0, y: 0 }, { op: "A", radius: 4, large: true, sweep: false, x: 8, y: 0 }, { op: "Z" }])).toBe("M0 0A4 4 0 1 0 8 0Z");
+    expect(pathData([{ op: "M", x: 0, y: 0 }, { op: "A", radius: 4, large: true, sweep: false, x: 8, y: 0 }, { op: "Z" }])).toBe(
+      "M0 0A4 4 0 1 0 8 0Z",
+    );
   });
 });
 
@@ -138,7 +148,15 @@ test("thousands of parts are written in time that grows with their number", asyn
     const set = exampleSet();
     const sheet = set.sheets[0] as (typeof set.sheets)[number];
     sheet.marks = Array.from({ length: count }, (_, i) => [
-      { kind: "stroke" as const, part: `p${i}`, path: [{ op: "M" as const, x: i, y: 0 }, { op: "L" as const, x: i, y: 9 }], width: 0.25 },
+      {
+        kind: "stroke" as const,
+        part: `p${i}`,
+        path: [
+          { op: "M" as const, x: i, y: 0 },
+          { op: "L" as const, x: i, y: 9 },
+        ],
+        width: 0.25,
+      },
       { kind: "text" as const, part: `p${i}`, at: { x: i, y: 5 }, text: `CR${i}`, height: 2.5, anchor: "start" as const },
     ]).flat();
     return { ...set, sheets: [sheet] };

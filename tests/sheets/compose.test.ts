@@ -74,7 +74,10 @@ describe("references", () => {
 
   test("a point's line is named where the layout knows it", () => {
     const made = handMade();
-    const places = made.layout.places as Map<string, { sheet: number; line?: number; zone: string; box: { x: number; y: number; width: number; height: number } }>;
+    const places = made.layout.places as Map<
+      string,
+      { sheet: number; line?: number; zone: string; box: { x: number; y: number; width: number; height: number } }
+    >;
     places.set("run 2", { sheet: 2, line: 204, zone: "A1", box: { x: 0, y: 0, width: 1, height: 1 } });
     expect(said(compose(made), 1, "reference")).toContain("run 2/204");
   });
@@ -101,7 +104,9 @@ describe("a coil with many contacts", () => {
   const withContacts = (lines: (number | -1)[][], room = 40) => {
     const made = handMade();
     const row = made.rows[0] as (typeof made.rows)[number];
-    row.contacts = lines.map(([line, closed]): ContactReference => ({ type: closed ? "NC" : "NO", terminals: "13-14", sheet: 1, line: line as number }));
+    row.contacts = lines.map(
+      ([line, closed]): ContactReference => ({ type: closed ? "NC" : "NO", terminals: "13-14", sheet: 1, line: line as number }),
+    );
     reference(made, "contacts").room = room;
     return texts(sheetOf(compose(made), 1).marks, "margin");
   };
@@ -124,7 +129,8 @@ describe("a coil with many contacts", () => {
     expect(right - left).toBeLessThanOrEqual(40.001);
     expect(bottom - top).toBeLessThanOrEqual(9);
     for (const [i, a] of boxes.entries()) {
-      for (const b of boxes.slice(i + 1)) expect(Math.abs(a.y - b.y) > 2.4 || a.x + a.width <= b.x + 0.001 || b.x + b.width <= a.x + 0.001).toBe(true);
+      for (const b of boxes.slice(i + 1))
+        expect(Math.abs(a.y - b.y) > 2.4 || a.x + a.width <= b.x + 0.001 || b.x + b.width <= a.x + 0.001).toBe(true);
     }
     const numbers = margin.flatMap(({ text }) => text.match(/\d+/g) ?? []);
     const all = numbers.length === count;
@@ -178,7 +184,12 @@ describe("sheets", () => {
   const set = compose(handMade());
 
   test("circuit sheets come first, then the cross-reference, numbered through", () => {
-    expect(set.sheets.map(({ number, title }) => [number, title])).toEqual([[1, "Control"], [2, "Outputs"], [3, "Pneumatics"], [4, "Cross-reference"]]);
+    expect(set.sheets.map(({ number, title }) => [number, title])).toEqual([
+      [1, "Control"],
+      [2, "Outputs"],
+      [3, "Pneumatics"],
+      [4, "Cross-reference"],
+    ]);
   });
 
   test("every circuit sheet states the state drawn and the caution, with the notes of its layout", () => {
@@ -229,9 +240,16 @@ describe.each(["A4", "A3", "A1", "ANSI-A", "ANSI-D"] as const)("the cross-refere
   const [relay, , , button] = made.rows as [Made["rows"][number], Made["rows"][number], Made["rows"][number], Made["rows"][number]];
   const rows = [...made.rows];
   for (let i = 0; i < 70; i++) {
-    const contacts = Array.from({ length: i % 17 }, (_, k): ContactReference => ({
-      type: k % 3 ? "NO" : "NC", terminals: `${k + 1}3-${k + 1}4`, sheet: (k % 9) + 1, line: 100 * ((k % 9) + 1) + k, timed: k === 4,
-    }));
+    const contacts = Array.from(
+      { length: i % 17 },
+      (_, k): ContactReference => ({
+        type: k % 3 ? "NO" : "NC",
+        terminals: `${k + 1}3-${k + 1}4`,
+        sheet: (k % 9) + 1,
+        line: 100 * ((k % 9) + 1) + k,
+        timed: k === 4,
+      }),
+    );
     rows.push({ ...(i % 2 ? relay : button), text: "Holds the carriage until both grippers have let go".slice(0, 12 + i), contacts });
   }
   const set = compose({ ...made, rows });

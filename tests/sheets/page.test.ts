@@ -1,9 +1,9 @@
 import { describe, expect, test } from "vitest";
+import type { Mark } from "../../src/drawing/marks.js";
+import { boundsByPart } from "../../src/sheets/bounds.js";
 import { frameMarks } from "../../src/sheets/frame.js";
 import { fieldBorders, pageArea, pageOf, zoneOf } from "../../src/sheets/page.js";
 import { type Paper, papers } from "../../src/sheets/paper.js";
-import { boundsByPart } from "../../src/sheets/bounds.js";
-import type { Mark } from "../../src/drawing/marks.js";
 import { handMade } from "./hand-made.js";
 
 const all = Object.values(papers);
@@ -35,11 +35,14 @@ describe("sheet sizes", () => {
 describe("frames after ISO 5457 (from memory)", () => {
   const iso = all.filter((paper) => paper.standard === "iso");
 
-  test.each(iso.map((paper) => [paper.name, paper] as const))("%s: 20 mm at the filing side, 10 mm elsewhere, drawn 0.7 mm wide", (_, paper) => {
-    const { frame } = pageOf(paper);
-    expect(frame).toEqual({ x: 20, y: 10, width: paper.size.width - 30, height: paper.size.height - 20 });
-    expect(frameMarks(pageOf(paper)).find(({ role }) => role === "frame")).toMatchObject({ width: 0.7 });
-  });
+  test.each(iso.map((paper) => [paper.name, paper] as const))(
+    "%s: 20 mm at the filing side, 10 mm elsewhere, drawn 0.7 mm wide",
+    (_, paper) => {
+      const { frame } = pageOf(paper);
+      expect(frame).toEqual({ x: 20, y: 10, width: paper.size.width - 30, height: paper.size.height - 20 });
+      expect(frameMarks(pageOf(paper)).find(({ role }) => role === "frame")).toMatchObject({ width: 0.7 });
+    },
+  );
 
   test.each([
     ["A0", 24, 16],
@@ -55,7 +58,10 @@ describe("frames after ISO 5457 (from memory)", () => {
   });
 
   test.each(iso.map((paper) => [paper.name, paper] as const))("%s: fields are 50 mm, counted from the centring marks", (_, paper) => {
-    for (const [side, length] of [["across", paper.size.width], ["down", paper.size.height]] as const) {
+    for (const [side, length] of [
+      ["across", paper.size.width],
+      ["down", paper.size.height],
+    ] as const) {
       const borders = fieldBorders(paper, side);
       expect(borders).toContain(length / 2);
       for (let i = 1; i < borders.length; i++) expect((borders[i] as number) - (borders[i - 1] as number)).toBeCloseTo(50, 9);
@@ -73,7 +79,12 @@ describe("frames after ISO 5457 (from memory)", () => {
     const marks = frameMarks(pageOf(papers.A3)).filter(({ role }) => role === "centring");
     expect(marks).toHaveLength(4);
     const ends = marks.map((mark) => (mark.kind === "stroke" ? mark.path[0] : undefined));
-    expect(ends).toMatchObject([{ x: 210, y: 5 }, { x: 210, y: 292 }, { x: 15, y: 148.5 }, { x: 415, y: 148.5 }]);
+    expect(ends).toMatchObject([
+      { x: 210, y: 5 },
+      { x: 210, y: 292 },
+      { x: 15, y: 148.5 },
+      { x: 415, y: 148.5 },
+    ]);
   });
 });
 

@@ -27,7 +27,8 @@ describe("templates", () => {
     const { size, texts } = readTemplate("iso", assets);
     expect(size.width).toBe(180);
     const fields = texts.map(({ field }) => field);
-    for (const field of ["owner", "number", "date", "sheet", "title", "approved-by", "creator", "document-type"]) expect(fields).toContain(field);
+    for (const field of ["owner", "number", "date", "sheet", "title", "approved-by", "creator", "document-type"])
+      expect(fields).toContain(field);
   });
 
   test("every field of every template is one that is filled", () => {
@@ -38,14 +39,19 @@ describe("templates", () => {
   });
 
   test("what cannot stand in a template is named", () => {
-    expect(() => parseTemplate("mine", '<svg viewBox="0 0 9 9"><circle r="2"/></svg>')).toThrow("Template mine: <circle> cannot stand in a template.");
+    expect(() => parseTemplate("mine", '<svg viewBox="0 0 9 9"><circle r="2"/></svg>')).toThrow(
+      "Template mine: <circle> cannot stand in a template.",
+    );
     expect(() => parseTemplate("mine", '<svg viewBox="0 0 9 9"><path d="M0 0Q1 1 2 2"/></svg>')).toThrow("path command Q");
     expect(() => parseTemplate("mine", "<svg viewBox='0 0 9 9'><text>")).toThrow("Template mine");
     expect(() => parseTemplate("mine", "<svg/>")).toThrow("no size");
   });
 
   test("a text is set smaller before it is shortened", () => {
-    const template = parseTemplate("mine", '<svg viewBox="0 0 60 9"><text font-size="7.576" data-field="title" data-width="50" data-smallest="2.5">x</text></svg>');
+    const template = parseTemplate(
+      "mine",
+      '<svg viewBox="0 0 60 9"><text font-size="7.576" data-field="title" data-width="50" data-smallest="2.5">x</text></svg>',
+    );
     const filled = (title: string) => texts(fillTemplate(template, { x: 0, y: 0 }, { title }))[0];
     expect(filled("Tray stamper")).toMatchObject({ text: "Tray stamper", height: 5 });
     expect(filled("Tray stamper, station 2")).toMatchObject({ text: "Tray stamper, station 2", height: 2.5 });
@@ -56,7 +62,10 @@ describe("templates", () => {
   test("lines of a path go where they say", () => {
     const { strokes } = parseTemplate("mine", '<svg viewBox="0 0 9 9"><path d="M1 2H5V6L0 0Z" stroke-width="0.5"/></svg>');
     expect(strokes).toEqual([
-      { width: 0.5, path: [{ op: "M", x: 1, y: 2 }, { op: "L", x: 5, y: 2 }, { op: "L", x: 5, y: 6 }, { op: "L", x: 0, y: 0 }, { op: "Z" }] },
+      {
+        width: 0.5,
+        path: [{ op: "M", x: 1, y: 2 }, { op: "L", x: 5, y: 2 }, { op: "L", x: 5, y: 6 }, { op: "L", x: 0, y: 0 }, { op: "Z" }],
+      },
     ]);
   });
 });
@@ -68,7 +77,16 @@ describe.each(Object.values(papers).map((paper) => [paper.name, paper] as const)
   const template = readTemplate(paper.titleBlock.template, assets);
   const strip = (say: string, revisions: number, notes: string[]) => {
     const drawing = handMade({
-      paper: name, title: say, number: say, owner: say, creator: say, approvedBy: say, department: say, documentType: say, status: say, language: "en",
+      paper: name,
+      title: say,
+      number: say,
+      owner: say,
+      creator: say,
+      approvedBy: say,
+      department: say,
+      documentType: say,
+      status: say,
+      language: "en",
       revisions: Array.from({ length: revisions }, (_, i) => ({ index: String.fromCharCode(65 + i), date: "2026-04-09", text: say })),
     }).machine.drawing;
     return stripMarks(page, template, drawing, { number: 12, title: say, count: 148, notes });

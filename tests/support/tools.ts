@@ -4,15 +4,28 @@ import { tmpdir } from "node:os";
 import { join } from "node:path";
 import { PNG } from "pngjs";
 
-/** Whether a general-purpose program is on this machine. Tests that need one that is not are shown as skipped, by name. */
-export function have(program: string): boolean {
+/** The names under which systems carry the browser. */
+const browsers = ["chromium", "chromium-browser", "google-chrome"];
+
+/** Whether the browser is on this machine. */
+export function haveBrowser(): boolean {
+  return browsers.some((name) => isHere(name)) || have("chromium");
+}
+
+function isHere(program: string): boolean {
   try {
     execFileSync("/bin/sh", ["-c", 'command -v "$1"', "sh", program], { stdio: "pipe" });
     return true;
   } catch {
-    console.warn(`${program} is not installed: the checks against it are skipped.`);
     return false;
   }
+}
+
+/** Whether a general-purpose program is on this machine. Tests that need one that is not are shown as skipped, by name. */
+export function have(program: string): boolean {
+  const here = isHere(program);
+  if (!here) console.warn(`${program} is not installed: the checks against it are skipped.`);
+  return here;
 }
 
 /** Runs something in a folder of its own that is gone afterwards. */
@@ -49,7 +62,9 @@ export function pdfToPicture(pdf: Uint8Array, page: number, width: number, heigh
     const file = join(folder, "it.pdf");
     writeFileSync(file, pdf);
     const size = ["-scale-to-x", `${width}`, "-scale-to-y", `${height}`];
-    execFileSync("pdftoppm", ["-png", "-singlefile", "-f", `${page}`, "-l", `${page}`, ...size, file, join(folder, "page")], { stdio: "pipe" });
+    execFileSync("pdftoppm", ["-png", "-singlefile", "-f", `${page}`, "-l", `${page}`, ...size, file, join(folder, "page")], {
+      stdio: "pipe",
+    });
     return PNG.sync.read(readFileSync(join(folder, "page.png")));
   });
 }
@@ -62,10 +77,17 @@ export function chromiumPicture(svg: string, width: number, height: number): PNG
     writeFileSync(join(folder, "it.html"), page);
     const quiet = ["--disable-quic", "--no-first-run", "--disable-background-networking", "--disable-component-update", "--disable-sync"];
     execFileSync(
-      "chromium",
+      browsers.find(isHere) ?? "chromium",
       [
-        "--headless", "--no-sandbox", "--disable-gpu", ...quiet, "--hide-scrollbars", `--user-data-dir=${join(folder, "profile")}`,
-        `--window-size=${width},${height}`, `--screenshot=${join(folder, "it.png")}`, `file://${join(folder, "it.html")}`,
+        "--headless",
+        "--no-sandbox",
+        "--disable-gpu",
+        ...quiet,
+        "--hide-scrollbars",
+        `--user-data-dir=${join(folder, "profile")}`,
+        `--window-size=${width},${height}`,
+        `--screenshot=${join(folder, "it.png")}`,
+        `file://${join(folder, "it.html")}`,
       ],
       { stdio: "pipe", timeout: 60_000 },
     );
