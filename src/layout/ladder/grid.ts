@@ -45,6 +45,10 @@ export interface PointSite {
   boundary: number;
   /** The part whose place stands for it in references. */
   part: string;
+  /** The wire begins or ends here unless an upright joins it. */
+  open?: "start" | "end";
+  /** The rung was cut here: the arrow stands whatever joins the wire. */
+  cut?: boolean;
 }
 
 /** A rung in its place on the grid. */

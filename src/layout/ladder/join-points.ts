@@ -1,6 +1,6 @@
 import type { NodeId, Rung } from "../../machine/model.js";
 import { boundaryOf, type Link, loadColumn, nodeAt, type PointSite, type RungGrid, returnRail } from "./grid.js";
-import { bearsLoad, placeRung, returnWidth, widthOf } from "./place-parts.js";
+import { bearsLoad, contactWidth, placeRung, returnWidth, widthOf } from "./place-parts.js";
 
 /** A place where a shared point breaks off, to go on elsewhere. */
 export interface Ending {
@@ -32,9 +32,10 @@ interface Open {
  * way from one rung to the next; where it is interrupted, both parts get an ending that names the other. So no wire
  * crosses another.
  * @param barriers indices of rungs that no upright may reach from above: those that begin a sheet
- * @param apart rungs whose start must not be joined from above, because they continue a rung too wide for one line
+ * @param columnsOf how many columns a rung may take before its loads
+ * @param letters points made by cutting a rung: what begins or ends there is not joined by wire
  */
-export function joinPoints(rungs: readonly Rung[], barriers: ReadonlySet<number>, apart: ReadonlySet<Rung>): Joined {
+export function joinPoints(rungs: readonly Rung[], barriers: ReadonlySet<number>, letters: ReadonlySet<string>, columnsOf: (index: number) => number): Joined {
   const lastUse = lastUses(rungs);
   const grids: RungGrid[] = [];
   const links: Link[] = [];
@@ -43,13 +44,16 @@ export function joinPoints(rungs: readonly Rung[], barriers: ReadonlySet<number>
   rungs.forEach((rung, index) => {
     if (barriers.has(index)) open = new Map();
     const meets = (node: NodeId) => open.get(node);
-    const from = rung.start.kind === "point" && !apart.has(rung) ? meets(rung.start.node) : undefined;
+    const cutStart = rung.start.kind === "point" && letters.has(rung.start.point);
+    const cutEnd = rung.end.kind === "point" && letters.has(rung.end.point);
+    const above = rung.start.kind === "point" && !cutStart ? meets(rung.start.node) : undefined;
+    const from = above && above.boundary + contactWidth(rung.path) <= columnsOf(index) ? above : undefined;
     const start = rung.start.kind === "rail" ? 0 : (from?.boundary ?? 1);
     const natural = bearsLoad(rung.path) ? loadColumn + 1 + returnWidth(rung.path) : start + widthOf(rung.path);
-    const to = rung.end.kind === "point" ? meets(rung.end.node) : undefined;
+    const to = rung.end.kind === "point" && !cutEnd ? meets(rung.end.node) : undefined;
     const reached = to !== undefined && to.boundary >= natural && to.boundary > start ? to : undefined;
     const meet = new Map([...open].map(([node, { boundary }]) => [node, boundary]));
-    const grid = placeRung(rung, { start, meet, ...(reached ? { end: reached.boundary } : {}) });
+    const grid = placeRung(rung, { start, meet, cutStart, cutEnd, ...(reached ? { end: reached.boundary } : {}) });
     grids.push(grid);
     joinWithin(grid);
 
@@ -158,67 +162,63 @@ function joinWithin(grid: RungGrid): void {
   }
 }
 
-/** One connected part of a point's wire. */
+/** One connected part of a point's wire within a rung; joined by links, several become one. */
 interface Island {
   sites: { rung: number; site: PointSite }[];
+  within?: Island;
 }
 
 /** An ending for every part of every point that is drawn in more than one part, and for every rung that starts or ends in the open. */
 function findEndings(grids: readonly RungGrid[], links: readonly Link[]): Ending[] {
-  const islands = new Map<NodeId, Island[]>();
-  const of = new Map<string, Island>();
-  grids.forEach((grid, rung) => {
-    for (const site of grid.sites) {
-      const parts = partsOf(grid, site.node);
-      const part = parts.findIndex((pieces) => pieces.some((piece) => holds(piece, site)));
-      const key = `${rung} ${site.node} ${part < 0 ? `at ${site.line} ${site.boundary}` : part}`;
-      let island = of.get(key);
-      if (!island) {
-        island = { sites: [] };
-        of.set(key, island);
-        islands.set(site.node, [...(islands.get(site.node) ?? []), island]);
-      }
-      island.sites.push({ rung, site });
+  const byNode = new Map<NodeId, Island[]>();
+  const byPart = new Map<string, Island>();
+  const partsOfRung = new Map<string, Piece[][]>();
+  const islandAt = (rung: number, node: NodeId, line: number, boundary: number): Island => {
+    const parts = partsOfRung.get(`${rung} ${node}`) ?? partsOf(grids[rung] as RungGrid, node);
+    partsOfRung.set(`${rung} ${node}`, parts);
+    const part = parts.findIndex((pieces) => pieces.some((piece) => holds(piece, { line, boundary })));
+    const key = `${rung} ${node} ${part < 0 ? `at ${line} ${boundary}` : part}`;
+    let island = byPart.get(key);
+    if (!island) {
+      island = { sites: [] };
+      byPart.set(key, island);
+      const list = byNode.get(node);
+      if (list) list.push(island);
+      else byNode.set(node, [island]);
     }
-  });
-  const linked = (node: NodeId, rung: number, line: number, boundary: number) => {
-    const grid = grids[rung] as RungGrid;
-    const part = partsOf(grid, node).findIndex((pieces) => pieces.some((piece) => holds(piece, { line, boundary })));
-    return of.get(`${rung} ${node} ${part < 0 ? `at ${line} ${boundary}` : part}`);
+    while (island.within) island = island.within;
+    return island;
   };
-  for (const link of links) {
-    const upper = linked(link.node, link.from.rung, link.from.line, link.boundary);
-    const lower = linked(link.node, link.to.rung, link.to.line, link.boundary);
-    if (!upper || !lower || upper === lower) continue;
+  grids.forEach((grid, rung) => {
+    for (const site of grid.sites) islandAt(rung, site.node, site.line, site.boundary).sites.push({ rung, site });
+  });
+  for (const { node, boundary, from, to } of links) {
+    const upper = islandAt(from.rung, node, from.line, boundary);
+    const lower = islandAt(to.rung, node, to.line, boundary);
+    if (upper === lower) continue;
     upper.sites.push(...lower.sites);
-    for (const [key, island] of of) if (island === lower) of.set(key, upper);
-    islands.set(link.node, (islands.get(link.node) ?? []).filter((island) => island !== lower));
+    lower.within = upper;
   }
+  const islands = new Map([...byNode].map(([node, list]) => [node, list.filter(({ within, sites }) => !within && sites.length > 0)]));
+  const arrives = new Set(links.map(({ node, boundary, to }) => `${to.rung} ${node} ${boundary}`));
+  const leaves = new Set(links.map(({ node, boundary, from }) => `${from.rung} ${node} ${boundary}`));
+  const isOpen = (rung: number, { node, boundary, open, cut }: PointSite) => {
+    const key = `${rung} ${node} ${boundary}`;
+    return open !== undefined && (cut === true || !(arrives.has(key) || (open === "end" && leaves.has(key))));
+  };
   const endings: Ending[] = [];
   for (const [node, parts] of islands) {
     for (const { sites } of parts) {
-      const openStart = sites.find(({ rung, site }) => (grids[rung] as RungGrid).rung.start.kind === "point" && isStart(grids[rung] as RungGrid, site) && !joined(links, rung, node, site));
-      const openEnd = sites.find(({ rung, site }) => isEnd(grids[rung] as RungGrid, site) && !joined(links, rung, node, site));
-      const point = (sites[0] as Island["sites"][number]).site.point;
-      if (openStart) endings.push({ rung: openStart.rung, node, point, line: 0, kind: "start", boundary: openStart.site.boundary });
-      if (openEnd) endings.push({ rung: openEnd.rung, node, point, line: 0, kind: "end", boundary: openEnd.site.boundary });
-      if (openStart || openEnd || parts.length < 2) continue;
+      const open = sites.filter(({ rung, site }) => isOpen(rung, site));
+      for (const { rung, site } of open) endings.push({ rung, node, point: site.point, line: site.line, kind: site.open as "start" | "end", boundary: site.boundary });
+      if (open.length > 0 || parts.length < 2) continue;
       // The lowest place, because no upright goes on down from there.
       const lowest = sites.reduce((low, next) => (next.rung > low.rung ? next : low));
       const line = bottomOfPart(grids[lowest.rung] as RungGrid, node, lowest.site);
-      endings.push({ rung: lowest.rung, node, point, line, kind: "drop", boundary: lowest.site.boundary });
+      endings.push({ rung: lowest.rung, node, point: lowest.site.point, line, kind: "drop", boundary: lowest.site.boundary });
     }
   }
   return endings.sort((a, b) => a.rung - b.rung || a.line - b.line || a.boundary - b.boundary);
-}
-
-const isStart = (grid: RungGrid, site: PointSite) => site.part === grid.rung.id && site.line === 0 && site.boundary === grid.start && grid.rung.start.kind === "point" && grid.rung.start.node === site.node;
-const isEnd = (grid: RungGrid, site: PointSite) => site.part === grid.rung.id && site.line === 0 && site.boundary === grid.end && grid.rung.end.kind === "point" && grid.rung.end.node === site.node;
-
-function joined(links: readonly Link[], rung: number, node: NodeId, site: PointSite): boolean {
-  return links.some(
-    (link) => link.node === node && link.boundary === site.boundary && (link.to.rung === rung || link.from.rung === rung),
-  );
 }
 
 interface Piece {

@@ -6,10 +6,9 @@ import type { Symbol } from "../../symbols/symbol.js";
 import type { CircuitSheet, PageArea, Place, PlacedText } from "../placement.js";
 import { breakSheets, type RungSheet } from "./break-sheets.js";
 import { drawSheet } from "./draw-sheet.js";
-import { joinPoints } from "./join-points.js";
-import { measureRungs } from "./measure-rungs.js";
+import { columnPitch, fitRungs, linePitch } from "./fit-rungs.js";
+import type { Link } from "./grid.js";
 import { northAmerican } from "./north-american.js";
-import { contactWidth, returnWidth } from "./place-parts.js";
 import { setColumns } from "./set-columns.js";
 
 /** The numbers a ladder's first sheet and first line get. */
@@ -35,26 +34,26 @@ export function layOutLadder(circuit: LadderCircuit, machine: Machine, symbolOf:
   const rails = railNodes(circuit, machine);
   const rungs = circuit.rungs.map((rung) => onRails(rung, rails));
   if (rungs.length === 0) return { sheets: [], places: [], nextLine: numbering.line };
-  const room = shareWidth(page.area.width, rungs);
-  const arrangement = northAmerican({ machine, symbolOf, margin: room.margin, scale: room.scale });
-
-  // 1. Every part has a column and a line on the grid; shared points are joined or end in a reference.
-  const joined = joinPoints(rungs, new Set(circuit.sheetBreaks.map(({ before }) => before)), new Set());
-  // 2. Every text is measured; every line knows the room it needs.
-  const measured = measureRungs(joined, new Set(rails), arrangement);
-  // 3. Every rung is whole on one sheet; line numbers are known.
+  const room = shareWidth(page.area.width);
   const depth = page.area.height - headRoom - footRoom;
-  const broken = breakSheets(measured, circuit.sheetBreaks, depth, { least: 15 * room.scale, step: 1.25 });
+  const offer = { ...room, depth };
+
+  // 1. Every part has a column and a line on the grid, shared points are joined or end in a reference, every text is
+  //    measured, and no rung needs more than a sheet offers.
+  const { joined, measured, arrangement, scale, breaks } = fitRungs(circuit, rungs, rails, offer, (scale) => northAmerican({ machine, symbolOf, margin: room.margin, scale }));
+  // 2. Every rung is whole on one sheet; line numbers are known.
+  const broken = breakSheets(measured, breaks, { depth, span: room.span, columns: columnPitch(scale) }, linePitch(scale), arrangement);
   const firstLines = numberLines(broken, machine, numbering);
-  // 4. Every sheet is set down in millimetres.
+  // 3. Every sheet is set down in millimetres.
   const places: [PartId, Place][] = [];
+  const linksOf = shareLinks(joined.links, broken);
   const sheets = broken.map((sheet, index) => {
     const number = numbering.sheet + index;
-    const columns = setColumns(sheet.rungs.map(({ rung }) => rung), room.span, { usual: 30 * room.scale, widest: 38 * room.scale, gap: 8 * room.scale }, arrangement);
+    const columns = setColumns(sheet.needs, room.span, columnPitch(scale));
     const origin = { x: page.area.x + lineNumberRoom, y: page.area.y + headRoom };
     const railFrom = -headRoom + railHead;
     const railTo = sheet.depth + footRoom - railFoot;
-    const links = joined.links.filter(({ from, to }) => [from.rung, to.rung].some((rung) => rung >= sheet.first && rung < sheet.first + sheet.rungs.length));
+    const links = linksOf[index] ?? [];
     const drawn = drawSheet({
       circuit, sheet, number, title: sheet.title ?? circuit.title, columns, arrangement, rails, origin, railFrom, railTo,
       firstLine: firstLines[index] as number, links, zoneOf: (point) => page.zoneOf(point),
@@ -82,13 +81,11 @@ const railFoot: Mm = 1;
 /** The widest ladder from rail to rail that still reads well, mm. */
 const widestSpan: Mm = 310;
 
-/** Shares the width of a sheet between line numbers, rungs, references and function texts, and chooses the symbols' module. */
-function shareWidth(width: Mm, rungs: readonly Rung[]) {
+/** Shares the width of a sheet between line numbers, rungs, references and function texts. */
+function shareWidth(width: Mm) {
   const margin = { references: clamp(width * 0.065, 15, 26), words: clamp(width * 0.125, 24, 60) };
   const span = Math.min(width - lineNumberRoom - margin.references - margin.words - 8, widestSpan);
-  const columns = Math.max(...rungs.map(({ path, start }) => contactWidth(path) + (start.kind === "point" ? 1 : 0))) + 1 + Math.max(...rungs.map(({ path }) => returnWidth(path)));
-  const scale = columns * 30 <= span ? 1 : 0.72;
-  return { margin, span, scale };
+  return { margin, span };
 }
 
 const clamp = (value: number, least: number, most: number) => Math.min(Math.max(value, least), most);
@@ -102,6 +99,18 @@ function onRails(rung: Rung, [live, back]: [NodeId, NodeId]): Rung {
   const start: Rung["start"] = rung.start.node === live ? { kind: "rail", node: live } : rung.start;
   const end: Rung["end"] = rung.end.node === back ? { kind: "rail", node: back } : rung.end;
   return { ...rung, start, end };
+}
+
+/** The links that begin, end or both on each sheet. */
+function shareLinks(links: readonly Link[], sheets: readonly RungSheet[]): Link[][] {
+  const sheetOf = sheets.flatMap(({ rungs }, index) => rungs.map(() => index));
+  const shared: Link[][] = sheets.map(() => []);
+  for (const link of links) {
+    const [from, to] = [sheetOf[link.from.rung] as number, sheetOf[link.to.rung] as number];
+    shared[from]?.push(link);
+    if (to !== from) shared[to]?.push(link);
+  }
+  return shared;
 }
 
 /** The number of the first line of each sheet. */

@@ -27,7 +27,7 @@ export interface MeasuredRung {
 export const endingSize = { lead: 3.5, head: 2.5, half: 1.25, gap: 0.9, drop: 3 } as const;
 
 /** Height of a wire number with its distance from the wire, mm. */
-export const numberRise = { gap: 0.8, height: 2.5 } as const;
+export const numberRise = { gap: 1.1, height: 2.5 } as const;
 
 /** Dresses every part, chooses where each wire carries its number, and says how much room every line needs. */
 export function measureRungs({ grids, links, endings }: Joined, rails: ReadonlySet<NodeId>, arrangement: Arrangement): MeasuredRung[] {

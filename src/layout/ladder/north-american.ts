@@ -4,6 +4,7 @@ import type { ContactUse, Device, LoadUse, Machine } from "../../machine/model.j
 import type { Symbol } from "../../symbols/symbol.js";
 import type { PlacedText, Reference, ReferenceTo } from "../placement.js";
 import type { Arrangement, Block, Dressed, MarginEntry } from "./arrangement.js";
+import { numberRise } from "./measure-rungs.js";
 import { scaleSymbol } from "./scale-symbol.js";
 import { around, roomOf } from "./text-box.js";
 
@@ -50,7 +51,7 @@ function dress(use: ContactUse | LoadUse, machine: Machine, symbol: Symbol, scal
   const reach = (right.x - left.x) / 2;
   const box = { ...symbol.box, x: symbol.box.x + shift.x, y: symbol.box.y + shift.y };
   // A bare coil or contact has its designation as high as most others on the line.
-  const top = Math.min(box.y, -3.75 * scale) - clearance;
+  const top = Math.min(box.y, -3.75 * scale, -numberRise.gap - numberRise.height) - clearance;
   const bottom = Math.max(box.y + box.height, 3.75 * scale) + clearance;
   const texts: PlacedText[] = [];
 

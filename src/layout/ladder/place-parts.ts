@@ -1,13 +1,25 @@
 import type { NodeId, ParallelPath, Rung, RungElement, SeriesPath } from "../../machine/model.js";
-import { type Cell, loadColumn, type RungGrid, returnRail, type Stop } from "./grid.js";
+import { type Cell, loadColumn, type PointSite, type RungGrid, returnRail, type Stop } from "./grid.js";
 
-type Item = ParallelPath | RungElement;
+/** A stretch that is drawn on lines of its own elsewhere: an arrow out and an arrow back in, each with its letter. */
+export interface Gap {
+  kind: "gap";
+  points: [string, string];
+  from: NodeId;
+  to: NodeId;
+  rung: string;
+}
+
+export type Item = ParallelPath | RungElement | Gap;
 
 /** Where a rung begins and, if a shared point fixes it, ends; and boundaries its points should meet if they can. */
 export interface RungEnds {
   start: number;
   end?: number;
   meet: ReadonlyMap<NodeId, number>;
+  /** It is a piece of a rung that was cut there. */
+  cutStart?: boolean;
+  cutEnd?: boolean;
 }
 
 /**
@@ -18,12 +30,12 @@ export interface RungEnds {
 export function placeRung(rung: Rung, ends: RungEnds): RungGrid {
   const grid: RungGrid = { rung, lines: 1, start: ends.start, end: ends.start, cells: [], runs: [], uprights: [], sites: [] };
   const path = rung.path;
-  const main = new Set<Item>(path.items);
+  const main = new Set<Item>(path.items as Item[]);
   const natural = bearsLoad(path) ? loadColumn + 1 + returnWidth(path) : ends.start + widthOf(path);
   grid.end = rung.end.kind === "rail" ? returnRail : (ends.end ?? natural);
   grid.lines = placeSeries(path, 0, ends.start, grid.end);
-  if (rung.start.kind === "point") note(rung.start.point, rung.start.node, 0, ends.start, rung.id);
-  if (rung.end.kind === "point") note(rung.end.point, rung.end.node, 0, grid.end, rung.id);
+  if (rung.start.kind === "point") note(rung.start.point, rung.start.node, 0, ends.start, rung.id, "start", ends.cutStart);
+  if (rung.end.kind === "point") note(rung.end.point, rung.end.node, 0, grid.end, rung.id, "end", ends.cutEnd);
   return grid;
 
   /** Places a path from boundary to boundary and says how many lines it took. */
@@ -56,7 +68,7 @@ export function placeRung(rung: Rung, ends: RungEnds): RungGrid {
   }
 
   /** Places items one behind the other; a parallel that nothing follows is stretched to `to`. */
-  function advance(items: Item[], line: number, stop: Stop, boundary: number, to: number | undefined) {
+  function advance(items: readonly Item[], line: number, stop: Stop, boundary: number, to: number | undefined) {
     let lines = 1;
     let lastPart = items.length - 1;
     while (lastPart >= 0 && items[lastPart]?.kind === "point") lastPart--;
@@ -66,6 +78,12 @@ export function placeRung(rung: Rung, ends: RungEnds): RungGrid {
         const meet = main.has(item) ? ends.meet.get(item.from) : undefined;
         if (meet !== undefined && meet > boundary && meet < loadColumn) boundary = meet;
         note(item.point, item.from, line, boundary, item.id);
+      } else if (item.kind === "gap") {
+        run(line, stop, { boundary }, item.from);
+        note(item.points[0], item.from, line, boundary, item.rung, "end", true);
+        boundary += 2;
+        note(item.points[1], item.to, line, boundary, item.rung, "start", true);
+        stop = { boundary };
       } else if (item.kind === "parallel") {
         const join = index === lastPart && to !== undefined ? to : boundary + widthOfItem(item);
         run(line, stop, { boundary }, item.from);
@@ -105,8 +123,8 @@ export function placeRung(rung: Rung, ends: RungEnds): RungGrid {
     grid.runs.push({ line, from, to, node });
   }
 
-  function note(point: string, node: NodeId, line: number, boundary: number, part: string) {
-    grid.sites.push({ node, point, line, boundary, part });
+  function note(point: string, node: NodeId, line: number, boundary: number, part: string, open?: PointSite["open"], cut = false) {
+    grid.sites.push({ node, point, line, boundary, part, ...(open ? { open } : {}), ...(cut ? { cut } : {}) });
   }
 }
 
@@ -115,8 +133,9 @@ export function widthOf(series: SeriesPath): number {
   return series.items.reduce((sum, item) => sum + widthOfItem(item), 0);
 }
 
-function widthOfItem(item: Item): number {
+export function widthOfItem(item: Item): number {
   if (item.kind === "point") return 0;
+  if (item.kind === "gap") return 2;
   return item.kind === "parallel" ? Math.max(1, ...item.branches.map(widthOf)) : 1;
 }
 
@@ -136,6 +155,11 @@ export function returnWidth(series: SeriesPath): number {
   const load = series.items[at] as Item;
   const inside = load.kind === "parallel" ? Math.max(0, ...load.branches.map(returnWidth)) : 0;
   return inside + series.items.slice(at + 1).reduce((sum, item) => sum + widthOfItem(item), 0);
+}
+
+/** How many lines a path takes. */
+export function heightOf(series: SeriesPath): number {
+  return Math.max(1, ...series.items.map((item) => (item.kind === "parallel" ? item.branches.reduce((sum, branch) => sum + heightOf(branch), 0) : 1)));
 }
 
 export function bearsLoad(series: SeriesPath): boolean {

@@ -11,8 +11,6 @@ export interface Columns {
   middle(column: number): Mm;
   /** From rail to rail. */
   span: Mm;
-  /** What the content needs at the least; more than the span offered means it has no room. */
-  needed: Mm;
 }
 
 /** Distances along, mm: the usual column, the widest it is stretched to, and the least gap between pins of neighbours. */
@@ -22,63 +20,101 @@ export interface ColumnPitch {
   gap: Mm;
 }
 
+/** What rungs ask of the columns they share: half widths of parts and of texts, gaps between, and stretches from boundary to boundary. */
+export interface ColumnNeeds {
+  bodies: Map<number, Mm>;
+  labels: Map<number, Mm>;
+  gaps: Map<number, Mm>;
+  spans: Map<number, Mm>;
+  drops: Set<number>;
+  contacts: number;
+  returns: number;
+}
+
+export function noNeeds(): ColumnNeeds {
+  return { bodies: new Map(), labels: new Map(), gaps: new Map(), spans: new Map(), drops: new Set(), contacts: 0, returns: 1 };
+}
+
+/** The needs of a rung beside those of others. */
+export function withNeeds(others: ColumnNeeds, { grid, dressed, numbers, endings }: MeasuredRung, arrangement: Arrangement): ColumnNeeds {
+  const needs: ColumnNeeds = {
+    ...others,
+    bodies: new Map(others.bodies),
+    labels: new Map(others.labels),
+    gaps: new Map(others.gaps),
+    spans: new Map(others.spans),
+    drops: new Set(others.drops),
+  };
+  const widen = (map: Map<number, Mm>, key: number, by: Mm) => map.set(key, Math.max(map.get(key) ?? 0, by));
+  const reach = (boundary: number) => {
+    if (boundary < loadColumn) needs.contacts = Math.max(needs.contacts, boundary);
+    else if (boundary < returnRail) needs.returns = Math.max(needs.returns, boundary - loadColumn);
+  };
+  for (const [cell, { reach: half, label }] of dressed) {
+    widen(needs.bodies, cell.column, half);
+    widen(needs.labels, cell.column, label);
+    reach(cell.column + 1);
+  }
+  for (const run of grid.runs) for (const stop of [run.from, run.to]) reach(boundaryOf(stop));
+  for (const { node, boundary, beside } of numbers) {
+    const { room } = arrangement.wireNumber(node);
+    if (room > 0) widen(needs.gaps, boundary, beside ? 2 * (room + 1.8) : room + 2);
+  }
+  for (const { kind, boundary, point } of endings) {
+    const room = arrangement.endingRoom(point);
+    const along = endingSize.lead + endingSize.head + endingSize.gap + room + 1.5;
+    if (kind === "start") widen(needs.spans, boundary - 1, along);
+    else if (kind === "end") {
+      widen(needs.spans, boundary, along);
+      reach(boundary + 1);
+    } else {
+      widen(needs.gaps, boundary, room + 1.5);
+      needs.drops.add(boundary);
+    }
+  }
+  return needs;
+}
+
+/** The least widths of columns that meet the needs. */
+function leastColumns({ bodies, labels, gaps, spans, drops, contacts, returns }: ColumnNeeds, pitch: ColumnPitch) {
+  const gap = (boundary: number) => Math.max(gaps.get(boundary) ?? 0, pitch.gap);
+  const half = (column: number) => {
+    const body = bodies.get(column) ?? pitch.usual / 2 - pitch.gap / 2;
+    // Texts may reach into the gaps, up to the uprights that may run there.
+    const overhang = Math.min(...[column, column + 1].map((side) => (drops.has(side) ? 0 : gap(side) / 2)));
+    return Math.max(body, (labels.get(column) ?? 0) + 0.8 - overhang);
+  };
+  const advance = (column: number) => Math.max((gap(column) + gap(column + 1)) / 2 + 2 * half(column), spans.get(column) ?? 0);
+  return {
+    gap,
+    contactColumns: Array.from({ length: contacts }, (_, c) => advance(c)),
+    loads: Array.from({ length: returns }, (_, c) => advance(loadColumn + c)),
+  };
+}
+
+const sum = (list: readonly Mm[]) => list.reduce((total, width) => total + width, 0);
+
+/** From rail to rail at the least. */
+export function leastSpan(needs: ColumnNeeds, pitch: ColumnPitch): Mm {
+  const { contactColumns, loads } = leastColumns(needs, pitch);
+  return sum(contactColumns) + sum(loads);
+}
+
 /**
  * Sets the columns of one sheet: each wide enough for its widest part and every gap for its wire number. Contacts keep an
  * even pitch from the live rail, stretched a little where there is room to spare; loads stand against the return rail and
  * their wires run straight between.
  */
-export function setColumns(rungs: readonly MeasuredRung[], span: Mm, pitch: ColumnPitch, arrangement: Arrangement): Columns {
-  const bodies = new Map<number, Mm>();
-  const labels = new Map<number, Mm>();
-  const gaps = new Map<number, Mm>();
-  const spans = new Map<number, Mm>();
-  const widen = (map: Map<number, Mm>, key: number, by: Mm) => map.set(key, Math.max(map.get(key) ?? 0, by));
-  let contacts = 0;
-  let returns = 0;
-  const reach = (boundary: number) => {
-    if (boundary < loadColumn) contacts = Math.max(contacts, boundary);
-    else if (boundary < returnRail) returns = Math.max(returns, boundary - loadColumn);
-  };
-  for (const { grid, dressed, numbers, endings } of rungs) {
-    for (const [cell, { reach: half, label }] of dressed) {
-      widen(bodies, cell.column, half);
-      widen(labels, cell.column, label);
-      reach(cell.column + 1);
-    }
-    for (const run of grid.runs) for (const stop of [run.from, run.to]) reach(boundaryOf(stop));
-    for (const { node, boundary, beside } of numbers) {
-      const { room } = arrangement.wireNumber(node);
-      if (room > 0) widen(gaps, boundary, beside ? 2 * (room + 1.8) : room + 2);
-    }
-    for (const { kind, boundary, point } of endings) {
-      const room = arrangement.endingRoom(point);
-      const along = endingSize.lead + endingSize.head + endingSize.gap + room + 1.5;
-      if (kind === "start") widen(spans, boundary - 1, along);
-      else if (kind === "end") {
-        widen(spans, boundary, along);
-        reach(boundary + 1);
-      } else widen(gaps, boundary, room + 1.5);
-    }
-  }
-  const gap = (boundary: number) => Math.max(gaps.get(boundary) ?? 0, pitch.gap);
-  const half = (column: number) => {
-    const body = bodies.get(column) ?? pitch.usual / 2 - pitch.gap / 2;
-    return Math.max(body, (labels.get(column) ?? 0) + 0.8 - Math.min(gap(column), gap(column + 1)) / 2);
-  };
-  const advance = (column: number) => Math.max((gap(column) + gap(column + 1)) / 2 + 2 * half(column), spans.get(column) ?? 0);
-
-  const contactColumns = Array.from({ length: contacts }, (_, c) => advance(c));
-  const loads = Array.from({ length: Math.max(returns, 1) }, (_, c) => advance(loadColumn + c));
-  const sum = (list: readonly Mm[]) => list.reduce((total, width) => total + width, 0);
+export function setColumns(needs: ColumnNeeds, span: Mm, pitch: ColumnPitch): Columns {
+  const { gap, contactColumns, loads } = leastColumns(needs, pitch);
   const behind = sum(loads);
-  const needed = sum(contactColumns) + behind;
-  const length = Math.max(span, needed);
+  const length = Math.max(span, sum(contactColumns) + behind);
   // Even pitch first, then a share of what is left over.
   const evened = contactColumns.map((width) => Math.max(width, pitch.usual));
   const fits = sum(evened) + behind <= length;
   const base = fits ? evened : contactColumns;
   const spare = length - sum(base) - behind;
-  const stretch = contacts > 0 && fits ? Math.min(spare / (contacts + 1), pitch.widest - pitch.usual) : 0;
+  const stretch = contactColumns.length > 0 && fits ? Math.min(spare / (contactColumns.length + 1), pitch.widest - pitch.usual) : 0;
   const widths = base.map((width) => (width >= pitch.widest ? width : Math.min(width + Math.max(0, stretch), pitch.widest)));
   const at: Mm[] = [0];
   for (const width of widths) at.push((at.at(-1) as Mm) + width);
@@ -95,6 +131,5 @@ export function setColumns(rungs: readonly MeasuredRung[], span: Mm, pitch: Colu
       return (from + to) / 2;
     },
     span: length,
-    needed,
   };
 }

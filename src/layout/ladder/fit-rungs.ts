@@ -1,0 +1,91 @@
+import type { Mm } from "../../drawing/geometry.js";
+import type { LadderCircuit, NodeId, Rung } from "../../machine/model.js";
+import type { Arrangement } from "./arrangement.js";
+import { type LinePitch, stack } from "./break-sheets.js";
+import { foldRungs, type RungLimits } from "./fold-rungs.js";
+import { boundaryOf, loadColumn, type RungGrid } from "./grid.js";
+import { type Joined, joinPoints } from "./join-points.js";
+import { type MeasuredRung, measureRungs } from "./measure-rungs.js";
+import { type ColumnPitch, leastSpan, noNeeds, withNeeds } from "./set-columns.js";
+
+/** Rungs of which none is wider or taller than a sheet. */
+export interface FittedRungs {
+  joined: Joined;
+  measured: MeasuredRung[];
+  arrangement: Arrangement;
+  /** The symbols' module, 1 for 2.5 mm. */
+  scale: number;
+  /** The author's sheet breaks, before the rungs as they are now. */
+  breaks: { before: number; title?: string }[];
+}
+
+/** The smaller module of the series, 1.8 mm to 2.5 mm (ISO 81714-1, from memory). */
+const smallModule = 0.72;
+
+export const columnPitch = (scale: number): ColumnPitch => ({ usual: 30 * scale, widest: 38 * scale, gap: 8 * scale });
+export const linePitch = (scale: number): LinePitch => ({ least: scale === 1 ? 15 : 12.5, step: 1.25 });
+
+/** More than anybody draws; each round cuts what was still too large. */
+const rounds = 6;
+
+/**
+ * Places and measures the rungs. Where one is wider than the sheet the symbols take the smaller module; where that is not
+ * enough, or a rung is taller than a sheet, it is cut and goes on with a letter.
+ */
+export function fitRungs(
+  circuit: LadderCircuit,
+  rungs: readonly Rung[],
+  rails: readonly NodeId[],
+  offer: { span: Mm; depth: Mm },
+  arrange: (scale: number) => Arrangement,
+): FittedRungs {
+  const taken = new Set(rungs.flatMap(pointsOf));
+  const limits = new Map<number, RungLimits>();
+  const limitsOf = (index: number): RungLimits => limits.get(index) ?? { columns: Number.POSITIVE_INFINITY, lines: Number.POSITIVE_INFINITY };
+  let scale = 1;
+  for (let round = 1; ; round++) {
+    const arrangement = arrange(scale);
+    const { rungs: folded, origin, letters } = foldRungs(rungs, limitsOf, taken);
+    const breaks = circuit.sheetBreaks.map(({ before, title }) => {
+      const at = origin.findIndex((index) => index >= before);
+      return { before: at < 0 ? folded.length : at, ...(title === undefined ? {} : { title }) };
+    });
+    const joined = joinPoints(folded, new Set(breaks.map(({ before }) => before)), letters, (index) => limitsOf(origin[index] as number).columns);
+    const measured = measureRungs(joined, new Set(rails), arrangement);
+    const fitted = { joined, measured, arrangement, scale, breaks };
+    const next = new Map(limits);
+    let wide = false;
+    let tall = false;
+    measured.forEach((rung, index) => {
+      const of = origin[index] as number;
+      const known = next.get(of) ?? limitsOf(of);
+      const along = leastSpan(withNeeds(noNeeds(), rung, arrangement), columnPitch(scale));
+      if (along > offer.span) {
+        wide = true;
+        const columns = columnsOf(rung.grid);
+        next.set(of, { ...known, columns: Math.max(4, Math.min(known.columns, columns - 1, Math.floor((columns * offer.span) / along))) });
+      }
+      const across = stack(rung, 0, 0, linePitch(scale)).depth;
+      if (across > offer.depth) {
+        tall = true;
+        const { lines } = rung.grid;
+        next.set(of, { ...known, ...next.get(of), lines: Math.max(1, Math.min(known.lines, lines - 1, Math.floor((lines * offer.depth) / across))) });
+      }
+    });
+    if ((!wide && !tall) || round === rounds) return fitted;
+    if (wide && scale === 1) scale = smallModule;
+    else for (const [index, limit] of next) limits.set(index, limit);
+  }
+}
+
+/** How many columns before its loads a rung takes. */
+function columnsOf(grid: RungGrid): number {
+  const boundaries = [...grid.cells.map(({ column }) => column + 1), ...grid.runs.flatMap(({ from, to }) => [boundaryOf(from), boundaryOf(to)])];
+  return Math.max(0, ...boundaries.filter((boundary) => boundary < loadColumn));
+}
+
+function pointsOf(rung: Rung): string[] {
+  const inside = (path: Rung["path"]): string[] =>
+    path.items.flatMap((item) => (item.kind === "point" ? [item.point] : item.kind === "parallel" ? item.branches.flatMap(inside) : []));
+  return [...[rung.start, rung.end].flatMap((end) => (end.kind === "point" ? [end.point] : [])), ...inside(rung.path)];
+}

@@ -1,0 +1,35 @@
+import type { StartState } from "../behaviour/start-state.js";
+import type { PartId } from "../drawing/marks.js";
+import type { DrawingInfo, Machine } from "../machine/model.js";
+import { symbolForDevice } from "../symbols/choose.js";
+import type { SymbolLibrary } from "../symbols/library.js";
+import { layOutLadder } from "./ladder/lay-out-ladder.js";
+import type { CircuitSheet, Layout, PageArea, Place } from "./placement.js";
+
+/**
+ * Sets every circuit down in millimetres: sheets in the order of the circuits, numbered on through the set, and the place of
+ * every part. References are not worded yet; room is kept for them. Never throws for a machine that could be built.
+ * @param pageFor the room on a sheet of this drawing
+ */
+export async function layOut(machine: Machine, start: StartState, symbols: SymbolLibrary, pageFor: (drawing: DrawingInfo) => PageArea): Promise<Layout> {
+  const page = pageFor(machine.drawing);
+  const sheets: CircuitSheet[] = [];
+  const places = new Map<PartId, Place>();
+  let line = 1;
+  for (const circuit of machine.circuits) {
+    const numbering = { sheet: sheets.length + 1, line };
+    if (circuit.kind === "ladder") {
+      const laid = layOutLadder(circuit, machine, start, symbols, page, numbering);
+      line = laid.nextLine;
+      sheets.push(...laid.sheets);
+      for (const [part, place] of laid.places) places.set(part, place);
+    } else {
+      // Only a drawing with fluid sheets waits for their layout library.
+      const { layOutFluid } = await import("./fluid/lay-out-fluid.js");
+      const laid = await layOutFluid(circuit, machine, start, symbols, page, numbering);
+      sheets.push(...laid.sheets);
+      for (const [part, place] of laid.places) places.set(part, place);
+    }
+  }
+  return { sheets, places };
+}

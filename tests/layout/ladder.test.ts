@@ -1,0 +1,239 @@
+import fc from "fast-check";
+import { describe, expect, test } from "vitest";
+import type { CircuitSheet } from "../../src/layout/placement.js";
+import { bends, crossings } from "../support/facts.js";
+import { faults, ladderOf } from "../support/ladder.js";
+
+const devices = `
+push-button PB1 "Start"
+push-button PB2 "Stop"
+relay CR1 "Cycle running"
+relay CR2 "Stamp done"
+timer TR1 "Stamp dwell" on-delay 1.5 s
+pilot-light LT1 "Running" green
+limit-switch LS1 "Clamp open"   on CLAMP at retracted
+limit-switch LS2 "Clamp closed" on CLAMP at extended
+contactor MS1 "Pump motor"
+overload OL1 "Pump motor"
+fluid "Air" pneumatic {
+  air-supply AIR1 6 bar
+  cylinder CLAMP "Clamp" double-acting bore 40 mm rod 16 mm stroke 60 mm
+  valve V1 "Clamp" 5/2 left solenoid SOL1 right spring
+  line AIR1 -- V1.1
+  line V1.4 -- CLAMP.cap
+  line V1.2 -- CLAMP.rod
+  exhaust V1.3, V1.5 -- silencer
+}
+`;
+
+const drawn = (rungs: string, drawing = "paper A3") =>
+  ladderOf(`drawing "Test" { ${drawing} }\nsupply CTRL 24 V DC { rails L+ M }\n${devices}\nladder "Control" supply CTRL {\n${rungs}\n}\n`);
+
+const at = (sheet: CircuitSheet, part: string) => {
+  const found = sheet.symbols.find((symbol) => symbol.part.startsWith(part));
+  if (!found) throw new Error(`${part} is not on sheet ${sheet.number}`);
+  return found.at;
+};
+const lineNumbers = (sheet: CircuitSheet) => sheet.texts.filter(({ role }) => role === "line-number").map(({ text }) => text);
+const loadsOf = (sheet: CircuitSheet) => sheet.symbols.filter(({ part }) => /^(CR|TR|LT|SOL|MS)\d+:(A1|X1)/.test(part) || /^(SOL|LT)/.test(part));
+
+describe("a ladder sheet", () => {
+  test("holds a stop, start and holding contact as the trade draws them", () => {
+    const laid = drawn(`rung "Cycle running": /PB2 (PB1 | CR1) -> CR1`);
+    const [sheet] = laid.sheets as [CircuitSheet];
+    expect(faults(laid)).toEqual([]);
+    expect(lineNumbers(sheet)).toEqual(["101", "102"]);
+    // Stop, start and coil on one straight line; the holding contact below the start button.
+    expect(at(sheet, "PB2").y).toBe(at(sheet, "PB1").y);
+    expect(at(sheet, "CR1:13").x).toBe(at(sheet, "PB1").x);
+    expect(at(sheet, "CR1:13").y).toBeGreaterThan(at(sheet, "PB1").y);
+    // One branch, whose wire turns down and up again.
+    expect(bends(sheet)).toBe(2);
+  });
+
+  test("names every wire once in its rung and the rails at their heads", () => {
+    // BCcampus, Basic Motor Control, "Numbering System": the number rises across each device; here the rails keep their names.
+    const [sheet] = drawn("rung: /PB2 (PB1 | CR1) -> CR1").sheets as [CircuitSheet];
+    const numbers = sheet.texts.filter(({ role }) => role === "wire-number").map(({ text }) => text);
+    expect(new Set(numbers).size).toBe(2);
+    expect(numbers).toHaveLength(2);
+    expect(sheet.texts.filter(({ role }) => role === "rail").map(({ text }) => text)).toEqual(["L+", "M"]);
+  });
+
+  test("joins a point of neighbouring rungs with one upright", () => {
+    const laid = drawn(`
+      rung: /PB2 (PB1 | CR1 (/CR2 | /LS1)) @run -> (CR1 | LT1)
+      rung: @run (TR1 | CR2) -> CR2
+      rung: @run LS2 /CR2 -> SOL1
+      rung: @run LS2 -> TR1`);
+    expect(faults(laid)).toEqual([]);
+    const [sheet] = laid.sheets as [CircuitSheet];
+    const left = Math.min(...sheet.wires.filter(({ role }) => role === "rail").map(({ points }) => points[0]?.x as number));
+    // Only the first rung begins on the live rail.
+    const fromRail = sheet.wires.filter(({ role, points }) => role === "wire" && points.some(({ x }) => Math.abs(x - left) < 0.01));
+    expect(fromRail).toHaveLength(1);
+    expect(sheet.strokes.filter(({ role }) => role === "continuation")).toEqual([]);
+  });
+
+  test("refers where a rung in between keeps two rungs with one point apart", () => {
+    const laid = drawn(`
+      rung: /PB2 PB1 @run -> CR1
+      rung: LS1 /LS2 CR1 -> CR2
+      rung: @run LS2 -> SOL1`);
+    expect(faults(laid)).toEqual([]);
+    const [sheet] = laid.sheets as [CircuitSheet];
+    const references = sheet.texts.flatMap(({ text }) => (typeof text !== "string" && text.to === "point" ? [text] : []));
+    expect(references.map(({ point }) => point)).toEqual(["run", "run"]);
+    for (const { from } of references) expect(laid.places.get(from)?.line).toBeDefined();
+  });
+
+  test("refers at both ends where a point goes on on another sheet", () => {
+    const laid = drawn(`
+      rung: /PB2 PB1 @run -> CR1
+      sheet "Outputs"
+      rung: @run LS2 -> SOL1`);
+    expect(faults(laid)).toEqual([]);
+    expect(laid.sheets.map(({ title }) => title)).toEqual(["Control", "Outputs"]);
+    for (const sheet of laid.sheets) expect(sheet.strokes.filter(({ role }) => role === "continuation")).toHaveLength(1);
+    expect(laid.sheets.map(lineNumbers)).toEqual([["101"], ["201"]]);
+  });
+
+  test("draws a bridge between two uprights as a line of its own", () => {
+    const laid = drawn(`
+      rung: PB1 @a /PB2 @b -> CR1
+      rung: @a LS1 @b
+      rung: @b LS2 -> CR2`);
+    expect(faults(laid)).toEqual([]);
+    const [sheet] = laid.sheets as [CircuitSheet];
+    expect(sheet.strokes.filter(({ role }) => role === "continuation")).toEqual([]);
+    expect(at(sheet, "LS1").x).toBe(at(sheet, "PB2").x);
+  });
+
+  test("keeps a bridge in a network of two branches right", () => {
+    expect(faults(drawn(`
+      rung: (PB1 @a LS1 | PB2 @b LS2) -> CR1
+      rung: @a CR2 @b
+      rung: CR1 -> CR2`))).toEqual([]);
+  });
+
+  test("stacks loads in one column and lets a branch carry its own arrow", () => {
+    const laid = drawn("rung: /PB2 PB1 -> (CR1 | LT1 | LS2 -> SOL1)\nrung: CR1 -> CR2");
+    expect(faults(laid)).toEqual([]);
+    const [sheet] = laid.sheets as [CircuitSheet];
+    const xs = loadsOf(sheet).map(({ at }) => at.x);
+    expect(xs).toHaveLength(4);
+    expect(new Set(xs).size).toBe(1);
+  });
+
+  test("puts contacts of the return side between load and rail", () => {
+    const laid = drawn("rung: CR1 LS1 -> MS1 /OL1\nrung: PB1 -> CR1");
+    expect(faults(laid)).toEqual([]);
+    const [sheet] = laid.sheets as [CircuitSheet];
+    expect(at(sheet, "OL1").x).toBeGreaterThan(at(sheet, "MS1").x);
+    expect(at(sheet, "CR1:A1").x).toBe(at(sheet, "MS1").x);
+  });
+
+  test("breaks between rungs and says where the rails go on", () => {
+    const laid = drawn(Array.from({ length: 30 }, (_, i) => `rung: /PB2 (PB1 | LS1) -> ${i === 0 ? "CR1" : "LT1"}`).join("\n"));
+    expect(laid.sheets.length).toBeGreaterThan(2);
+    expect(faults(laid)).toEqual([]);
+    for (const [index, sheet] of laid.sheets.entries()) {
+      const numbers = lineNumbers(sheet);
+      expect(numbers[0]).toBe(String((index + 1) * 100 + 1));
+      expect(numbers.length % 2).toBe(0);
+    }
+    const notes = laid.sheets.map((sheet) => sheet.texts.filter(({ role }) => role === "note").map(({ text }) => text));
+    expect(notes[0]).toContain("to sheet 2, line 201");
+    expect(notes[1]?.some((note) => String(note).startsWith("from sheet 1, line 1"))).toBe(true);
+  });
+
+  test("numbers lines on through the sheets if asked", () => {
+    const laid = drawn(`rung: PB1 -> CR1\nsheet "Two"\nrung: PB2 -> CR2`, "line-numbers running");
+    expect(laid.sheets.map(lineNumbers)).toEqual([["1"], ["2"]]);
+  });
+
+  test.each(["A4", "A3", "A1", "ANSI-A", "ANSI-B", "ANSI-D"])("keeps within %s", (paper) => {
+    expect(faults(drawn(`
+      rung "Cycle running": /PB2 (PB1 | CR1 (/CR2 | /LS1)) @run -> (CR1 | LT1)
+      rung "Stamp done": @run (TR1 | CR2) -> CR2
+      rung "Stamp": @run LS2 /CR2 -> SOL1
+      rung "Dwell": @run LS2 -> TR1`, `paper ${paper}`))).toEqual([]);
+  });
+});
+
+// ---------------------------------------------------------------- random rungs
+
+const names = ["CR1", "LS-CLAMP-OPEN-12", "PB1", "1CR", "LS2A", "TR1", "EMERGENCY_STOP_PANEL"];
+const declared = `relay CR1 "Running"\nlimit-switch LS-CLAMP-OPEN-12 "Clamp open over the whole of its way"\npush-button PB1 "Start"\nrelay 1CR\nlimit-switch LS2A\ntimer TR1 off-delay 2 s\nemergency-stop EMERGENCY_STOP_PANEL "Stop everything"`;
+
+const contact = fc.tuple(fc.boolean(), fc.constantFrom(...names)).map(([closed, name]) => `${closed && name !== "EMERGENCY_STOP_PANEL" ? "/" : ""}${name}`);
+const path = fc.letrec<{ series: string; item: string }>((tie) => ({
+  series: fc.array(tie("item"), { minLength: 1, maxLength: 3 }).map((items) => items.join(" ")),
+  item: fc.oneof(
+    { depthSize: "small", withCrossShrink: true },
+    contact,
+    fc.array(tie("series"), { minLength: 2, maxLength: 3 }).map((branches) => `(${branches.join(" | ")})`),
+  ),
+})).series;
+
+const columnsOf = (text: string): number => {
+  // How many contacts stand one behind the other in the longest way through.
+  const read = (from: number): { width: number; next: number } => {
+    let width = 0;
+    let widest = 0;
+    let i = from;
+    while (i < text.length && text[i] !== ")") {
+      if (text[i] === "(") {
+        const inner = read(i + 1);
+        width += inner.width;
+        i = inner.next + 1;
+      } else if (text[i] === "|") {
+        widest = Math.max(widest, width);
+        width = 0;
+        i++;
+      } else if (/\s/.test(text[i] as string)) i++;
+      else {
+        width++;
+        while (i < text.length && !/[\s()|]/.test(text[i] as string)) i++;
+      }
+    }
+    return { width: Math.max(widest, width), next: i };
+  };
+  return read(0).width;
+};
+
+describe("random rungs", () => {
+  const rungs = fc.array(path.filter((text) => columnsOf(text) <= 5), { minLength: 1, maxLength: 12 });
+
+  test("overlap nothing, cross nothing, leave no end open and join what the machine joins", () => {
+    fc.assert(
+      fc.property(rungs, (paths) => {
+        const lamps = paths.map((_, i) => `pilot-light LT${i} "Lamp number ${i}" green`).join("\n");
+        const text = paths.map((p, i) => `rung "Rung ${i}": ${p} -> LT${i}`).join("\n");
+        const laid = ladderOf(`supply CTRL 24 V DC { rails L+ M }\n${declared}\n${lamps}\nladder "Control" supply CTRL {\n${text}\n}\n`);
+        expect(faults(laid)).toEqual([]);
+      }),
+      { numRuns: 40 },
+    );
+  });
+
+  test("keep their points joined whatever stands between them", () => {
+    const pointed = fc.record({
+      start: fc.constantFrom("", "@p0 ", "@p1 ", "@p2 "),
+      head: path.filter((text) => columnsOf(text) <= 2),
+      point: fc.constantFrom("", "@p0", "@p1", "@p2"),
+      tail: path.filter((text) => columnsOf(text) <= 2),
+      end: fc.constantFrom("load", "load", "load", "@p0", "@p1"),
+    });
+    fc.assert(
+      fc.property(fc.array(pointed, { minLength: 2, maxLength: 10 }), (list) => {
+        const lamps = list.map((_, i) => `pilot-light LT${i} red`).join("\n");
+        const text = list.map(({ start, head, point, tail, end }, i) => `rung: ${start}${head} ${point} ${tail} ${end === "load" ? `-> LT${i}` : end}`).join("\n");
+        const laid = ladderOf(`supply CTRL 24 V DC { rails L+ M }\n${declared}\n${lamps}\nladder "Control" supply CTRL {\n${text}\n}\n`);
+        expect(faults(laid)).toEqual([]);
+        for (const sheet of laid.sheets) expect(crossings(sheet)).toEqual([]);
+      }),
+      { numRuns: 60 },
+    );
+  });
+});
