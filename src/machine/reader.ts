@@ -1,4 +1,5 @@
 import type { SourceRange } from "../language/diagnostic.js";
+import { nameOf } from "../language/items.js";
 import type { Dimension, Quantity } from "../language/quantity.js";
 import type { Declaration, Item, Word } from "../language/tree.js";
 import { unitsOf } from "../language/units.js";
