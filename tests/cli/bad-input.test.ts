@@ -31,8 +31,8 @@ interface Case {
 
 const cases: Case[] = [
   { what: "a missing file", exit: 2, code: "file-missing", says: /no file .bad\.sprung/, at: [1, 1] },
-  { what: "an empty file", text: "", exit: 1, code: "empty-drawing", says: /./, at: [1, 1] },
-  { what: "a file of comments only", text: "# nothing yet\n\n", exit: 1, code: "empty-drawing", says: /./, at: [1, 1] },
+  { what: "an empty file", text: "", exit: 1, code: "empty-file", says: /describes nothing/, at: [1, 1] },
+  { what: "a file of comments only", text: "# nothing yet\n\n", exit: 1, code: "empty-file", says: /describes nothing/, at: [1, 1] },
   {
     what: "a binary file",
     text: new Uint8Array([0x7f, 0x45, 0x4c, 0x46, 0, 1, 255, 254]),
@@ -45,9 +45,9 @@ const cases: Case[] = [
     what: "a 10 000-deep bracket",
     text: ladder(`PB1 ${"(".repeat(10_000)}PB1${")".repeat(10_000)} -> CR1`),
     exit: 1,
-    code: "nested-too-deep",
-    says: /deep/,
-    at: [5, 13],
+    code: "nesting-too-deep",
+    says: /more than 64 deep/,
+    at: [5, 76],
   },
   {
     what: "an unknown device",
@@ -58,12 +58,12 @@ const cases: Case[] = [
     at: [5, 13],
   },
   { what: "a coil driven twice", text: ladder("PB1 -> CR1", "CR1 -> CR1"), exit: 1, code: "coil-driven-twice", says: /CR1/, at: [6, 16] },
-  { what: "a short across the rails", text: ladder("PB1 (CR1 | /CR1)"), exit: 1, code: "short-circuit", says: /./, at: [5, 9] },
+  { what: "a short across the rails", text: ladder("PB1 -> CR1", "CR1 PB1"), exit: 1, code: "short-across-rails", says: /L\+ and M are joined with no load/, at: [6, 9] },
   {
     what: "a valve port joined to nothing",
     text: air("line AIR1 -- V1.1", "line V1.4 -- RAM.cap", "line V1.2 -- RAM.rod", "exhaust V1.3 -- silencer"),
     exit: 0,
-    code: "open-port",
+    code: "port-open",
     says: /V1\.5|V1.*port.*5|port 5/,
     at: [11, 9],
   },
