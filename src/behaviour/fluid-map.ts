@@ -2,7 +2,13 @@ import type { FluidCircuit, FluidComponent, FluidKind, FluidNodeId } from "../ma
 
 /** What fluid goes through, one way at least, wherever it stands in a line. */
 const passing: ReadonlySet<FluidKind> = new Set<FluidKind>([
-  "filter", "service-unit", "check-valve", "pilot-operated-check-valve", "throttle", "one-way-flow-control", "shut-off-valve",
+  "filter",
+  "service-unit",
+  "check-valve",
+  "pilot-operated-check-valve",
+  "throttle",
+  "one-way-flow-control",
+  "shut-off-valve",
 ]);
 
 interface PortPlace {

@@ -11,6 +11,8 @@ export const coilNeverDriven = rule<{ device: string }>({
     networks.gaps
       ? []
       : [...machine.devices.values()]
-          .filter(({ kind, loads, contacts }) => deviceRoles[kind].load && kind !== "solenoid" && loads.length === 0 && contacts.length === 0)
+          .filter(
+            ({ kind, loads, contacts }) => deviceRoles[kind].load && kind !== "solenoid" && loads.length === 0 && contacts.length === 0,
+          )
           .map(({ name, at }) => ({ device: name, at })),
 });

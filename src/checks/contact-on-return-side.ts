@@ -9,7 +9,7 @@ import { rule } from "./rule.js";
 export const contactOnReturnSide = rule<{ contact: string; load: string }>({
   code: "contact-on-return-side",
   severity: "warning",
-  says: ({ contact, load }) => `${contact} switches the return side of ${load}: an earth fault can bridge it.`,
+  says: ({ contact, load }) => `The return side of ${load} is switched by ${contact}, which an earth fault can bridge.`,
   hint: ({ contact, load }) => `Put ${contact} before -> ${load}.`,
   find: ({ machine, networks }) =>
     networks.rungs.flatMap(({ path }) =>

@@ -7,7 +7,8 @@ import { rule } from "./rule.js";
 export const cylinderMovesAtStart = rule<{ cylinder: string; valve: string; drawn: string; to: string }>({
   code: "cylinder-moves-at-start",
   severity: "warning",
-  says: ({ cylinder, valve, drawn, to }) => `${cylinder} starts ${drawn}, but ${valve} at rest drives it ${to === "extended" ? "out" : "in"} as soon as there is pressure.`,
+  says: ({ cylinder, valve, drawn, to }) =>
+    `${cylinder} starts ${drawn}, but ${valve} at rest drives it ${to === "extended" ? "out" : "in"} as soon as there is pressure.`,
   hint: ({ cylinder, to }) => `Turn the valve round, or let ${cylinder} "start ${to}".`,
   find: ({ machine, start }) =>
     fluidsOf(machine).flatMap((circuit) => {
@@ -20,7 +21,14 @@ export const cylinderMovesAtStart = rule<{ cylinder: string; valve: string; draw
           .map(({ cylinder: { name = "", cylinder: spec, at }, to }) => {
             const place = spec?.start ?? 0;
             const drawn = place === 0 ? "retracted" : spec && place === strokeOf(spec) ? "extended" : `at ${place} mm`;
-            return { cylinder: name, valve: valve.name ?? "", drawn, to, at, seeAlso: [{ message: `${valve.name} is declared here.`, at: valve.at }] };
+            return {
+              cylinder: name,
+              valve: valve.name ?? "",
+              drawn,
+              to,
+              at,
+              seeAlso: [{ message: `${valve.name} is declared here.`, at: valve.at }],
+            };
           });
       });
     }),

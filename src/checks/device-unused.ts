@@ -8,7 +8,8 @@ export const deviceUnused = rule<{ device: string }>({
   find: ({ machine, networks }) => {
     if (networks.gaps || networks.rungs.length === 0) return [];
     const needed = new Set<string>();
-    for (const { guards, button } of machine.devices.values()) for (const name of [guards, button?.lamp]) if (name !== undefined) needed.add(name);
+    for (const { guards, button } of machine.devices.values())
+      for (const name of [guards, button?.lamp]) if (name !== undefined) needed.add(name);
     for (const { drivenBy } of machine.components.values()) if (drivenBy !== undefined) needed.add(drivenBy);
     return [...machine.devices.values()]
       .filter(({ name, kind, contacts }) => !deviceRoles[kind].load && contacts.length === 0 && !needed.has(name))

@@ -7,12 +7,16 @@ export const loadNotFed = rule<{ device: string; side: "live" | "return" | "both
   code: "load-not-fed",
   severity: "warning",
   says: ({ device, side }) =>
-    side === "return" ? `No wire leads from ${device} to a return rail.` : `No wire leads from ${side === "both" ? "the rails" : "a live rail"} to ${device}.`,
+    side === "return"
+      ? `No wire leads from ${device} to a return rail.`
+      : `No wire leads from ${side === "both" ? "the rails" : "a live rail"} to ${device}.`,
   hint: () => "Look at the points its rung begins and ends at.",
   find: (subject) => {
     const { networks } = subject;
     if (networks.gaps) return [];
-    const [live, back] = (["live", "return"] as const).map((side) => new Set([...networks.railsAt(side)].map((rail) => networks.groupOf(rail))));
+    const [live, back] = (["live", "return"] as const).map(
+      (side) => new Set([...networks.railsAt(side)].map((rail) => networks.groupOf(rail))),
+    );
     if (!live || !back) return [];
     const inSeries = loadsInSeries(subject);
     return networks.loads.flatMap((load) => {

@@ -6,8 +6,11 @@ export const portOpen = rule<{ component: string; ports: string[]; all: boolean 
   code: "port-open",
   severity: "warning",
   says: ({ component, ports, all }) =>
-    all ? `${component} is joined to nothing.` : `${ports.length === 1 ? "Port" : "Ports"} ${listed(ports, "and")} of ${component} ${ports.length === 1 ? "is" : "are"} joined to nothing.`,
-  hint: ({ component, ports, all }) => (all ? undefined : `If that is meant, write: plug ${ports.map((port) => `${component}.${port}`).join(", ")}`),
+    all
+      ? `${component} is joined to nothing.`
+      : `${ports.length === 1 ? "Port" : "Ports"} ${listed(ports, "and")} of ${component} ${ports.length === 1 ? "is" : "are"} joined to nothing.`,
+  hint: ({ component, ports, all }) =>
+    all ? undefined : `If that is meant, write: plug ${ports.map((port) => `${component}.${port}`).join(", ")}`,
   find: ({ machine }) =>
     fluidsOf(machine).flatMap(({ components }) =>
       components.flatMap(({ name, kind, ports, at }) => {

@@ -11,7 +11,9 @@ export const shortAcrossRails = rule<{ live: string; back: string; through: stri
   severity: "error",
   says: ({ live, back, through }) => `${live} and ${back} are joined with no load in between, through ${through.join(", ")}.`,
   hint: ({ mayBeCoil }) =>
-    mayBeCoil === undefined ? 'Every path between the rails needs something that is driven, behind "->".' : `If ${mayBeCoil} is driven here, write -> ${mayBeCoil}.`,
+    mayBeCoil === undefined
+      ? 'Every path between the rails needs something that is driven, behind "->".'
+      : `If ${mayBeCoil} is driven here, write -> ${mayBeCoil}.`,
   find: (subject) => [...subject.networks.railsAt("live")].flatMap((live) => shortsFrom(live, subject)),
 });
 
@@ -29,7 +31,8 @@ function shortsFrom(live: NodeId, { networks, machine }: Subject) {
       const beyond = contact.from === here ? contact.to : contact.from;
       if (returns.has(beyond)) {
         const device = machine.devices.get(contact.device);
-        const mayBeCoil = device && deviceRoles[device.kind].load && contact.form === "NO" && device.loads.length === 0 ? contact.device : undefined;
+        const mayBeCoil =
+          device && deviceRoles[device.kind].load && contact.form === "NO" && device.loads.length === 0 ? contact.device : undefined;
         found.push({
           live: networks.railName(live),
           back: networks.railName(beyond),

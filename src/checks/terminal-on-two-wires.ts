@@ -22,7 +22,9 @@ export const terminalOnTwoWires = rule<{ device: string; terminal: string }>({
         if (!clash) return [];
         const [terminal] = clash;
         const where = first.get(terminal)?.at;
-        return [{ device: name, terminal, at: contact.at, seeAlso: where ? [{ message: `${terminal} is first used here.`, at: where }] : [] }];
+        return [
+          { device: name, terminal, at: contact.at, seeAlso: where ? [{ message: `${terminal} is first used here.`, at: where }] : [] },
+        ];
       });
     });
   },

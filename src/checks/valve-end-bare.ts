@@ -7,6 +7,8 @@ export const valveEndBare = rule<{ valve: string; side: "left" | "right" }>({
   hint: ({ side }) => `Write for example "${side} spring".`,
   find: ({ machine }) =>
     [...machine.components.values()].flatMap(({ name, valve, at }) =>
-      (["left", "right"] as const).flatMap((side) => (valve && name !== undefined && valve[side].length === 0 ? [{ valve: name, side, at }] : [])),
+      (["left", "right"] as const).flatMap((side) =>
+        valve && name !== undefined && valve[side].length === 0 ? [{ valve: name, side, at }] : [],
+      ),
     ),
 });

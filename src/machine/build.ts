@@ -7,7 +7,18 @@ import { readDrawingInfo } from "./drawing.js";
 import { type CircuitDraft, LineBuilder, wrongMedium } from "./fluid-lines.js";
 import { declarationWords, fluidMedia, isDeviceKind, isFluidKind, laterKinds } from "./kinds.js";
 import { linkDevices, linkDrives, linkPressureSwitches, linkSolenoids, linkSwitches, putSensor } from "./links.js";
-import type { Circuit, Device, DeviceKind, DrawingInfo, FluidComponent, FluidKind, LadderCircuit, Machine, Medium, Supply } from "./model.js";
+import type {
+  Circuit,
+  Device,
+  DeviceKind,
+  DrawingInfo,
+  FluidComponent,
+  FluidKind,
+  LadderCircuit,
+  Machine,
+  Medium,
+  Supply,
+} from "./model.js";
 import { Names } from "./names.js";
 import { numberPotentials } from "./potentials.js";
 import { didYouMean, listed, Report, withArticle } from "./report.js";
@@ -57,7 +68,13 @@ class MachineBuilder {
     for (const device of this.devices.values()) allotTerminals(device, this.report);
 
     const machine: Machine = {
-      drawing: this.info, devices: this.devices, components, supplies: this.supplies, circuits, potentials, sequences: this.sequences,
+      drawing: this.info,
+      devices: this.devices,
+      components,
+      supplies: this.supplies,
+      circuits,
+      potentials,
+      sequences: this.sequences,
     };
     return { machine, diagnostics: this.report.diagnostics };
   }
@@ -92,7 +109,17 @@ class MachineBuilder {
   private declareCircuit(block: FluidBlock, id: string): void {
     const medium = this.mediumOf(block);
     const fluid: CircuitDraft = {
-      circuit: { kind: "fluid", id, title: block.title?.text ?? "", medium, components: [], nodes: [], lines: [], sheetBreaks: [], at: block.at },
+      circuit: {
+        kind: "fluid",
+        id,
+        title: block.title?.text ?? "",
+        medium,
+        components: [],
+        nodes: [],
+        lines: [],
+        sheetBreaks: [],
+        at: block.at,
+      },
       block,
       points: new Map(),
       drafts: [],
@@ -109,9 +136,18 @@ class MachineBuilder {
   private mediumOf({ medium, title, at }: FluidBlock): Medium {
     if (medium?.text === "hydraulic" || medium?.text === "pneumatic") return medium.text;
     if (medium) {
-      this.report.error("value-unknown", medium.at, `A fluid circuit is hydraulic or pneumatic, not "${medium.text}".`, didYouMean(medium.text, ["hydraulic", "pneumatic"]));
+      this.report.error(
+        "value-unknown",
+        medium.at,
+        `A fluid circuit is hydraulic or pneumatic, not "${medium.text}".`,
+        didYouMean(medium.text, ["hydraulic", "pneumatic"]),
+      );
     } else {
-      this.report.error("property-missing", title?.at ?? { ...at, endLine: at.line, endColumn: at.column + "fluid".length }, 'A fluid circuit is "hydraulic" or "pneumatic": say which.');
+      this.report.error(
+        "property-missing",
+        title?.at ?? { ...at, endLine: at.line, endColumn: at.column + "fluid".length },
+        'A fluid circuit is "hydraulic" or "pneumatic": say which.',
+      );
     }
     return "pneumatic";
   }
@@ -132,7 +168,11 @@ class MachineBuilder {
     if (!isDeviceKind(kind) && !isFluidKind(kind)) return this.unknownKind(declaration);
     const { name } = declaration;
     if (!name) {
-      this.report.error("name-missing", keyword.at, `${capital(withArticle(kind))} needs a designation, as in "${kind} ${usualNames[kind] ?? "X1"}".`);
+      this.report.error(
+        "name-missing",
+        keyword.at,
+        `${capital(withArticle(kind))} needs a designation, as in "${kind} ${usualNames[kind] ?? "X1"}".`,
+      );
       return;
     }
     if (isDeviceKind(kind)) this.declareDevice({ ...declaration, name }, kind, fluid);
@@ -140,7 +180,17 @@ class MachineBuilder {
   }
 
   private unknownKind({ keyword, name }: Declaration): void {
-    const guess = didYouMean(keyword.text, [...declarationWords, ...laterKinds, "rung", "line", "ladder", "fluid", "drawing", "sheet", "include"]);
+    const guess = didYouMean(keyword.text, [
+      ...declarationWords,
+      ...laterKinds,
+      "rung",
+      "line",
+      "ladder",
+      "fluid",
+      "drawing",
+      "sheet",
+      "include",
+    ]);
     this.report.error("unknown-kind", keyword.at, `"${keyword.text}" is not a kind of device or component.`, guess);
     // Its uses would say no more than this.
     if (name) this.names.lose(name.text);
@@ -188,7 +238,9 @@ class MachineBuilder {
     const valve = kind === "valve" ? readValve(declaration, medium, this.report) : undefined;
     const draft =
       valve ??
-      (kind === "cylinder" ? readCylinder(declaration, medium, this.info, this.report) : readComponent(declaration, kind as Exclude<FluidKind, "cylinder" | "valve">, medium, this.report));
+      (kind === "cylinder"
+        ? readCylinder(declaration, medium, this.info, this.report)
+        : readComponent(declaration, kind as Exclude<FluidKind, "cylinder" | "valve">, medium, this.report));
     if (!this.names.claim(name, kind)) return;
     fluid.drafts.push(draft);
     fluid.circuit.components.push(draft.component);
@@ -232,14 +284,27 @@ class MachineBuilder {
     const [first, ...others] = this.supplies;
     if (!word) {
       if (others.length > 0) {
-        this.report.error("property-missing", title?.at ?? { ...at, endLine: at.line, endColumn: at.column + "ladder".length }, `Which supply feeds this ladder? There are ${listed(this.supplies.map(({ name }) => name), "and")}.`);
+        this.report.error(
+          "property-missing",
+          title?.at ?? { ...at, endLine: at.line, endColumn: at.column + "ladder".length },
+          `Which supply feeds this ladder? There are ${listed(
+            this.supplies.map(({ name }) => name),
+            "and",
+          )}.`,
+        );
       }
       return first ?? unsaidSupply(at);
     }
     const named = this.supplies.find(({ name }) => name === word.text);
     if (!named) {
-      const guess = didYouMean(word.text, this.supplies.map(({ name }) => name));
-      this.report.error("unknown-name", word.at, `There is no supply ${word.text} in this drawing.`, { ...guess, hint: guess.hint ?? `Declare it, as in "supply ${word.text} 24 V DC { rails L+ M }".` });
+      const guess = didYouMean(
+        word.text,
+        this.supplies.map(({ name }) => name),
+      );
+      this.report.error("unknown-name", word.at, `There is no supply ${word.text} in this drawing.`, {
+        ...guess,
+        hint: guess.hint ?? `Declare it, as in "supply ${word.text} 24 V DC { rails L+ M }".`,
+      });
     }
     return named ?? first ?? unsaidSupply(at);
   }
@@ -252,9 +317,22 @@ class MachineBuilder {
 }
 
 const usualNames: Partial<Record<DeviceKind | FluidKind, string>> = {
-  relay: "CR1", contactor: "MS1", timer: "TR1", "push-button": "PB1", "emergency-stop": "ES1", "selector-switch": "SS1", "limit-switch": "LS1",
-  "proximity-switch": "PRS1", "pressure-switch": "PS1", overload: "OL1", solenoid: "SOL1", "pilot-light": "LT1", horn: "AH1", motor: "M1",
-  cylinder: "CYL1", valve: "V1",
+  relay: "CR1",
+  contactor: "MS1",
+  timer: "TR1",
+  "push-button": "PB1",
+  "emergency-stop": "ES1",
+  "selector-switch": "SS1",
+  "limit-switch": "LS1",
+  "proximity-switch": "PRS1",
+  "pressure-switch": "PS1",
+  overload: "OL1",
+  solenoid: "SOL1",
+  "pilot-light": "LT1",
+  horn: "AH1",
+  motor: "M1",
+  cylinder: "CYL1",
+  valve: "V1",
 };
 
 function capital(text: string): string {

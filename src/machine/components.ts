@@ -96,7 +96,12 @@ const tables: Record<Exclude<FluidKind, "cylinder" | "valve">, ComponentTable> =
 };
 
 /** A component with its usual ports and nothing joined. */
-export function bareComponent(id: string, kind: Exclude<FluidKind, "cylinder" | "valve">, medium: Medium, at: FluidComponent["at"]): FluidComponent {
+export function bareComponent(
+  id: string,
+  kind: Exclude<FluidKind, "cylinder" | "valve">,
+  medium: Medium,
+  at: FluidComponent["at"],
+): FluidComponent {
   return { id, kind, medium, values: [], ports: portsOf(kind).map((name) => ({ name, plugged: false })), at };
 }
 

@@ -56,8 +56,12 @@ const table: PropertyTable<CylinderDraft> = {
       if (end) draft.start = { at: word.at, place: end };
       else if (item?.kind === "word") {
         read.next();
-        read.report.error("value-unknown", item.at, `"start" takes retracted, extended or a length, not "${item.text}".`,
-          didYouMean(item.text, ["retracted", "extended"]));
+        read.report.error(
+          "value-unknown",
+          item.at,
+          `"start" takes retracted, extended or a length, not "${item.text}".`,
+          didYouMean(item.text, ["retracted", "extended"]),
+        );
       } else {
         const length = read.quantity(word, "length");
         if (length && item) draft.start = { at: item.at, place: length.value };
@@ -71,18 +75,34 @@ export function readCylinder(declaration: Declaration & { name: Word }, medium: 
   const { name } = declaration;
   const spec: CylinderSpec = { action: "double-acting", cushion: "none", start: 0, switches: [] };
   const component: FluidComponent = {
-    id: name.text, name: name.text, kind: "cylinder", medium, text: declaration.text?.text, values: [], ports: [], cylinder: spec, at: name.at,
+    id: name.text,
+    name: name.text,
+    kind: "cylinder",
+    medium,
+    text: declaration.text?.text,
+    values: [],
+    ports: [],
+    cylinder: spec,
+    at: name.at,
   };
   const draft: CylinderDraft = Object.assign(draftOf(component, declaration), { spec });
   readProperties(draft, readerOf(declaration, report), "a cylinder", table);
 
   if (spec.returnedBy !== undefined && draft.action?.text === "double-acting") {
-    report.error("value-contradicts", draft.action.at, `A double-acting cylinder is brought back by pressure: ${name.text} cannot also have a return of its own.`);
+    report.error(
+      "value-contradicts",
+      draft.action.at,
+      `A double-acting cylinder is brought back by pressure: ${name.text} cannot also have a return of its own.`,
+    );
     spec.returnedBy = undefined;
   } else if (spec.returnedBy !== undefined) spec.action = "single-acting";
   if (spec.action === "single-acting") spec.returnedBy ??= "load";
   if (spec.bore && spec.rod && spec.rod.value >= spec.bore.value) {
-    report.error("value-out-of-range", name.at, `The rod of ${name.text} (${spec.rod.text}) must be thinner than its bore (${spec.bore.text}).`);
+    report.error(
+      "value-out-of-range",
+      name.at,
+      `The rod of ${name.text} (${spec.rod.text}) must be thinner than its bore (${spec.bore.text}).`,
+    );
   }
   component.ports = portNames(spec).map((port) => ({ name: port, plugged: false }));
   spec.start = startPlace(draft, report);
@@ -103,7 +123,11 @@ function startPlace({ spec, start, component }: CylinderDraft, report: Report): 
   if (start.place === "retracted") return 0;
   if (start.place === "extended") return stroke;
   if (start.place >= 0 && start.place <= stroke) return start.place;
-  report.error("value-out-of-range", start.at, `${component.name} has a stroke of ${spec.stroke?.text ?? `${stroke} mm`}; it cannot start beyond it.`);
+  report.error(
+    "value-out-of-range",
+    start.at,
+    `${component.name} has a stroke of ${spec.stroke?.text ?? `${stroke} mm`}; it cannot start beyond it.`,
+  );
   return Math.min(stroke, Math.max(0, start.place));
 }
 

@@ -83,8 +83,12 @@ const stroke: DeviceWords = {
     const item = read.peek();
     if (item?.kind === "word") {
       read.next();
-      read.report.error("value-unknown", item.at, `"at" takes retracted, extended or a length, not "${item.text}".`,
-        didYouMean(item.text, ["retracted", "extended"]));
+      read.report.error(
+        "value-unknown",
+        item.at,
+        `"at" takes retracted, extended or a length, not "${item.text}".`,
+        didYouMean(item.text, ["retracted", "extended"]),
+      );
       return;
     }
     const length = read.quantity(word, "length");
@@ -98,7 +102,11 @@ const stroke: DeviceWords = {
     const to = read.quantity({ text: "to", at: word.at }, "length");
     if (!from || !to) return;
     if (from.value > to.value) {
-      read.report.error("value-out-of-order", end, `A switch is operated from the smaller length to the greater: ${to.text} comes before ${from.text}.`);
+      read.report.error(
+        "value-out-of-order",
+        end,
+        `A switch is operated from the smaller length to the greater: ${to.text} comes before ${from.text}.`,
+      );
     }
     const [low, high] = [Math.min(from.value, to.value), Math.max(from.value, to.value)];
     draft.where = { at: { ...start, endLine: end.endLine, endColumn: end.endColumn }, place: { from: low, to: high } };
@@ -245,7 +253,11 @@ function delay({ device }: DeviceDraft, read: Parameters<DeviceWords[string]>[1]
   const time = read.positive(word, "time");
   if (!time) return;
   if (device.delay) {
-    read.report.error("property-twice", word.at, `${device.name} already has ${device.delay.mode === "on-delay" ? "an on-delay" : "an off-delay"}.`);
+    read.report.error(
+      "property-twice",
+      word.at,
+      `${device.name} already has ${device.delay.mode === "on-delay" ? "an on-delay" : "an off-delay"}.`,
+    );
     return;
   }
   device.delay = { mode: word.text as "on-delay" | "off-delay", time };
@@ -271,8 +283,11 @@ export function readDevice(declaration: Declaration & { name: Word }, kind: Devi
   }
   if (kind === "selector-switch") settleSelector(draft, declaration, report);
   if (draft.rising && draft.falling && draft.falling.value >= draft.rising.value) {
-    report.error("value-out-of-order", declaration.name.at,
-      `${device.name} must switch back below the pressure it switches at: ${draft.falling.text} is not below ${draft.rising.text}.`);
+    report.error(
+      "value-out-of-order",
+      declaration.name.at,
+      `${device.name} must switch back below the pressure it switches at: ${draft.falling.text} is not below ${draft.rising.text}.`,
+    );
   }
   return draft;
 }
@@ -294,8 +309,12 @@ function settleSelector({ device }: DeviceDraft, declaration: Declaration & { na
   const resting = positions.includes("off") ? "off" : positions.includes("0") ? "0" : (positions[0] as string);
   if (start !== "" && !positions.includes(start)) {
     const item = declaration.items.findLast((item) => "text" in item && item.text === start);
-    report.error("value-unknown", item?.at ?? declaration.name.at, `${device.name} has the positions ${listed(positions, "and")}, not "${start}".`,
-      didYouMean(start, positions));
+    report.error(
+      "value-unknown",
+      item?.at ?? declaration.name.at,
+      `${device.name} has the positions ${listed(positions, "and")}, not "${start}".`,
+      didYouMean(start, positions),
+    );
   }
   device.selector = { positions, start: positions.includes(start) ? start : resting };
 }

@@ -65,8 +65,12 @@ function choice<Name extends ChoiceField>(name: Name, choices: readonly DrawingI
     if (!value) return;
     if ((choices as readonly string[]).includes(value.text)) info[name] = value.text as DrawingInfo[Name];
     else {
-      report.error("value-unknown", value.at, `"${field.name.text}" takes ${listed(choices)}, not "${value.text}".`,
-        didYouMean(value.text, choices));
+      report.error(
+        "value-unknown",
+        value.at,
+        `"${field.name.text}" takes ${listed(choices)}, not "${value.text}".`,
+        didYouMean(value.text, choices),
+      );
     }
   };
 }

@@ -123,7 +123,8 @@ export class LineBuilder {
     const kind = draft.circuit.medium === "hydraulic" ? "tank" : "exhaust";
     for (const end of line.groups[0] ?? []) {
       const read = this.readEnd(draft, end, false, true);
-      if (read?.leaving) this.joinUnnamed(draft, { joint: read.leaving, at: read.at }, { kind, word: line.role }, "right", properties, read.at);
+      if (read?.leaving)
+        this.joinUnnamed(draft, { joint: read.leaving, at: read.at }, { kind, word: line.role }, "right", properties, read.at);
     }
   }
 
@@ -160,7 +161,12 @@ export class LineBuilder {
     const known = this.names.kindOf(kind);
     if (known !== undefined) {
       this.report.error("wrong-kind", end.name.at, `${kind} is ${withArticle(known)}; a line joins fluid components.`);
-    } else this.names.unknown(end.name, (other) => isFluidKind(other), 'Components are declared in the circuit, as in "valve V1 5/2 left solenoid SOL1 right spring".');
+    } else
+      this.names.unknown(
+        end.name,
+        (other) => isFluidKind(other),
+        'Components are declared in the circuit, as in "valve V1 5/2 left solenoid SOL1 right spring".',
+      );
     return undefined;
   }
 
@@ -195,7 +201,11 @@ export class LineBuilder {
     const through = throughPorts(component.kind, ports);
     if (!through) {
       if (ports.length === 0) this.report.error("no-ports", end.name.at, `${name} is ${withArticle(component.kind)} and has no ports.`);
-      else this.report.error("port-missing", end.name.at, `Which port of ${name}? It has ${listed(ports, "and")}.`, { hint: `Write ${name}.${ports[0]}.`, data: { ports } });
+      else
+        this.report.error("port-missing", end.name.at, `Which port of ${name}? It has ${listed(ports, "and")}.`, {
+          hint: `Write ${name}.${ports[0]}.`,
+          data: { ports },
+        });
       return undefined;
     }
     return {
@@ -208,8 +218,19 @@ export class LineBuilder {
   private unknownPort({ component }: ComponentDraft, port: Word): void {
     const ports = component.ports.map((known) => known.name);
     const other = portInOtherScheme(port.text, ports);
-    const guess = other === undefined ? didYouMean(port.text, ports) : { hint: `In ${component.medium === "hydraulic" ? "hydraulics" : "pneumatics"} it is ${component.name}.${other}.`, data: { nearest: other } };
-    this.report.error("unknown-port", port.at, `${component.name ?? component.kind} has no port ${port.text}: it has ${listed(ports, "and")}.`, guess);
+    const guess =
+      other === undefined
+        ? didYouMean(port.text, ports)
+        : {
+            hint: `In ${component.medium === "hydraulic" ? "hydraulics" : "pneumatics"} it is ${component.name}.${other}.`,
+            data: { nearest: other },
+          };
+    this.report.error(
+      "unknown-port",
+      port.at,
+      `${component.name ?? component.kind} has no port ${port.text}: it has ${listed(ports, "and")}.`,
+      guess,
+    );
   }
 
   private readUnnamed(
@@ -225,9 +246,14 @@ export class LineBuilder {
       return undefined;
     }
     if (unnamedEnds.has(kind)) {
-      if (end.port) this.report.error("unknown-port", end.port.at, `A component called by its kind has no named ports: declare it to name them.`);
+      if (end.port)
+        this.report.error("unknown-port", end.port.at, `A component called by its kind has no named ports: declare it to name them.`);
       if (arrives && leaves) {
-        this.report.error("line-through-end", end.name.at, `${withArticle(kind)} ends a line; nothing goes on behind it.`.replace(/^a/, "A"));
+        this.report.error(
+          "line-through-end",
+          end.name.at,
+          `${withArticle(kind)} ends a line; nothing goes on behind it.`.replace(/^a/, "A"),
+        );
         return undefined;
       }
       return { unnamed: { kind, word: end.name }, at: end.at };
@@ -252,17 +278,12 @@ export class LineBuilder {
     return made;
   }
 
-  private joinGroups(
-    draft: CircuitDraft,
-    left: ReadEnd[],
-    right: ReadEnd[],
-    properties: LineProperties,
-    line: LineStatement,
-  ): void {
+  private joinGroups(draft: CircuitDraft, left: ReadEnd[], right: ReadEnd[], properties: LineProperties, line: LineStatement): void {
     const from = left.flatMap(({ leaving, at }) => (leaving ? [{ joint: leaving, at }] : []));
     const to = right.flatMap(({ arriving, at }) => (arriving ? [{ joint: arriving, at }] : []));
     const [fromUnnamed, toUnnamed] = [left, right].map((ends) => ends.flatMap(({ unnamed }) => (unnamed ? [unnamed] : []))) as [
-      NonNullable<ReadEnd["unnamed"]>[], NonNullable<ReadEnd["unnamed"]>[],
+      NonNullable<ReadEnd["unnamed"]>[],
+      NonNullable<ReadEnd["unnamed"]>[],
     ];
     if (from.length === 0 && to.length === 0) {
       if (fromUnnamed.length > 0 && toUnnamed.length > 0) {
@@ -302,7 +323,10 @@ export class LineBuilder {
   }
 
   private joinPair(draft: CircuitDraft, a: Joint, b: Joint, properties: LineProperties, at: SourceRange): void {
-    if (a.kind === b.kind && (a.kind === "point" ? a.point === (b as typeof a).point : a.draft === (b as typeof a).draft && a.port === (b as typeof a).port)) {
+    if (
+      a.kind === b.kind &&
+      (a.kind === "point" ? a.point === (b as typeof a).point : a.draft === (b as typeof a).draft && a.port === (b as typeof a).port)
+    ) {
       this.report.error("line-to-itself", at, "This line leads back to where it starts.");
       return;
     }
@@ -337,7 +361,11 @@ export class LineBuilder {
       const { draft: target, port: name } = read.arriving;
       const port = target.component.ports.find((known) => known.name === name) as FluidPort;
       if (this.ports.has(port)) {
-        this.report.error("plugged-and-joined", end.at, `${target.component.name ?? target.component.kind}.${name} has a line and cannot be plugged as well.`);
+        this.report.error(
+          "plugged-and-joined",
+          end.at,
+          `${target.component.name ?? target.component.kind}.${name} has a line and cannot be plugged as well.`,
+        );
       } else port.plugged = true;
     }
   }
@@ -353,7 +381,11 @@ export class LineBuilder {
         this.report.error("free-to-not-reached", valve.freeTo.at, `No line leads from ${valve.component.name} to ${written}.`);
       } else if (fromIn < fromOut) this.swapPorts(draft, valve);
       else if (fromIn === fromOut) {
-        this.report.error("free-to-not-reached", valve.freeTo.at, `${written} lies on both sides of ${valve.component.name}: name the ports ${valve.component.name}.in and ${valve.component.name}.out in the lines.`);
+        this.report.error(
+          "free-to-not-reached",
+          valve.freeTo.at,
+          `${written} lies on both sides of ${valve.component.name}: name the ports ${valve.component.name}.in and ${valve.component.name}.out in the lines.`,
+        );
       }
     }
   }
@@ -362,7 +394,12 @@ export class LineBuilder {
     if (!freeTo || freeTo.kind === "quantity" || freeTo.kind === "number") return false;
     if (freeTo.kind === "point") {
       if (draft.points.has(freeTo.name)) return true;
-      this.report.error("unknown-point", freeTo.at, `There is no @${freeTo.name} in this circuit.`, didYouMean(freeTo.name, draft.points.keys()));
+      this.report.error(
+        "unknown-point",
+        freeTo.at,
+        `There is no @${freeTo.name} in this circuit.`,
+        didYouMean(freeTo.name, draft.points.keys()),
+      );
       return false;
     }
     const name = freeTo.kind === "part" ? freeTo.name : freeTo.text;
@@ -453,7 +490,9 @@ export function wrongMedium(kind: FluidKind, medium: FluidCircuit["medium"]): st
 
 function endOf(joint: Joint): FluidEnd {
   const at = joint.at && { at: joint.at };
-  return joint.kind === "point" ? { kind: "point", point: joint.point, ...at } : { kind: "port", component: joint.draft.component.id, port: joint.port, ...at };
+  return joint.kind === "point"
+    ? { kind: "point", point: joint.point, ...at }
+    : { kind: "port", component: joint.draft.component.id, port: joint.port, ...at };
 }
 
 /** From the start of one place to the end of another. */

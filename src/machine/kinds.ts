@@ -44,13 +44,47 @@ export const fluidMedia: Record<FluidKind, readonly Medium[]> = {
 /** Words of the language for things this edition does not draw yet. */
 export const laterKinds: ReadonlySet<string> = new Set([
   // electrical
-  "latching-relay", "counter", "key-switch", "foot-switch", "cable-pull", "door-switch", "vacuum-switch", "flow-switch",
-  "level-switch", "temperature-switch", "bell", "fuse", "circuit-breaker", "disconnect", "transformer", "power-supply",
-  "terminal-strip", "plug", "diode", "resistor", "input-card", "output-card",
+  "latching-relay",
+  "counter",
+  "key-switch",
+  "foot-switch",
+  "cable-pull",
+  "door-switch",
+  "vacuum-switch",
+  "flow-switch",
+  "level-switch",
+  "temperature-switch",
+  "bell",
+  "fuse",
+  "circuit-breaker",
+  "disconnect",
+  "transformer",
+  "power-supply",
+  "terminal-strip",
+  "plug",
+  "diode",
+  "resistor",
+  "input-card",
+  "output-card",
   // fluid
-  "accumulator", "cooler", "heater", "lubricator", "dryer", "flow-meter", "fluid-motor", "rotary-actuator", "reducing-valve",
-  "sequence-valve", "counterbalance-valve", "unloading-valve", "shuttle-valve", "quick-exhaust-valve", "flow-control",
-  "flow-divider", "quick-coupling", "test-point",
+  "accumulator",
+  "cooler",
+  "heater",
+  "lubricator",
+  "dryer",
+  "flow-meter",
+  "fluid-motor",
+  "rotary-actuator",
+  "reducing-valve",
+  "sequence-valve",
+  "counterbalance-valve",
+  "unloading-valve",
+  "shuttle-valve",
+  "quick-exhaust-valve",
+  "flow-control",
+  "flow-divider",
+  "quick-coupling",
+  "test-point",
   // blocks
   "power",
 ]);
@@ -64,9 +98,7 @@ export function isFluidKind(word: string): word is FluidKind {
 }
 
 /** Every word a declaration may begin with. */
-export const declarationWords: readonly string[] = [
-  ...new Set([...Object.keys(deviceRoles), ...Object.keys(fluidMedia), "supply"]),
-];
+export const declarationWords: readonly string[] = [...new Set([...Object.keys(deviceRoles), ...Object.keys(fluidMedia), "supply"])];
 
 /** Components that stand at the end of a line and may go without a name: each line end gets one of its own. */
 export const unnamedEnds: ReadonlySet<FluidKind> = new Set<FluidKind>(["tank", "silencer", "exhaust", "gauge", "air-supply"]);

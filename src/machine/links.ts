@@ -38,7 +38,12 @@ export function linkSolenoids(valve: ValveDraft, devices: Map<string, Device>, n
 }
 
 /** Places limit and proximity switches along the strokes of their cylinders. */
-export function linkSwitches(drafts: readonly DeviceDraft[], components: ReadonlyMap<string, FluidComponent>, names: Names, report: Report): void {
+export function linkSwitches(
+  drafts: readonly DeviceDraft[],
+  components: ReadonlyMap<string, FluidComponent>,
+  names: Names,
+  report: Report,
+): void {
   for (const draft of drafts) {
     const { device, on, where, declaration } = draft;
     if (device.kind !== "limit-switch" && device.kind !== "proximity-switch") continue;
@@ -73,7 +78,12 @@ export function linkSwitches(drafts: readonly DeviceDraft[], components: Readonl
   }
 }
 
-function findCylinder({ device, on }: DeviceDraft, components: ReadonlyMap<string, FluidComponent>, names: Names, report: Report): FluidComponent | undefined {
+function findCylinder(
+  { device, on }: DeviceDraft,
+  components: ReadonlyMap<string, FluidComponent>,
+  names: Names,
+  report: Report,
+): FluidComponent | undefined {
   if (on?.kind !== "word" && on?.kind !== "part") {
     report.error("value-missing", on?.at ?? device.at, '"on" is followed by the cylinder that operates the switch.');
     return undefined;
@@ -114,11 +124,26 @@ export function linkPressureSwitches(
       const homes = circuits.filter(({ points }) => points.has(on.name));
       const [home] = homes;
       if (!home) {
-        report.error("unknown-point", on.at, `No fluid line names a point @${on.name}.`, didYouMean(on.name, circuits.flatMap(({ points }) => [...points.keys()])));
+        report.error(
+          "unknown-point",
+          on.at,
+          `No fluid line names a point @${on.name}.`,
+          didYouMean(
+            on.name,
+            circuits.flatMap(({ points }) => [...points.keys()]),
+          ),
+        );
         continue;
       }
       if (homes.length > 1) {
-        report.error("point-ambiguous", on.at, `@${on.name} is a point of ${listed(homes.map(({ circuit }) => `"${circuit.title}"`), "and")}: give it different names.`);
+        report.error(
+          "point-ambiguous",
+          on.at,
+          `@${on.name} is a point of ${listed(
+            homes.map(({ circuit }) => `"${circuit.title}"`),
+            "and",
+          )}: give it different names.`,
+        );
       }
       device.senses.point = on.name;
       lines.tap(home, sensor ?? putSensor(device, home, byName), "P", { kind: "point", point: on.name, at: on.at });
@@ -141,7 +166,10 @@ export function linkPressureSwitches(
     const ports = target.component.ports.map((port) => port.name);
     const port = on.kind === "part" ? on.part : ports.length === 1 ? (ports[0] as string) : undefined;
     if (port === undefined) {
-      report.error("port-missing", on.at, `Which port of ${name}? It has ${listed(ports, "and")}.`, { hint: `Write ${name}.${ports[0]}.`, data: { ports } });
+      report.error("port-missing", on.at, `Which port of ${name}? It has ${listed(ports, "and")}.`, {
+        hint: `Write ${name}.${ports[0]}.`,
+        data: { ports },
+      });
     } else if (!ports.includes(port)) {
       report.error("unknown-port", on.at, `${name} has no port ${port}: it has ${listed(ports, "and")}.`, didYouMean(port, ports));
     } else {
@@ -193,7 +221,12 @@ export function linkDrives(
         byName.set(device.name, draft);
       } else if (!names.isLost(drive.text)) {
         const kind = names.kindOf(drive.text);
-        if (kind === undefined) names.unknown(drive, (other) => other === "motor" || other === "electric-motor", `Declare it, as in "motor ${drive.text} 5.5 kW 400 V 3 phase".`);
+        if (kind === undefined)
+          names.unknown(
+            drive,
+            (other) => other === "motor" || other === "electric-motor",
+            `Declare it, as in "motor ${drive.text} 5.5 kW 400 V 3 phase".`,
+          );
         else report.error("wrong-kind", drive.at, `${drive.text} is ${withArticle(kind)}; a pump is driven by a motor.`);
       }
     }
@@ -201,7 +234,13 @@ export function linkDrives(
 }
 
 /** Looks up the motors guarded by overloads and the lamps in push-buttons. */
-export function linkDevices(drafts: readonly DeviceDraft[], devices: ReadonlyMap<string, Device>, byName: ReadonlyMap<string, ComponentDraft>, names: Names, report: Report): void {
+export function linkDevices(
+  drafts: readonly DeviceDraft[],
+  devices: ReadonlyMap<string, Device>,
+  byName: ReadonlyMap<string, ComponentDraft>,
+  names: Names,
+  report: Report,
+): void {
   const expect = (name: string, at: SourceRange, wanted: string, found: boolean): boolean => {
     if (found) return true;
     if (names.isLost(name)) return false;

@@ -47,15 +47,26 @@ export interface DrawingInfo {
   units: "metric" | "inch";
 }
 
-export type PaperName =
-  | "A4" | "A3" | "A2" | "A1" | "A0" | "ANSI-A" | "ANSI-B" | "ANSI-C" | "ANSI-D" | "ANSI-E";
+export type PaperName = "A4" | "A3" | "A2" | "A1" | "A0" | "ANSI-A" | "ANSI-B" | "ANSI-C" | "ANSI-D" | "ANSI-E";
 
 // ---------------------------------------------------------------- electrical
 
 /** Device kinds that can stand in a rung today. A new kind is added here first; the compiler then finds every table that needs it. */
 export type DeviceKind =
-  | "relay" | "contactor" | "timer" | "push-button" | "emergency-stop" | "selector-switch" | "limit-switch"
-  | "proximity-switch" | "pressure-switch" | "overload" | "solenoid" | "pilot-light" | "horn" | "motor";
+  | "relay"
+  | "contactor"
+  | "timer"
+  | "push-button"
+  | "emergency-stop"
+  | "selector-switch"
+  | "limit-switch"
+  | "proximity-switch"
+  | "pressure-switch"
+  | "overload"
+  | "solenoid"
+  | "pilot-light"
+  | "horn"
+  | "motor";
 
 export interface Device {
   name: string;
@@ -218,9 +229,25 @@ export interface Potential {
 export type Medium = "hydraulic" | "pneumatic";
 
 export type FluidKind =
-  | "tank" | "pump" | "electric-motor" | "compressor" | "air-supply" | "service-unit" | "filter" | "cylinder" | "valve" | "relief-valve"
-  | "check-valve" | "pilot-operated-check-valve" | "throttle" | "one-way-flow-control" | "silencer" | "gauge"
-  | "pressure-switch" | "shut-off-valve" | "exhaust";
+  | "tank"
+  | "pump"
+  | "electric-motor"
+  | "compressor"
+  | "air-supply"
+  | "service-unit"
+  | "filter"
+  | "cylinder"
+  | "valve"
+  | "relief-valve"
+  | "check-valve"
+  | "pilot-operated-check-valve"
+  | "throttle"
+  | "one-way-flow-control"
+  | "silencer"
+  | "gauge"
+  | "pressure-switch"
+  | "shut-off-valve"
+  | "exhaust";
 
 export interface FluidCircuit {
   kind: "fluid";
@@ -308,7 +335,16 @@ export interface CylinderSpec {
 }
 
 export type ActuatorKind =
-  | "solenoid" | "proportional-solenoid" | "piloted-solenoid" | "spring" | "detent" | "pilot" | "push-button" | "lever" | "pedal" | "roller"
+  | "solenoid"
+  | "proportional-solenoid"
+  | "piloted-solenoid"
+  | "spring"
+  | "detent"
+  | "pilot"
+  | "push-button"
+  | "lever"
+  | "pedal"
+  | "roller"
   | "plunger";
 
 export interface ValveActuator {

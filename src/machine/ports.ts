@@ -54,7 +54,13 @@ export function throughPorts(kind: FluidKind, ports: readonly string[]): { arriv
 
 /** For 4- and 5-port pneumatic valves the usual slip is to write the hydraulic letters, and the other way round. */
 export function portInOtherScheme(port: string, ports: readonly string[]): string | undefined {
-  const pairs: [string, string][] = [["P", "1"], ["B", "2"], ["T", "3"], ["A", ports.includes("4") ? "4" : "2"], ["R", "5"]];
+  const pairs: [string, string][] = [
+    ["P", "1"],
+    ["B", "2"],
+    ["T", "3"],
+    ["A", ports.includes("4") ? "4" : "2"],
+    ["R", "5"],
+  ];
   for (const [letter, digit] of pairs) {
     if (port === letter && ports.includes(digit)) return digit;
     if (port === digit && ports.includes(letter)) return letter;

@@ -11,7 +11,10 @@ export const widestLineNumber = "0000W";
  * left to right, and start behind rails that are numbers themselves: with rails 1 and N the first wire is 2.
  * Numbers by line are known only when the sheets are laid out; `widestLineNumber` stands in for them here.
  */
-export function numberPotentials(named: readonly { rail?: string; points: string[] }[], wireNumbers: DrawingInfo["wireNumbers"]): Potential[] {
+export function numberPotentials(
+  named: readonly { rail?: string; points: string[] }[],
+  wireNumbers: DrawingInfo["wireNumbers"],
+): Potential[] {
   const numericRails = named.flatMap(({ rail }) => (rail !== undefined && /^\d{1,9}$/.test(rail) ? [Number(rail)] : []));
   let next = Math.max(0, ...numericRails) + 1;
   return named.map(({ rail, points }, id) => {

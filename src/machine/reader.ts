@@ -119,8 +119,12 @@ export class ItemReader {
     if (item?.kind === "word") {
       this.index++;
       if ((choices as readonly string[]).includes(item.text)) return item.text as Choice;
-      this.report.error("value-unknown", item.at, `"${property.text}" takes ${listed(choices)}, not "${item.text}".`,
-        didYouMean(item.text, choices));
+      this.report.error(
+        "value-unknown",
+        item.at,
+        `"${property.text}" takes ${listed(choices)}, not "${item.text}".`,
+        didYouMean(item.text, choices),
+      );
       return undefined;
     }
     this.missing(property, listed(choices));

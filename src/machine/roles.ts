@@ -7,6 +7,9 @@ import { withArticle } from "./report.js";
 /** Brackets within brackets beyond any real circuit; deeper ones are not read. */
 export const deepest = 100;
 
+/** Where a path stands: before any `->`, where the load stands, or elsewhere behind `->`. */
+type Place = "before" | "load" | "behind";
+
 /**
  * Says of each name in a rung whether it stands there as a contact or as what is driven.
  *
@@ -27,23 +30,36 @@ export class Roles {
     return this.loads.has(reference);
   }
 
-  decide(series: Series, driven = false, depth = 0): void {
+  decide(series: Series): void {
+    this.decideSeries(series, "before", 0);
+  }
+
+  private decideSeries(series: Series, place: Place, depth: number): void {
     if (depth > deepest) return;
-    const arrow = series.arrow ?? (driven ? 0 : series.items.length);
-    for (const item of series.items.slice(0, arrow)) this.beforeArrow(item, depth);
+    const arrow = series.arrow ?? (place === "load" ? 0 : series.items.length);
+    for (const item of series.items.slice(0, arrow)) this.asContact(item, place, depth);
     const behind = series.items.slice(arrow);
     if (behind.length > 0) this.behindArrow(behind, depth, series.arrow !== undefined);
   }
 
-  private beforeArrow(item: PathItem, depth: number): void {
-    if (item.kind === "parallel") for (const branch of item.branches) this.decide(branch, false, depth + 1);
+  private asContact(item: PathItem, place: Place, depth: number): void {
+    if (item.kind === "parallel") for (const branch of item.branches) this.decideSeries(branch, place, depth + 1);
     else if (item.kind === "reference" && this.onlyDriven(item)) {
       this.loads.add(item);
-      this.incomplete = true;
-      this.report.error("arrow-missing", item.name.at, `${item.name.text} is ${withArticle(this.kindOf(item.name.text) as string)}: "->" stands before what is driven.`, {
-        hint: `Write -> ${item.name.text}.`,
-      });
+      if (place === "before") this.arrowMissing(item);
     }
+  }
+
+  private arrowMissing({ name }: PathReference): void {
+    this.incomplete = true;
+    this.report.error(
+      "arrow-missing",
+      name.at,
+      `${name.text} is ${withArticle(this.kindOf(name.text) as string)}: "->" stands before what is driven.`,
+      {
+        hint: `Write -> ${name.text}.`,
+      },
+    );
   }
 
   private behindArrow(items: readonly PathItem[], depth: number, ownArrow: boolean): void {
@@ -51,8 +67,9 @@ export class Roles {
     const load = found >= 0 ? found : items.findIndex((item) => item.kind === "parallel" && this.holdsLoad(item, depth));
     if (load < 0 && ownArrow) this.nothingDriven(items);
     items.forEach((item, index) => {
-      if (item.kind === "parallel") for (const branch of item.branches) this.decide(branch, index === load, depth + 1);
-      else if (item.kind === "reference" && (index === load || this.onlyDriven(item))) this.loads.add(item);
+      if (index !== load) this.asContact(item, "behind", depth);
+      else if (item.kind === "reference") this.loads.add(item);
+      else if (item.kind === "parallel") for (const branch of item.branches) this.decideSeries(branch, "load", depth + 1);
     });
   }
 
@@ -63,7 +80,8 @@ export class Roles {
     const kind = this.kindOf(first.name.text);
     // An unknown or unsuitable name has its own message.
     if (kind === undefined || kind === "motor") return;
-    const what = first.negated && deviceRoles[kind].load ? `/${first.name.text} is a contact` : `${first.name.text} is ${withArticle(kind)}`;
+    const what =
+      first.negated && deviceRoles[kind].load ? `/${first.name.text} is a contact` : `${first.name.text} is ${withArticle(kind)}`;
     this.report.error("not-a-load", first.at, `${what}, which cannot be driven: nothing behind "->" is a load.`, {
       hint: "A relay, contactor, timer, solenoid, pilot-light or horn is driven.",
     });

@@ -2,7 +2,17 @@ import type { SourceRange } from "../language/diagnostic.js";
 import type { LadderBlock, Parallel, PathItem, PathReference, Rung as RungSyntax, Series } from "../language/tree.js";
 import { deviceRoles } from "./kinds.js";
 import type {
-  ContactUse, Device, LadderCircuit, LoadUse, NodeId, ParallelPath, Rung, RungElement, RungEnd, SeriesPath, Supply,
+  ContactUse,
+  Device,
+  LadderCircuit,
+  LoadUse,
+  NodeId,
+  ParallelPath,
+  Rung,
+  RungElement,
+  RungEnd,
+  SeriesPath,
+  Supply,
 } from "./model.js";
 import type { Names } from "./names.js";
 import { NodeJoiner } from "./nodes.js";
@@ -99,7 +109,14 @@ export class RungBuilder {
 
     const start: RungEnd = { kind: "rail", node: rails[0] };
     const end: RungEnd = { kind: "rail", node: rails[1] };
-    const rung: Rung = { id, title: syntax.title?.text, start, end, path: { kind: "series", items: [], from: -1, to: -1 }, at: syntax.title?.at ?? syntax.at };
+    const rung: Rung = {
+      id,
+      title: syntax.title?.text,
+      start,
+      end,
+      path: { kind: "series", items: [], from: -1, to: -1 },
+      at: syntax.title?.at ?? syntax.at,
+    };
     const [first] = items;
     if (first?.kind === "point") {
       rung.start = { kind: "point", point: first.name, node: this.point(first.name), at: first.at };
@@ -198,8 +215,12 @@ export class RungBuilder {
       return undefined;
     }
     const contact: ContactUse = {
-      kind: "contact", id: "", form: negated ? "NC" : "NO", timed: device.kind === "timer" && part === undefined,
-      terminals: { value: ["", ""], by: "unallotted" }, ...shared,
+      kind: "contact",
+      id: "",
+      form: negated ? "NC" : "NO",
+      timed: device.kind === "timer" && part === undefined,
+      terminals: { value: ["", ""], by: "unallotted" },
+      ...shared,
     };
     if (!this.readPart(contact, device, reference)) return undefined;
     pin(contact, reference, this.report);
@@ -211,19 +232,30 @@ export class RungBuilder {
     if (device.kind === "selector-switch") {
       const positions = device.selector?.positions ?? [];
       if (!part) {
-        this.report.error("position-missing", at, `In which position of ${name.text}? It has ${listed(positions, "and")}.`, { hint: `Write ${name.text}.${positions[0]}.` });
+        this.report.error("position-missing", at, `In which position of ${name.text}? It has ${listed(positions, "and")}.`, {
+          hint: `Write ${name.text}.${positions[0]}.`,
+        });
         return false;
       }
       if (!positions.includes(part.text)) {
-        this.report.error("unknown-position", part.at, `${name.text} has no position ${part.text}: it has ${listed(positions, "and")}.`, didYouMean(part.text, positions));
+        this.report.error(
+          "unknown-position",
+          part.at,
+          `${name.text} has no position ${part.text}: it has ${listed(positions, "and")}.`,
+          didYouMean(part.text, positions),
+        );
         return false;
       }
       contact.position = part.text;
       return true;
     }
     if (!part || (device.kind === "timer" && part.text === "inst")) return true;
-    this.report.error("unknown-part", part.at, `${name.text} is ${withArticle(device.kind)} and has no part ${part.text}.`,
-      device.kind === "timer" ? { hint: `Its instantaneous contact is ${name.text}.inst.` } : {});
+    this.report.error(
+      "unknown-part",
+      part.at,
+      `${name.text} is ${withArticle(device.kind)} and has no part ${part.text}.`,
+      device.kind === "timer" ? { hint: `Its instantaneous contact is ${name.text}.inst.` } : {},
+    );
     return false;
   }
 
@@ -231,13 +263,19 @@ export class RungBuilder {
     if (this.names.isLost(name.text)) return;
     const kind = this.names.kindOf(name.text);
     if (kind === undefined) {
-      const coil = /^\d*(SOL|Y|MB)/.test(name.text) ? `A solenoid is declared by its valve, as in "valve V1 5/2 left solenoid ${name.text} right spring".` : `Declare it, as in "relay ${name.text}".`;
+      const coil = /^\d*(SOL|Y|MB)/.test(name.text)
+        ? `A solenoid is declared by its valve, as in "valve V1 5/2 left solenoid ${name.text} right spring".`
+        : `Declare it, as in "relay ${name.text}".`;
       this.names.unknown(name, (other) => Object.hasOwn(deviceRoles, other), coil);
       return;
     }
     const coils = [...this.devices.values()].filter(({ valve }) => valve?.name === name.text).map((coil) => coil.name);
-    this.report.error("wrong-kind", name.at, `${name.text} is ${withArticle(kind)}, which cannot stand in a rung.`,
-      coils.length > 0 ? { hint: `Its coil is ${listed(coils)}.` } : {});
+    this.report.error(
+      "wrong-kind",
+      name.at,
+      `${name.text} is ${withArticle(kind)}, which cannot stand in a rung.`,
+      coils.length > 0 ? { hint: `Its coil is ${listed(coils)}.` } : {},
+    );
   }
 }
 

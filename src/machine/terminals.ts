@@ -93,10 +93,15 @@ function checkPins({ name, contacts, kind }: Device, report: Report): Set<number
     if (terminals.by !== "author" || !("at" in terminals)) continue;
     const first = terminals.value.map((terminal) => byTerminal.get(terminal)).find((other) => other !== undefined);
     if (first && !isChangeover(first, contact)) {
-      report.error("terminals-twice", terminals.at, `${name}:${first.terminals.value.join("-")} is already used${sameTerminals(first, contact) ? "" : ", and shares a terminal with this contact"}.`, {
-        hint: "Each contact has terminals of its own.",
-        seeAlso: "at" in first.terminals ? [{ message: "First used here.", at: first.terminals.at }] : [],
-      });
+      report.error(
+        "terminals-twice",
+        terminals.at,
+        `${name}:${first.terminals.value.join("-")} is already used${sameTerminals(first, contact) ? "" : ", and shares a terminal with this contact"}.`,
+        {
+          hint: "Each contact has terminals of its own.",
+          seeAlso: "at" in first.terminals ? [{ message: "First used here.", at: first.terminals.at }] : [],
+        },
+      );
     }
     for (const terminal of terminals.value) byTerminal.set(terminal, contact);
     const pinned = placeOf(terminals.value);
@@ -104,8 +109,11 @@ function checkPins({ name, contacts, kind }: Device, report: Report): Set<number
     taken.add(pinned.place);
     if (!suits(contact, pinned.digits)) {
       const [a, b] = digitsOf(contact, kind);
-      report.warning("terminals-unlike-contact", terminals.at,
-        `${terminals.value.join("-")} are not the numbers of a normally ${contact.form === "NO" ? "open" : "closed"} contact: by EN 50005 they end in ${a} and ${b}.`);
+      report.warning(
+        "terminals-unlike-contact",
+        terminals.at,
+        `${terminals.value.join("-")} are not the numbers of a normally ${contact.form === "NO" ? "open" : "closed"} contact: by EN 50005 they end in ${a} and ${b}.`,
+      );
     }
   }
   return taken;

@@ -115,8 +115,11 @@ function readType(draft: ValveDraft, item: Item, read: ItemReader): boolean {
     draft.type = { ports, positions, at: item.at };
   } else {
     const known = ["3/3", "4/4", "6/2", "6/3"].includes(item.text);
-    read.report.error(known ? "not-yet-supported" : "value-unknown", item.at,
-      known ? `A ${item.text} valve is not yet supported.` : `There is no ${item.text} valve: ports and positions are ${listed(offered)}.`);
+    read.report.error(
+      known ? "not-yet-supported" : "value-unknown",
+      item.at,
+      known ? `A ${item.text} valve is not yet supported.` : `There is no ${item.text} valve: ports and positions are ${listed(offered)}.`,
+    );
     draft.type = { ports: 4, positions: item.text.endsWith("/3") ? 3 : 2, at: item.at };
   }
   return true;
@@ -126,7 +129,14 @@ function readType(draft: ValveDraft, item: Item, read: ItemReader): boolean {
 export function readValve(declaration: Declaration & { name: Word }, medium: Medium, report: Report): ValveDraft {
   const { name } = declaration;
   const component: FluidComponent = {
-    id: name.text, name: name.text, kind: "valve", medium, text: declaration.text?.text, values: [], ports: [], at: name.at,
+    id: name.text,
+    name: name.text,
+    kind: "valve",
+    medium,
+    text: declaration.text?.text,
+    values: [],
+    ports: [],
+    at: name.at,
   };
   const draft: ValveDraft = Object.assign(draftOf(component, declaration), { left: [], right: [], coils: [], coil: {} });
   readProperties(draft, readerOf(declaration, report), "a valve", table);
@@ -149,7 +159,11 @@ export function readValve(declaration: Declaration & { name: Word }, medium: Med
   const spec: ValveSpec = {
     ports,
     positions,
-    boxes: boxesOf(ports, positions, { centre: readCentre(draft, ports, positions, report), normally: readNormally(draft, ports, report), springAt }),
+    boxes: boxesOf(ports, positions, {
+      centre: readCentre(draft, ports, positions, report),
+      normally: readNormally(draft, ports, report),
+      springAt,
+    }),
     left: draft.left,
     right: draft.right,
   };
@@ -158,7 +172,11 @@ export function readValve(declaration: Declaration & { name: Word }, medium: Med
   if (draft.start) {
     if (spec.normal === undefined) spec.start = draft.start.value;
     else {
-      report.error("value-contradicts", draft.start.at, `${name.text} has a normal position, in which it starts; "start" is for valves without one.`);
+      report.error(
+        "value-contradicts",
+        draft.start.at,
+        `${name.text} has a normal position, in which it starts; "start" is for valves without one.`,
+      );
     }
   }
   component.valve = spec;
@@ -180,8 +198,11 @@ function springEnd({ left, right, component, springs }: ValveDraft, positions: n
   if (positions === 3) return undefined;
   const [atLeft, atRight] = [left, right].map((end) => end.some(({ kind }) => kind === "spring"));
   if (atLeft && atRight) {
-    report.error("value-contradicts", springs?.at ?? component.at,
-      `A two-position valve rests at the end with its spring: ${component.name} cannot have one at both ends.`);
+    report.error(
+      "value-contradicts",
+      springs?.at ?? component.at,
+      `A two-position valve rests at the end with its spring: ${component.name} cannot have one at both ends.`,
+    );
   }
   return atRight ? "right" : atLeft ? "left" : undefined;
 }
@@ -203,14 +224,21 @@ function readCentre({ centre, component }: ValveDraft, ports: number, positions:
 
 function readNormally({ normally, component }: ValveDraft, ports: number, report: Report): Normally | undefined {
   if (normally && ports > 3) {
-    report.error("value-contradicts", normally.at, `Only valves with 2 or 3 ports are normally open or closed; ${component.name} has ${ports}.`);
+    report.error(
+      "value-contradicts",
+      normally.at,
+      `Only valves with 2 or 3 ports are normally open or closed; ${component.name} has ${ports}.`,
+    );
   }
   return normally?.value;
 }
 
 function givePorts(draft: ValveDraft, { ports, left, right }: ValveSpec, medium: Medium): void {
   const names = [...valvePorts(ports, medium)];
-  for (const [side, end] of [["left", left], ["right", right]] as const) {
+  for (const [side, end] of [
+    ["left", left],
+    ["right", right],
+  ] as const) {
     if (end.some(({ kind }) => kind === "pilot")) names.push(pilotPort(side, medium));
   }
   draft.component.ports = names.map((name) => ({ name, plugged: false }));
