@@ -156,7 +156,10 @@ class MachineBuilder {
   private declare(declaration: Declaration, fluid?: CircuitDraft): void {
     const { keyword } = declaration;
     const kind = keyword.text;
-    if (kind === "supply") return this.declareSupply(declaration);
+    if (kind === "supply") {
+      this.declareSupply(declaration);
+      return;
+    }
     if (laterKinds.has(kind)) {
       this.report.error("not-yet-supported", keyword.at, `${capital(withArticle(kind))} is not yet supported.`);
       if (declaration.name && this.names.kindOf(declaration.name.text) === undefined) {
@@ -165,7 +168,10 @@ class MachineBuilder {
       }
       return;
     }
-    if (!isDeviceKind(kind) && !isFluidKind(kind)) return this.unknownKind(declaration);
+    if (!isDeviceKind(kind) && !isFluidKind(kind)) {
+      this.unknownKind(declaration);
+      return;
+    }
     const { name } = declaration;
     if (!name) {
       this.report.error(

@@ -106,7 +106,10 @@ export class LineBuilder {
       this.report.error("wrong-medium", line.role.at, 'Oil is not let out into the open: lead it to the tank with "line" or "drain".');
       return;
     }
-    if (line.groups.length === 1) return this.readOpenEnd(draft, line, { role, ...properties });
+    if (line.groups.length === 1) {
+      this.readOpenEnd(draft, line, { role, ...properties });
+      return;
+    }
     const last = line.groups.length - 1;
     const groups = line.groups.map((group, index) =>
       group.map((end) => this.readEnd(draft, end, index > 0, index < last)).filter((end) => end !== undefined),

@@ -180,7 +180,10 @@ export function readProperties<Draft>(draft: Draft, read: ItemReader, kind: stri
 
 function readBare<Draft>(draft: Draft, item: Item & { kind: "quantity" }, read: ItemReader, table: PropertyTable<Draft>): void {
   const taker = table.bare?.[item.quantity.dimension];
-  if (taker) return taker(draft, item.quantity, item.at);
+  if (taker) {
+    taker(draft, item.quantity, item.at);
+    return;
+  }
   const units = bareUnits(table);
   if (units.length > 0) read.checked(item, Object.keys(table.bare ?? {}) as Dimension[], read.owner);
   else read.report.error("unknown-property", item.at, `${read.owner} takes no value here: say what ${item.text} is.`);

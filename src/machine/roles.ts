@@ -76,7 +76,7 @@ export class Roles {
   private nothingDriven(items: readonly PathItem[]): void {
     this.incomplete = true;
     const first = items.find((item) => item.kind === "reference");
-    if (!first || first.kind !== "reference") return;
+    if (first?.kind !== "reference") return;
     const kind = this.kindOf(first.name.text);
     // An unknown or unsuitable name has its own message.
     if (kind === undefined || kind === "motor") return;

@@ -48,7 +48,7 @@ function readEnd(side: Side): PropertyTable<ValveDraft>["words"][string] {
     for (;;) {
       const item = read.peek();
       const kind = item?.kind === "word" && Object.hasOwn(actuatorWords, item.text) ? actuatorWords[item.text] : undefined;
-      if (!item || item.kind !== "word" || kind === undefined) break;
+      if (item?.kind !== "word" || kind === undefined) break;
       read.next();
       const actuator: ValveActuator = { kind, override: false };
       if (isSolenoid(actuator)) {
