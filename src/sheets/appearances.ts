@@ -82,7 +82,8 @@ export function findAppearances(
 
 /** A contact's terminals as they are written, `13-14`; empty when it has none. */
 export function terminalsOf(contact: ContactUse): string {
-  return contact.terminals.value.filter((terminal) => terminal !== "").join("-");
+  const printed = contact.terminals.value.join("-");
+  return printed === "-" ? "" : printed;
 }
 
 /** The cylinder or fluid point that works a switch. */

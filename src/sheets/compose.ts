@@ -2,6 +2,7 @@ import type { Box } from "../drawing/geometry.js";
 import type { DrawingSet, DrawnSheet, Mark, PartId } from "../drawing/marks.js";
 import type { Layout } from "../layout/placement.js";
 import type { Machine } from "../machine/model.js";
+import { switchReference } from "../schedules/cross-reference.js";
 import type { CrossReferenceRow } from "../schedules/rows.js";
 import type { World } from "../world.js";
 import { type Appearances, findAppearances, terminalsOf } from "./appearances.js";
@@ -36,7 +37,7 @@ export function composeSheets(machine: Machine, layout: Layout, rows: readonly C
     notes: [...circuitNotes, ...drawing.notes, ...(sheet.notes ?? [])],
   }));
   let next = Math.max(0, ...contents.map(({ number }) => number)) + 1;
-  for (const marks of setTables(crossReferenceTables(rows, appearances), columnsOf(page.area))) {
+  for (const marks of setTables(crossReferenceTables(rows, switchReference(machine, layout), appearances), columnsOf(page.area))) {
     contents.push({ number: next++, title: "Cross-reference", marks, notes: tableNotes });
   }
   if (contents.length === 0) contents.push({ number: 1, title: "", marks: [], notes: circuitNotes });
@@ -69,14 +70,15 @@ function columnsOf(area: Box): Box[] {
   return Array.from({ length: count }, (_, i) => ({ ...area, x: area.x + i * (width + gap), width }));
 }
 
-interface Content {
+export interface Content {
   number: number;
   title: string;
   marks: Mark[];
   notes: string[];
 }
 
-function framed(contents: Content[], page: Page, { drawing }: Machine, world: World): DrawnSheet[] {
+/** Sheets with their frame, title block, revisions and notes. */
+export function framed(contents: Content[], page: Page, { drawing }: Pick<Machine, "drawing">, world: World): DrawnSheet[] {
   const own = page.paper.titleBlock.template;
   const template = readTemplate(templateNames(world).includes(drawing.template) ? drawing.template : own, world);
   const frame = frameMarks(page);

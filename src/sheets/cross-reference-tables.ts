@@ -9,19 +9,30 @@ export const tableNotes = [
   "Not a certification. Isolate and verify before work.",
 ];
 
-/** The cross-reference as tables: every coil and other load with its contacts and its valve, then every switch with what works it. */
-export function crossReferenceTables(rows: readonly CrossReferenceRow[], appearances: Appearances): Table[] {
-  const isLoad = (row: CrossReferenceRow) => (appearances.machine.devices.get(row.coil)?.loads.length ?? 0) > 0;
-  return [
-    coilTable(rows.filter(isLoad), appearances),
-    switchTable(
-      rows.filter((row) => !isLoad(row)),
-      appearances,
-    ),
-  ].filter((table) => table.rows.length > 0);
+/**
+ * The cross-reference as tables: every coil and other load with its contacts and its valve, then every switch with what
+ * works it. A column with nothing in it is left out.
+ */
+export function crossReferenceTables(
+  coils: readonly CrossReferenceRow[],
+  switches: readonly CrossReferenceRow[],
+  appearances: Appearances,
+): Table[] {
+  return [coilTable(coils, appearances), switchTable(switches, appearances)].filter(({ rows }) => rows.length > 0).map(withoutEmptyColumns);
 }
 
-function coilTable(rows: CrossReferenceRow[], appearances: Appearances): Table {
+function withoutEmptyColumns(table: Table): Table {
+  const filled = table.columns.map((_, index) =>
+    table.rows.some((row) => {
+      const cell = row[index] as Cell;
+      return "entries" in cell ? cell.entries.length > 0 : cell.text !== "";
+    }),
+  );
+  const keep = <Item>(items: Item[]) => items.filter((_, index) => filled[index]);
+  return { ...table, columns: keep(table.columns), rows: table.rows.map(keep) };
+}
+
+function coilTable(rows: readonly CrossReferenceRow[], appearances: Appearances): Table {
   return {
     title: "Coils and other loads",
     columns: [
@@ -48,7 +59,7 @@ function coilTable(rows: CrossReferenceRow[], appearances: Appearances): Table {
   };
 }
 
-function switchTable(rows: CrossReferenceRow[], appearances: Appearances): Table {
+function switchTable(rows: readonly CrossReferenceRow[], appearances: Appearances): Table {
   return {
     title: "Switches and other contacts",
     columns: [

@@ -5,6 +5,7 @@ import { measureText } from "../../src/drawing/text.js";
 import type { Reference } from "../../src/layout/placement.js";
 import { writePdf } from "../../src/output/pdf.js";
 import { writeSvg } from "../../src/output/svg.js";
+import { switchReference } from "../../src/schedules/cross-reference.js";
 import type { ContactReference } from "../../src/schedules/rows.js";
 import { composeSheets } from "../../src/sheets/compose.js";
 import { assets } from "../support/assets.js";
@@ -222,9 +223,29 @@ describe("sheets", () => {
     expect(set.outline[4]).toMatchObject({ device: "SOL1", home: "SOL1", uses: [{ part: "V1/left" }] });
   });
 
+  test("the cross-reference has every coil and every switch, with what works it", () => {
+    expect(said(set, 4, "heading")).toEqual(
+      expect.arrayContaining(["Coils and other loads", "Switches and other contacts", "Valve", "Operated by"]),
+    );
+    const cells = said(set, 4, "cell");
+    expect(cells).toEqual(expect.arrayContaining(["CR1", "1.101", "13-14  1.102", "33-34  2.202", "21-22  2.201", "V1 3/C3"]));
+    expect(cells).toEqual(expect.arrayContaining(["PB1", "Push button", 'Start <& "go">', "LS1", "LIFT retracted 3/B3", "21-22  1.103"]));
+  });
+
+  test("a column with nothing in it is left out", () => {
+    const made = handMade();
+    for (const row of made.rows) delete row.valve;
+    expect(said(compose(made), 4, "heading")).not.toContain("Valve");
+  });
+
   test("a drawing with nothing in it is one empty sheet that can be written", async () => {
     const { machine } = handMade();
-    const empty = composeSheets({ ...machine, devices: new Map(), components: new Map() }, { sheets: [], places: new Map() }, [], assets);
+    const empty = composeSheets(
+      { ...machine, circuits: [], devices: new Map(), components: new Map() },
+      { sheets: [], places: new Map() },
+      [],
+      assets,
+    );
     expect(empty.sheets).toHaveLength(1);
     expect((await readPdf(await writePdf(empty, assets))).pages).toHaveLength(1);
   });
@@ -237,7 +258,7 @@ describe("sheets", () => {
 
 describe.each(["A4", "A3", "A1", "ANSI-A", "ANSI-D"] as const)("the cross-reference of a large machine on %s", (paper) => {
   const made = handMade({ paper });
-  const [relay, , , button] = made.rows as [Made["rows"][number], Made["rows"][number], Made["rows"][number], Made["rows"][number]];
+  const [relay, solenoid] = made.rows as [Made["rows"][number], Made["rows"][number]];
   const rows = [...made.rows];
   for (let i = 0; i < 70; i++) {
     const contacts = Array.from(
@@ -250,7 +271,7 @@ describe.each(["A4", "A3", "A1", "ANSI-A", "ANSI-D"] as const)("the cross-refere
         timed: k === 4,
       }),
     );
-    rows.push({ ...(i % 2 ? relay : button), text: "Holds the carriage until both grippers have let go".slice(0, 12 + i), contacts });
+    rows.push({ ...(i % 2 ? relay : solenoid), text: "Holds the carriage until both grippers have let go".slice(0, 12 + i), contacts });
   }
   const set = compose({ ...made, rows });
   const tables = set.sheets.filter(({ title }) => title === "Cross-reference");
@@ -282,7 +303,9 @@ describe.each(["A4", "A3", "A1", "ANSI-A", "ANSI-D"] as const)("the cross-refere
   test("every contact is named in full, once for each row it belongs to", () => {
     const cells = tables.flatMap(({ marks }) => texts(marks, "cell")).map(({ text }) => text);
     for (const terminals of ["13-14", "103-104"]) {
-      const wanted = rows.flatMap(({ contacts }) => contacts).filter((contact) => contact.terminals === terminals).length;
+      const wanted = [...rows, ...switchReference(made.machine, made.layout)]
+        .flatMap(({ contacts }) => contacts)
+        .filter((contact) => contact.terminals === terminals).length;
       expect(cells.filter((text) => text.startsWith(`${terminals} `))).toHaveLength(wanted);
     }
     expect(cells.filter((text) => /^\d+-\d+.*…/.test(text))).toEqual([]);

@@ -1,6 +1,16 @@
 import type { Point } from "../../src/drawing/geometry.js";
 import type { CircuitSheet, Layout, Place, PlacedText, ReferenceTo } from "../../src/layout/placement.js";
-import type { ContactUse, Device, DeviceKind, DrawingInfo, FluidComponent, LoadUse, Machine } from "../../src/machine/model.js";
+import type {
+  ContactUse,
+  Device,
+  DeviceKind,
+  DrawingInfo,
+  FluidComponent,
+  LadderCircuit,
+  LoadUse,
+  Machine,
+  SeriesPath,
+} from "../../src/machine/model.js";
 import type { CrossReferenceRow } from "../../src/schedules/rows.js";
 import type { Symbol as DrawnSymbol } from "../../src/symbols/symbol.js";
 
@@ -217,24 +227,20 @@ export function handMade(change: Partial<DrawingInfo> = {}): { machine: Machine;
       ],
     },
     { coil: "SOL1", kind: "solenoid", text: "Lift", sheet: 2, line: 201, contacts: [], valve: { name: "V1", sheet: 3, zone: "C3" } },
-    {
-      coil: "PB1",
-      kind: "push-button",
-      text: 'Start <& "go">',
-      sheet: 1,
-      line: 101,
-      contacts: [{ type: "NO", terminals: "13-14", sheet: 1, line: 101 }],
-    },
-    {
-      coil: "LS1",
-      kind: "limit-switch",
-      text: "Lift down",
-      sheet: 1,
-      line: 103,
-      contacts: [{ type: "NC", terminals: "21-22", sheet: 1, line: 103 }],
-    },
   ];
-  const machine: Machine = { drawing, devices, components, supplies: [], circuits: [], potentials: [], sequences: [] };
+  const uses = [...devices.values()].flatMap((each) => [...each.contacts, ...each.loads]);
+  const path: SeriesPath = { kind: "series", items: uses, from: 0, to: 2 };
+  const rail = { kind: "rail" as const, node: 0 };
+  const control: LadderCircuit = {
+    kind: "ladder",
+    id: "Control",
+    title: "Control",
+    supply: { name: "CTRL", current: "DC", rails: ["L+", "M"], at },
+    rungs: [{ id: "rung", start: rail, end: rail, path, at }],
+    sheetBreaks: [],
+    at,
+  };
+  const machine: Machine = { drawing, devices, components, supplies: [], circuits: [control], potentials: [], sequences: [] };
   return { machine, layout: { sheets, places }, rows };
 }
 
