@@ -1,252 +1,252 @@
 import type { Box, Mm, Point } from "../drawing/geometry.js";
-import type { DrawingSet, Mark } from "../drawing/marks.js";
-import { circle, movePath, polyline } from "../drawing/path.js";
-import { measureText, wrapText } from "../drawing/text.js";
-import { readDrawingInfo } from "../machine/drawing.js";
-import type { ActuatorKind, DrawingInfo, Medium, ValveActuator, ValveSpec } from "../machine/model.js";
-import { Report } from "../machine/report.js";
-import { boxesOf, centreWords, fivePortCentreWords } from "../machine/valve-boxes.js";
-import { composeCylinder } from "../symbols/cylinder.js";
-import type { SymbolLibrary, symbolFolders } from "../symbols/library.js";
-import type { Symbol } from "../symbols/symbol.js";
-import { composeValve } from "../symbols/valve.js";
+import type { DrawingSet, Mark, Segment } from "../drawing/marks.js";
+import { circle, movePath } from "../drawing/path.js";
+import { fitText, measureText, wrapText } from "../drawing/text.js";
+import type { DrawingInfo } from "../machine/model.js";
+import { composedExamples } from "../symbols/examples.js";
+import { openSymbols } from "../symbols/library.js";
+import type { Port, Symbol } from "../symbols/symbol.js";
 import type { World } from "../world.js";
-import { type Content, framed } from "./compose.js";
-import { pageOf } from "./page.js";
+import { frameMarks } from "./frame.js";
+import { type Page, pageOf } from "./page.js";
 import { papers } from "./paper.js";
+import { readTemplate } from "./template.js";
+import { stripMarks } from "./title-block.js";
 
-interface Section {
+/** One symbol on the chart. */
+interface Entry {
+  name: string;
   title: string;
-  symbols: { symbol: Symbol; label: string }[];
+  symbol: Symbol;
+  /** Pitch of the grid behind it. */
+  module: Mm;
 }
 
-/** Room around a symbol in its cell, and the least width of a cell for its label. */
-const margin: Mm = 5;
-const leastWidth: Mm = 32;
-const labelHeight: Mm = 1.8;
-const labelLine: Mm = 3;
-const labelLines = 3;
-const grid: Mm = 2;
-const pale = "#c8c8c8";
-const portInk = "#b00000";
+interface Family {
+  title: string;
+  entries: Entry[];
+}
+
+const folderTitles: Record<string, string> = {
+  fluid: "Fluid power",
+  international: "Electrical, international",
+  "north-american": "Electrical, north-american",
+};
+
+const electricalModule: Mm = 2.5;
+const fluidModule: Mm = 2;
+
+const columns = 8;
+const nameHeight: Mm = 2.5;
+const smallHeight: Mm = 1.8;
+const headingHeight: Mm = 3.5;
+/** Room around a symbol within its cell, where its ports are named. */
+const clear: Mm = 6;
+const gridInk = "#d9dde2";
+const portInk = "#1a7f5a";
 
 /**
- * A chart of every symbol there is, at true size on the module grid with its ports ringed: the files of `symbols/`, then
- * valves and cylinders as they are composed, one for each rule.
+ * All symbols there are, read and composed, by family with name and title, their ports marked and named and the module
+ * grid behind them, on as many A3 sheets as it takes.
  */
-export function composeSymbolChart(symbols: SymbolLibrary, world: World): DrawingSet {
-  const drawing: DrawingInfo = {
-    ...readDrawingInfo([], "symbols", new Report()),
-    title: "Symbols",
-    number: "symbols",
-    documentType: "Symbol chart",
-  };
-  const page = pageOf(papers[drawing.paper]);
-  const notes = ["Grid 2 mm. A ring marks where a line joins."];
-  const contents: Content[] = [];
-  for (const section of [...filed(symbols), ...composed()]) {
-    for (const marks of setSection(section, page.area)) contents.push({ number: contents.length + 1, title: section.title, marks, notes });
-  }
+export function symbolChart(world: World): DrawingSet {
+  const page = pageOf(papers.A3);
+  const sheets = setFamilies(families(world), page.area);
+  const frame = frameMarks(page);
+  const template = readTemplate(page.paper.titleBlock.template, world);
   return {
     info: {
-      title: drawing.title,
-      number: drawing.number,
-      author: "",
-      subject: drawing.documentType,
+      title: chart.title,
+      number: chart.number,
+      author: chart.owner,
+      subject: chart.documentType,
       revision: "",
-      language: drawing.language,
+      language: chart.language,
       date: "",
     },
-    sheets: framed(contents, page, { drawing }, world),
+    sheets: sheets.map(({ title, marks }, index) => ({
+      number: index + 1,
+      title,
+      size: page.paper.size,
+      marks: [...frame, ...strip(page, template, { number: index + 1, title, count: sheets.length }), ...marks],
+    })),
     anchors: new Map(),
     parts: new Map(),
     outline: [],
   };
 }
 
-function filed(symbols: SymbolLibrary): Section[] {
-  const titles: Record<(typeof symbolFolders)[number], string> = {
-    "north-american": "Ladder symbols, north-american",
-    international: "Ladder symbols, international",
-    fluid: "Fluid symbols",
-  };
-  const names = symbols.names();
-  return (["north-american", "international", "fluid"] as const)
-    .map((folder) => ({
-      title: titles[folder],
-      symbols: names
-        .filter((name) => name.startsWith(`${folder}/`))
-        .map((name) => ({ symbol: symbols.get(name), label: `${symbols.get(name).title}\n${name.slice(folder.length + 1)}` })),
-    }))
-    .filter((section) => section.symbols.length > 0);
+const chart: DrawingInfo = {
+  title: "Symbols",
+  number: "SYMBOLS",
+  owner: "Spoolrung",
+  creator: "",
+  approvedBy: "",
+  department: "",
+  documentType: "Symbol chart",
+  status: "",
+  date: "",
+  language: "en",
+  revisions: [],
+  notes: [],
+  convention: "north-american",
+  paper: "A3",
+  template: "",
+  lineNumbers: "by-sheet",
+  wireNumbers: "running",
+  units: "metric",
+};
+
+const notes = [
+  "Grid: one module, 2.5 mm electrical and 2 mm fluid. Green: ports.",
+  "Own drawings after the grammar of IEC 60617, IEEE 315 and ISO 1219-1.",
+];
+
+function strip(page: Page, template: ReturnType<typeof readTemplate>, sheet: { number: number; title: string; count: number }): Mark[] {
+  return stripMarks(page, template, chart, { ...sheet, notes });
 }
 
-function composed(): Section[] {
-  const valve = (label: string, medium: Medium, spec: ValveSpec) => ({
-    label,
-    symbol: composeValve(spec, medium, spec.normal ?? spec.positions - 1),
-  });
-  const end = (kind: ActuatorKind, override = false): ValveActuator => ({ kind, override });
-  const bySpring = (ports: ValveSpec["ports"], kind: ActuatorKind, normally?: "open" | "closed"): ValveSpec => ({
-    ports,
-    positions: 2,
-    boxes: boxesOf(ports, 2, { normally, springAt: "right" }),
-    normal: 1,
-    left: [end(kind)],
-    right: [end("spring")],
-  });
-  const threePositions = (ports: 4 | 5, centre: (typeof centreWords)[number] | (typeof fivePortCentreWords)[number]): ValveSpec => ({
-    ports,
-    positions: 3,
-    boxes: boxesOf(ports, 3, { centre }),
-    normal: 1,
-    left: [end("spring"), end("solenoid")],
-    right: [end("spring"), end("solenoid")],
-  });
-  // A record, so that a new way to work a valve is not forgotten here.
-  const acting: Record<Exclude<ActuatorKind, "spring" | "detent">, string> = {
-    solenoid: "solenoid",
-    "proportional-solenoid": "proportional solenoid",
-    "piloted-solenoid": "solenoid with pilot stage",
-    pilot: "pilot",
-    "push-button": "push-button",
-    lever: "lever",
-    pedal: "pedal",
-    roller: "roller",
-    plunger: "plunger",
-  };
-  const detented: ValveSpec = {
-    ...bySpring(5, "solenoid"),
-    normal: undefined,
-    left: [end("solenoid", true)],
-    right: [end("solenoid", true)],
-  };
-  const valves = [
-    ...([2, 3] as const).flatMap((ports) =>
-      (["closed", "open"] as const).map((normally) =>
-        valve(`${ports}/2 normally ${normally}`, "pneumatic", bySpring(ports, "solenoid", normally)),
-      ),
-    ),
-    valve("4/2", "hydraulic", bySpring(4, "solenoid")),
-    valve("5/2", "pneumatic", bySpring(5, "solenoid")),
-    valve("5/2, two solenoids with override", "pneumatic", detented),
-    valve("4/2, two solenoids, detent", "hydraulic", {
-      ...bySpring(4, "solenoid"),
-      normal: undefined,
-      right: [end("detent"), end("solenoid")],
-    }),
-    ...centreWords.map((centre) => valve(`4/3 centre ${centre}`, "hydraulic", threePositions(4, centre))),
-    ...fivePortCentreWords.map((centre) => valve(`5/3 centre ${centre}`, "pneumatic", threePositions(5, centre))),
-    ...(Object.keys(acting) as (keyof typeof acting)[]).map((kind) =>
-      valve(`worked by ${acting[kind]}`, "pneumatic", bySpring(3, kind, "closed")),
-    ),
-  ];
-  const cylinders = [
-    { label: "double-acting", symbol: composeCylinder({ action: "double-acting", cushion: "none" }, 0, "hydraulic") },
-    { label: "double-acting, starts extended", symbol: composeCylinder({ action: "double-acting", cushion: "none" }, 1, "hydraulic") },
-    { label: "fixed cushions", symbol: composeCylinder({ action: "double-acting", cushion: "fixed" }, 0, "hydraulic") },
-    { label: "adjustable cushions", symbol: composeCylinder({ action: "double-acting", cushion: "adjustable" }, 0, "hydraulic") },
-    ...(["spring", "spring-extend", "load"] as const).map((returnedBy) => ({
-      label: {
-        spring: "single-acting, spring return",
-        "spring-extend": "single-acting, spring extend",
-        load: "single-acting, load return",
-      }[returnedBy],
-      symbol: composeCylinder(
-        { action: "single-acting", cushion: "none", returnedBy },
-        returnedBy === "spring-extend" ? 1 : 0,
-        "pneumatic",
-      ),
+function families(world: World): Family[] {
+  const library = openSymbols(world);
+  const folders = new Map<string, Entry[]>();
+  for (const path of library.names()) {
+    const [folder = "", name = ""] = path.split("/");
+    const symbol = library.get(path);
+    const entries = folders.get(folder) ?? [];
+    folders.set(folder, entries);
+    entries.push({ name, title: symbol.title, symbol, module: folder === "fluid" ? fluidModule : electricalModule });
+  }
+  const order = ["north-american", "international", "fluid"];
+  return [
+    ...order
+      .filter((folder) => folders.has(folder))
+      .map((folder) => ({ title: folderTitles[folder] ?? folder, entries: folders.get(folder) ?? [] })),
+    ...composedExamples().map(({ title, examples }) => ({
+      title,
+      entries: examples.map(({ name, symbol }) => ({ name, title: "", symbol, module: fluidModule })),
     })),
   ];
-  return [
-    { title: "Directional valves, composed", symbols: valves },
-    { title: "Cylinders, composed", symbols: cylinders },
-  ];
 }
 
-/** Sets cells in rows from the upper left, as many sheets as are needed. */
-function setSection({ symbols }: Section, area: Box): Mark[][] {
-  const sheets: Mark[][] = [];
-  let marks: Mark[] = [];
-  let [x, y, rowHeight] = [area.x, area.y, 0];
-  for (const { symbol, label } of symbols) {
-    const width = snap(Math.max(leastWidth, symbol.box.width + 2 * margin));
-    const height = snap(symbol.box.height + 2 * margin + labelLines * labelLine);
-    if (x + width > area.x + area.width) [x, y, rowHeight] = [area.x, y + rowHeight, 0];
-    if (y + height > area.y + area.height && marks.length > 0) {
-      sheets.push(marks);
-      marks = [];
-      [x, y, rowHeight] = [area.x, area.y, 0];
+/** Sets the families one after another in rows of cells; a row that does not fit opens a new sheet. */
+function setFamilies(all: readonly Family[], area: Box): { title: string; marks: Mark[] }[] {
+  const sheets: { title: string; marks: Mark[] }[] = [];
+  let y = Number.POSITIVE_INFINITY;
+  const bottom = area.y + area.height;
+  for (const { title, entries } of all) {
+    let begun = false;
+    for (const row of rowsOf(entries, area.width)) {
+      const heading = begun ? 0 : headingHeight * 2.4;
+      if (y + heading + row.height > bottom) {
+        sheets.push({ title, marks: [] });
+        y = area.y;
+      }
+      const { marks } = sheets.at(-1) as { marks: Mark[] };
+      if (!begun || y === area.y) {
+        marks.push({
+          kind: "text",
+          role: "heading",
+          at: { x: area.x, y: y + headingHeight },
+          text: title,
+          height: headingHeight,
+          anchor: "start",
+          bold: true,
+        });
+        y += headingHeight * 2.4;
+        begun = true;
+      }
+      for (const { entry, box } of row.cells) marks.push(...cellMarks(entry, { ...box, x: area.x + box.x, y }));
+      y += row.height;
     }
-    marks.push(...cellMarks(symbol, label, { x, y, width, height }));
-    x += width;
-    rowHeight = Math.max(rowHeight, height);
   }
-  sheets.push(marks);
   return sheets;
 }
 
-function snap(length: Mm): Mm {
-  return Math.ceil(length / grid) * grid;
+interface Row {
+  height: Mm;
+  cells: { entry: Entry; box: Box }[];
 }
 
-function cellMarks(symbol: Symbol, label: string, cell: Box): Mark[] {
+function rowsOf(entries: readonly Entry[], width: Mm): Row[] {
+  const column = width / columns;
+  const rows: Row[] = [];
+  let at = columns;
+  for (const entry of entries) {
+    const { box } = entry.symbol;
+    const wide = Math.min(columns, Math.ceil((box.width + 2 * clear) / column));
+    if (at + wide > columns) {
+      rows.push({ height: 0, cells: [] });
+      at = 0;
+    }
+    const row = rows.at(-1) as Row;
+    row.cells.push({ entry, box: { x: at * column, y: 0, width: wide * column, height: 0 } });
+    row.height = Math.max(row.height, box.height + 2 * clear + captionHeight);
+    at += wide;
+  }
+  for (const row of rows) for (const { box } of row.cells) box.height = row.height;
+  return rows;
+}
+
+const captionHeight: Mm = nameHeight * 1.5 + 2 * smallHeight * 1.6 + 3;
+
+function cellMarks({ name, title, symbol, module }: Entry, cell: Box): Mark[] {
   const { box } = symbol;
-  const room = { ...cell, height: cell.height - labelLines * labelLine };
-  // The symbol's origin is a point of the grid, its middle about the cell's.
-  const at: Point = {
-    x: cell.x + Math.round((room.width / 2 - box.x - box.width / 2) / grid) * grid,
-    y: cell.y + Math.round((room.height / 2 - box.y - box.height / 2) / grid) * grid,
+  const room: Box = { x: cell.x + 1, y: cell.y, width: cell.width - 2, height: cell.height - captionHeight };
+  const origin: Point = {
+    x: room.x + room.width / 2 - (box.x + box.width / 2),
+    y: room.y + room.height / 2 - (box.y + box.height / 2),
   };
-  const marks: Mark[] = [gridMark({ x: room.x + 2, y: room.y + 2, width: room.width - 4, height: room.height - 4 }, at)];
+  const marks: Mark[] = [{ kind: "stroke", role: "grid", path: grid(room, origin, module), width: 0.13, ink: gridInk }];
   for (const shape of symbol.shapes) {
     if (shape.kind === "text") {
-      marks.push({ ...shape, role: "symbol", at: { x: at.x + shape.at.x, y: at.y + shape.at.y + shape.height / 2 } });
-    } else marks.push({ ...shape, role: "symbol", path: movePath(shape.path, at) });
+      const at = { x: origin.x + shape.at.x, y: origin.y + shape.at.y + shape.height / 2 };
+      marks.push({ kind: "text", role: "symbol", at, text: shape.text, height: shape.height, anchor: shape.anchor });
+    } else marks.push({ ...shape, role: "symbol", path: movePath(shape.path, origin) });
   }
-  for (const port of symbol.ports) {
-    marks.push({ kind: "stroke", role: "port", path: circle({ x: at.x + port.x, y: at.y + port.y }, 0.6), width: 0.13, ink: portInk });
-  }
-  wrapLabel(label, cell.width - 2).forEach((text, index) => {
-    const baseline = cell.y + room.height + labelLine * index + labelHeight;
-    marks.push({
-      kind: "text",
-      role: "label",
-      at: { x: cell.x + cell.width / 2, y: baseline },
-      text,
-      height: labelHeight,
-      anchor: "middle",
-    });
+  for (const port of symbol.ports) marks.push(...portMarks(port, origin));
+
+  const middle = cell.x + cell.width / 2;
+  let y = room.y + room.height + nameHeight * 1.3;
+  marks.push({
+    kind: "text",
+    role: "name",
+    at: { x: middle, y },
+    text: fitText(name, nameHeight, room.width, true),
+    height: nameHeight,
+    anchor: "middle",
+    bold: true,
   });
+  for (const line of wrapText(title, smallHeight, room.width, 2)) {
+    y += smallHeight * 1.6;
+    marks.push({ kind: "text", role: "title", at: { x: middle, y }, text: line, height: smallHeight, anchor: "middle" });
+  }
   return marks;
 }
 
-/** The title on as many lines as it needs, the file's name on the last. */
-function wrapLabel(label: string, width: Mm): string[] {
-  const [title = "", name] = label.split("\n");
-  const lines = wrapText(title, labelHeight, width, name === undefined ? labelLines : labelLines - 1);
-  if (name !== undefined) lines.push(...wrapText(name, measureText(name, labelHeight) > width ? 1.5 : labelHeight, width, 1));
-  return lines;
+/** Lines a module apart through the symbol's origin, as far as the cell goes. */
+function grid(room: Box, origin: Point, module: Mm): Segment[] {
+  const path: Segment[] = [];
+  const right = room.x + room.width;
+  const bottom = room.y + room.height;
+  const first = (from: Mm, through: Mm) => through - Math.floor((through - from) / module) * module;
+  for (let x = first(room.x, origin.x); x <= right; x += module) path.push({ op: "M", x, y: room.y }, { op: "L", x, y: bottom });
+  for (let y = first(room.y, origin.y); y <= bottom; y += module) path.push({ op: "M", x: room.x, y }, { op: "L", x: right, y });
+  return path;
 }
 
-function gridMark(box: Box, origin: Point): Mark {
-  const path = [];
-  for (let x = origin.x - Math.floor((origin.x - box.x) / grid) * grid; x <= box.x + box.width + 1e-6; x += grid) {
-    path.push(
-      ...polyline([
-        { x, y: box.y },
-        { x, y: box.y + box.height },
-      ]),
-    );
-  }
-  for (let y = origin.y - Math.floor((origin.y - box.y) / grid) * grid; y <= box.y + box.height + 1e-6; y += grid) {
-    path.push(
-      ...polyline([
-        { x: box.x, y },
-        { x: box.x + box.width, y },
-      ]),
-    );
-  }
-  return { kind: "stroke", role: "grid", path, width: 0.05, ink: pale };
+/** A ring on the port and its name where the line would go on. */
+function portMarks({ name, x, y, direction }: Port, origin: Point): Mark[] {
+  const at = { x: origin.x + x, y: origin.y + y };
+  const out: Mm = 1;
+  const text: Record<Port["direction"], { x: Mm; y: Mm; anchor: "start" | "middle" | "end" }> = {
+    up: { x: at.x, y: at.y - out, anchor: "middle" },
+    down: { x: at.x, y: at.y + out + smallHeight, anchor: "middle" },
+    left: { x: at.x - out, y: at.y + smallHeight / 2, anchor: "end" },
+    right: { x: at.x + out, y: at.y + smallHeight / 2, anchor: "start" },
+  };
+  const { anchor, ...place } = text[direction];
+  // A long name beside the symbol would leave the cell.
+  const beside = anchor === "middle" || measureText(name, smallHeight) <= clear;
+  const words: Mark[] = beside ? [{ kind: "text", role: "port", at: place, text: name, height: smallHeight, anchor, ink: portInk }] : [];
+  return [{ kind: "stroke", role: "port", path: circle(at, 0.6), width: 0.18, ink: portInk }, ...words];
 }
