@@ -70,7 +70,7 @@ function columnsOf(area: Box): Box[] {
   return Array.from({ length: count }, (_, i) => ({ ...area, x: area.x + i * (width + gap), width }));
 }
 
-export interface Content {
+interface Content {
   number: number;
   title: string;
   marks: Mark[];
@@ -78,7 +78,7 @@ export interface Content {
 }
 
 /** Sheets with their frame, title block, revisions and notes. */
-export function framed(contents: Content[], page: Page, { drawing }: Pick<Machine, "drawing">, world: World): DrawnSheet[] {
+function framed(contents: Content[], page: Page, { drawing }: Pick<Machine, "drawing">, world: World): DrawnSheet[] {
   const own = page.paper.titleBlock.template;
   const template = readTemplate(templateNames(world).includes(drawing.template) ? drawing.template : own, world);
   const frame = frameMarks(page);
