@@ -38,6 +38,7 @@ export async function writePdf(set: DrawingSet, world: World): Promise<Uint8Arra
     },
   });
   const bytes = collect(document);
+  escapeMetadata(document);
   openFonts(document, set, world);
   for (const sheet of set.sheets) drawSheet(document, sheet, set);
   addOutline(document, set);
@@ -51,6 +52,28 @@ function metadata(parts: (string | undefined)[]): string {
     .filter((part) => part !== undefined && part !== "")
     .join(", ")
     .replace(/[\p{Cc}\p{Cs}]/gu, " ");
+}
+
+/** The library sets the texts of its XML metadata as they are; a `<` or `&` in a title would make that ill-formed. */
+function escapeMetadata(document: Document): void {
+  const inner = document as unknown as { info: Record<string, unknown>; _addInfo(): void };
+  const addInfo = inner._addInfo;
+  inner._addInfo = () => {
+    const plain = inner.info;
+    inner.info = Object.fromEntries(
+      Object.entries(plain).map(([key, value]) => [key, typeof value === "string" ? escapeXml(value) : value]),
+    );
+    addInfo.call(inner);
+    inner.info = plain;
+  };
+}
+
+function escapeXml(text: string): string {
+  return text
+    .replace(/[\ufffe\uffff]/g, "")
+    .replaceAll("&", "&amp;")
+    .replaceAll("<", "&lt;")
+    .replaceAll(">", "&gt;");
 }
 
 /** The drawing's own date; the clock is never asked. */

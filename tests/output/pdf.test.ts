@@ -1,3 +1,4 @@
+import { SaxesParser } from "saxes";
 import { describe, expect, test } from "vitest";
 import { writePdf } from "../../src/output/pdf.js";
 import { assets } from "../support/assets.js";
@@ -74,6 +75,20 @@ describe("a PDF read back by pdfjs", () => {
     const read = await readPdf(await writePdf(setSaying(text), assets));
     expect(read.pages).toHaveLength(1);
     expect(read.pages[0]?.links).toHaveLength(1);
+  });
+
+  test.each(oddTexts)("has well-formed metadata with %j in every text", async (text) => {
+    const xml =
+      /<\?xpacket begin[^]*<\?xpacket end[^>]*>/.exec(Buffer.from(await writePdf(setSaying(text), assets)).toString("utf8"))?.[0] ?? "";
+    const said: string[] = [];
+    const parser = new SaxesParser();
+    parser.on("text", (part) => said.push(part));
+    parser.on("error", (error) => {
+      throw error;
+    });
+    parser.write(xml).close();
+    const plain = text.replace(/[\p{Cc}\p{Cs}\ufffe\uffff]/gu, " ").trim();
+    expect(said.join(" ").replace(/\s+/g, " ")).toContain(plain.replace(/\s+/g, " "));
   });
 });
 
