@@ -1,7 +1,7 @@
 import { FluidMap } from "../behaviour/fluid-map.js";
 import { drivenBy, startsThere } from "../behaviour/valve-rest.js";
 import { strokeOf } from "../machine/cylinder.js";
-import { fluidsOf } from "../machine/walk.js";
+import { wholeFluidsOf } from "../machine/walk.js";
 import { rule } from "./rule.js";
 
 export const cylinderMovesAtStart = rule<{ cylinder: string; valve: string; drawn: string; to: string }>({
@@ -11,7 +11,7 @@ export const cylinderMovesAtStart = rule<{ cylinder: string; valve: string; draw
     `${cylinder} starts ${drawn}, but ${valve} at rest drives it ${to === "extended" ? "out" : "in"} as soon as there is pressure.`,
   hint: ({ cylinder, to }) => `Turn the valve round, or let ${cylinder} "start ${to}".`,
   find: ({ machine, start }) =>
-    fluidsOf(machine).flatMap((circuit) => {
+    wholeFluidsOf(machine).flatMap((circuit) => {
       const map = new FluidMap(circuit);
       return circuit.components.flatMap((valve) => {
         const box = valve.name === undefined ? undefined : start.valveBoxes.get(valve.name);

@@ -1,5 +1,5 @@
 import type { SourceRange } from "../language/diagnostic.js";
-import { elementsOf, fluidsOf, laddersOf } from "../machine/walk.js";
+import { elementsOf, laddersOf, wholeFluidsOf } from "../machine/walk.js";
 import { rule, type Subject } from "./rule.js";
 
 export const pointUsedOnce = rule<{ point: string }>({
@@ -27,7 +27,7 @@ function electrical({ machine }: Subject): Use[] {
 }
 
 function fluid({ machine }: Subject): Use[] {
-  return fluidsOf(machine).flatMap(({ lines }) => {
+  return wholeFluidsOf(machine).flatMap(({ lines }) => {
     const uses: Use[] = [];
     for (const line of lines) {
       for (const end of line.ends) if (end.kind === "point") uses.push({ point: end.point, at: end.at ?? line.at });

@@ -1,5 +1,5 @@
 import { listed } from "../machine/report.js";
-import { fluidsOf } from "../machine/walk.js";
+import { wholeFluidsOf } from "../machine/walk.js";
 import { rule } from "./rule.js";
 
 export const portOpen = rule<{ component: string; ports: string[]; all: boolean }>({
@@ -12,7 +12,7 @@ export const portOpen = rule<{ component: string; ports: string[]; all: boolean 
   hint: ({ component, ports, all }) =>
     all ? undefined : `If that is meant, write: plug ${ports.map((port) => `${component}.${port}`).join(", ")}`,
   find: ({ machine }) =>
-    fluidsOf(machine).flatMap(({ components }) =>
+    wholeFluidsOf(machine).flatMap(({ components }) =>
       components.flatMap(({ name, kind, ports, at }) => {
         const open = ports.filter(({ node, plugged }) => node === undefined && !plugged).map((port) => port.name);
         return open.length === 0 ? [] : [{ component: name ?? kind, ports: open, all: open.length === ports.length, at }];

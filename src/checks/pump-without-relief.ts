@@ -1,5 +1,5 @@
 import { FluidMap } from "../behaviour/fluid-map.js";
-import { fluidsOf } from "../machine/walk.js";
+import { wholeFluidsOf } from "../machine/walk.js";
 import { rule } from "./rule.js";
 
 /** ISO 4413: every part of the system is protected against pressure above its greatest. */
@@ -9,7 +9,7 @@ export const pumpWithoutRelief = rule<{ pump: string }>({
   says: ({ pump }) => `No relief valve guards the pressure side of ${pump}.`,
   hint: ({ pump }) => `Join one there, as in "line ${pump} -- RV1 -- tank".`,
   find: ({ machine }) =>
-    fluidsOf(machine).flatMap((circuit) => {
+    wholeFluidsOf(machine).flatMap((circuit) => {
       const map = new FluidMap(circuit);
       return circuit.components.flatMap(({ kind, name, ports, at }) => {
         const outlet = ports.find((port) => port.name === "P")?.node;

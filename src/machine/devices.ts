@@ -43,8 +43,8 @@ const poles: DeviceWords = {
     do {
       const number = read.count(word);
       if (number === undefined) return;
-      const form = read.take("no", "nc");
-      if (form === undefined) return read.missing(word, 'a number with "no" or "nc", as in "poles 3 no 1 nc"');
+      const form = read.choice({ text: "poles", at: word.at }, ["no", "nc"]);
+      if (form === undefined) continue;
       if (form === "no") draft.noPoles = number;
       else draft.ncPoles = number;
     } while (read.peek()?.kind === "number");
@@ -118,7 +118,6 @@ const colour: DeviceWords = {
     device.colour = read.choice(word, colours);
   },
 };
-colour.colour = colour.color as (typeof colour)[string];
 
 /** A value printed as written. */
 const printed = ({ device }: DeviceDraft, quantity: Quantity) => {
@@ -222,6 +221,7 @@ const tables: Record<DeviceKind, DeviceTable> = {
       device.colour = item.text;
       return true;
     },
+    values: colours,
     later: ["push-to-test"],
   },
   horn: { words: common, bare: { power: printed, voltage: printed, current: printed, "apparent-power": printed } },
@@ -278,14 +278,16 @@ export function readDevice(declaration: Declaration & { name: Word }, kind: Devi
   if (draft.noPoles !== undefined || draft.ncPoles !== undefined) {
     device.poles = { no: draft.noPoles ?? 0, nc: draft.ncPoles ?? 0 };
   }
-  if (kind === "timer" && !device.delay) {
+  const delayWritten = declaration.items.some((item) => item.kind === "word" && (item.text === "on-delay" || item.text === "off-delay"));
+  if (kind === "timer" && !delayWritten) {
     report.error("property-missing", declaration.name.at, `${device.name} needs its delay: "on-delay 2 s" or "off-delay 2 s".`);
   }
   if (kind === "selector-switch") settleSelector(draft, declaration, report);
   if (draft.rising && draft.falling && draft.falling.value >= draft.rising.value) {
+    const written = declaration.items.find((item) => item.kind === "quantity" && item.quantity === draft.falling);
     report.error(
       "value-out-of-order",
-      declaration.name.at,
+      written?.at ?? declaration.name.at,
       `${device.name} must switch back below the pressure it switches at: ${draft.falling.text} is not below ${draft.rising.text}.`,
     );
   }

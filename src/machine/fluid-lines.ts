@@ -147,6 +147,12 @@ export class LineBuilder {
   }
 
   private readEnd(draft: CircuitDraft, end: LineEnd, arrives: boolean, leaves: boolean): ReadEnd | undefined {
+    const read = this.findEnd(draft, end, arrives, leaves);
+    if (!read) draft.circuit.incomplete = true;
+    return read;
+  }
+
+  private findEnd(draft: CircuitDraft, end: LineEnd, arrives: boolean, leaves: boolean): ReadEnd | undefined {
     if (end.kind === "point") {
       const joint: Joint = { kind: "point", point: end.name, at: end.at };
       this.point(draft, end.name);

@@ -260,6 +260,8 @@ export interface FluidCircuit {
   lines: FluidLine[];
   /** Components before which the author asked for a new sheet. */
   sheetBreaks: { before: number; title?: string }[];
+  /** Some line could not be read whole and has its diagnostic: what a port is joined to is not known for certain. */
+  incomplete?: boolean;
   at: SourceRange;
 }
 

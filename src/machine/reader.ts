@@ -145,6 +145,8 @@ export interface PropertyTable<Draft> {
   bare?: Partial<Record<Dimension, (draft: Draft, quantity: Quantity, at: SourceRange) => void>>;
   /** What no other reader knows; gives whether it took the item. */
   other?: (draft: Draft, item: Item, read: ItemReader) => boolean;
+  /** Words that `other` takes, for guessing what was meant. */
+  values?: readonly string[];
   /** Words the language has for this kind that this edition does not draw yet. */
   later?: readonly string[];
   /** Words that may be written more than once. */
@@ -202,19 +204,22 @@ function bareUnits<Draft>(table: PropertyTable<Draft>): string[] {
 function unknownProperty<Draft>(item: Item, read: ItemReader, kind: string, table: PropertyTable<Draft>): void {
   const written = item.kind === "point" ? `@${item.name}` : item.kind === "quantity" ? item.text : item.text;
   const words = Object.keys(table.words);
-  const guess = item.kind === "word" ? didYouMean(item.text, words) : {};
+  const guess = item.kind === "word" ? didYouMean(item.text, [...words, ...(table.values ?? [])]) : {};
   read.report.error("unknown-property", item.at, `"${written}" is not a property of ${kind}.`, {
     ...guess,
-    hint: guess.hint ?? (words.length > 0 ? `It may have ${listed(words.slice().sort(), "and")}.` : undefined),
+    hint: guess.hint ?? (words.length > 0 ? `It may have ${listed([...words, ...(table.values ?? [])].sort(), "and")}.` : undefined),
   });
   // The values of a word nobody knows say nothing either: one message is enough.
   if (item.kind === "word") skipValues(read, table);
 }
 
+/** Passes over what follows a word nobody knows, up to the next that somebody does. */
 function skipValues<Draft>(read: ItemReader, table: PropertyTable<Draft>): void {
   for (;;) {
     const item = read.peek();
-    if (item === undefined || item.kind === "word" || item.kind === "symbol") return;
+    if (item === undefined || item.kind === "symbol") return;
+    if (item.kind === "word" && (Object.hasOwn(table.words, item.text) || table.values?.includes(item.text) || item.text.includes("/")))
+      return;
     if (item.kind === "quantity" && table.bare?.[item.quantity.dimension]) return;
     read.next();
   }

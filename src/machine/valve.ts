@@ -60,7 +60,10 @@ function readEnd(side: Side): PropertyTable<ValveDraft>["words"][string] {
       if (read.take("override")) actuator.override = true;
       draft[side].push(actuator);
     }
-    if (draft[side].length === before) read.missing(word, `what acts on that end: ${listed(Object.keys(actuatorWords))}`);
+    if (draft[side].length > before) return;
+    read.choice(word, Object.keys(actuatorWords));
+    // Something acts there, though it is not known what.
+    draft[side].push({ kind: "spring", override: false });
   };
 }
 

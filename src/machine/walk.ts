@@ -8,6 +8,11 @@ export function fluidsOf({ circuits }: Machine): FluidCircuit[] {
   return circuits.filter((circuit) => circuit.kind === "fluid");
 }
 
+/** The fluid circuits of which every line could be read. */
+export function wholeFluidsOf(machine: Machine): FluidCircuit[] {
+  return fluidsOf(machine).filter(({ incomplete }) => !incomplete);
+}
+
 /** Everything that stands in a path, in reading order. */
 export function* elementsOf(path: SeriesPath | ParallelPath): Generator<RungElement> {
   for (const part of path.kind === "series" ? path.items : path.branches) {
