@@ -44,11 +44,20 @@ export function findAppearances(
   };
   const marked = cams(layout, zoneOf);
   const ends = endsOfPoints(layout, zoneOf);
-  const contactsOf = (device: string) =>
-    (machine.devices.get(device)?.contacts ?? []).flatMap((contact) => {
+  const placed = new Map<string, (Appearance & { contact: ContactUse })[]>();
+  const byReference = new Map<string, PartId>();
+  for (const { name, contacts } of machine.devices.values()) {
+    const those = contacts.flatMap((contact) => {
       const found = at(contact.id);
       return found ? [{ ...found, contact }] : [];
     });
+    placed.set(name, those);
+    for (const { part, place, contact } of those) {
+      const key = referenceKey(name, { type: contact.form, terminals: terminalsOf(contact), sheet: place.sheet, line: place.line ?? 0 });
+      if (!byReference.has(key)) byReference.set(key, part);
+    }
+  }
+  const contactsOf = (device: string) => placed.get(device) ?? [];
   const component = (name: string) => at(machine.components.get(name)?.id);
   const fluidSideOf = (name: string) => {
     const device = machine.devices.get(name);
@@ -67,17 +76,15 @@ export function findAppearances(
     contactsOf,
     fluidSideOf,
     component,
-    contactOf: (device, reference) =>
-      contactsOf(device).find(
-        ({ place, contact }) =>
-          place.sheet === reference.sheet &&
-          place.line === reference.line &&
-          terminalsOf(contact) === reference.terminals &&
-          contact.form === reference.type,
-      )?.part,
+    contactOf: (device, reference) => byReference.get(referenceKey(device, reference)),
     deviceOf: (part) => uses.get(part),
     pointEnds: (kind, point) => ends.get(`${kind} ${point}`) ?? [],
   };
+}
+
+/** What tells a contact from the others of its device. */
+function referenceKey(device: string, { type, terminals, sheet, line }: ContactReference): string {
+  return [device, type, terminals, sheet, line].join(" ");
 }
 
 /** A contact's terminals as they are written, `13-14`; empty when it has none. */
