@@ -36,7 +36,9 @@ const folderTitles: Record<string, string> = {
 const electricalModule: Mm = 2.5;
 const fluidModule: Mm = 2;
 
-const columns = 8;
+/** The finest division of a sheet's width; a symbol takes at least two. */
+const columns = 16;
+const leastColumns = 2;
 const nameHeight: Mm = 2.5;
 const smallHeight: Mm = 1.8;
 const headingHeight: Mm = 3.5;
@@ -141,7 +143,9 @@ function setFamilies(all: readonly Family[], area: Box): { title: string; marks:
         sheets.push({ title, marks: [] });
         y = area.y;
       }
-      const { marks } = sheets.at(-1) as { marks: Mark[] };
+      const sheet = sheets.at(-1) as { title: string; marks: Mark[] };
+      if (!sheet.title.includes(title)) sheet.title += `, ${title.toLowerCase()}`;
+      const { marks } = sheet;
       if (!begun || y === area.y) {
         marks.push({
           kind: "text",
@@ -173,7 +177,7 @@ function rowsOf(entries: readonly Entry[], width: Mm): Row[] {
   let at = columns;
   for (const entry of entries) {
     const { box } = entry.symbol;
-    const wide = Math.min(columns, Math.ceil((box.width + 2 * clear) / column));
+    const wide = Math.min(columns, Math.max(leastColumns, Math.ceil((box.width + 2 * clear) / column)));
     if (at + wide > columns) {
       rows.push({ height: 0, cells: [] });
       at = 0;

@@ -59,9 +59,9 @@ export function composeCylinder(spec: CylinderForm, fraction: number, medium: Me
   return symbol;
 }
 
-/** A spring between two faces, its coils closer as it is pressed together. */
+/** A spring between two faces; fewer strokes where it is pressed together, so that they stay apart on paper. */
 function spring(from: number, to: number): string {
-  const strokes = 9;
+  const strokes = to - from < 4 ? 5 : 9;
   const points = Array.from({ length: strokes + 1 }, (_, i) => `${from + ((to - from) * i) / strokes},${i % 2 === 0 ? -1.25 : 1.25}`);
   return `L(${points.join(" ")})`;
 }
