@@ -28,7 +28,7 @@ export async function draw(files: readonly string[], options: DrawOptions, desk:
     compiled.push({ file, ...(await compile(file, world, (phase) => progress.tell(`${file}: ${phase}`))) });
   }
   progress.clear();
-  desk.err(wordFindings(compiled, useColor(desk, "err", options.color), quiet ? "error" : "note"));
+  desk.err(wordFindings(compiled, useColor(desk, "err", options.color), quiet ? "error" : "warning"));
 
   const drawn = compiled.filter((drawing): drawing is Drawn => drawing.set !== undefined);
   if (drawn.length < compiled.length) {

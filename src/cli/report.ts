@@ -7,7 +7,7 @@ export interface Findings {
   sources: Map<string, string>;
 }
 
-/** All findings in the editor's sentences, then their count; empty if there are none. */
+/** The findings in the editor's sentences, those less grave than `least` left out, then their count; empty if there are none. */
 export function wordFindings(findings: readonly Findings[], color: boolean, least: Severity = "note"): string {
   const shown = findings.map(({ diagnostics, sources }) => ({
     sources,

@@ -30,8 +30,9 @@ export function writeWhole(folder: string, files: readonly OutputFile[]): string
   } catch (error) {
     return `Cannot write to ${folder}: ${reason(error as NodeJS.ErrnoException)}.`;
   } finally {
-    for (const temporary of waiting) rmSync(temporary, { force: true });
-    for (const path of made.reverse()) removeIfEmpty(path);
+    for (const temporary of waiting) leave(() => rmSync(temporary, { force: true }));
+    // A folder somebody has put something into meanwhile stays.
+    for (const path of made.reverse()) leave(() => rmdirSync(path));
     for (const signal of signals) process.off(signal, holdBack);
   }
 }
@@ -53,12 +54,11 @@ function isFolder(path: string): boolean {
   }
 }
 
-function removeIfEmpty(path: string): void {
+/** Tidies up as far as that goes: what cannot be removed was never there, or is no longer ours. */
+function leave(remove: () => void): void {
   try {
-    rmdirSync(path);
-  } catch {
-    // Somebody has put something there meanwhile: it stays.
-  }
+    remove();
+  } catch {}
 }
 
 const reasons: Record<string, string> = {

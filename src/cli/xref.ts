@@ -23,7 +23,7 @@ export async function xref(file: string, { csv, json, color }: XrefOptions, desk
   const progress = openProgress(desk, false);
   const compiled = await compile(file, world, (phase) => progress.tell(`${file}: ${phase}`));
   progress.clear();
-  desk.err(wordFindings([compiled], useColor(desk, "err", color)));
+  desk.err(wordFindings([compiled], useColor(desk, "err", color), "warning"));
   const { rows } = compiled;
   if (!rows) return exitCodeFor(compiled.diagnostics, [file]);
   if (json) desk.out(writeJson(crossReferenceData(rows)));

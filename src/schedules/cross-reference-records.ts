@@ -43,7 +43,7 @@ export function crossReferenceData(rows: readonly CrossReferenceRow[]): object[]
     text,
     sheet,
     line,
-    contacts: contacts.map(({ type, timed, terminals, sheet, line }) => ({ type, ...(timed ? { timed } : {}), terminals, sheet, line })),
+    contacts: contacts.map(({ type, terminals, sheet, line }) => ({ type, terminals, sheet, line })),
     ...(valve ? { valve: { name: valve.name, sheet: valve.sheet, zone: valve.zone } } : {}),
   }));
 }

@@ -58,7 +58,14 @@ const cases: Case[] = [
     at: [5, 13],
   },
   { what: "a coil driven twice", text: ladder("PB1 -> CR1", "CR1 -> CR1"), exit: 1, code: "coil-driven-twice", says: /CR1/, at: [6, 16] },
-  { what: "a short across the rails", text: ladder("PB1 -> CR1", "CR1 PB1"), exit: 1, code: "short-across-rails", says: /L\+ and M are joined with no load/, at: [6, 9] },
+  {
+    what: "a short across the rails",
+    text: ladder("PB1 -> CR1", "CR1 PB1"),
+    exit: 1,
+    code: "short-across-rails",
+    says: /L\+ and M are joined with no load/,
+    at: [6, 13],
+  },
   {
     what: "a valve port joined to nothing",
     text: air("line AIR1 -- V1.1", "line V1.4 -- RAM.cap", "line V1.2 -- RAM.rod", "exhaust V1.3 -- silencer"),

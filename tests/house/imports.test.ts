@@ -9,7 +9,7 @@ const allowed: Record<string, { values?: string[]; types?: string[] }> = {
   behaviour: { values: ["machine", "language"] },
   checks: { values: ["behaviour", "machine", "language"] },
   drawing: {},
-  symbols: { values: ["drawing"], types: ["machine"] },
+  symbols: { values: ["drawing"], types: ["machine", "behaviour"] },
   layout: { values: ["behaviour", "machine", "symbols", "drawing"], types: ["language"] },
   schedules: { values: ["machine"], types: ["layout", "drawing", "language"] },
   sheets: { values: ["schedules", "layout", "machine", "symbols", "drawing"], types: ["behaviour", "language"] },
