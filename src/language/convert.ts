@@ -357,22 +357,10 @@ class Conversion {
     return {
       kind: "line",
       role: this.keyword(start, node.keyword),
-      groups: this.lineGroups(node),
+      groups: node.groups.map((group) => group.ends.map((end) => this.lineEnd(end))),
       items: this.items(node.items),
       ...this.located(node),
     };
-  }
-
-  /** The ends between one `--` and the next: `V1.3, V1.5 -- silencer` joins both ports with what follows. */
-  private lineGroups(node: Syntax.Line): LineEnd[][] {
-    const groups: LineEnd[][] = [[]];
-    for (const chain of node.groups) {
-      chain.ends.forEach((end, index) => {
-        if (index > 0) groups.push([]);
-        groups.at(-1)?.push(this.lineEnd(end));
-      });
-    }
-    return groups;
   }
 
   private plug(node: Syntax.Plug): PlugStatement {
