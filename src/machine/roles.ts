@@ -78,8 +78,8 @@ export class Roles {
     const first = items.find((item) => item.kind === "reference");
     if (first?.kind !== "reference") return;
     const kind = this.kindOf(first.name.text);
-    // An unknown or unsuitable name has its own message.
-    if (kind === undefined || kind === "motor") return;
+    // An unknown or unsuitable name, or part of one, has its own message.
+    if (kind === undefined || kind === "motor" || (first.part && deviceRoles[kind].load && kind !== "timer")) return;
     const what =
       first.negated && deviceRoles[kind].load ? `/${first.name.text} is a contact` : `${first.name.text} is ${withArticle(kind)}`;
     this.report.error("not-a-load", first.at, `${what}, which cannot be driven: nothing behind "->" is a load.`, {
