@@ -1,6 +1,6 @@
 import type { StartState } from "../behaviour/start-state.js";
 import type { PartId } from "../drawing/marks.js";
-import type { DrawingInfo, Machine } from "../machine/model.js";
+import type { ContactUse, Device, DrawingInfo, LoadUse, Machine } from "../machine/model.js";
 import { symbolForDevice } from "../symbols/choose.js";
 import type { SymbolLibrary } from "../symbols/library.js";
 import { layOutLadder } from "./ladder/lay-out-ladder.js";
@@ -13,13 +13,14 @@ import type { CircuitSheet, Layout, PageArea, Place } from "./placement.js";
  */
 export async function layOut(machine: Machine, start: StartState, symbols: SymbolLibrary, pageFor: (drawing: DrawingInfo) => PageArea): Promise<Layout> {
   const page = pageFor(machine.drawing);
+  const symbolOf = (use: ContactUse | LoadUse) => symbolForDevice(use, machine.devices.get(use.device) as Device, start, machine.drawing.convention, symbols);
   const sheets: CircuitSheet[] = [];
   const places = new Map<PartId, Place>();
   let line = 1;
   for (const circuit of machine.circuits) {
     const numbering = { sheet: sheets.length + 1, line };
     if (circuit.kind === "ladder") {
-      const laid = layOutLadder(circuit, machine, start, symbols, page, numbering);
+      const laid = layOutLadder(circuit, machine, symbolOf, symbols, page, numbering);
       line = laid.nextLine;
       sheets.push(...laid.sheets);
       for (const [part, place] of laid.places) places.set(part, place);

@@ -1,10 +1,13 @@
+import { startOfCycle } from "../../src/behaviour/start-of-cycle.js";
+import { nodeWorld } from "../../src/node-world.js";
 import { parse } from "../../src/language/parse.js";
 import { layOutLadder, type LadderLayout } from "../../src/layout/ladder/lay-out-ladder.js";
 import type { CircuitSheet, PageArea } from "../../src/layout/placement.js";
 import { buildMachine } from "../../src/machine/build.js";
-import type { LadderCircuit, Machine, NodeId } from "../../src/machine/model.js";
+import type { ContactUse, Device, LadderCircuit, LoadUse, Machine, NodeId } from "../../src/machine/model.js";
 import { pageArea } from "../../src/sheets/page.js";
-import { plainSymbol } from "./plain-symbol.js";
+import { symbolForDevice } from "../../src/symbols/choose.js";
+import { openSymbols } from "../../src/symbols/library.js";
 import { crossings, looseEnds, netlistOf, outside, slantedWires, symbolOverlaps, textOverlaps, textsOnWires, wiresThroughSymbols } from "./facts.js";
 
 export interface LaidLadder {
@@ -15,6 +18,8 @@ export interface LaidLadder {
   page: PageArea;
 }
 
+const library = openSymbols(nodeWorld);
+
 /** Lays the first ladder of a text out, from the text to millimetres. */
 export function ladderOf(text: string): LaidLadder {
   const { tree, diagnostics } = parse(text, "test.sprung");
@@ -24,7 +29,9 @@ export function ladderOf(text: string): LaidLadder {
   const { machine } = built;
   const circuit = machine.circuits.find(({ kind }) => kind === "ladder") as LadderCircuit;
   const page = pageArea(machine.drawing);
-  const laid = layOutLadder(circuit, machine, plainSymbol, page, { sheet: 1, line: 1 });
+  const start = startOfCycle(machine);
+  const symbolOf = (use: ContactUse | LoadUse) => symbolForDevice(use, machine.devices.get(use.device) as Device, start, machine.drawing.convention, library);
+  const laid = layOutLadder(circuit, machine, symbolOf, library, page, { sheet: 1, line: 1 });
   return { machine, circuit, sheets: laid.sheets, places: new Map(laid.places), page };
 }
 
@@ -57,7 +64,8 @@ export function partsOf(circuit: LadderCircuit): { id: string; kind: "contact" |
 
 /** Parts that are not drawn exactly once. */
 function misplacedParts(circuit: LadderCircuit, sheets: readonly CircuitSheet[]): string[] {
-  const drawn = sheets.flatMap((sheet) => sheet.symbols.map(({ part }) => part));
+  const fuse = circuit.supply.fuse?.name;
+  const drawn = sheets.flatMap((sheet) => sheet.symbols.map(({ part }) => part)).filter((part) => part !== fuse);
   const wanted = partsOf(circuit).map(({ id }) => id);
   return [
     ...wanted.filter((id) => drawn.filter((part) => part === id).length !== 1).map((id) => `${id} is not drawn exactly once`),

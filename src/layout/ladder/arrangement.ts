@@ -29,6 +29,8 @@ export interface Dressed {
   texts: PlacedText[];
   /** From the middle to either pin. */
   reach: Mm;
+  /** From the middle to where its wire may carry a number. */
+  body: Mm;
   /** The farthest any text reaches along, to either side. */
   label: Mm;
   /** How far it reaches across, before and behind the line. */

@@ -25,6 +25,8 @@ export interface LinePitch {
 /** What a sheet offers: across for its lines, along from rail to rail. */
 export interface SheetRoom {
   depth: Mm;
+  /** Across on the first sheet, which may carry the supply's fuse. */
+  first: Mm;
   span: Mm;
   columns: ColumnPitch;
 }
@@ -50,7 +52,7 @@ export function breakSheets(rungs: readonly MeasuredRung[], breaks: readonly { b
     else if (wanted?.title !== undefined) sheet.title = wanted.title;
     let placed = stack(rung, sheet.depth, below, pitch);
     const tooWide = leastSpan(withNeeds(sheet.needs, rung, arrangement), room.columns) > room.span;
-    if ((placed.depth > room.depth || tooWide) && sheet.rungs.length > 0) {
+    if ((placed.depth > (sheets.length === 1 ? room.first : room.depth) || tooWide) && sheet.rungs.length > 0) {
       sheet = open(index, sheet.title);
       placed = stack(rung, 0, 0, pitch);
     }

@@ -87,7 +87,8 @@ export function drawSheet(given: SheetGiven): DrawnLadderSheet {
       const part = endingPart(rung.grid.rung.id, ending.point, ending.kind);
       const x = columns.boundary(ending.boundary);
       const y = lines[ending.line] as Mm;
-      const { lead, head, half, gap, drop } = endingSize;
+      const { lead, head, half, gap } = endingSize;
+      const drop = rung.lines[ending.line]?.drop ?? 0;
       const room = arrangement.endingRoom(ending.point);
       const reference = { to: "point", point: ending.point, from: part, room } as const;
       const words = { part, role: "reference", height: 2.5, text: reference } as const;

@@ -63,13 +63,13 @@ export function fitRungs(
       if (along > offer.span) {
         wide = true;
         const columns = columnsOf(rung.grid);
-        next.set(of, { ...known, columns: Math.max(4, Math.min(known.columns, columns - 1, Math.floor((columns * offer.span) / along))) });
+        next.set(of, { ...known, columns: Math.max(1, Math.min(known.columns - 1, columns - 1, Math.floor((columns * offer.span) / along))) });
       }
       const across = stack(rung, 0, 0, linePitch(scale)).depth;
       if (across > offer.depth) {
         tall = true;
         const { lines } = rung.grid;
-        next.set(of, { ...known, ...next.get(of), lines: Math.max(1, Math.min(known.lines, lines - 1, Math.floor((lines * offer.depth) / across))) });
+        next.set(of, { ...known, ...next.get(of), lines: Math.max(1, Math.min(known.lines - 1, lines - 1, Math.floor((lines * offer.depth) / across))) });
       }
     });
     if ((!wide && !tall) || round === rounds) return fitted;

@@ -52,8 +52,12 @@ export function joinPoints(rungs: readonly Rung[], barriers: ReadonlySet<number>
     const natural = bearsLoad(rung.path) ? loadColumn + 1 + returnWidth(rung.path) : start + widthOf(rung.path);
     const to = rung.end.kind === "point" && !cutEnd ? meets(rung.end.node) : undefined;
     const reached = to !== undefined && to.boundary >= natural && to.boundary > start ? to : undefined;
-    const meet = new Map([...open].map(([node, { boundary }]) => [node, boundary]));
-    const grid = placeRung(rung, { start, meet, cutStart, cutEnd, ...(reached ? { end: reached.boundary } : {}) });
+    // A rung that was too wide before is not stretched to meet an upright.
+    const meet = new Map(Number.isFinite(columnsOf(index)) ? [] : [...open].map(([node, { boundary }]) => [node, boundary]));
+    const ends = { start, cutStart, cutEnd, ...(reached ? { end: reached.boundary } : {}) };
+    const stretched = placeRung(rung, { ...ends, meet });
+    const runsBack = stretched.runs.some((run) => boundaryOf(run.from) > boundaryOf(run.to));
+    const grid = runsBack ? placeRung(rung, { ...ends, meet: new Map() }) : stretched;
     grids.push(grid);
     joinWithin(grid);
 
@@ -250,6 +254,9 @@ function holds(piece: Piece, at: { line: number; boundary: number }): boolean {
 /** The lowest line that an upright through this site reaches. */
 function bottomOfPart(grid: RungGrid, node: NodeId, site: PointSite): number {
   let line = site.line;
-  for (const up of grid.uprights) if (up.node === node && up.boundary === site.boundary && up.fromLine <= line && up.toLine > line) line = up.toLine;
+  for (let before = -1; before !== line; ) {
+    before = line;
+    for (const up of grid.uprights) if (up.node === node && up.boundary === site.boundary && up.fromLine <= line) line = Math.max(line, up.toLine);
+  }
   return line;
 }

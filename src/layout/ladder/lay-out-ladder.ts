@@ -2,10 +2,13 @@ import type { Mm } from "../../drawing/geometry.js";
 import { measureText } from "../../drawing/text.js";
 import type { PartId } from "../../drawing/marks.js";
 import type { ContactUse, LadderCircuit, LoadUse, Machine, NodeId, Rung } from "../../machine/model.js";
+import type { SymbolLibrary } from "../../symbols/library.js";
 import type { Symbol } from "../../symbols/symbol.js";
 import type { CircuitSheet, PageArea, Place, PlacedText } from "../placement.js";
 import { breakSheets, type RungSheet } from "./break-sheets.js";
 import { drawSheet } from "./draw-sheet.js";
+import { fuseBlock, fuseScale, fuseSymbol, setFuse } from "./supply-fuse.js";
+import { scaleSymbol } from "./scale-symbol.js";
 import { columnPitch, fitRungs, linePitch } from "./fit-rungs.js";
 import type { Link } from "./grid.js";
 import { northAmerican } from "./north-american.js";
@@ -28,21 +31,24 @@ export interface LadderLayout {
 /**
  * Lays a ladder out on as many sheets as it needs.
  * @param symbolOf the symbol of a contact or load in the state drawn
+ * @param symbols for what stands in no rung: the supply's fuse
  * @param page the room on each sheet
  */
-export function layOutLadder(circuit: LadderCircuit, machine: Machine, symbolOf: (use: ContactUse | LoadUse) => Symbol, page: PageArea, numbering: Numbering): LadderLayout {
+export function layOutLadder(circuit: LadderCircuit, machine: Machine, symbolOf: (use: ContactUse | LoadUse) => Symbol, symbols: SymbolLibrary, page: PageArea, numbering: Numbering): LadderLayout {
   const rails = railNodes(circuit, machine);
   const rungs = circuit.rungs.map((rung) => onRails(rung, rails));
   if (rungs.length === 0) return { sheets: [], places: [], nextLine: numbering.line };
   const room = shareWidth(page.area.width);
+  const fuse = circuit.supply.fuse && symbols.names().includes(fuseSymbol) ? fuseBlock(circuit.supply.fuse, scaleSymbol(symbols.get(fuseSymbol), fuseScale)) : undefined;
+  const firstHead = headRoom + (fuse?.length ?? 0);
   const depth = page.area.height - headRoom - footRoom;
-  const offer = { ...room, depth };
+  const offer = { ...room, depth: page.area.height - firstHead - footRoom };
 
   // 1. Every part has a column and a line on the grid, shared points are joined or end in a reference, every text is
   //    measured, and no rung needs more than a sheet offers.
   const { joined, measured, arrangement, scale, breaks } = fitRungs(circuit, rungs, rails, offer, (scale) => northAmerican({ machine, symbolOf, margin: room.margin, scale }));
   // 2. Every rung is whole on one sheet; line numbers are known.
-  const broken = breakSheets(measured, breaks, { depth, span: room.span, columns: columnPitch(scale) }, linePitch(scale), arrangement);
+  const broken = breakSheets(measured, breaks, { depth, first: page.area.height - firstHead - footRoom, span: room.span, columns: columnPitch(scale) }, linePitch(scale), arrangement);
   const firstLines = numberLines(broken, machine, numbering);
   // 3. Every sheet is set down in millimetres.
   const places: [PartId, Place][] = [];
@@ -50,14 +56,16 @@ export function layOutLadder(circuit: LadderCircuit, machine: Machine, symbolOf:
   const sheets = broken.map((sheet, index) => {
     const number = numbering.sheet + index;
     const columns = setColumns(sheet.needs, room.span, columnPitch(scale));
-    const origin = { x: page.area.x + lineNumberRoom, y: page.area.y + headRoom };
-    const railFrom = -headRoom + railHead;
+    const head = index === 0 ? firstHead : headRoom;
+    const origin = { x: page.area.x + lineNumberRoom, y: page.area.y + head };
+    const railFrom = railHead - head;
     const railTo = sheet.depth + footRoom - railFoot;
     const links = linksOf[index] ?? [];
     const drawn = drawSheet({
       circuit, sheet, number, title: sheet.title ?? circuit.title, columns, arrangement, rails, origin, railFrom, railTo,
       firstLine: firstLines[index] as number, links, zoneOf: (point) => page.zoneOf(point),
     });
+    if (fuse && index === 0) setFuse(drawn.sheet, fuse, { x: origin.x, y: origin.y + railFrom });
     nameRails(drawn.sheet, circuit, columns.span, origin, railFrom, railTo, {
       ...(index > 0 ? { from: endOf(broken, firstLines, index - 1, numbering) } : {}),
       ...(index < broken.length - 1 ? { to: startOf(firstLines, index + 1, numbering) } : {}),

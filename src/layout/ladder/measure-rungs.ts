@@ -20,11 +20,18 @@ export interface MeasuredRung {
   margins: { line: number; block: Block }[];
   endings: Ending[];
   /** Room each line needs before and behind it, across. */
-  lines: { above: Mm; below: Mm }[];
+  lines: LineRoom[];
+}
+
+export interface LineRoom {
+  above: Mm;
+  below: Mm;
+  /** How far down an arrow hangs to be clear of what stands under the line. */
+  drop: Mm;
 }
 
 /** Where an ending's arrow and text stand off the wire, mm. */
-export const endingSize = { lead: 3.5, head: 2.5, half: 1.25, gap: 0.9, drop: 3 } as const;
+export const endingSize = { lead: 3.5, head: 2.5, half: 1.25, gap: 0.9 } as const;
 
 /** Height of a wire number with its distance from the wire, mm. */
 export const numberRise = { gap: 1.1, height: 2.5 } as const;
@@ -35,7 +42,7 @@ export function measureRungs({ grids, links, endings }: Joined, rails: ReadonlyS
   const arrivals = groupBy(links, (link) => link.to.rung);
   return grids.map((grid, index) => {
     const dressed = new Map(grid.cells.map((cell) => [cell, arrangement.dress(cell.use)]));
-    const lines = Array.from({ length: grid.lines }, () => ({ above: numberRise.gap + numberRise.height + 0.4, below: 1 as Mm }));
+    const lines = Array.from({ length: grid.lines }, () => ({ above: numberRise.gap + numberRise.height + 0.4, below: 1, drop: 0 }) satisfies LineRoom as LineRoom);
     const claim = (line: number, above: Mm, below: Mm) => {
       const room = lines[line];
       if (!room) return;
@@ -46,8 +53,9 @@ export function measureRungs({ grids, links, endings }: Joined, rails: ReadonlyS
     const margins = marginsOf(grid, arrangement);
     for (const { line, block } of margins) claim(line, block.above, block.below);
     const own = endingsOf.get(index) ?? [];
+    for (const room of lines) room.drop = Math.max(room.below, 3);
     for (const { kind, line } of own) {
-      if (kind === "drop") claim(line, 0, endingSize.drop + endingSize.head + endingSize.gap + 2.5 * 1.3);
+      if (kind === "drop") claim(line, 0, (lines[line] as LineRoom).drop + endingSize.head + endingSize.gap + 2.5 * 1.3);
     }
     const fromAbove = new Set((arrivals.get(index) ?? []).map(({ node, boundary }) => `${node} ${boundary}`));
     const numbers = placeNumbers(grid, rails, fromAbove, own);

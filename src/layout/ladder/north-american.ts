@@ -52,22 +52,26 @@ function dress(use: ContactUse | LoadUse, machine: Machine, symbol: Symbol, scal
   const box = { ...symbol.box, x: symbol.box.x + shift.x, y: symbol.box.y + shift.y };
   // A bare coil or contact has its designation as high as most others on the line.
   const top = Math.min(box.y, -3.75 * scale, -numberRise.gap - numberRise.height) - clearance;
-  const bottom = Math.max(box.y + box.height, 3.75 * scale) + clearance;
+  const bottom = Math.max(box.y + box.height, 2.5 * scale) + clearance;
   const texts: PlacedText[] = [];
 
-  const inside = insideWords(use, device, symbol, scale);
-  if (inside) texts.push({ part: use.id, role: inside.role, at: { x: shift.x, y: textHeight.usual / 2 }, anchor: "middle", height: textHeight.usual, text: inside.words });
+  const inside = insideWords(use, device, scale);
+  if (inside) texts.push({ part: use.id, role: "designation", at: { x: 0, y: inside.height / 2 }, anchor: "middle", height: inside.height, text: inside.words });
   const labels = selectorLabels(use, device, symbol);
   texts.push(...labels.map((text) => ({ ...text, at: { x: text.at.x + shift.x, y: text.at.y + shift.y } })));
   const highest = Math.min(top, ...labels.map((text) => roomOf(text).y + shift.y - clearance));
-  if (inside?.role !== "designation") {
+  if (!inside) {
     texts.push({ part: use.id, role: "designation", at: { x: 0, y: highest - hang(use.device) }, anchor: "middle", height: textHeight.usual, text: use.device });
   }
 
+  // Over the middle of the lead, clear of the symbol; a long number reaches out over the wire.
+  let body = reach;
   use.terminals.value.forEach((terminal, pin) => {
     if (terminal === "") return;
-    const at = { x: pin === 0 ? -reach + 0.5 : reach - 0.5, y: -0.7 };
-    texts.push({ part: use.id, role: "terminal", at, anchor: pin === 0 ? "start" : "end", height: textHeight.small, text: terminal });
+    const half = measureText(terminal, textHeight.small) / 2;
+    const middle = Math.max(8.2 * scale, leadsFrom * scale + 0.6 + half) + reach - 10 * scale;
+    body = Math.max(body, middle + half + 0.4);
+    texts.push({ part: use.id, role: "terminal", at: { x: pin === 0 ? -middle : middle, y: -0.7 }, anchor: "middle", height: textHeight.small, text: terminal });
   });
 
   let baseline = bottom;
@@ -83,6 +87,7 @@ function dress(use: ContactUse | LoadUse, machine: Machine, symbol: Symbol, scal
     shift,
     texts,
     reach,
+    body,
     label: Math.max(-all.x, all.x + all.width),
     above: -all.y,
     below: all.y + all.height,
@@ -90,27 +95,22 @@ function dress(use: ContactUse | LoadUse, machine: Machine, symbol: Symbol, scal
   };
 }
 
+/** Where the leads of the widest contact symbols begin, from the middle, on the 2.5 mm module. */
+const leadsFrom: Mm = 6;
+
 /** Between a symbol and a text over or under it. */
 const clearance: Mm = 0.8;
 
 /** Room for letters that hang below the line. */
 const hang = (words: string): Mm => (/[gjpqyQ_,;()]/.test(words) ? textHeight.usual * 0.3 : 0);
 
-/** What is written into the circle: a coil's designation if it has room there, a pilot light's colour. */
-function insideWords(use: ContactUse | LoadUse, device: Device | undefined, symbol: Symbol, scale: number): { role: "designation" | "value"; words: string } | undefined {
+/** A coil's designation stands in its circle if it has room there. */
+function insideWords(use: ContactUse | LoadUse, device: Device | undefined, scale: number): { words: string; height: Mm } | undefined {
   if (use.kind !== "load" || !device) return undefined;
-  if (device.kind === "relay" || device.kind === "contactor" || device.kind === "timer") {
-    return measureText(use.device, textHeight.usual) <= 7.2 * scale ? { role: "designation", words: use.device } : undefined;
-  }
-  if (device.kind === "pilot-light" && device.colour && !symbol.shapes.some((shape) => shape.kind === "text")) {
-    return { role: "value", words: colourLetter(device.colour) };
-  }
-  return undefined;
-}
-
-/** Letters of pilot lights as used in the trade; C is clear. */
-function colourLetter(colour: string): string {
-  return colour === "clear" ? "C" : colour.slice(0, 1).toUpperCase();
+  if (device.kind !== "relay" && device.kind !== "contactor" && device.kind !== "timer") return undefined;
+  const { usual, small } = textHeight;
+  const height = [usual, small].find((height) => measureText(use.device, height) <= 7.4 * scale - (height - small) / 2);
+  return height === undefined ? undefined : { words: use.device, height };
 }
 
 function selectorLabels(use: ContactUse | LoadUse, device: Device | undefined, symbol: Symbol): PlacedText[] {

@@ -26,13 +26,12 @@ export interface ColumnNeeds {
   labels: Map<number, Mm>;
   gaps: Map<number, Mm>;
   spans: Map<number, Mm>;
-  drops: Set<number>;
   contacts: number;
   returns: number;
 }
 
 export function noNeeds(): ColumnNeeds {
-  return { bodies: new Map(), labels: new Map(), gaps: new Map(), spans: new Map(), drops: new Set(), contacts: 0, returns: 1 };
+  return { bodies: new Map(), labels: new Map(), gaps: new Map(), spans: new Map(), contacts: 0, returns: 1 };
 }
 
 /** The needs of a rung beside those of others. */
@@ -43,15 +42,14 @@ export function withNeeds(others: ColumnNeeds, { grid, dressed, numbers, endings
     labels: new Map(others.labels),
     gaps: new Map(others.gaps),
     spans: new Map(others.spans),
-    drops: new Set(others.drops),
   };
   const widen = (map: Map<number, Mm>, key: number, by: Mm) => map.set(key, Math.max(map.get(key) ?? 0, by));
   const reach = (boundary: number) => {
     if (boundary < loadColumn) needs.contacts = Math.max(needs.contacts, boundary);
     else if (boundary < returnRail) needs.returns = Math.max(needs.returns, boundary - loadColumn);
   };
-  for (const [cell, { reach: half, label }] of dressed) {
-    widen(needs.bodies, cell.column, half);
+  for (const [cell, { body, label }] of dressed) {
+    widen(needs.bodies, cell.column, body);
     widen(needs.labels, cell.column, label);
     reach(cell.column + 1);
   }
@@ -67,21 +65,18 @@ export function withNeeds(others: ColumnNeeds, { grid, dressed, numbers, endings
     else if (kind === "end") {
       widen(needs.spans, boundary, along);
       reach(boundary + 1);
-    } else {
-      widen(needs.gaps, boundary, room + 1.5);
-      needs.drops.add(boundary);
     }
   }
   return needs;
 }
 
 /** The least widths of columns that meet the needs. */
-function leastColumns({ bodies, labels, gaps, spans, drops, contacts, returns }: ColumnNeeds, pitch: ColumnPitch) {
+function leastColumns({ bodies, labels, gaps, spans, contacts, returns }: ColumnNeeds, pitch: ColumnPitch) {
   const gap = (boundary: number) => Math.max(gaps.get(boundary) ?? 0, pitch.gap);
   const half = (column: number) => {
     const body = bodies.get(column) ?? pitch.usual / 2 - pitch.gap / 2;
     // Texts may reach into the gaps, up to the uprights that may run there.
-    const overhang = Math.min(...[column, column + 1].map((side) => (drops.has(side) ? 0 : gap(side) / 2)));
+    const overhang = Math.min(...[column, column + 1].map((side) => gap(side) / 2));
     return Math.max(body, (labels.get(column) ?? 0) + 0.8 - overhang);
   };
   const advance = (column: number) => Math.max((gap(column) + gap(column + 1)) / 2 + 2 * half(column), spans.get(column) ?? 0);
