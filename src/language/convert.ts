@@ -283,10 +283,10 @@ class Conversion {
   }
 
   /** `place` is where the series stands if nothing is in it. */
-  private series(node: Syntax.Series, place: number): Series {
+  private series(nodes: readonly Syntax.PathItem[], place: number): Series {
     const items: PathItem[] = [];
     let arrow: number | undefined;
-    for (const item of node.items) {
+    for (const item of nodes) {
       if (item.$type === "Parallel") items.push(this.parallel(item));
       else if (item.$type === "Reference") items.push(this.reference(item));
       else if (item.$type === "Point") items.push({ kind: "point", name: item.name.slice(1), at: this.range(item) });
@@ -301,7 +301,9 @@ class Conversion {
           );
       } else this.strayInPath(item);
     }
-    const at = this.extentOf(node) ? this.range(node) : this.source.range(place, place);
+    const [first] = nodes;
+    const last = nodes[nodes.length - 1];
+    const at = first && last ? this.source.range(this.extent(first).start, this.extent(last).end) : this.source.range(place, place);
     return { kind: "series", items, ...(arrow !== undefined && { arrow }), at };
   }
 
@@ -328,10 +330,15 @@ class Conversion {
   private parallel(node: Syntax.Parallel): Parallel {
     let place = this.extent(node).start + 1;
     const branches: Series[] = [];
-    for (const branch of node.branches) {
-      branches.push(this.series(branch, place));
-      place = this.extentOf(branch)?.end ?? place;
+    let branch: Syntax.PathItem[] = [];
+    for (const item of node.inside) {
+      if (item.$type === "Bar") {
+        branches.push(this.series(branch, place));
+        branch = [];
+        place = this.extent(item).end;
+      } else branch.push(item);
     }
+    branches.push(this.series(branch, place));
     return { kind: "parallel", branches, at: this.range(node) };
   }
 

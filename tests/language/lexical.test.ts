@@ -103,6 +103,14 @@ describe("names", () => {
     expect(pathOf("rung: 5 2A 24V:1 -> 1M")).toBe("5 2A 24V:1 -> 1M");
   });
 
+  test("a branch with nothing in it is a branch", () => {
+    const ladder = only("ladder", statementsOf("rung: (A |) (| B |  | C) -> M"));
+    const [rung] = ladder.statements;
+    const counts =
+      rung?.kind === "rung" ? rung.path.items.map((it) => (it.kind === "parallel" ? it.branches.map((b) => b.items.length) : 0)) : [];
+    expect(counts).toEqual([[1, 0], [0, 1, 0, 1], 0]);
+  });
+
   test("a plug is a device outside fluid circuits and closes ports within", () => {
     expect(names('plug X5 "Cable"')).toEqual(["X5"]);
     expect(only("fluid", statementsOf('fluid "F" hydraulic {\n plug V1.B\n}')).statements[0]?.kind).toBe("plug");

@@ -52,7 +52,7 @@ export type SprungKeywordNames =
 export type SprungTokenNames = SprungTerminalNames | SprungKeywordNames;
 
 export interface Arrow extends langium.AstNode {
-    readonly $container: Series;
+    readonly $container: Parallel | Rung;
     readonly $type: 'Arrow';
     sign: '->';
 }
@@ -64,6 +64,21 @@ export const Arrow = {
 
 export function isArrow(item: unknown): item is Arrow {
     return reflection.isInstance(item, Arrow.$type);
+}
+
+export interface Bar extends langium.AstNode {
+    readonly $container: Parallel;
+    readonly $type: 'Bar';
+    sign: '|';
+}
+
+export const Bar = {
+    $type: 'Bar',
+    sign: 'sign'
+} as const;
+
+export function isBar(item: unknown): item is Bar {
+    return reflection.isInstance(item, Bar.$type);
 }
 
 export interface BareNumber extends langium.AstNode {
@@ -275,14 +290,14 @@ export function isName(item: unknown): item is Name {
 }
 
 export interface Parallel extends langium.AstNode {
-    readonly $container: Series;
+    readonly $container: Parallel | Rung;
     readonly $type: 'Parallel';
-    branches: Array<Series>;
+    inside: Array<Bar | PathItem>;
 }
 
 export const Parallel = {
     $type: 'Parallel',
-    branches: 'branches'
+    inside: 'inside'
 } as const;
 
 export function isParallel(item: unknown): item is Parallel {
@@ -319,7 +334,7 @@ export function isPlug(item: unknown): item is Plug {
 }
 
 export interface Point extends langium.AstNode {
-    readonly $container: Declaration | Drawing | Field | Fluid | Include | Ladder | Line | LineGroup | Plug | Sequence | Series | SheetBreak | Step | Unsupported;
+    readonly $container: Declaration | Drawing | Field | Fluid | Include | Ladder | Line | LineGroup | Parallel | Plug | Rung | Sequence | SheetBreak | Step | Unsupported;
     readonly $type: 'Point';
     name: string;
 }
@@ -349,7 +364,7 @@ export function isQuantity(item: unknown): item is Quantity {
 }
 
 export interface Reference extends langium.AstNode {
-    readonly $container: Series;
+    readonly $container: Parallel | Rung;
     readonly $type: 'Reference';
     name: string;
     negated: boolean;
@@ -374,7 +389,7 @@ export interface Rung extends langium.AstNode {
     readonly $type: 'Rung';
     colon?: ':';
     keyword: 'rung';
-    path: Series;
+    path: Array<PathItem>;
     title?: Text;
 }
 
@@ -407,21 +422,6 @@ export const Sequence = {
 
 export function isSequence(item: unknown): item is Sequence {
     return reflection.isInstance(item, Sequence.$type);
-}
-
-export interface Series extends langium.AstNode {
-    readonly $container: Parallel | Rung;
-    readonly $type: 'Series';
-    items: Array<PathItem>;
-}
-
-export const Series = {
-    $type: 'Series',
-    items: 'items'
-} as const;
-
-export function isSeries(item: unknown): item is Series {
-    return reflection.isInstance(item, Series.$type);
 }
 
 export interface SheetBreak extends langium.AstNode {
@@ -482,7 +482,7 @@ export function isStep(item: unknown): item is Step {
 }
 
 export interface Stray extends langium.AstNode {
-    readonly $container: Series;
+    readonly $container: Parallel | Rung;
     readonly $type: 'Stray';
     text: string;
 }
@@ -532,6 +532,7 @@ export function isUnsupported(item: unknown): item is Unsupported {
 
 export type SprungAstType = {
     Arrow: Arrow
+    Bar: Bar
     BareNumber: BareNumber
     Declaration: Declaration
     Document: Document
@@ -553,7 +554,6 @@ export type SprungAstType = {
     Reference: Reference
     Rung: Rung
     Sequence: Sequence
-    Series: Series
     SheetBreak: SheetBreak
     Sign: Sign
     Statement: Statement
@@ -573,6 +573,15 @@ export class SprungAstReflection extends langium.AbstractAstReflection {
                 }
             },
             superTypes: [PathItem.$type]
+        },
+        Bar: {
+            name: Bar.$type,
+            properties: {
+                sign: {
+                    name: Bar.sign
+                }
+            },
+            superTypes: []
         },
         BareNumber: {
             name: BareNumber.$type,
@@ -751,9 +760,10 @@ export class SprungAstReflection extends langium.AbstractAstReflection {
         Parallel: {
             name: Parallel.$type,
             properties: {
-                branches: {
-                    name: Parallel.branches,
-                    defaultValue: []
+                inside: {
+                    name: Parallel.inside,
+                    defaultValue: [],
+                    optional: true
                 }
             },
             superTypes: [PathItem.$type]
@@ -834,7 +844,9 @@ export class SprungAstReflection extends langium.AbstractAstReflection {
                     name: Rung.keyword
                 },
                 path: {
-                    name: Rung.path
+                    name: Rung.path,
+                    defaultValue: [],
+                    optional: true
                 },
                 title: {
                     name: Rung.title,
@@ -861,17 +873,6 @@ export class SprungAstReflection extends langium.AbstractAstReflection {
                 }
             },
             superTypes: [Statement.$type]
-        },
-        Series: {
-            name: Series.$type,
-            properties: {
-                items: {
-                    name: Series.items,
-                    defaultValue: [],
-                    optional: true
-                }
-            },
-            superTypes: []
         },
         SheetBreak: {
             name: SheetBreak.$type,
