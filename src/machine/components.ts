@@ -49,7 +49,7 @@ const drive: ComponentTable["words"] = {
 
 const freeTo: ComponentTable["words"] = {
   "free-to": (draft, read, word) => {
-    const item = read.next();
+    const item = read.reference();
     if (item?.kind === "word" || item?.kind === "part" || item?.kind === "point") draft.freeTo = item;
     else read.missing(word, "what the free flow leads to: a component or a @point");
   },

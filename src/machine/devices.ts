@@ -72,7 +72,7 @@ const coil: DeviceWords = {
 
 const stroke: DeviceWords = {
   on: (draft, read) => {
-    draft.on = read.next();
+    draft.on = read.reference();
   },
   at: (draft, read, word) => {
     const end = read.take("retracted", "extended") as "retracted" | "extended" | undefined;
@@ -186,7 +186,7 @@ const tables: Record<DeviceKind, DeviceTable> = {
       ...common,
       ...poles,
       on: (draft, read) => {
-        draft.on = read.next();
+        draft.on = read.reference();
       },
       rising: (draft, read, word) => {
         draft.rising = read.positive(word, "pressure");
@@ -203,7 +203,7 @@ const tables: Record<DeviceKind, DeviceTable> = {
       ...common,
       ...poles,
       on: (draft, read) => {
-        draft.on = read.next();
+        draft.on = read.reference();
       },
       setting: (draft, read, word) => {
         const setting = read.positive(word, "current");

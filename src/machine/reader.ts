@@ -9,14 +9,18 @@ import { didYouMean, listed, type Report } from "./report.js";
 export class ItemReader {
   private index = 0;
 
+  private readonly items: Item[];
+
   constructor(
-    private readonly items: readonly Item[],
+    items: readonly Item[],
     readonly report: Report,
     /** What is being read, for messages: `CLAMP` or `this supply`. */
     readonly owner: string,
     /** Where the declaration stands, for what is missing altogether. */
     readonly at: SourceRange,
-  ) {}
+  ) {
+    this.items = [...items];
+  }
 
   get done(): boolean {
     return this.index >= this.items.length;
@@ -94,6 +98,7 @@ export class ItemReader {
 
   /** A designation or potential: a bare word, a number standing as one, or a value written in one, such as `0V`. */
   name(property: Word, what: string): Word | undefined {
+    this.partNames();
     const name = nameOf(this.peek());
     if (name) {
       this.index++;
@@ -101,6 +106,25 @@ export class ItemReader {
     }
     this.missing(property, what);
     return undefined;
+  }
+
+  /** What a name, a `NAME.part` or a `@point` stands for; a value written like a name is one. */
+  reference(): Item | undefined {
+    const item = this.next();
+    const name = nameOf(item);
+    return name ? { kind: "word", ...name } : item;
+  }
+
+  /** `1 N` looks like a value; where names are due it is two of them. */
+  private partNames(): void {
+    const item = this.peek();
+    if (item?.kind !== "quantity") return;
+    const [first, second, more] = item.text.split(" ");
+    if (first === undefined || second === undefined || more !== undefined) return;
+    const { at } = item;
+    const [before, behind] = [first, second].map((text) => text.length) as [number, number];
+    const number: Item = { kind: "number", value: Number(first), text: first, at: { ...at, endColumn: at.column + before } };
+    this.items.splice(this.index, 1, number, { kind: "word", text: second, at: { ...at, column: at.endColumn - behind } });
   }
 
   text(property: Word): Word | undefined {

@@ -1,6 +1,15 @@
 import { parse } from "../../src/language/parse.js";
 import { buildMachine } from "../../src/machine/build.js";
-import type { ContactUse, Device, FluidCircuit, LadderCircuit, LoadUse, Machine, ParallelPath, SeriesPath } from "../../src/machine/model.js";
+import type {
+  ContactUse,
+  Device,
+  FluidCircuit,
+  LadderCircuit,
+  LoadUse,
+  Machine,
+  ParallelPath,
+  SeriesPath,
+} from "../../src/machine/model.js";
 
 /** The machine of a text, and the codes of what was found while reading it. */
 export function machineOf(text: string): { machine: Machine; codes: string[] } {

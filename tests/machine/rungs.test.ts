@@ -28,7 +28,10 @@ function rung(path: string): string {
 describe("what stands in a rung is a contact or a load", () => {
   test.each([
     ["/PB2 (PB1 | CR1) -> CR1", "L+ /PB2 1 (PB1 | CR1) 2 -> CR1 M"],
-    ["/PB2 (PB1 | CR1 (LS1 | LS3 LS4)) @run -> (CR1 | LT1 | LS5 -> SOL3)", "L+ /PB2 1 (PB1 | CR1 3 (LS1 | LS3 4 LS4)) @run 2 (-> CR1 | -> LT1 | LS5 5 -> SOL3) M"],
+    [
+      "/PB2 (PB1 | CR1 (LS1 | LS3 LS4)) @run -> (CR1 | LT1 | LS5 -> SOL3)",
+      "L+ /PB2 1 (PB1 | CR1 3 (LS1 | LS3 4 LS4)) @run 2 (-> CR1 | -> LT1 | LS5 5 -> SOL3) M",
+    ],
     ["CR1 LS1 -> MS1 /OL1 /OL2", "L+ CR1 1 LS1 2 -> MS1 3 /OL1 4 /OL2 M"],
     ["PB1 -> CR1 CR2", "L+ PB1 1 -> CR1 2 CR2 M"],
     ["PB1 -> (MS1 /OL1 | LT1)", "L+ PB1 1 (-> MS1 2 /OL1 | -> LT1) M"],
@@ -114,7 +117,9 @@ describe("what cannot be understood", () => {
   });
 
   test("a wire never makes one potential of two rails", () => {
-    const { machine, codes } = machineOf(ladder("rung: @a @b\nrung: @a (PB1 | @b) -> CR1\nrung: (@a PB1 | LS1) -> LT1 (/OL1 @b | /OL2)", things));
+    const { machine, codes } = machineOf(
+      ladder("rung: @a @b\nrung: @a (PB1 | @b) -> CR1\nrung: (@a PB1 | LS1) -> LT1 (/OL1 @b | /OL2)", things),
+    );
     expect(codes).toContain("rails-joined");
     expect(machine.potentials.filter(({ rail }) => rail !== undefined)).toHaveLength(2);
   });

@@ -48,8 +48,14 @@ describe("terminals the author pins", () => {
   });
   test.each([
     [["K1:13-14", "K1:13-14"], ["terminals-twice"]],
-    [["K1:13-14", "K1:14-15"], ["terminals-twice"]],
-    [["K1:11-14", "K1:11-13"], ["terminals-twice", "terminals-unlike-contact"]],
+    [
+      ["K1:13-14", "K1:14-15"],
+      ["terminals-twice", "terminals-unlike-contact"],
+    ],
+    [
+      ["K1:11-14", "K1:11-13"],
+      ["terminals-twice", "terminals-unlike-contact"],
+    ],
     [["K1:21-22"], ["terminals-unlike-contact"]],
     [["/K1:13-14"], ["terminals-unlike-contact"]],
     // Sockets have numbers of their own.

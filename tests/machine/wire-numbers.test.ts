@@ -30,7 +30,7 @@ describe("running wire numbers", () => {
 
   test("a point keeps its number wherever it is used", () => {
     expect(numbered("rung: PB1 @a -> CR1\nrung: CR1 PB2 @b\nrung: @b PB2 @a\nrung: @b -> LT1", "L1 L2")).toEqual([
-      "L1 PB1 1 @a -> CR1 L2",
+      "L1 PB1 @a 1 -> CR1 L2",
       "L1 CR1 2 PB2 3",
       "3 PB2 1",
       "3 -> LT1 L2",
