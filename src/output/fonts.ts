@@ -41,12 +41,20 @@ export function fontFaces(world: World, characters: { regular: ReadonlySet<strin
   return rules.join("\n");
 }
 
+const bounds = new Map<string, [number, number][]>();
+
+/** Whether a character is among those that a piece is for; `range` is as CSS writes it. */
 function inRange(character: string, range: string): boolean {
+  let parts = bounds.get(range);
+  if (!parts) {
+    parts = range.split(",").map((part): [number, number] => {
+      const [first = "", last = first] = part.slice(2).split("-");
+      return [Number.parseInt(first, 16), Number.parseInt(last, 16)];
+    });
+    bounds.set(range, parts);
+  }
   const code = character.codePointAt(0) as number;
-  return range.split(",").some((part) => {
-    const [first, last] = part.slice(2).split("-");
-    return code >= Number.parseInt(first as string, 16) && code <= Number.parseInt(last ?? (first as string), 16);
-  });
+  return parts.some(([first, last]) => code >= first && code <= last);
 }
 
 const encoded = new WeakMap<World, Map<string, string>>();

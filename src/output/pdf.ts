@@ -140,7 +140,8 @@ function drawSheet(document: Document, sheet: DrawnSheet, set: DrawingSet): void
   for (const mark of sheet.marks) {
     if (mark.kind !== "link" || !set.anchors.has(mark.to)) continue;
     const { x, y, width, height } = mark.box;
-    document.goTo(x * pt, y * pt, width * pt, height * pt, destination(mark.to));
+    const link = { Subtype: "Link", Dest: new String(destination(mark.to)) };
+    document.annotate(x * pt, y * pt, width * pt, height * pt, link as object as PDFKit.Mixins.AnnotationOption);
   }
   for (const [part, anchor] of set.anchors) {
     if (anchor.sheet !== sheet.number) continue;
