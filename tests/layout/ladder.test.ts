@@ -163,8 +163,11 @@ describe("a ladder sheet", () => {
 
 // ---------------------------------------------------------------- random rungs
 
-const names = ["CR1", "LS-CLAMP-OPEN-12", "PB1", "1CR", "LS2A", "TR1", "EMERGENCY_STOP_PANEL"];
-const declared = `relay CR1 "Running"\nlimit-switch LS-CLAMP-OPEN-12 "Clamp open over the whole of its way"\npush-button PB1 "Start"\nrelay 1CR\nlimit-switch LS2A\ntimer TR1 off-delay 2 s\nemergency-stop EMERGENCY_STOP_PANEL "Stop everything"`;
+const names = ["CR1", "PRS1", "SS1.auto", "PS1", "LS-CLAMP-OPEN-12", "PB1", "1CR", "LS2A", "TR1", "EMERGENCY_STOP_PANEL"];
+const declared = `relay CR1 "Running"\nlimit-switch LS-CLAMP-OPEN-12 "Clamp open over the whole of its way"\npush-button PB1 "Start"\nrelay 1CR\nlimit-switch LS2A\ntimer TR1 off-delay 2 s\nemergency-stop EMERGENCY_STOP_PANEL "Stop everything"
+proximity-switch PRS1 "Part here"
+selector-switch SS1 "Mode" { positions hand off auto }
+pressure-switch PS1 "Air on" rising 5 bar`;
 
 const contact = fc.tuple(fc.boolean(), fc.constantFrom(...names)).map(([closed, name]) => `${closed && name !== "EMERGENCY_STOP_PANEL" ? "/" : ""}${name}`);
 const path = fc.letrec<{ series: string; item: string }>((tie) => ({

@@ -6,7 +6,7 @@ import { foldRungs, type RungLimits } from "./fold-rungs.js";
 import { boundaryOf, loadColumn, type RungGrid } from "./grid.js";
 import { type Joined, joinPoints } from "./join-points.js";
 import { type MeasuredRung, measureRungs } from "./measure-rungs.js";
-import { type ColumnPitch, leastSpan, noNeeds, withNeeds } from "./set-columns.js";
+import { type ColumnPitch, leastSpan, needsOfLoads, noNeeds, withNeeds } from "./set-columns.js";
 
 /** Rungs of which none is wider or taller than a sheet. */
 export interface FittedRungs {
@@ -26,11 +26,11 @@ export const columnPitch = (scale: number): ColumnPitch => ({ usual: 30 * scale,
 export const linePitch = (scale: number): LinePitch => ({ least: scale === 1 ? 15 : 12.5, step: 1.25 });
 
 /** More than anybody draws; each round cuts what was still too large. */
-const rounds = 6;
+const rounds = 8;
 
 /**
- * Places and measures the rungs. Where one is wider than the sheet the symbols take the smaller module; where that is not
- * enough, or a rung is taller than a sheet, it is cut and goes on with a letter.
+ * Places and measures the rungs. Where many are wider than the sheet the symbols take the smaller module; a rung that is
+ * still too wide, or taller than a sheet, is cut and goes on with a letter.
  */
 export function fitRungs(
   circuit: LadderCircuit,
@@ -43,6 +43,8 @@ export function fitRungs(
   const limits = new Map<number, RungLimits>();
   const limitsOf = (index: number): RungLimits => limits.get(index) ?? { columns: Number.POSITIVE_INFINITY, lines: Number.POSITIVE_INFINITY };
   let scale = 1;
+  let triedSmall = false;
+  let wideAtFull = 0;
   for (let round = 1; ; round++) {
     const arrangement = arrange(scale);
     const { rungs: folded, origin, letters } = foldRungs(rungs, limitsOf, taken);
@@ -54,29 +56,46 @@ export function fitRungs(
     const measured = measureRungs(joined, new Set(rails), arrangement);
     const fitted = { joined, measured, arrangement, scale, breaks };
     const next = new Map(limits);
-    let wide = false;
-    let tall = false;
+    let wide = 0;
+    let tall = 0;
+    const loads = needsOfLoads(measured.reduce((needs, rung) => withNeeds(needs, rung, arrangement), noNeeds()));
     measured.forEach((rung, index) => {
       const of = origin[index] as number;
       const known = next.get(of) ?? limitsOf(of);
-      const along = leastSpan(withNeeds(noNeeds(), rung, arrangement), columnPitch(scale));
+      const along = leastSpan(withNeeds(loads, rung, arrangement), columnPitch(scale));
       if (along > offer.span) {
-        wide = true;
+        wide++;
         const columns = columnsOf(rung.grid);
         next.set(of, { ...known, columns: Math.max(1, Math.min(known.columns - 1, columns - 1, Math.floor((columns * offer.span) / along))) });
       }
       const across = stack(rung, 0, 0, linePitch(scale)).depth;
       if (across > offer.depth) {
-        tall = true;
+        tall++;
         const { lines } = rung.grid;
         next.set(of, { ...known, ...next.get(of), lines: Math.max(1, Math.min(known.lines - 1, lines - 1, Math.floor((lines * offer.depth) / across))) });
       }
     });
-    if ((!wide && !tall) || round === rounds) return fitted;
-    if (wide && scale === 1) scale = smallModule;
-    else for (const [index, limit] of next) limits.set(index, limit);
+    if ((wide === 0 && tall === 0) || round === rounds) return fitted;
+    if (!triedSmall && wide > 0 && (wide > measured.length * fewWide || offer.span < roomyColumns * columnPitch(1).usual)) {
+      // Many wide rungs, or a narrow sheet: see what the smaller module does for them.
+      triedSmall = true;
+      wideAtFull = wide;
+      scale = smallModule;
+      continue;
+    }
+    if (scale === smallModule && limits.size === 0 && wide >= wideAtFull && offer.span >= roomyColumns * columnPitch(1).usual) {
+      // It helps nobody: cut on the usual module instead.
+      scale = 1;
+      continue;
+    }
+    for (const [index, limit] of next) limits.set(index, limit);
   }
 }
+
+/** The share of wide rungs for whose sake the whole ladder is not drawn smaller. */
+const fewWide = 0.1;
+/** Fewer columns than this make a narrow sheet. */
+const roomyColumns = 6;
 
 /** How many columns before its loads a rung takes. */
 function columnsOf(grid: RungGrid): number {

@@ -5,6 +5,7 @@ import type { Symbol } from "../../symbols/symbol.js";
 import type { PlacedText, Reference, ReferenceTo } from "../placement.js";
 import type { Arrangement, Block, Dressed, MarginEntry } from "./arrangement.js";
 import { numberRise } from "./measure-rungs.js";
+import { reachInBand } from "./reach-in-band.js";
 import { scaleSymbol } from "./scale-symbol.js";
 import { around, roomOf } from "./text-box.js";
 
@@ -65,11 +66,12 @@ function dress(use: ContactUse | LoadUse, machine: Machine, symbol: Symbol, scal
   }
 
   // Over the middle of the lead, clear of the symbol; a long number reaches out over the wire.
+  const leads = reachInBand(symbol, shift, -0.4 - textHeight.small - 0.7, -0.4);
   let body = reach;
   use.terminals.value.forEach((terminal, pin) => {
     if (terminal === "") return;
     const half = measureText(terminal, textHeight.small) / 2;
-    const middle = Math.max(8.2 * scale, leadsFrom * scale + 0.6 + half) + reach - 10 * scale;
+    const middle = Math.max(reach - 1.8 * scale, leads + 0.6 + half);
     body = Math.max(body, middle + half + 0.4);
     texts.push({ part: use.id, role: "terminal", at: { x: pin === 0 ? -middle : middle, y: -0.7 }, anchor: "middle", height: textHeight.small, text: terminal });
   });
@@ -94,9 +96,6 @@ function dress(use: ContactUse | LoadUse, machine: Machine, symbol: Symbol, scal
     box,
   };
 }
-
-/** Where the leads of the widest contact symbols begin, from the middle, on the 2.5 mm module. */
-const leadsFrom: Mm = 6;
 
 /** Between a symbol and a text over or under it. */
 const clearance: Mm = 0.8;

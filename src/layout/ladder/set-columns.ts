@@ -34,6 +34,12 @@ export function noNeeds(): ColumnNeeds {
   return { bodies: new Map(), labels: new Map(), gaps: new Map(), spans: new Map(), contacts: 0, returns: 1 };
 }
 
+/** Of these needs, those of the loads and what lies behind them: the part of a sheet that all rungs of a ladder share. */
+export function needsOfLoads(needs: ColumnNeeds): ColumnNeeds {
+  const behind = (map: Map<number, Mm>) => new Map([...map].filter(([index]) => index >= loadColumn));
+  return { bodies: behind(needs.bodies), labels: behind(needs.labels), gaps: behind(needs.gaps), spans: behind(needs.spans), contacts: 0, returns: needs.returns };
+}
+
 /** The needs of a rung beside those of others. */
 export function withNeeds(others: ColumnNeeds, { grid, dressed, numbers, endings }: MeasuredRung, arrangement: Arrangement): ColumnNeeds {
   const needs: ColumnNeeds = {
