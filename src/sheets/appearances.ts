@@ -10,6 +10,12 @@ export interface Appearance {
   place: Place;
 }
 
+/** Where a point that goes on elsewhere ends on a sheet. */
+export interface PointEnd {
+  from: PartId;
+  place: Place;
+}
+
 /** Where the devices of a machine are drawn: the lookups behind references, links and outline. */
 export interface Appearances {
   machine: Machine;
@@ -28,7 +34,7 @@ export interface Appearances {
   /** The device of which a part is a contact or a load in a rung. */
   deviceOf(part: PartId): { device: string; use: "contact" | "load" } | undefined;
   /** The ends of a point on all sheets of a kind. */
-  pointEnds(kind: "ladder" | "fluid", point: string): { from: PartId; place: Place }[];
+  pointEnds(kind: "ladder" | "fluid", point: string): readonly PointEnd[];
 }
 
 /** Looks up every appearance once. */
@@ -116,8 +122,8 @@ function cams(layout: Layout, zoneOf: (point: Point) => string): Map<string, App
   return found;
 }
 
-function endsOfPoints(layout: Layout, zoneOf: (point: Point) => string): Map<string, { from: PartId; place: Place }[]> {
-  const ends = new Map<string, { from: PartId; place: Place }[]>();
+function endsOfPoints(layout: Layout, zoneOf: (point: Point) => string): Map<string, PointEnd[]> {
+  const ends = new Map<string, PointEnd[]>();
   for (const sheet of layout.sheets) {
     for (const { text, at, height } of sheet.texts) {
       if (typeof text === "string" || text.to !== "point") continue;

@@ -3,7 +3,7 @@ import type { Box, Mm } from "../drawing/geometry.js";
 import type { Mark, PartId } from "../drawing/marks.js";
 import { fitText, measureText } from "../drawing/text.js";
 import type { CircuitSheet, Place, PlacedText, Reference } from "../layout/placement.js";
-import { type Appearance, type Appearances, operatorOf } from "./appearances.js";
+import { type Appearance, type Appearances, operatorOf, type PointEnd } from "./appearances.js";
 
 /** A reference put into words: texts in a row, each of which may lead somewhere. */
 export interface Wording {
@@ -92,13 +92,7 @@ function ladderLines(device: string, sheet: CircuitSheet, appearances: Appearanc
 /** A point's other ends: `run 2/204`, on a fluid sheet `P 2/B1`, and `run 104` or `P B1` where they are all on this sheet. */
 function elsewhere(reference: Reference & { to: "point" }, sheet: CircuitSheet, appearances: Appearances): Wording[] {
   const all = appearances.pointEnds(sheet.kind, reference.point).filter(({ from }) => from !== reference.from);
-  const others = all.filter(({ place }) => place.sheet !== sheet.number);
-  // One end on each other sheet is enough, and the sheets that follow are read first.
-  const onceEach = others.filter(({ place }, index) => others.findIndex((other) => other.place.sheet === place.sheet) === index);
-  const ordered = [
-    ...onceEach.filter(({ place }) => place.sheet > sheet.number),
-    ...onceEach.filter(({ place }) => place.sheet < sheet.number).reverse(),
-  ];
+  const ordered = neighbouringEnds(reference, sheet, appearances);
   if (ordered.length === 0) ordered.push(...all);
   if (ordered.length === 0) return [{ pieces: [{ text: reference.point }] }];
   const wordings: Wording[] = [];
@@ -111,6 +105,25 @@ function elsewhere(reference: Reference & { to: "point" }, sheet: CircuitSheet, 
     wordings.push({ pieces });
   }
   return wordings;
+}
+
+/**
+ * Where a point goes on on the next sheet that has it, and where it comes from on the one before. Where a sheet has two ends
+ * of a point, the upper one comes from before and the lower one goes on.
+ */
+function neighbouringEnds(reference: Reference & { to: "point" }, sheet: CircuitSheet, appearances: Appearances): PointEnd[] {
+  const ends = [...appearances.pointEnds(sheet.kind, reference.point)].sort(
+    (a, b) => a.place.sheet - b.place.sheet || a.place.box.y - b.place.box.y,
+  );
+  const here = ends.findIndex(({ from, place }) => from === reference.from && place.sheet === sheet.number);
+  const following = ends.find(({ place }) => place.sheet > sheet.number);
+  const preceding = ends.findLast(({ place }) => place.sheet < sheet.number);
+  const onThisSheet = (end: PointEnd | undefined) => end?.place.sheet === sheet.number;
+  const comesIn = preceding !== undefined && onThisSheet(ends[here + 1]) && !onThisSheet(ends[here - 1]);
+  const goesOn = following !== undefined && onThisSheet(ends[here - 1]) && !onThisSheet(ends[here + 1]);
+  if (here >= 0 && comesIn) return [preceding];
+  if (here >= 0 && goesOn) return [following];
+  return [following, preceding].filter((end) => end !== undefined);
 }
 
 /** `1/B4`; only the sheet where the zone is not known. */

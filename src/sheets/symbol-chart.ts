@@ -144,7 +144,7 @@ function setFamilies(all: readonly Family[], area: Box): { title: string; marks:
         y = area.y;
       }
       const sheet = sheets.at(-1) as { title: string; marks: Mark[] };
-      if (!sheet.title.includes(title)) sheet.title += `, ${title.toLowerCase()}`;
+      if (!sheet.title.split(" / ").includes(title)) sheet.title += ` / ${title}`;
       const { marks } = sheet;
       if (!begun || y === area.y) {
         marks.push({
@@ -184,18 +184,20 @@ function rowsOf(entries: readonly Entry[], width: Mm): Row[] {
     }
     const row = rows.at(-1) as Row;
     row.cells.push({ entry, box: { x: at * column, y: 0, width: wide * column, height: 0 } });
-    row.height = Math.max(row.height, box.height + 2 * clear + captionHeight);
+    row.height = Math.max(row.height, box.height + 2 * clear + captionHeight(entry));
     at += wide;
   }
   for (const row of rows) for (const { box } of row.cells) box.height = row.height;
   return rows;
 }
 
-const captionHeight: Mm = nameHeight * 1.5 + 2 * smallHeight * 1.6 + 3;
+/** Room under a symbol for its name and two lines of title. */
+const captionHeight = ({ title }: Entry): Mm => nameHeight * 1.5 + (title === "" ? 0 : 2 * smallHeight * 1.6) + 3;
 
-function cellMarks({ name, title, symbol, module }: Entry, cell: Box): Mark[] {
+function cellMarks(entry: Entry, cell: Box): Mark[] {
+  const { name, title, symbol, module } = entry;
   const { box } = symbol;
-  const room: Box = { x: cell.x + 1, y: cell.y, width: cell.width - 2, height: cell.height - captionHeight };
+  const room: Box = { x: cell.x + 1, y: cell.y, width: cell.width - 2, height: cell.height - captionHeight(entry) };
   const origin: Point = {
     x: room.x + room.width / 2 - (box.x + box.width / 2),
     y: room.y + room.height / 2 - (box.y + box.height / 2),
@@ -211,12 +213,14 @@ function cellMarks({ name, title, symbol, module }: Entry, cell: Box): Mark[] {
 
   const middle = cell.x + cell.width / 2;
   let y = room.y + room.height + nameHeight * 1.3;
+  // A long name is set smaller before it is cut.
+  const height = measureText(name, nameHeight, true) <= room.width ? nameHeight : smallHeight;
   marks.push({
     kind: "text",
     role: "name",
     at: { x: middle, y },
-    text: fitText(name, nameHeight, room.width, true),
-    height: nameHeight,
+    text: fitText(name, height, room.width, true),
+    height,
     anchor: "middle",
     bold: true,
   });

@@ -73,6 +73,24 @@ describe("references", () => {
     expect(said(compose(made), 1, "reference")).toEqual(expect.arrayContaining(["run A2", "run C2"]));
   });
 
+  test("of two ends on a sheet the upper names where the point comes from and the lower where it goes on", () => {
+    const made = handMade();
+    const [first] = made.layout.sheets as [Made["layout"]["sheets"][number]];
+    const end = (sheet: number, from: string, y: number) => ({
+      role: "reference" as const,
+      at: { x: 65, y },
+      anchor: "start" as const,
+      height: 2.5,
+      text: { to: "point" as const, point: "on", from, room: 30 },
+      part: from,
+      sheet,
+    });
+    const ends = [end(1, "1 foot", 170), end(2, "2 foot", 180), end(2, "2 head", 30), end(3, "3 head", 40)];
+    const sheets = [1, 2, 3].map((number) => ({ ...first, number, texts: ends.filter(({ sheet }) => sheet === number) }));
+    const set = compose({ ...made, layout: { ...made.layout, sheets } });
+    expect([1, 2, 3].map((number) => said(set, number, "reference"))).toEqual([["on 2/A2"], ["on 3/A2", "on 1/D2"], ["on 2/D2"]]);
+  });
+
   test("a point's line is named where the layout knows it", () => {
     const made = handMade();
     const places = made.layout.places as Map<
