@@ -34,7 +34,10 @@ export const actuatorDrawings: Record<Exclude<ActuatorKind, "detent">, ActuatorD
   pedal: { shapes: `${stem} L(2,.5 2,-1) L(1.5,-1 3.5,.5)`, length: 3.5, top: 0.5, bottom: -1, mechanical: true },
   roller: {
     shapes: "L(0,.5 1.5,.5) L(0,-.5 1.5,-.5) L(1.5,-.5 1.5,.5) C(2,0 .5) CF(2,0 .12)",
-    length: 2.5, top: 0.5, bottom: -0.5, mechanical: true,
+    length: 2.5,
+    top: 0.5,
+    bottom: -0.5,
+    mechanical: true,
   },
   plunger: { shapes: `${stem} ARC(2,0 .5 -90..90)`, length: 2.5, top: 0.5, bottom: -0.5, mechanical: true },
 };

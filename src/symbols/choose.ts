@@ -34,10 +34,12 @@ const form = (use: ContactUse | LoadUse): "no" | "nc" => (use.kind === "contact"
 const relay = ({ use }: Drawn): string => (use.kind === "load" ? "coil" : `contact-${form(use)}`);
 
 /** A switch that the machine may hold: its name and terminals stay those of its form, its arm shows the state. */
-const heldSwitch = (name: string) => ({ use, held }: Drawn): string => {
-  const state = form(use) === "no" ? "no-held-closed" : "nc-held-open";
-  return `${name}-${held ? state : form(use)}`;
-};
+const heldSwitch =
+  (name: string) =>
+  ({ use, held }: Drawn): string => {
+    const state = form(use) === "no" ? "no-held-closed" : "nc-held-open";
+    return `${name}-${held ? state : form(use)}`;
+  };
 
 /** Symbols of each kind, the same names in the folders of both conventions. */
 const deviceSymbols: Record<DeviceKind, (drawn: Drawn) => string> = {
@@ -57,7 +59,9 @@ const deviceSymbols: Record<DeviceKind, (drawn: Drawn) => string> = {
   "selector-switch": (drawn) => {
     const { positions, at } = selectorOf(drawn);
     const state = closedIn(drawn)[at] ? "closed" : "open";
-    return positions.length === 2 || positions.length === 3 ? `selector-${positions.length}-at-${at + 1}-${state}` : `selector-many-${state}`;
+    return positions.length === 2 || positions.length === 3
+      ? `selector-${positions.length}-at-${at + 1}-${state}`
+      : `selector-many-${state}`;
   },
   "limit-switch": heldSwitch("limit"),
   "proximity-switch": heldSwitch("proximity"),
@@ -108,9 +112,15 @@ export function symbolForComponent(component: FluidComponent, start: StartState,
 
 type Choice = (component: FluidComponent, start: StartState, library: SymbolLibrary) => Symbol;
 
-const file = (name: string): Choice => (_component, _start, library) => library.get(`fluid/${name}`);
+const file =
+  (name: string): Choice =>
+  (_component, _start, library) =>
+    library.get(`fluid/${name}`);
 
-const byMedium = (name: string): Choice => ({ medium }, _start, library) => library.get(`fluid/${name}-${medium}`);
+const byMedium =
+  (name: string): Choice =>
+  ({ medium }, _start, library) =>
+    library.get(`fluid/${name}-${medium}`);
 
 const componentSymbols: Record<FluidKind, Choice> = {
   tank: file("tank"),

@@ -75,5 +75,7 @@ function cushion({ cushion: kind }: CylinderForm, piston: number): string[] {
 
 /** Air goes out to the room; oil that leaks past the piston is drained. */
 function vent(x: number, medium: Medium): string {
-  return medium === "pneumatic" ? `L(${x},-2 ${x},-2.5) t(${x},-3.5 D)` : `d:L(${x},-2 ${x},-3) L(${x - 1},-2.5 ${x - 1},-3.5 ${x + 1},-3.5 ${x + 1},-2.5)`;
+  return medium === "pneumatic"
+    ? `L(${x},-2 ${x},-2.5) t(${x},-3.5 D)`
+    : `d:L(${x},-2 ${x},-3) L(${x - 1},-2.5 ${x - 1},-3.5 ${x + 1},-3.5 ${x + 1},-2.5)`;
 }

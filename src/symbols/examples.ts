@@ -48,14 +48,40 @@ function positionBoxes(): Example[] {
 }
 
 function controls(): Example[] {
-  const at = (name: string, left: ValveActuator[], right: ValveActuator[] = end("spring"), shown = 1, medium: Medium = "pneumatic", external: string[] = []): Example => ({
+  const at = (
+    name: string,
+    left: ValveActuator[],
+    right: ValveActuator[] = end("spring"),
+    shown = 1,
+    medium: Medium = "pneumatic",
+    external: string[] = [],
+  ): Example => ({
     name,
     symbol: composeValve(
-      { ports: 3, positions: 2, boxes: ["P>A·T", "P·A>T"], normal: right.some(({ kind }) => kind === "spring") ? 1 : undefined, left, right },
-      medium, shown, external,
+      {
+        ports: 3,
+        positions: 2,
+        boxes: ["P>A·T", "P·A>T"],
+        normal: right.some(({ kind }) => kind === "spring") ? 1 : undefined,
+        left,
+        right,
+      },
+      medium,
+      shown,
+      external,
     ),
   });
-  const plain: ActuatorKind[] = ["solenoid", "proportional-solenoid", "piloted-solenoid", "pilot", "push-button", "lever", "pedal", "roller", "plunger"];
+  const plain: ActuatorKind[] = [
+    "solenoid",
+    "proportional-solenoid",
+    "piloted-solenoid",
+    "pilot",
+    "push-button",
+    "lever",
+    "pedal",
+    "roller",
+    "plunger",
+  ];
   return [
     ...plain.map((kind) => at(kind, end(kind))),
     at("solenoid, override", end("solenoid", "override")),
@@ -71,7 +97,12 @@ function controls(): Example[] {
 }
 
 function wholeValves(): Example[] {
-  const valve = (name: string, spec: Omit<ValveSpec, "positions">, medium: Medium, shown = spec.normal ?? spec.boxes.length - 1): Example => ({
+  const valve = (
+    name: string,
+    spec: Omit<ValveSpec, "positions">,
+    medium: Medium,
+    shown = spec.normal ?? spec.boxes.length - 1,
+  ): Example => ({
     name,
     symbol: composeValve({ ...spec, positions: spec.boxes.length === 3 ? 3 : 2 }, medium, shown),
   });
@@ -79,18 +110,67 @@ function wholeValves(): Example[] {
   return [
     valve("2/2 normally closed", { ports: 2, boxes: ["P>A", "P·A"], normal: 1, left: end("solenoid"), right: end("spring") }, "hydraulic"),
     valve("2/2 seat valve", { ports: 2, boxes: ["P>A", "P>A!"], normal: 1, left: end("solenoid"), right: end("spring") }, "hydraulic"),
-    valve("3/2 normally closed", { ports: 3, boxes: ["P>A·T", "P·A>T"], normal: 1, left: end("solenoid", "override"), right: end("spring") }, "pneumatic"),
-    valve("3/2 normally open", { ports: 3, boxes: ["P·A>T", "P>A·T"], normal: 1, left: end("push-button"), right: end("spring") }, "pneumatic"),
-    valve("4/2 spring return", { ports: 4, boxes: ["P>A·B>T", "P>B·A>T"], normal: 1, left: end("solenoid"), right: end("spring") }, "hydraulic"),
+    valve(
+      "3/2 normally closed",
+      { ports: 3, boxes: ["P>A·T", "P·A>T"], normal: 1, left: end("solenoid", "override"), right: end("spring") },
+      "pneumatic",
+    ),
+    valve(
+      "3/2 normally open",
+      { ports: 3, boxes: ["P·A>T", "P>A·T"], normal: 1, left: end("push-button"), right: end("spring") },
+      "pneumatic",
+    ),
+    valve(
+      "4/2 spring return",
+      { ports: 4, boxes: ["P>A·B>T", "P>B·A>T"], normal: 1, left: end("solenoid"), right: end("spring") },
+      "hydraulic",
+    ),
     valve("4/2 two solenoids", { ports: 4, boxes: ["P>A·B>T", "P>B·A>T"], left: end("solenoid"), right: end("solenoid") }, "hydraulic", 0),
     valve("4/3 closed centre", { ports: 4, boxes: boxesOf4("P·T·A·B"), normal: 1, left: sprung, right: sprung }, "hydraulic"),
-    valve("4/3 float centre, piloted", { ports: 4, boxes: boxesOf4("P·TAB"), normal: 1, left: end("piloted-solenoid", "spring"), right: end("piloted-solenoid", "spring") }, "hydraulic"),
-    valve("4/3 proportional", { ports: 4, boxes: boxesOf4("P·T·A·B"), normal: 1, left: end("proportional-solenoid", "spring"), right: end("proportional-solenoid", "spring") }, "hydraulic"),
-    valve("4/3 lever and detent", { ports: 4, boxes: boxesOf4("PT·A·B"), normal: 1, left: end("lever"), right: end("detent") }, "hydraulic"),
-    valve("5/2 spring return", { ports: 5, boxes: boxesOf5, normal: 1, left: end("solenoid", "override"), right: end("spring") }, "pneumatic"),
+    valve(
+      "4/3 float centre, piloted",
+      { ports: 4, boxes: boxesOf4("P·TAB"), normal: 1, left: end("piloted-solenoid", "spring"), right: end("piloted-solenoid", "spring") },
+      "hydraulic",
+    ),
+    valve(
+      "4/3 proportional",
+      {
+        ports: 4,
+        boxes: boxesOf4("P·T·A·B"),
+        normal: 1,
+        left: end("proportional-solenoid", "spring"),
+        right: end("proportional-solenoid", "spring"),
+      },
+      "hydraulic",
+    ),
+    valve(
+      "4/3 lever and detent",
+      { ports: 4, boxes: boxesOf4("PT·A·B"), normal: 1, left: end("lever"), right: end("detent") },
+      "hydraulic",
+    ),
+    valve(
+      "5/2 spring return",
+      { ports: 5, boxes: boxesOf5, normal: 1, left: end("solenoid", "override"), right: end("spring") },
+      "pneumatic",
+    ),
     valve("5/2 two pilots", { ports: 5, boxes: boxesOf5, left: end("pilot"), right: end("pilot") }, "pneumatic"),
-    valve("5/2 two solenoids, piloted", { ports: 5, boxes: boxesOf5, left: end("piloted-solenoid"), right: end("piloted-solenoid") }, "pneumatic", 0),
-    valve("5/3 exhaust centre", { ports: 5, boxes: [boxesOf5[0] as string, "1·4>5·2>3", boxesOf5[1] as string], normal: 1, left: end("solenoid", "override", "spring"), right: end("solenoid", "override", "spring") }, "pneumatic"),
+    valve(
+      "5/2 two solenoids, piloted",
+      { ports: 5, boxes: boxesOf5, left: end("piloted-solenoid"), right: end("piloted-solenoid") },
+      "pneumatic",
+      0,
+    ),
+    valve(
+      "5/3 exhaust centre",
+      {
+        ports: 5,
+        boxes: [boxesOf5[0] as string, "1·4>5·2>3", boxesOf5[1] as string],
+        normal: 1,
+        left: end("solenoid", "override", "spring"),
+        right: end("solenoid", "override", "spring"),
+      },
+      "pneumatic",
+    ),
   ];
 }
 

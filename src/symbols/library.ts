@@ -30,7 +30,8 @@ export function openSymbols(world: World): SymbolLibrary {
     },
     names() {
       return symbolFolders.flatMap((folder) =>
-        world.listAssets(`symbols/${folder}`)
+        world
+          .listAssets(`symbols/${folder}`)
           .filter((file) => file.endsWith(".svg"))
           .map((file) => `${folder}/${file.slice(0, -".svg".length)}`)
           .sort(),

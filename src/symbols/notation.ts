@@ -140,7 +140,10 @@ const drawers: Record<string, (drawing: Drawing) => void> = {
 };
 
 function numbersOf(args: string): number[] {
-  return args.trim().split(/[\s,]+/).map(Number);
+  return args
+    .trim()
+    .split(/[\s,]+/)
+    .map(Number);
 }
 
 function pointsOf(args: string): Point[] {
@@ -164,7 +167,15 @@ function strokeShape(path: Segment[], dash: Mm[] | undefined): Shape {
 }
 
 function stroke({ frame, shapes, dash }: Drawing, points: Point[], closed = false): void {
-  shapes.push(strokeShape(polyline(points.map((point) => inFrame(frame, point)), closed), dash));
+  shapes.push(
+    strokeShape(
+      polyline(
+        points.map((point) => inFrame(frame, point)),
+        closed,
+      ),
+      dash,
+    ),
+  );
 }
 
 /** A line whose last stretch ends within its head, so that the tip stays sharp. */
@@ -184,7 +195,14 @@ function arrow(drawing: Drawing, points: Point[], both: boolean): void {
   headAt(points.length - 1, points.length - 2);
   if (both) headAt(0, 1);
   stroke(drawing, line);
-  for (const head of heads) drawing.shapes.push({ kind: "fill", path: polyline(head.map((p) => inFrame(drawing.frame, p)), true) });
+  for (const head of heads)
+    drawing.shapes.push({
+      kind: "fill",
+      path: polyline(
+        head.map((p) => inFrame(drawing.frame, p)),
+        true,
+      ),
+    });
 }
 
 function triangle(drawing: Drawing, size: number): void {
@@ -192,7 +210,10 @@ function triangle(drawing: Drawing, size: number): void {
   const base = { x: at.x - way.x * size, y: at.y - way.y * size };
   const half = size / 2;
   const corners = [at, { x: base.x - way.y * half, y: base.y + way.x * half }, { x: base.x + way.y * half, y: base.y - way.x * half }];
-  const path = polyline(corners.map((point) => inFrame(drawing.frame, point)), true);
+  const path = polyline(
+    corners.map((point) => inFrame(drawing.frame, point)),
+    true,
+  );
   drawing.shapes.push(strokeShape(path, drawing.dash));
   if (drawing.medium === "hydraulic") drawing.shapes.push({ kind: "fill", path });
 }

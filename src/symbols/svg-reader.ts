@@ -33,7 +33,7 @@ export function readSymbol(text: string, name: string): Symbol {
   let scale = 0;
 
   parser.on("error", (error) => {
-    throw new Error(error.message.replace(/^.*?:\s*/, ""));
+    throw new Error(error.message.replace(/^[\d:]+\s*/, ""));
   });
   parser.on("opentag", (tag) => {
     const attributes = tag.attributes as Attributes;
@@ -56,7 +56,13 @@ export function readSymbol(text: string, name: string): Symbol {
       symbol.spots[spot] = { ...placeOf(attributes, scale), anchor };
     } else {
       const path = pathOf(tag.name, attributes);
-      if (path) addPath(symbol, path.map((segment) => scaled(segment, scale)), style, scale);
+      if (path)
+        addPath(
+          symbol,
+          path.map((segment) => scaled(segment, scale)),
+          style,
+          scale,
+        );
     }
   });
   parser.on("text", (piece) => {
@@ -79,9 +85,13 @@ export function readSymbol(text: string, name: string): Symbol {
 /** Millimetres for a unit of the file. */
 function scaleOf(attributes: Attributes): number {
   const width = /^(\d*\.?\d+)mm$/.exec(attributes.width ?? "")?.[1];
-  const view = (attributes.viewBox ?? "").trim().split(/[\s,]+/).map(Number);
+  const view = (attributes.viewBox ?? "")
+    .trim()
+    .split(/[\s,]+/)
+    .map(Number);
   if (width === undefined) throw new Error("<svg>: its width must be given in mm");
-  if (view.length !== 4 || view.some((n) => !Number.isFinite(n)) || !((view[2] as number) > 0)) throw new Error("<svg>: it needs a viewBox");
+  if (view.length !== 4 || view.some((n) => !Number.isFinite(n)) || !((view[2] as number) > 0))
+    throw new Error("<svg>: it needs a viewBox");
   return Number(width) / (view[2] as number);
 }
 
@@ -92,7 +102,15 @@ function inherit(outer: Style, attributes: Attributes): Style {
     fill: attributes.fill ?? outer.fill,
     stroke: attributes.stroke ?? outer.stroke,
     width: width === undefined ? outer.width : finite(width, "stroke-width"),
-    dash: dash === undefined ? outer.dash : dash === "none" ? undefined : dash.trim().split(/[\s,]+/).map((n) => finite(n, "stroke-dasharray")),
+    dash:
+      dash === undefined
+        ? outer.dash
+        : dash === "none"
+          ? undefined
+          : dash
+              .trim()
+              .split(/[\s,]+/)
+              .map((n) => finite(n, "stroke-dasharray")),
   };
 }
 
@@ -119,7 +137,10 @@ function pathOf(element: string, attributes: Attributes): Segment[] | undefined 
     case "path":
       return parsePathData(required(attributes, "d", "<path>"));
     case "line":
-      return polyline([{ x: n("x1"), y: n("y1") }, { x: n("x2"), y: n("y2") }]);
+      return polyline([
+        { x: n("x1"), y: n("y1") },
+        { x: n("x2"), y: n("y2") },
+      ]);
     case "polyline":
     case "polygon":
       return polyline(pointsOf(required(attributes, "points", `<${element}>`)), element === "polygon");
@@ -140,7 +161,10 @@ function pathOf(element: string, attributes: Attributes): Segment[] | undefined 
 }
 
 function pointsOf(text: string): Point[] {
-  const numbers = text.trim().split(/[\s,]+/).map((number) => finite(number, "points"));
+  const numbers = text
+    .trim()
+    .split(/[\s,]+/)
+    .map((number) => finite(number, "points"));
   if (numbers.length % 2 === 1) throw new Error("points: a coordinate is missing");
   return Array.from({ length: numbers.length / 2 }, (_, i) => ({ x: numbers[2 * i] as number, y: numbers[2 * i + 1] as number }));
 }
@@ -148,14 +172,27 @@ function pointsOf(text: string): Point[] {
 function roundedRectangle(x: number, y: number, width: number, height: number, r: number): Segment[] {
   const right = x + width;
   const bottom = y + height;
-  if (r === 0) return polyline([{ x, y }, { x: right, y }, { x: right, y: bottom }, { x, y: bottom }], true);
+  if (r === 0)
+    return polyline(
+      [
+        { x, y },
+        { x: right, y },
+        { x: right, y: bottom },
+        { x, y: bottom },
+      ],
+      true,
+    );
   const corner = (toX: number, toY: number): Segment => ({ op: "A", radius: r, large: false, sweep: true, x: toX, y: toY });
   return [
     { op: "M", x: x + r, y },
-    { op: "L", x: right - r, y }, corner(right, y + r),
-    { op: "L", x: right, y: bottom - r }, corner(right - r, bottom),
-    { op: "L", x: x + r, y: bottom }, corner(x, bottom - r),
-    { op: "L", x, y: y + r }, corner(x + r, y),
+    { op: "L", x: right - r, y },
+    corner(right, y + r),
+    { op: "L", x: right, y: bottom - r },
+    corner(right - r, bottom),
+    { op: "L", x: x + r, y: bottom },
+    corner(x, bottom - r),
+    { op: "L", x, y: y + r },
+    corner(x + r, y),
     { op: "Z" },
   ];
 }
@@ -168,7 +205,13 @@ function ellipse(cx: number, cy: number, rx: number, ry: number): Segment[] {
     const one = { x: x0 + k * x1, y: y0 + k * y1 };
     const two = { x: x1 + k * x0, y: y1 + k * y0 };
     return {
-      op: "C", x1: cx + rx * one.x, y1: cy + ry * one.y, x2: cx + rx * two.x, y2: cy + ry * two.y, x: cx + rx * x1, y: cy + ry * y1,
+      op: "C",
+      x1: cx + rx * one.x,
+      y1: cy + ry * one.y,
+      x2: cx + rx * two.x,
+      y2: cy + ry * two.y,
+      x: cx + rx * x1,
+      y: cy + ry * y1,
     };
   };
   return [{ op: "M", x: cx + rx, y: cy }, curve(1, 0, 0, 1), curve(0, 1, -1, 0), curve(-1, 0, 0, -1), curve(0, -1, 1, 0), { op: "Z" }];
@@ -180,8 +223,13 @@ function scaled(segment: Segment, scale: Mm): Segment {
       return segment;
     case "C":
       return {
-        op: "C", x1: mm(segment.x1 * scale), y1: mm(segment.y1 * scale), x2: mm(segment.x2 * scale), y2: mm(segment.y2 * scale),
-        x: mm(segment.x * scale), y: mm(segment.y * scale),
+        op: "C",
+        x1: mm(segment.x1 * scale),
+        y1: mm(segment.y1 * scale),
+        x2: mm(segment.x2 * scale),
+        y2: mm(segment.y2 * scale),
+        x: mm(segment.x * scale),
+        y: mm(segment.y * scale),
       };
     case "A":
       return { ...segment, radius: mm(segment.radius * scale), x: mm(segment.x * scale), y: mm(segment.y * scale) };

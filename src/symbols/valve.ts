@@ -1,7 +1,15 @@
 import type { Box } from "../drawing/geometry.js";
 import type { Medium, ValveActuator, ValveSpec } from "../machine/model.js";
 import {
-  type ActuatorDrawing, actuatorDrawings, camReach, camShapes, detentLength, detentReach, detentShapes, overrideReach, overrideShapes,
+  type ActuatorDrawing,
+  actuatorDrawings,
+  camReach,
+  camShapes,
+  detentLength,
+  detentReach,
+  detentShapes,
+  overrideReach,
+  overrideShapes,
 } from "./actuators.js";
 import { extentOf } from "./extent.js";
 import { directionIn, type Frame, fluidModule, frameAt, inFrame, mm, sketch } from "./notation.js";
@@ -24,7 +32,15 @@ export function composeValve(spec: ValveSpec, medium: Medium, shownBox: number, 
   const shown = Math.min(Math.max(0, shownBox), spec.boxes.length - 1);
   const width = boxWidth(spec.ports);
   const frame: Frame = { module: fluidModule, x: 0, y: 0 };
-  const valve: Symbol = { name: recipe(spec, medium, shown, external), title: titleOf(spec), box: emptyBox, ports: [], shapes: [], spots: {}, actuators: [] };
+  const valve: Symbol = {
+    name: recipe(spec, medium, shown, external),
+    title: titleOf(spec),
+    box: emptyBox,
+    ports: [],
+    shapes: [],
+    spots: {},
+    actuators: [],
+  };
 
   spec.boxes.forEach((code, index) => {
     const positions = valvePositions[spec.ports];
@@ -114,7 +130,12 @@ function groupControls(actuators: readonly ValveActuator[]): ValveActuator[][] {
 
 /** Draws one control and tells what room it takes. */
 function addControl(
-  valve: Symbol, actuator: ValveActuator, end: End, frame: Frame, low: boolean, stacked: boolean,
+  valve: Symbol,
+  actuator: ValveActuator,
+  end: End,
+  frame: Frame,
+  low: boolean,
+  stacked: boolean,
 ): { length: number; top: number; bottom: number } {
   const { medium, spec, side, shown } = end;
   if (actuator.kind === "detent") {
@@ -143,7 +164,11 @@ function addControl(
     valve.shapes.push(...sketch(camShapes, frame, medium));
     ({ length, top, bottom } = camReach);
   }
-  valve.actuators?.push({ side, ...(actuator.solenoid === undefined ? {} : { solenoid: actuator.solenoid }), box: controlBox(frame, drawing) });
+  valve.actuators?.push({
+    side,
+    ...(actuator.solenoid === undefined ? {} : { solenoid: actuator.solenoid }),
+    box: controlBox(frame, drawing),
+  });
   return { length, top, bottom };
 }
 
@@ -158,7 +183,9 @@ function addPilotLines(valve: Symbol, end: End, frame: Frame): number {
   const { side, medium, external, spec } = end;
   const other = side === "left" ? "right" : "left";
   const here = pilotName(side, medium);
-  const names = external.filter((name) => name === here || !spec[other].some(({ kind }) => kind === "piloted-solenoid" || kind === "pilot"));
+  const names = external.filter(
+    (name) => name === here || !spec[other].some(({ kind }) => kind === "piloted-solenoid" || kind === "pilot"),
+  );
   const low = -(3 + frame.y);
   names.slice(0, 2).forEach((name, index) => {
     const u = name === here || names.length === 1 ? 1 : 2;
@@ -170,6 +197,8 @@ function addPilotLines(valve: Symbol, end: End, frame: Frame): number {
 }
 
 function addPin(valve: Symbol, name: string, pin: { x: number; y: number }, frame: Frame, labelAt: Side = "left"): void {
+  // Of two pilots at one end the first has the port.
+  if (valve.ports.some((port) => port.name === name)) return;
   const sideways = pin.y === 0;
   const direction: Port["direction"] = sideways ? directionIn(frame, "right") : "down";
   valve.ports.push({ name, ...inFrame(frame, pin), direction });
