@@ -476,7 +476,7 @@ class Lexing {
       this.emit("->", start, start + 2);
       this.at += 2;
     } else if (this.char === "/") this.readSlash();
-    else if (this.char === ":" && !statement.colon && this.tokens.length <= statement.first + 2) {
+    else if (this.char === ":" && !statement.colon && this.atColon(statement)) {
       statement.colon = true;
       this.emit(":", start, start + 1);
       this.at++;
@@ -484,6 +484,12 @@ class Lexing {
     else if (this.char === "@") this.readPoint();
     else if (this.match("name") > 0) this.readWord("name");
     else if (!this.readUnknown()) this.readSymbol();
+  }
+
+  /** Whether nothing but a rung's word and its function text stands before this place. */
+  private atColon({ first }: StatementState): boolean {
+    const count = this.tokens.length - first;
+    return count === 1 || (count === 2 && this.tokens[first + 1]?.type === "TEXT");
   }
 
   /** A rung's function text written without quotation marks. */
@@ -694,7 +700,7 @@ class Lexing {
       return true;
     }
     const typographic = this.match("typographicText");
-    if (typographic > 0 && this.statement) {
+    if (typographic > 0 && this.statement && !this.statement.due) {
       const end = typographic;
       this.report("unexpected-character", start, start + 1, "Typographic quotation marks hold no text here.", {
         hint: 'Write plain ones: "…".',
@@ -734,7 +740,12 @@ const signHints: [string, string][] = [
 function show(written: string): string {
   const first = written.codePointAt(0) ?? 0;
   const printable =
-    first > 0x20 && !(first >= 0x7f && first < 0xa1) && !(first >= 0x200b && first <= 0x200f) && first !== 0xfeff && first !== 0xfffd;
+    !/\s/.test(written) &&
+    first > 0x20 &&
+    !(first >= 0x7f && first < 0xa1) &&
+    !(first >= 0x200b && first <= 0x200f) &&
+    first !== 0xfeff &&
+    first !== 0xfffd;
   if (printable) return `"${written.length > 12 ? `${[...written].slice(0, 12).join("")}…` : written}"`;
   return `The character U+${first.toString(16).toUpperCase().padStart(4, "0")}`;
 }

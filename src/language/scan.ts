@@ -100,7 +100,12 @@ const knownSigns = '"#@(){}|/:,+-';
 function unknownEnd(text: string, at: number): number {
   if (/[“”„]/.test(text[at] ?? "")) return at + 1;
   let end = at;
-  while (end < text.length && !knownSigns.includes(text[end] as string) && !/[\s“”„]/.test(text[end] as string) && !isLetterAt(text, end)) {
+  while (
+    end < text.length &&
+    !knownSigns.includes(text[end] as string) &&
+    !/[ \t\u00a0\r\n“”„]/.test(text[end] as string) &&
+    !isLetterAt(text, end)
+  ) {
     end += (text.codePointAt(end) as number) > 0xffff ? 2 : 1;
   }
   return end > at ? end : -1;

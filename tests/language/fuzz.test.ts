@@ -77,6 +77,23 @@ describe("any text at all is read", () => {
     fc.assert(fc.property(text, holds), { numRuns: 600, seed: 4 });
   });
 
+  test("found in earlier runs", () => {
+    for (const text of [
+      "rung",
+      "line drawing -- “x”",
+      "fluid “x” {\n line “",
+      "relay A {\nrung: (",
+      "rung: (|",
+      "rung \ufeff :",
+      "rung , :",
+      "rung drawing / :",
+      "rung \u2003 A :",
+      "power {",
+      "{}}",
+    ])
+      holds(text);
+  });
+
   test("cut off anywhere", () => {
     for (const good of examples) for (let end = 0; end < good.length; end += 7) holds(good.slice(0, end));
   });
