@@ -79,7 +79,7 @@ export type ReferenceTo =
   /** At a solenoid or switch on a fluid sheet: the ladder line of its coil or contacts, `(204)`. */
   | { to: "ladder-line"; device: string }
   /** At a point that goes on elsewhere: name, sheet and line. */
-  | { to: "point"; point: string; from: PartId };
+  | { to: "point"; point: string; from: PartId; /** Whether it comes from there or goes on there, where that is known. */ way?: "in" | "out" };
 
 /** Where each part stands in the set. */
 export interface Place {

@@ -86,6 +86,11 @@ function ladderLines(device: string, sheet: CircuitSheet, appearances: Appearanc
     });
     wordings.push({ pieces });
   }
+  const [first] = contacts;
+  if (first && contacts.length > 1) {
+    const line = lineName(first.place, sheet, appearances);
+    for (const text of [`(${line}…)`, `(${line})`]) wordings.push({ pieces: [{ text, to: first.part }] });
+  }
   return wordings;
 }
 
@@ -108,21 +113,17 @@ function elsewhere(reference: Reference & { to: "point" }, sheet: CircuitSheet, 
 }
 
 /**
- * Where a point goes on on the next sheet that has it, and where it comes from on the one before. Where a sheet has two ends
- * of a point, the upper one comes from before and the lower one goes on.
+ * Where a point comes from on the sheet before that has it, or where it goes on on the next; both where it is not known which
+ * of them the end is. Of several ends on that sheet the nearest is named: the lowest before, the highest after.
  */
 function neighbouringEnds(reference: Reference & { to: "point" }, sheet: CircuitSheet, appearances: Appearances): PointEnd[] {
   const ends = [...appearances.pointEnds(sheet.kind, reference.point)].sort(
     (a, b) => a.place.sheet - b.place.sheet || a.place.box.y - b.place.box.y,
   );
-  const here = ends.findIndex(({ from, place }) => from === reference.from && place.sheet === sheet.number);
   const following = ends.find(({ place }) => place.sheet > sheet.number);
   const preceding = ends.findLast(({ place }) => place.sheet < sheet.number);
-  const onThisSheet = (end: PointEnd | undefined) => end?.place.sheet === sheet.number;
-  const comesIn = preceding !== undefined && onThisSheet(ends[here + 1]) && !onThisSheet(ends[here - 1]);
-  const goesOn = following !== undefined && onThisSheet(ends[here - 1]) && !onThisSheet(ends[here + 1]);
-  if (here >= 0 && comesIn) return [preceding];
-  if (here >= 0 && goesOn) return [following];
+  if (reference.way === "in") return [preceding ?? following].filter((end) => end !== undefined);
+  if (reference.way === "out") return [following ?? preceding].filter((end) => end !== undefined);
   return [following, preceding].filter((end) => end !== undefined);
 }
 

@@ -73,22 +73,32 @@ describe("references", () => {
     expect(said(compose(made), 1, "reference")).toEqual(expect.arrayContaining(["run A2", "run C2"]));
   });
 
-  test("of two ends on a sheet the upper names where the point comes from and the lower where it goes on", () => {
+  test("an end that comes in names the sheet before, one that goes out the sheet after, and the nearest end there", () => {
     const made = handMade();
     const [first] = made.layout.sheets as [Made["layout"]["sheets"][number]];
-    const end = (sheet: number, from: string, y: number) => ({
+    const end = (sheet: number, from: string, y: number, way?: "in" | "out") => ({
       role: "reference" as const,
       at: { x: 65, y },
       anchor: "start" as const,
       height: 2.5,
-      text: { to: "point" as const, point: "on", from, room: 30 },
+      text: { to: "point" as const, point: "on", from, room: 30, ...(way ? { way } : {}) },
       part: from,
       sheet,
     });
-    const ends = [end(1, "1 foot", 170), end(2, "2 foot", 180), end(2, "2 head", 30), end(3, "3 head", 40)];
+    const ends = [
+      end(1, "1 foot", 170, "out"),
+      end(2, "2 foot", 180, "out"),
+      end(2, "2 head", 30, "in"),
+      end(2, "2 side", 60),
+      end(3, "3 head", 40, "in"),
+    ];
     const sheets = [1, 2, 3].map((number) => ({ ...first, number, texts: ends.filter(({ sheet }) => sheet === number) }));
     const set = compose({ ...made, layout: { ...made.layout, sheets } });
-    expect([1, 2, 3].map((number) => said(set, number, "reference"))).toEqual([["on 2/A2"], ["on 3/A2", "on 1/D2"], ["on 2/D2"]]);
+    expect([1, 2, 3].map((number) => said(set, number, "reference"))).toEqual([
+      ["on 2/A2"],
+      ["on 3/A2", "on 1/D2", "on 3/A2", ", 1/D2"],
+      ["on 2/D2"],
+    ]);
   });
 
   test("a point's line is named where the layout knows it", () => {
@@ -108,6 +118,27 @@ describe("references", () => {
     expect(said(compose(made), 1, "reference")).toContain("3/B3");
     place.room = measureText("3/B3", 1.8);
     expect(texts(sheetOf(compose(made), 1).marks, "reference").find(({ text }) => text === "3/B3")?.height).toBe(1.8);
+  });
+
+  test("a switch with more contacts than there is room for says that there are more", () => {
+    const made = handMade();
+    const ls1 = made.machine.devices.get("LS1");
+    const [contact] = ls1?.contacts ?? [];
+    if (!contact) throw new Error("LS1 has no contact");
+    const places = made.layout.places as Map<string, Made["layout"]["places"] extends ReadonlyMap<string, infer Place> ? Place : never>;
+    for (const line of [104, 105]) {
+      ls1?.contacts.push({ ...contact, id: `LS1 ${line}` });
+      places.set(`LS1 ${line}`, { sheet: 1, line, zone: "B2", box: { x: 0, y: 0, width: 1, height: 1 } });
+    }
+    const cam = made.layout.sheets[2]?.texts[1]?.text as Reference;
+    const sayIn = (room: number) => {
+      cam.room = room;
+      return said(compose(made), 3, "reference").slice(1).join("");
+    };
+    expect(sayIn(40)).toBe("(103, 104, 105)");
+    expect(sayIn(measureText("(103, 104, …)", 2.5))).toBe("(103, 104, …)");
+    expect(sayIn(measureText("(103…)", 2.5))).toBe("(103…)");
+    expect(sayIn(measureText("(103)", 2.5))).toBe("(103)");
   });
 
   test("what is drawn nowhere is not referred to", () => {

@@ -90,7 +90,7 @@ export function drawSheet(given: SheetGiven): DrawnLadderSheet {
       const { lead, head, half, gap } = endingSize;
       const drop = rung.lines[ending.line]?.drop ?? 0;
       const room = arrangement.endingRoom(ending.point);
-      const reference = { to: "point", point: ending.point, from: part, room } as const;
+      const reference = { to: "point", point: ending.point, from: part, way: ending.kind === "start" ? "in" : "out", room } as const;
       const words = { part, role: "reference", height: 2.5, text: reference } as const;
       if (ending.kind === "start") {
         arrow(part, [[x - lead - head, y - half], [x - lead, y], [x - lead - head, y + half], [x - lead - head, y - half]]);
@@ -158,7 +158,8 @@ export function drawSheet(given: SheetGiven): DrawnLadderSheet {
     const point = grid?.sites.find((site) => site.node === link.node)?.point ?? "";
     const part = endingPart(grid?.rung.id ?? circuit.id, point, end);
     arrow(part, points);
-    text({ part, role: "reference", at: { x: 0, y: 0 }, anchor: "start", height: 2.5, text: { to: "point", point, from: part, room: arrangement.endingRoom(point) } }, by);
+    const reference = { to: "point", point, from: part, way: end === "head" ? "in" : "out", room: arrangement.endingRoom(point) } as const;
+    text({ part, role: "reference", at: { x: 0, y: 0 }, anchor: "start", height: 2.5, text: reference }, by);
     const printed = (lineOf.get(rung) ?? firstLine) + (end === "foot" ? link.from.line : link.to.line);
     place(part, printed, { x: by.x - 3, y: by.y - 3, width: 6, height: 6 });
   }
