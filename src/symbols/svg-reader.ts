@@ -6,7 +6,7 @@ import { circle, polyline } from "../drawing/path.js";
 import { extentOf } from "./extent.js";
 import { lineWidth, mm } from "./notation.js";
 import { parsePathData } from "./path-data.js";
-import type { Direction, Shape, Symbol } from "./symbol.js";
+import type { Direction, Symbol } from "./symbol.js";
 
 type Attributes = Record<string, string>;
 

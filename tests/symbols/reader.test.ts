@@ -119,7 +119,10 @@ describe("a broken symbol file is named and the fault said", () => {
     let reads = 0;
     const library = openSymbols({
       ...world(file('<path d="M0 0H1"/>')),
-      readAsset: () => (reads++, new TextEncoder().encode(file('<path d="M0 0H1"/>'))),
+      readAsset: () => {
+        reads++;
+        return new TextEncoder().encode(file('<path d="M0 0H1"/>'));
+      },
     });
     expect(reads).toBe(0);
     expect(library.get("fluid/one")).toBe(library.get("fluid/one"));

@@ -1,8 +1,8 @@
 import fc from "fast-check";
 import { describe, expect, test } from "vitest";
-import { boxesOf, centreWords, fivePortCentreWords } from "../../src/machine/valve-boxes.js";
-import { pilotPort, valvePorts } from "../../src/machine/ports.js";
 import type { ActuatorKind, Medium, ValveActuator, ValveSpec } from "../../src/machine/model.js";
+import { pilotPort, valvePorts } from "../../src/machine/ports.js";
+import { boxesOf, centreWords, fivePortCentreWords } from "../../src/machine/valve-boxes.js";
 import { sketch } from "../../src/symbols/notation.js";
 import { composeValve } from "../../src/symbols/valve.js";
 import { boxWidth, valvePlaces, valvePositions } from "../../src/symbols/valve-positions.js";
