@@ -240,3 +240,56 @@ describe("random rungs", () => {
     );
   });
 });
+
+describe("rungs larger than a sheet", () => {
+  const contacts = (count: number) => Array.from({ length: count }, (_, i) => `LS${i + 1}`);
+  const large = (rung: string, paper: string) =>
+    ladderOf(`drawing "Large" { paper ${paper} }
+      supply CTRL 24 V DC { rails L+ M  fuse FU1 4 A }
+      relay CR1 "Everything in place"
+      pilot-light LT1 green
+      pilot-light LT2 red
+      ${contacts(40).map((name) => `limit-switch ${name} "Gate closed"`).join("\n")}
+      ladder "Control" supply CTRL {
+        ${rung}
+        rung: LS1 -> LT1
+      }`);
+
+  test.each(["A4", "A3", "ANSI-A"])("go on with letters when they are too long for %s", (paper) => {
+    const laid = large(`rung "Chain": ${contacts(23).join(" ")} -> CR1`, paper);
+    expect(faults(laid)).toEqual([]);
+    const names = laid.sheets.flatMap((sheet) => sheet.texts).flatMap(({ text }) => (typeof text !== "string" && text.to === "point" ? [text.point] : []));
+    // Every letter stands at two ends.
+    expect(names.length).toBeGreaterThan(0);
+    for (const name of names) expect(names.filter((other) => other === name)).toHaveLength(2);
+  });
+
+  test.each(["A4", "A3"])("put long branches on lines of their own on %s", (paper) => {
+    expect(faults(large(`rung "Bracket": LS30 (${contacts(15).join(" ")} | LS31 (LS32 | ${contacts(12).join(" ")})) LS33 -> (CR1 | LS34 ${contacts(14).join(" ")} -> LT2)`, paper))).toEqual([]);
+  });
+
+  test("put branches that have no room below the others on the next sheet", () => {
+    const laid = large(`rung "Any of many": LS40 (${contacts(38).join(" | ")}) -> CR1`, "A3");
+    expect(faults(laid)).toEqual([]);
+    expect(laid.sheets.length).toBeGreaterThan(2);
+  });
+});
+
+test("time grows no faster than the ladder", () => {
+  const time = (count: number) => {
+    const lamps = Array.from({ length: count }, (_, i) => `pilot-light LT${i} red`).join("\n");
+    const rungs = Array.from({ length: count }, (_, i) => (i % 4 === 0 ? `rung: PB1 (CR1 | LS2A) @p${i} -> LT${i}` : `rung: @p${i - (i % 4)} CR1 -> LT${i}`)).join("\n");
+    const text = `supply CTRL 24 V DC { rails L+ M }\n${declared}\n${lamps}\nladder "Control" supply CTRL {\n${rungs}\n}\n`;
+    const laid = ladderOf(text);
+    const again = () => {
+      const begun = performance.now();
+      laid.again();
+      return performance.now() - begun;
+    };
+    return Math.min(again(), again());
+  };
+  time(50);
+  const [few, many] = [time(150), time(1200)];
+  // Eight times the rungs; twice that in time leaves room for noise, not for squares.
+  expect(many / few).toBeLessThan(20);
+}, 60_000);

@@ -16,6 +16,8 @@ export interface LaidLadder {
   sheets: CircuitSheet[];
   places: Map<string, LadderLayout["places"][number][1]>;
   page: PageArea;
+  /** Lays it out once more, for timing. */
+  again(): LadderLayout;
 }
 
 const library = openSymbols(nodeWorld);
@@ -31,8 +33,9 @@ export function ladderOf(text: string): LaidLadder {
   const page = pageArea(machine.drawing);
   const start = startOfCycle(machine);
   const symbolOf = (use: ContactUse | LoadUse) => symbolForDevice(use, machine.devices.get(use.device) as Device, start, machine.drawing.convention, library);
-  const laid = layOutLadder(circuit, machine, symbolOf, library, page, { sheet: 1, line: 1 });
-  return { machine, circuit, sheets: laid.sheets, places: new Map(laid.places), page };
+  const again = () => layOutLadder(circuit, machine, symbolOf, library, page, { sheet: 1, line: 1 });
+  const laid = again();
+  return { machine, circuit, sheets: laid.sheets, places: new Map(laid.places), page, again };
 }
 
 /** Everything a careful reader would mark on the sheets, as sentences. */
@@ -90,10 +93,12 @@ function wrongNets(circuit: LadderCircuit, sheets: readonly CircuitSheet[]): str
     nodeOfPin.set(`${id}.${right}`, to);
   }
   const found: string[] = [];
+  const fuse = circuit.supply.fuse?.name;
   const islands = new Map<NodeId, { referred: boolean; ports: string[] }[]>();
   for (const sheet of sheets) {
     const referring = sheet.strokes.filter(({ role }) => role === "continuation").map(({ path }) => path);
     for (const group of netlistOf(sheet)) {
+      group.ports = group.ports.filter((pin) => pin !== `${fuse}.in` && pin !== `${fuse}.out`);
       const nodes = [...new Set(group.ports.map((pin) => nodeOfPin.get(pin)).concat(group.nodes))];
       if (nodes.length > 1) found.push(`sheet ${sheet.number}: nodes ${nodes.join(", ")} are wired together (${group.ports.join(" ")})`);
       const [node] = nodes;

@@ -16,7 +16,8 @@ export interface Arrangement {
   margin(entry: MarginEntry): Block;
   /** The number over a wire: how much room it takes along and above its line. */
   wireNumber(node: number): { words: PlacedText["text"]; room: Mm };
-  /** Room along for an arrow with its text. */
+  /** Room along for the text at an arrow, and its height. */
+  endingHeight: Mm;
   endingRoom(point: string): Mm;
 }
 

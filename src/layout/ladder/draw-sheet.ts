@@ -91,19 +91,20 @@ export function drawSheet(given: SheetGiven): DrawnLadderSheet {
       const drop = rung.lines[ending.line]?.drop ?? 0;
       const room = arrangement.endingRoom(ending.point);
       const reference = { to: "point", point: ending.point, from: part, way: ending.kind === "start" ? "in" : "out", room } as const;
-      const words = { part, role: "reference", height: 2.5, text: reference } as const;
+      const height = arrangement.endingHeight;
+      const words = { part, role: "reference", height, text: reference } as const;
       if (ending.kind === "start") {
         arrow(part, [[x - lead - head, y - half], [x - lead, y], [x - lead - head, y + half], [x - lead - head, y - half]]);
         pieces.push({ node: ending.node, from: { along: x - lead, across: y }, to: { along: x, across: y } });
-        text({ ...words, at: { x: 0, y: half }, anchor: "end" }, at(x - lead - head - gap, y));
+        text({ ...words, at: { x: 0, y: height / 2 }, anchor: "end" }, at(x - lead - head - gap, y));
       } else if (ending.kind === "end") {
         arrow(part, [[x + lead, y], [x + lead, y - half], [x + lead + head, y], [x + lead, y + half], [x + lead, y]]);
         pieces.push({ node: ending.node, from: { along: x, across: y }, to: { along: x + lead, across: y } });
-        text({ ...words, at: { x: 0, y: half }, anchor: "start" }, at(x + lead + head + gap, y));
+        text({ ...words, at: { x: 0, y: height / 2 }, anchor: "start" }, at(x + lead + head + gap, y));
       } else {
         arrow(part, [[x, y + drop], [x - half, y + drop], [x, y + drop + head], [x + half, y + drop], [x, y + drop]]);
         pieces.push({ node: ending.node, from: { along: x, across: y }, to: { along: x, across: y + drop } });
-        text({ ...words, at: { x: 0, y: 0 }, anchor: "middle" }, at(x, y + drop + head + gap + 2.5));
+        text({ ...words, at: { x: 0, y: 0 }, anchor: "middle" }, at(x, y + drop + head + gap + height));
       }
       const mark = at(x, y);
       place(part, line + ending.line, { x: mark.x - 3, y: mark.y - 3, width: 6, height: 6 });

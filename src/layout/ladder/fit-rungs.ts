@@ -59,20 +59,24 @@ export function fitRungs(
     let wide = 0;
     let tall = 0;
     const loads = needsOfLoads(measured.reduce((needs, rung) => withNeeds(needs, rung, arrangement), noNeeds()));
+    const behind = leastSpan(loads, columnPitch(scale));
     measured.forEach((rung, index) => {
       const of = origin[index] as number;
-      const known = next.get(of) ?? limitsOf(of);
+      // What held for this round; several pieces of one rung must not lower its limit several times.
+      const known = limitsOf(of);
+      const lowered = next.get(of) ?? known;
       const along = leastSpan(withNeeds(loads, rung, arrangement), columnPitch(scale));
       if (along > offer.span) {
         wide++;
         const columns = columnsOf(rung.grid);
-        next.set(of, { ...known, columns: Math.max(1, Math.min(known.columns - 1, columns - 1, Math.floor((columns * offer.span) / along))) });
+        const share = Math.floor((columns * (offer.span - behind)) / (along - behind));
+        next.set(of, { ...lowered, columns: Math.max(1, Math.min(lowered.columns, known.columns - 1, Math.max(columns - 1, 1), share)) });
       }
       const across = stack(rung, 0, 0, linePitch(scale)).depth;
       if (across > offer.depth) {
         tall++;
         const { lines } = rung.grid;
-        next.set(of, { ...known, ...next.get(of), lines: Math.max(1, Math.min(known.lines - 1, lines - 1, Math.floor((lines * offer.depth) / across))) });
+        next.set(of, { ...lowered, ...next.get(of), lines: Math.max(1, Math.min(lowered.lines, known.lines - 1, lines - 1, Math.floor((lines * offer.depth) / across))) });
       }
     });
     if ((wide === 0 && tall === 0) || round === rounds) return fitted;

@@ -36,7 +36,7 @@ interface Open {
  * @param letters points made by cutting a rung: what begins or ends there is not joined by wire
  */
 export function joinPoints(rungs: readonly Rung[], barriers: ReadonlySet<number>, letters: ReadonlySet<string>, columnsOf: (index: number) => number): Joined {
-  const lastUse = lastUses(rungs);
+  const lastUse = lastUses(rungs, letters);
   const grids: RungGrid[] = [];
   const links: Link[] = [];
   const endings: Ending[] = [];
@@ -75,7 +75,7 @@ export function joinPoints(rungs: readonly Rung[], barriers: ReadonlySet<number>
         next.set(node, { boundary: upright.boundary, rung: index, line: bottomOf(grid, node, upright.boundary) as number });
       }
     }
-    for (const node of new Set(grid.sites.map((site) => site.node))) {
+    for (const node of new Set(grid.sites.filter(({ point }) => !letters.has(point)).map((site) => site.node))) {
       if (next.has(node) || (lastUse.get(node) ?? 0) <= index) continue;
       const way = wayDown(grid, node);
       if (way) next.set(node, { ...way, rung: index });
@@ -91,18 +91,18 @@ function linkTo(node: NodeId, upright: Open, rung: number, line: number): Link {
   return { node, boundary: upright.boundary, from: { rung: upright.rung, line: upright.line }, to: { rung, line } };
 }
 
-/** The last rung that uses each point's node. */
-function lastUses(rungs: readonly Rung[]): Map<NodeId, number> {
+/** The last rung that uses the node of each of the author's points. */
+function lastUses(rungs: readonly Rung[], letters: ReadonlySet<string>): Map<NodeId, number> {
   const last = new Map<NodeId, number>();
   rungs.forEach((rung, index) => {
     const visit = (path: Rung["path"]) => {
       for (const item of path.items) {
-        if (item.kind === "point") last.set(item.from, index);
+        if (item.kind === "point" && !letters.has(item.point)) last.set(item.from, index);
         else if (item.kind === "parallel") item.branches.forEach(visit);
       }
     };
     visit(rung.path);
-    for (const end of [rung.start, rung.end]) if (end.kind === "point") last.set(end.node, index);
+    for (const end of [rung.start, rung.end]) if (end.kind === "point" && !letters.has(end.point)) last.set(end.node, index);
   });
   return last;
 }

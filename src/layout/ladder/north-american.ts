@@ -28,6 +28,7 @@ export interface NorthAmericanGiven {
 
 /** Rails upright, rungs level: along is x, across is y. */
 export function northAmerican({ machine, symbolOf, margin, scale }: NorthAmericanGiven): Arrangement {
+  const endingHeight = scale < 1 ? textHeight.small : textHeight.usual;
   const potentials = new Map(machine.potentials.map((potential) => [potential.id, potential]));
   return {
     orient: (along, across) => ({ x: along, y: across }),
@@ -39,7 +40,8 @@ export function northAmerican({ machine, symbolOf, margin, scale }: NorthAmerica
       const longest = machine.drawing.wireNumbers === "by-line" ? "8888A" : words;
       return { words, room: measureText(longest, textHeight.usual) };
     },
-    endingRoom: (point) => measureText(`${point} 8/8888`, textHeight.usual),
+    endingHeight,
+    endingRoom: (point) => measureText(`${point} 8/8888`, endingHeight),
   };
 }
 
