@@ -474,6 +474,23 @@ export class LineBuilder {
     return found;
   }
 
+  private readonly endsBy = new Map<CircuitDraft, Map<string, (FluidEnd & { kind: "port" })[]>>();
+
+  /** The line ends at each component of a circuit. */
+  private endsOf(draft: CircuitDraft): Map<string, (FluidEnd & { kind: "port" })[]> {
+    const known = this.endsBy.get(draft);
+    if (known) return known;
+    const found = new Map<string, (FluidEnd & { kind: "port" })[]>();
+    for (const end of draft.circuit.lines.flatMap(({ ends }) => ends)) {
+      if (end.kind !== "port") continue;
+      const there = found.get(end.component);
+      if (there) there.push(end);
+      else found.set(end.component, [end]);
+    }
+    this.endsBy.set(draft, found);
+    return found;
+  }
+
   private swapPorts(draft: CircuitDraft, { component }: ComponentDraft): void {
     const [inlet, outlet] = ["in", "out"].map((name) => component.ports.find((port) => port.name === name)) as [FluidPort, FluidPort];
     const [atInlet, atOutlet] = [this.ports.get(inlet), this.ports.get(outlet)];
@@ -481,14 +498,15 @@ export class LineBuilder {
     this.ports.delete(outlet);
     if (atInlet !== undefined) this.ports.set(outlet, atInlet);
     if (atOutlet !== undefined) this.ports.set(inlet, atOutlet);
-    for (const line of draft.circuit.lines) {
-      for (const end of line.ends) {
-        if (end.kind !== "port" || end.component !== component.id) continue;
-        if (end.port === "in") end.port = "out";
-        else if (end.port === "out") end.port = "in";
-      }
+    for (const end of this.endsOf(draft).get(component.id) ?? []) {
+      if (end.port === "in") end.port = "out";
+      else if (end.port === "out") end.port = "in";
     }
-    this.touchingBy.delete(draft);
+    const joined = this.touching(draft);
+    for (const provisional of [atInlet, atOutlet]) {
+      const there = provisional === undefined ? [] : (joined.get(this.nodes.find(provisional)) ?? []);
+      for (const place of there) if (place.draft.component === component) place.port = place.port === inlet ? outlet : inlet;
+    }
   }
 }
 

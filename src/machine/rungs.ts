@@ -1,5 +1,6 @@
 import type { SourceRange } from "../language/diagnostic.js";
 import type { LadderBlock, Parallel, PathItem, PathReference, Rung as RungSyntax, Series } from "../language/tree.js";
+import { startOf } from "./drawing.js";
 import { deviceRoles } from "./kinds.js";
 import type {
   ContactUse,
@@ -102,7 +103,10 @@ export class RungBuilder {
 
   private readRung(syntax: RungSyntax, id: string, rails: [NodeId, NodeId]): Rung | undefined {
     const items = [...syntax.path.items];
-    if (items.length === 0) return undefined; // the parser has said so
+    if (items.length === 0) {
+      this.report.error("rung-empty", syntax.title?.at ?? startOf(syntax.at, "rung"), "This rung has no device.");
+      return undefined;
+    }
     const roles = new Roles((name) => this.devices.get(name)?.kind, this.report);
     roles.decide(syntax.path);
     const work: RungWork = { id, roles, points: new Map(), incomplete: false };

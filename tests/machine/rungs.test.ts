@@ -124,3 +124,7 @@ describe("what cannot be understood", () => {
     expect(machine.potentials.filter(({ rail }) => rail !== undefined)).toHaveLength(2);
   });
 });
+
+test("a rung with nothing in it is told so", () => {
+  expect(machineOf(ladder('rung "Empty":', things)).codes).toEqual(["rung-empty"]);
+});
