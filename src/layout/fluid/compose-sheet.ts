@@ -1,3 +1,4 @@
+import type { Point } from "../../drawing/geometry.js";
 import type { FluidComponent, FluidNodeId } from "../../machine/model.js";
 import type { Arrangement } from "./arrangement.js";
 import { type Placed, portOf } from "./block.js";
@@ -20,6 +21,8 @@ export interface HeaderLine {
 export interface Composition {
   placed: Placed[];
   headers: HeaderLine[];
+  /** Lines that lead straight, bend by bend, from a port of the unit to a header. */
+  risers: { node: FluidNodeId; points: Point[] }[];
   extent: Extent;
 }
 
@@ -33,44 +36,72 @@ export interface Content {
   headers: readonly { node: FluidNodeId; before: boolean; after: boolean }[];
   /** Free columns between groups. */
   gap: number;
+  /** At even distances, as wide as the widest needs. */
+  even: boolean;
 }
 
 /** Sets groups side by side on common lines, headers below them and the power unit at the bottom left. */
-export function compose({ groups, unit, headers, gap }: Content, graph: FluidGraph): Composition {
+export function compose({ groups, unit, headers, gap, even }: Content, _graph: FluidGraph): Composition {
   const placed: Placed[] = [];
-  let x = 0;
-  for (const { placed: members, extent } of groups) {
-    const shift = Math.ceil(x - extent.left);
-    for (const { block, at } of members) placed.push({ block, at: { x: at.x + shift, y: at.y } });
-    x = extent.right + shift + gap;
-  }
-  const right = x - gap;
+  const origins = sideBySide(groups.map(({ extent }) => extent), gap, even);
+  groups.forEach(({ placed: members }, index) => {
+    for (const { block, at } of members) placed.push({ block, at: { x: at.x + (origins[index] as number), y: at.y } });
+  });
+  const right = groups.length > 0 ? (origins.at(-1) as number) + (groups.at(-1) as Arrangement).extent.right : 0;
   const firstRow = groups.length > 0 ? Math.ceil(Math.max(...groups.map(({ extent }) => extent.bottom))) + 2 : 0;
   const joined = headers.filter(({ node, before, after }) => before || after || portsOn(placed, node).length > 1 || (unit !== undefined && hasPort(unit.placed, node)));
   const lastRow = firstRow + Math.max(0, joined.length - 1) * headerPitch;
 
   // The unit's first riser goes straight on to the first valve, if that leaves it on the sheet's left.
+  const rising: { node: FluidNodeId; x: number; from: Point }[] = [];
   const risers = new Map<FluidNodeId, number[]>();
   if (unit) {
     const riser = unit.risers[0];
     const target = riser ? portsOn(placed, riser.node)[0] : undefined;
-    const shift = riser && target !== undefined ? target - riser.x : Math.ceil(-unit.extent.left);
+    const shift = riser && target !== undefined ? besideOthers(unit, riser.x, target, placed) : Math.ceil(-unit.extent.left);
     const down = (groups.length > 0 ? lastRow : -1) + 1;
     for (const { block, at } of unit.placed) placed.push({ block, at: { x: at.x + shift, y: at.y + down } });
+    for (const { node, x: at, from } of unit.risers) rising.push({ node, x: at + shift, from: { x: from.x + shift, y: from.y + down } });
     for (const { node, x: at } of [...unit.risers, ...unit.returns]) risers.set(node, [...(risers.get(node) ?? []), at + shift]);
   }
   const lines = joined.map(({ node, before, after }, index): HeaderLine => {
     const ends = [...portsOn(placed.slice(0, placed.length - (unit?.placed.length ?? 0)), node), ...(risers.get(node) ?? [])];
-    const from = before ? Math.min(...ends, 0) - 3 : Math.min(...ends);
-    const to = after ? Math.max(...ends, right) + 3 : Math.max(...ends);
+    const from = before ? Math.floor(Math.min(...ends, 0)) - 3 : Math.min(...ends);
+    const to = after ? Math.ceil(Math.max(...ends, right)) + 3 : Math.max(...ends);
     return { node, y: firstRow + index * headerPitch, from, to, fromLeft: before, toRight: after };
   }).filter(({ from, to }) => Number.isFinite(from) && Number.isFinite(to));
   const extent = union([
     ...placed.map(({ block, at }) => moved(block.full, at)),
     ...lines.map(({ from, to, y, fromLeft, toRight }) => ({ left: fromLeft ? from - 1 : from, right: toRight ? to + 1 : to, top: y - (fromLeft || toRight ? 2 : 0), bottom: y })),
   ]);
-  void graph;
-  return { placed, headers: lines, extent };
+  const rows = new Map(lines.map(({ node, y }) => [node, y]));
+  const straight = rising.flatMap(({ node, x, from }) => {
+    const y = rows.get(node);
+    return y === undefined ? [] : [{ node, points: [from, { x, y: from.y }, { x, y }] }];
+  });
+  return { placed, headers: lines, risers: straight, extent };
+}
+
+/** How far the unit may stand out to the left of what it feeds. */
+const outstanding = 12;
+
+/** Where the unit goes: its riser straight below the first valve, or where it stands too far out, its edge below theirs. */
+function besideOthers(unit: PowerUnit, riser: number, target: number, placed: readonly Placed[]): number {
+  const edge = Math.min(...placed.map(({ block, at }) => at.x + block.full.left));
+  if (target - riser + unit.extent.left >= edge - outstanding) return target - riser;
+  const shift = Math.ceil(edge - outstanding / 2 - unit.extent.left);
+  return shift;
+}
+
+/** Where the origins of groups stand. */
+function sideBySide(extents: readonly Extent[], gap: number, even: boolean): number[] {
+  const steps = extents.slice(1).map(({ left }, index) => Math.ceil((extents[index] as Extent).right + gap - left));
+  const widest = Math.max(0, ...steps);
+  let x = Math.ceil(-(extents[0]?.left ?? 0));
+  return extents.map((_, index) => {
+    if (index > 0) x += even ? widest : (steps[index - 1] as number);
+    return x;
+  });
 }
 
 /** Where ports on a node stand, from left to right. */

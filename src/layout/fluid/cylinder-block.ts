@@ -12,6 +12,9 @@ const referenceRoom: Mm = 9.2;
 const strokeLine = -1.5;
 const markHalf = 0.6;
 
+/** Where the function text stands over the axis. */
+const titleLine = -8;
+
 /** The least travel a rod has for marks on it, mm, when no stroke is given. */
 const unknownStroke: Mm = 100;
 
@@ -32,11 +35,9 @@ export function cylinderBlock(component: FluidComponent, symbol: Symbol): Block 
   if (component.name !== undefined) write("designation", component.name, textHeight);
   if (spec) addCams(block, spec);
   if (component.text !== undefined) {
-    // Over the marks, which may reach back over the barrel.
-    const width = measureText(component.text, titleHeight) / module;
-    const beside = union([block.body, ...block.texts.map(textExtent)]);
-    if (block.strokes.length > 0 && width > 10) y = Math.min(y, beside.top - 0.6);
-    y -= 0.2;
+    // At one height over all cylinders, clear of the marks' designations.
+    if (component.name !== undefined && component.values.length > 0) y = Math.min(y, titleLine + block.offset.y);
+    else if (block.strokes.length > 0) y = Math.min(y, block.full.top - 0.6);
     write("function", component.text, titleHeight);
   }
   return block;
@@ -60,7 +61,8 @@ function addCams(block: Block, spec: CylinderSpec): void {
   const wanted = ends.map((end) => (end.written === "retracted" ? from : end.written === "extended" ? to : (end.from + end.to) / 2));
   const least = 10.4 + block.offset.x;
   const labels = spread(wanted, widths, least);
-  const labelBottom = line - markHalf - (labels.some((x, i) => Math.abs(x - (wanted[i] as number)) > 0.05) ? 1.6 : 0.4);
+  const apart = labels.map((x, i) => Math.abs(x - (wanted[i] as number)) > 1);
+  const labelBottom = line - markHalf - (apart.includes(true) ? 1.6 : 0.4);
   ends.forEach((end, i) => {
     const part = `${cylinder}/${end.device}`;
     const at = wanted[i] as number;
@@ -69,7 +71,7 @@ function addCams(block: Block, spec: CylinderSpec): void {
     block.strokes.push({ ...mark, path: [{ x: at, y: line + markHalf }, { x: at, y: line - markHalf }] });
     // A stretch of the stroke rather than a place is drawn as a bar along it.
     if (end.written === "stretch") block.strokes.push({ ...mark, width: 0.7, path: [{ x: end.from, y: line }, { x: end.to, y: line }] });
-    if (Math.abs(label - at) > 0.05) block.strokes.push({ part, role: "cam-leader", width: 0.18, path: [{ x: at, y: line - markHalf }, { x: label, y: labelBottom + 0.15 }] });
+    if (apart[i]) block.strokes.push({ part, role: "cam-leader", width: 0.18, path: [{ x: at, y: line - markHalf }, { x: label, y: labelBottom + 0.15 }] });
     const before = block.texts.length;
     addText(block, {
       part, role: "reference", text: { to: "ladder-line", device: end.device, room: referenceRoom }, height: smallHeight, anchor: "middle",

@@ -94,7 +94,7 @@ function drawContinuations({ node, y, from, to, fromLeft, toRight }: HeaderLine,
       part, role: "continuation", width: 0.25,
       path: [onSheet({ x, y }, origin), onSheet({ x, y: y - 0.5 }, origin), tip, onSheet({ x, y: y + 0.5 }, origin), onSheet({ x, y }, origin)],
     });
-    const at = onSheet({ x: x + out, y: y - 0.9 }, origin);
+    const at = onSheet({ x: x + out, y: y - 1.3 }, origin);
     const text: PlacedText = { part, role: "reference", text: { to: "point", point, from: part, room: pointRoom }, at, anchor, height: textHeight };
     sheet.texts.push(text);
   }

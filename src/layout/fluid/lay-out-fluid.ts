@@ -55,9 +55,9 @@ export async function layOutFluid(
       layered.push(plans[index] ? undefined : await placeByLayers(group, graph, headers, symbolOf, slack));
     }
     const groups = division.groups.map((_, index) => ({
-      height: plans[index] ? placeTower(plans[index] as Tower, symbolOf, slack).height : layered[index]?.height,
+      height: plans[index] ? placeTower(plans[index] as Tower, graph, symbolOf, slack).height : layered[index]?.height,
       at: (height: number | undefined): Arrangement =>
-        plans[index] ? placeTower(plans[index] as Tower, symbolOf, slack, height) : height === undefined ? (layered[index] as Arrangement) : raiseCylinders(layered[index] as Arrangement, height),
+        plans[index] ? placeTower(plans[index] as Tower, graph, symbolOf, slack, height) : height === undefined ? (layered[index] as Arrangement) : raiseCylinders(layered[index] as Arrangement, height),
     }));
     return { ...(unit ? { unit } : {}), groups };
   };
@@ -120,7 +120,7 @@ function share(parts: Parts, division: Division, graph: FluidGraph, page: PageAr
   const shares: Share[] = [];
   let open: Share = { groups: [], unit: parts.unit !== undefined };
   const fits = (candidate: Share) => {
-    const { extent } = compositionOf(parts, candidate, shares.length > 0, false, division, graph, 3, 0);
+    const { extent } = compositionOf(parts, candidate, shares.length > 0, false, division, graph, tight);
     const room = roomOf(page);
     return (extent.right - extent.left) * module <= room.width && (extent.bottom - extent.top) * module <= room.height;
   };
@@ -143,14 +143,23 @@ function share(parts: Parts, division: Division, graph: FluidGraph, page: PageAr
   return shares;
 }
 
-function compositionOf(parts: Parts, one: Share, before: boolean, after: boolean, division: Division, graph: FluidGraph, gap: number, taller: number, elsewhere?: Elsewhere): Composition {
+function compositionOf(parts: Parts, one: Share, before: boolean, after: boolean, division: Division, graph: FluidGraph, { gap, taller, even }: Spacing, elsewhere?: Elsewhere): Composition {
   const heights = one.groups.flatMap((index) => parts.groups[index]?.height ?? []);
   const height = heights.length > 0 ? Math.max(...heights) + taller : undefined;
   const groups = one.groups.map((index) => (parts.groups[index] as Parts["groups"][number]).at(parts.groups[index]?.height === undefined ? undefined : height));
   const headers = division.headers.map(({ node }) => ({ node, before: elsewhere ? elsewhere.before(node) : before, after: elsewhere ? elsewhere.after(node) : after }));
   const here = headers.filter(({ node }) => onSheet(node, groups, one.unit ? parts.unit : undefined) || !elsewhere);
-  return compose({ groups, ...(one.unit && parts.unit ? { unit: parts.unit } : {}), headers: here, gap }, graph);
+  return compose({ groups, ...(one.unit && parts.unit ? { unit: parts.unit } : {}), headers: here, gap, even }, graph);
 }
+
+/** How far apart things stand on a sheet, modules. */
+interface Spacing {
+  gap: number;
+  taller: number;
+  even: boolean;
+}
+
+const tight: Spacing = { gap: 3, taller: 0, even: false };
 
 interface Elsewhere {
   before(node: FluidNodeId): boolean;
@@ -171,14 +180,21 @@ function fill(parts: Parts, one: Share, index: number, shares: readonly Share[],
     before: (node) => shares.slice(0, index).some((other) => reaches(other, node)),
     after: (node) => shares.slice(index + 1).some((other) => reaches(other, node)),
   };
-  const least = compositionOf(parts, one, false, false, division, graph, 3, 0, elsewhere);
+  const least = compositionOf(parts, one, false, false, division, graph, tight, elsewhere);
   if (!generous) return least;
   const room = roomOf(page);
-  const spareAcross = room.width / module - (least.extent.right - least.extent.left);
   const spareDown = room.height / module - (least.extent.bottom - least.extent.top);
-  const gap = 3 + Math.max(0, Math.min(9, Math.floor(spareAcross / (one.groups.length + 1))));
   const taller = Math.max(0, Math.min(6, Math.floor(spareDown / 4)));
-  return compositionOf(parts, one, false, false, division, graph, gap, taller, elsewhere);
+  // Even distances where they fit, and then as much air between the groups as is pleasant.
+  for (const even of [true, false]) {
+    const gaps = Math.max(1, one.groups.length - 1);
+    const first = compositionOf(parts, one, false, false, division, graph, { gap: 3, taller, even }, elsewhere);
+    const spare = room.width / module - (first.extent.right - first.extent.left);
+    if (spare < 0) continue;
+    const gap = 3 + Math.max(0, Math.min(9, Math.floor(spare / (gaps + 2))));
+    return compositionOf(parts, one, false, false, division, graph, { gap, taller, even }, elsewhere);
+  }
+  return least;
 }
 
 /** The room of a page above its title block. */

@@ -4,6 +4,7 @@ import type { Direction } from "../../symbols/symbol.js";
 import { forbidden, type Placed } from "./block.js";
 import type { Composition, HeaderLine } from "./compose-sheet.js";
 import type { FluidGraph } from "./graph.js";
+import type { Extent } from "./modules.js";
 import { type LineStyle, Router, type Step } from "./router.js";
 
 /** The lines of a sheet by node, and the ports no way was found for. */
@@ -19,6 +20,8 @@ export interface Terminal extends Point {
   port: string;
   direction: Direction;
   style: LineStyle;
+  /** A gauge or switch, which stands on a line rather than in it. */
+  leaf: boolean;
 }
 
 /** Free space round the drawing in which lines may run, modules. */
@@ -66,16 +69,15 @@ function attempt(composition: Composition, terminals: ReadonlyMap<FluidNodeId, T
     const style = terminals.get(header.node)?.[0]?.style;
     if (header.to > header.from && style) layHeader(router, header, { ...style, header: true });
   }
+  for (const { node, points } of composition.risers) {
+    const mine = terminals.get(node)?.find(({ x, y }) => x === points[0]?.x && y === points[0]?.y);
+    if (mine) layPath(router, node, points, mine.style);
+  }
   for (const node of nodes) {
     const mine = terminals.get(node) ?? [];
-    for (const group of [mine.filter(({ style }) => !isControl(style)), mine.filter(({ style }) => isControl(style))]) {
-      const open = [...group];
-      while (open.length > 0) {
-        const next = router.has(node) ? nearest(open, (point) => router.reaches(node, point), done(mine, open), headerOf.get(node)) : highest(open);
-        open.splice(open.indexOf(next), 1);
-        if (!router.connect(node, next, next.style, softly)) lost.push(next);
-      }
-    }
+    layFacing(router, node, mine);
+    for (const terminal of mine) router.begin(node, terminal);
+    lost.push(...joinUp(router, node, mine, softly));
     const header = headerOf.get(node);
     const ends: Point[] = [...mine];
     if (header?.fromLeft) ends.push({ x: header.from, y: header.y });
@@ -83,6 +85,14 @@ function attempt(composition: Composition, terminals: ReadonlyMap<FluidNodeId, T
     router.prune(node, ends);
   }
   return { steps: new Map(nodes.map((node) => [node, router.steps(node)])), lost };
+}
+
+/** Lays a line with known bends as far as nothing is in its way. */
+function layPath(router: Router, node: FluidNodeId, points: readonly Point[], style: LineStyle): void {
+  for (let i = 1; i < points.length; i++) {
+    const [a, b] = [points[i - 1] as Point, points[i] as Point];
+    if ((a.x !== b.x || a.y !== b.y) && !router.lay(node, a, b, style)) return;
+  }
 }
 
 function isControl({ role }: LineStyle): boolean {
@@ -112,23 +122,61 @@ function inOrder(terminals: ReadonlyMap<FluidNodeId, Terminal[]>, headers: Reado
     .map(({ node }) => node);
 }
 
-function done(all: readonly Terminal[], open: readonly Terminal[]): Terminal[] {
-  return all.filter((terminal) => !open.includes(terminal));
+/** Lines between ports that look straight at each other. */
+function layFacing(router: Router, node: FluidNodeId, list: readonly Terminal[]): void {
+  const working = list.filter(({ style }) => !isControl(style));
+  for (const one of working) {
+    const down = one.direction === "down";
+    if (!down && one.direction !== "right") continue;
+    const opposite = down ? "up" : "left";
+    const facing = working
+      .filter((other) => other.direction === opposite && (down ? other.x === one.x && other.y > one.y : other.y === one.y && other.x > one.x))
+      .sort((a, b) => a.y - b.y || a.x - b.x)[0];
+    if (facing) router.lay(node, one, facing, one.style);
+  }
 }
 
-function highest(list: readonly Terminal[]): Terminal {
-  return list.reduce((best, one) => (one.y < best.y || (one.y === best.y && one.x < best.x) ? one : best));
+/** What is joined first: lines between ports, then gauges and switches that stand on them, then control lines. */
+function stageOf({ style, leaf }: Terminal): number {
+  return isControl(style) ? 2 : leaf ? 1 : 0;
 }
 
-/** The port that has the least way to what is already joined. */
-function nearest(open: readonly Terminal[], touches: (point: Point) => boolean, joined: readonly Terminal[], header?: HeaderLine): Terminal {
-  const far = (one: Terminal) => {
-    if (touches(one)) return 0;
-    const ways = joined.map(({ x, y }) => Math.abs(x - one.x) + Math.abs(y - one.y));
-    if (header && header.to > header.from) ways.push(Math.abs(header.y - one.y) + Math.max(header.from - one.x, one.x - header.to, 0));
-    return Math.min(...ways);
-  };
-  return open.map((one) => ({ one, way: far(one) })).reduce((best, next) => (next.way < best.way ? next : best)).one;
+/** Joins the pieces of a net, the nearest first; gives the ports no way was found for. */
+function joinUp(router: Router, node: FluidNodeId, list: readonly Terminal[], softly: boolean): Terminal[] {
+  const lost: Terminal[] = [];
+  const given = new Set<Terminal>();
+  for (;;) {
+    const pieces = router.pieces(node).map((piece) => {
+      const members = list.filter((terminal) => piece.has(terminal));
+      const stage = Math.min(...members.map(stageOf), members.length === 0 ? 0 : 3);
+      return { piece, members, stage, lone: piece.points.size === 1 };
+    }).filter(({ members }) => !members.some((member) => given.has(member)));
+    if (pieces.length < 2) return lost;
+    // The lowest stage at which there are two pieces to join.
+    const stages = pieces.map(({ stage }) => stage).sort((a, b) => a - b);
+    const stage = stages[1] as number;
+    const ready = pieces.filter((one) => one.stage <= stage);
+    let best: { from: (typeof ready)[number]; way: number } | undefined;
+    for (const from of ready) {
+      // What stands higher on the sheet waits for the line to come up to it; a lone port is led to a line rather than the other way round.
+      const way = Math.min(...ready.filter((to) => to !== from).map((to) => apart(from.piece.box, to.piece.box))) + (from.lone ? 0 : 0.5) - from.piece.box.top * 1e-4 + (from.stage < stage ? 1000 : 0);
+      if (!best || way < best.way) best = { from, way };
+    }
+    const { from } = best as { from: (typeof ready)[number] };
+    const style = (from.members.find((member) => !isControl(member.style)) ?? from.members[0] ?? list[0])?.style;
+    const port = from.lone ? from.members[0] : undefined;
+    const others = ready.filter((to) => to !== from).map(({ piece }) => piece);
+    if (style && router.connect(node, from.piece, others, style, port, softly)) continue;
+    // From the other side, where this one is shut in.
+    lost.push(...(from.members.length > 0 ? from.members : []));
+    for (const member of from.members) given.add(member);
+    if (from.members.length === 0) return lost;
+  }
+}
+
+/** How far two extents lie apart, along the grid. */
+function apart(a: Extent, b: Extent): number {
+  return Math.max(0, a.left - b.right, b.left - a.right) + Math.max(0, a.top - b.bottom, b.top - a.bottom);
 }
 
 /** Every joined port on the sheet, by node. */
@@ -152,7 +200,7 @@ function terminalsOf(placed: readonly Placed[], circuit: FluidCircuit): Map<Flui
       // A port that a working line comes to is on a working line, whatever else branches off there.
       const line = mine.find(({ role }) => role === "working") ?? mine[0] ?? onNode.get(node);
       const style: LineStyle = { part: line?.id ?? `${circuit.id}/node${node}`, role: line?.role ?? "working", header: false };
-      found.set(node, [...(found.get(node) ?? []), { node, component: block.component.id, port: name, x: x + at.x, y: y + at.y, direction, style }]);
+      found.set(node, [...(found.get(node) ?? []), { node, component: block.component.id, port: name, x: x + at.x, y: y + at.y, direction, style, leaf: block.component.kind === "gauge" || block.component.kind === "pressure-switch" }]);
     }
   }
   return found;

@@ -1,6 +1,7 @@
+import type { Point } from "../../drawing/geometry.js";
 import type { FluidComponent, FluidNodeId } from "../../machine/model.js";
 import { type Arrangement, extentOfAll, type SymbolOf } from "./arrangement.js";
-import { addWords, bareBlock, type Block, type BlockStroke, chooseTurn, type Placed, portOf, type Side } from "./block.js";
+import { addWords, bareBlock, type Block, chooseTurn, type Placed, portOf, type Side } from "./block.js";
 import { beyond, type FluidGraph, isSink, sourcePort } from "./graph.js";
 import { module } from "./modules.js";
 import { type Chain, type Entered, hanging, standing } from "./standing.js";
@@ -9,11 +10,9 @@ import { valveBlock } from "./valve-block.js";
 /** The power unit or air preparation, set down below the headers: y = 0 is where its lines leave upward. */
 export interface PowerUnit extends Arrangement {
   /** Where lines rise to the headers, by node; the first of each is the one its header begins at. */
-  risers: { node: FluidNodeId; x: number }[];
+  risers: { node: FluidNodeId; x: number; from: Point }[];
   /** Where return lines come down. */
   returns: { node: FluidNodeId; x: number }[];
-  /** Pairs of double lines between pump and motor. */
-  shafts: BlockStroke[];
 }
 
 /** A source with what its fluid runs through up to the header, and what stands on each node on the way. */
@@ -41,28 +40,26 @@ export function placePowerUnit(unit: readonly FluidComponent[], graph: FluidGrap
   const placed: Placed[] = [];
   const risers: PowerUnit["risers"] = [];
   const downs: PowerUnit["returns"] = [];
-  const shafts: BlockStroke[] = [];
   let left = 0;
   for (const chain of sources) {
-    const part = chain.source.kind === "air-supply" || chain.source.kind === "compressor" ? lyingChain(chain, symbolOf, slack) : standingChain(chain, symbolOf, slack);
+    const part = chain.source.kind === "air-supply" || chain.source.kind === "compressor" ? lyingChain(chain, graph, symbolOf, slack) : standingChain(chain, graph, symbolOf, slack);
     const extent = extentOfAll(part.placed);
     const shift = Math.ceil(left - extent.left);
     for (const one of part.placed) placed.push({ block: one.block, at: { x: one.at.x + shift, y: one.at.y } });
-    for (const stroke of part.shafts) shafts.push({ ...stroke, path: stroke.path.map(({ x, y }) => ({ x: x + shift, y })) });
     const node = chain.nodes.at(-1);
-    if (node !== undefined && headers.has(node)) risers.push({ node, x: part.riser + shift });
+    if (node !== undefined && headers.has(node)) risers.push({ node, x: part.riser + shift, from: { x: part.from.x + shift, y: part.from.y } });
     left = extent.right + shift + 3 + slack;
   }
   const base = placed.length > 0 ? extentOfAll(placed).bottom : 0;
   for (const { node, chain } of returns) {
-    const part = hanging(chain, "right", symbolOf);
+    const part = hanging(chain, "right", symbolOf, graph);
     const x = Math.ceil(left - part.left);
     // The tank stands level with the pump's where there is one.
     const y = Math.max(3, Math.round(base - part.bottom));
     const last = part.placed.length - 1;
     part.placed.forEach(({ block, at }, index) => {
-      const drop = index === last && isSink(block.component) && part.placed.length > 1 ? y : 3;
-      placed.push({ block, at: { x: at.x + x, y: at.y + (part.placed.length === 1 ? y : drop) } });
+      const drop = index === last && isSink(block.component) ? y : 3;
+      placed.push({ block, at: { x: at.x + x, y: at.y + drop } });
     });
     downs.push({ node, x });
     left = x + part.right + 3 + slack;
@@ -78,7 +75,8 @@ export function placePowerUnit(unit: readonly FluidComponent[], graph: FluidGrap
     placed.push({ block, at: { x, y: Math.ceil(4 + slack - block.full.top) } });
     left = x + block.full.right + 3 + slack;
   }
-  return { placed, extent: extentOfAll(placed), risers, returns: downs, shafts };
+  levelTanks(placed);
+  return { placed, extent: extentOfAll(placed), risers, returns: downs };
 }
 
 function readSource(source: FluidComponent, graph: FluidGraph, headers: ReadonlySet<FluidNodeId>, members: ReadonlySet<FluidComponent>, used: Set<FluidComponent>): SourceChain {
@@ -189,7 +187,8 @@ function leadsToSink(graph: FluidGraph, component: FluidComponent, port: string)
 interface Stood {
   placed: Placed[];
   riser: number;
-  shafts: BlockStroke[];
+  /** The port the line to the header begins at. */
+  from: Point;
 }
 
 /** Whether a chain hangs below its line (it ends in a tank) or stands on it. */
@@ -202,9 +201,8 @@ function hangs(branch: readonly Entered[]): boolean {
  * A pump over its tank with everything in one upright line: what guards it hangs to the right, what measures stands to the
  * left. Rows come nearer to the pump the lower they are, so that no line to a lower row meets what hangs from a higher one.
  */
-function standingChain(chain: SourceChain, symbolOf: SymbolOf, slack: number): Stood {
+function standingChain(chain: SourceChain, graph: FluidGraph, symbolOf: SymbolOf, slack: number): Stood {
   const placed: Placed[] = [];
-  const shafts: BlockStroke[] = [];
   // Upward from the pump's upper port at y = 0, and moved down at the end.
   const symbol = symbolOf(chain.source);
   const pump = bareBlock(chain.source, symbol, chooseTurn(symbol, { [sourcePort(chain.source) as string]: "up" }));
@@ -216,38 +214,32 @@ function standingChain(chain: SourceChain, symbolOf: SymbolOf, slack: number): S
   if (chain.motor) {
     const motor = motorBlock(chain.motor, pump, symbolOf);
     placed.push({ block: motor.block, at: { x: pumpAt.x + motor.at.x, y: pumpAt.y + motor.at.y } });
-    shafts.push(...motor.strokes.map((stroke) => ({ ...stroke, path: stroke.path.map(({ x, y }) => ({ x: x + pumpAt.x, y: y + pumpAt.y })) })));
     rightEdge = Math.ceil(motor.block.full.right + pumpAt.x + motor.at.x) + 2;
   }
   // The suction line.
-  let bottom = pumpAt.y + pump.full.bottom;
   if (chain.suction.length > 0) {
-    const suction = hanging(chain.suction, "left", symbolOf);
-    const from = { x: portOf(pump, "S").x + pumpAt.x, y: portOf(pump, "S").y + pumpAt.y + 2 };
+    const suction = hanging(chain.suction, "left", symbolOf, graph);
+    const from = { x: portOf(pump, "S").x + pumpAt.x, y: portOf(pump, "S").y + pumpAt.y + 3 };
     for (const one of suction.placed) placed.push({ block: one.block, at: { x: one.at.x + from.x, y: one.at.y + from.y } });
-    bottom = Math.max(bottom, from.y + suction.bottom);
   }
-  let leftEdge = Math.min(...placed.map(({ block, at }) => Math.floor(block.full.left + at.x))) - 2;
   let y = 0;
+  let from = 0;
   chain.nodes.forEach((_, i) => {
     const branches = chain.beside[i] ?? [];
     const row = Math.floor(y - 2 - slack / 2);
-    const up = branches.filter((branch) => !hangs(branch)).map((branch) => standing(branch, "left", symbolOf));
-    const down = branches.filter(hangs).map((branch) => hanging(branch, "right", symbolOf));
+    const up = branches.filter((branch) => !hangs(branch)).map((branch) => standing(branch, "left", symbolOf, graph));
+    const down = branches.filter(hangs).map((branch) => hanging(branch, "right", symbolOf, graph));
     // Rows above have their hanging things further out, rows below their standing things.
     let x = -2;
-    if (i === 0 && up.length > 0) x = -2;
     for (const part of up) {
       x = Math.min(x, Math.floor(-2 - part.right));
       add(placed, part, x, row - 1);
       x = Math.floor(x + part.left - 2);
     }
-    leftEdge = Math.min(leftEdge, x);
     for (const part of down) {
       const at = Math.ceil(rightEdge - part.left);
       add(placed, part, at, row + 2);
       rightEdge = Math.ceil(at + part.right + 2);
-      bottom = Math.max(bottom, row + 2 + part.bottom);
     }
     y = branches.length > 0 ? row : y;
     if (up.length > 0) y = Math.min(y, Math.floor(row - Math.max(...up.map((part) => -part.top)) - 1));
@@ -261,16 +253,18 @@ function standingChain(chain: SourceChain, symbolOf: SymbolOf, slack: number): S
     const at = { x: -lower.x, y: Math.floor(y - 2 - lower.y) };
     placed.push({ block, at });
     y = at.y + portOf(block, out).y;
+    from = y;
   });
   // A node's row of its own needs the rest of the line above it.
   const rise = Math.ceil(-Math.min(y - 2, ...placed.map(({ block, at }) => block.full.top + at.y - 1)));
-  levelTanks(placed, bottom);
-  return { placed: placed.map(({ block, at }) => ({ block, at: { x: at.x, y: at.y + rise } })), riser: 0, shafts: shafts.map((stroke) => ({ ...stroke, path: stroke.path.map((point) => ({ x: point.x, y: point.y + rise })) })) };
+  levelTanks(placed);
+  return { placed: placed.map(({ block, at }) => ({ block, at: { x: at.x, y: at.y + rise } })), riser: 0, from: { x: 0, y: from + rise } };
 }
 
 /** Tanks of one unit stand level, as deep as the deepest. */
-function levelTanks(placed: Placed[], _bottom: number): void {
+function levelTanks(placed: Placed[]): void {
   const tanks = placed.filter(({ block }) => block.component.kind === "tank");
+  if (tanks.length === 0) return;
   const deepest = Math.max(...tanks.map(({ at }) => at.y));
   for (const tank of tanks) tank.at = { x: tank.at.x, y: deepest };
 }
@@ -280,7 +274,7 @@ function add(placed: Placed[], part: Chain, x: number, y: number): void {
 }
 
 /** The motor beside its pump, shaft to shaft. */
-function motorBlock(motor: FluidComponent, pump: Block, symbolOf: SymbolOf): { block: Block; at: { x: number; y: number }; strokes: BlockStroke[] } {
+function motorBlock(motor: FluidComponent, pump: Block, symbolOf: SymbolOf): { block: Block; at: { x: number; y: number } } {
   const symbol = symbolOf(motor);
   const block = bareBlock(motor, symbol, { quarter: 0, mirrored: true });
   addWords(block, "right");
@@ -288,11 +282,11 @@ function motorBlock(motor: FluidComponent, pump: Block, symbolOf: SymbolOf): { b
   const motorShaft = symbol.spots.shaft ?? { x: 12, y: 0 };
   const meetAt = { x: pumpShaft.x / module + pump.offset.x, y: pumpShaft.y / module + pump.offset.y };
   const at = { x: meetAt.x + motorShaft.x / module - block.offset.x, y: meetAt.y - motorShaft.y / module - block.offset.y };
-  return { block, at, strokes: [] };
+  return { block, at };
 }
 
 /** A supply with its air preparation in one level line, ending at the right where the line rises. */
-function lyingChain(chain: SourceChain, symbolOf: SymbolOf, slack: number): Stood {
+function lyingChain(chain: SourceChain, graph: FluidGraph, symbolOf: SymbolOf, slack: number): Stood {
   const placed: Placed[] = [];
   const symbol = symbolOf(chain.source);
   const name = sourcePort(chain.source) as string;
@@ -303,19 +297,22 @@ function lyingChain(chain: SourceChain, symbolOf: SymbolOf, slack: number): Stoo
   placed.push({ block, at: { x: -port.x, y: -port.y } });
   if (chain.suction.length > 0) {
     const from = portOf(block, "S");
-    add(placed, hanging(chain.suction, "left", symbolOf), from.x - port.x, from.y - port.y + 1);
+    add(placed, hanging(chain.suction, "left", symbolOf, graph), from.x - port.x, from.y - port.y + 1);
   }
   const level = supply ? 0 : -2;
   let x = supply ? 0 : 1;
+  let from = 0;
+  let standsOn = false;
   let room = Math.ceil(block.full.right - port.x);
   chain.nodes.forEach((_, i) => {
     for (const branch of chain.beside[i] ?? []) {
-      const part = standing(branch, "right", symbolOf);
+      const part = standing(branch, "right", symbolOf, graph);
       // Clear of the words below and of the gauge on top of what comes before.
       const at = Math.ceil(Math.max(x + 1, room + 1) - part.left);
       add(placed, part, at, level - 2);
       room = at + part.right;
       x = at;
+      standsOn = true;
     }
     const inline = chain.inline[i];
     if (!inline) return;
@@ -329,8 +326,10 @@ function lyingChain(chain: SourceChain, symbolOf: SymbolOf, slack: number): Stoo
     placed.push({ block: here, at });
     x = at.x + portOf(here, out).x;
     room = at.x + here.full.right;
+    standsOn = false;
+    from = x;
   });
-  const riser = x + 2;
+  const riser = Math.ceil(Math.max(x + 2, standsOn ? room + 1 : 0));
   const rise = Math.ceil(2 - Math.min(...placed.map(({ block: one, at }) => one.full.top + at.y), level));
-  return { placed: placed.map(({ block: one, at }) => ({ block: one, at: { x: at.x, y: at.y + rise } })), riser, shafts: [] };
+  return { placed: placed.map(({ block: one, at }) => ({ block: one, at: { x: at.x, y: at.y + rise } })), riser, from: { x: from, y: (from === 0 ? 0 : level) + rise } };
 }

@@ -16,6 +16,14 @@ export interface Step {
   style: LineStyle;
 }
 
+/** Part of a net that hangs together. */
+export interface Piece {
+  points: ReadonlySet<number>;
+  /** Its extent on the router's own grid. */
+  box: Extent;
+  has(point: Point): boolean;
+}
+
 /** What each turn of a line costs. One module of line costs `pace`. */
 const pace = 2;
 const bendCost = 12;
@@ -96,14 +104,6 @@ export class Router {
     this.netOf(net).points.add(this.index(at));
   }
 
-  has(net: number): boolean {
-    return (this.nets.get(net)?.points.size ?? 0) > 0;
-  }
-
-  reaches(net: number, at: Point): boolean {
-    return this.nets.get(net)?.points.has(this.index(at)) ?? false;
-  }
-
   steps(net: number): Step[] {
     return [...(this.nets.get(net)?.steps.values() ?? [])];
   }
@@ -130,38 +130,48 @@ export class Router {
     return true;
   }
 
+  /** The pieces of a net that do not hang together yet, each as its points, in the order they were begun. */
+  pieces(net: number): Piece[] {
+    const known = this.nets.get(net);
+    if (!known) return [];
+    const near = new Map<number, number[]>();
+    for (const { a, b } of known.steps.values()) {
+      const [p, q] = [this.index(a), this.index(b)];
+      near.set(p, [...(near.get(p) ?? []), q]);
+      near.set(q, [...(near.get(q) ?? []), p]);
+    }
+    const seen = new Set<number>();
+    const pieces: Piece[] = [];
+    for (const start of known.points) {
+      if (seen.has(start)) continue;
+      const piece = new Set([start]);
+      for (const p of piece) {
+        seen.add(p);
+        for (const q of near.get(p) ?? []) piece.add(q);
+      }
+      pieces.push({ points: piece, box: this.boxOf(piece), has: (point) => piece.has(this.index(point)) });
+    }
+    return pieces;
+  }
+
   /**
-   * Finds the best way from a port to what its net already has, and lays it.
+   * Finds the best way from one piece of a net to any of others, and lays it.
+   * @param port where the piece is a port and nothing more: lines leave it that way
    * @param softly may run through a text where nothing else is possible
    * @returns false where there is no way
    */
-  connect(net: number, port: Point & { direction: Direction }, style: LineStyle, softly = false): boolean {
-    const goal = this.netOf(net).points;
-    if (!this.inside(port)) return false;
-    const start = this.index(port);
-    if (goal.size === 0 || goal.has(start)) {
-      goal.add(start);
-      return true;
+  connect(net: number, from: Piece, to: readonly Piece[], style: LineStyle, port: { direction: Direction } | undefined, softly = false): boolean {
+    const goal = new Set(to.flatMap(({ points }) => [...points]));
+    if (goal.size === 0) return false;
+    const seeds: number[] = [];
+    for (const p of from.points) {
+      if (port) seeds.push(p * 4 + headings[port.direction]);
+      else if (this.ways(p) > 0 && !this.shared(p, net + 1)) for (let d = 0; d < 4; d++) seeds.push(p * 4 + d);
     }
-    const path = this.search(net, start, headings[port.direction], goal, softly);
+    const path = this.search(net, seeds, goal, softly);
     if (!path) return false;
     this.commit(net, path, style);
     return true;
-  }
-
-  /** Takes a net's lines away again; its ports stay reserved. */
-  rip(net: number): void {
-    const known = this.nets.get(net);
-    if (!known) return;
-    const mark = net + 1;
-    for (const p of known.points) {
-      for (const axis of [0, 1] as const) {
-        if (this.passing[axis][p] === mark) this.passing[axis][p] = 0;
-      }
-      if (this.stop[p] === mark) this.stop[p] = 0;
-    }
-    for (const { a, b } of known.steps.values()) this.taken[a.y === b.y ? 0 : 1][this.index(a)] = 0;
-    this.nets.delete(net);
   }
 
   /** Takes away stretches that lead nowhere: those whose end is none of the given points. */
@@ -194,7 +204,7 @@ export class Router {
     }
   }
 
-  private search(net: number, start: number, heading: number, goal: ReadonlySet<number>, softly: boolean): Point[] | undefined {
+  private search(net: number, seeds: readonly number[], goal: ReadonlySet<number>, softly: boolean): Point[] | undefined {
     const { width } = this;
     const mark = net + 1;
     const box = this.boxOf(goal);
@@ -205,19 +215,24 @@ export class Router {
     };
     this.stamp++;
     const heap = new Heap();
-    const first = start * 4 + heading;
-    this.cost[first] = 0;
-    this.seen[first] = this.stamp;
-    this.from[first] = -1;
-    heap.push(distance(start), first);
+    for (const seed of seeds) {
+      const p = (seed - (seed % 4)) / 4;
+      // Where a line ends the way may go straight on; elsewhere it branches off.
+      const spent = this.ways(p) > 2 ? bendCost : 0;
+      this.cost[seed] = spent;
+      this.seen[seed] = this.stamp;
+      this.from[seed] = -1;
+      heap.push(spent + distance(p), seed);
+    }
     for (let state = heap.pop(); state !== undefined; state = heap.pop()) {
       const d = state % 4;
       const p = (state - d) / 4;
       const spent = this.cost[state] as number;
-      if (p !== start && goal.has(p)) return this.trace(state);
+      const first = this.from[state] === -1;
+      if (!first && goal.has(p)) return this.trace(state);
       if (heap.lastKey > spent + distance(p) + 1e-9) continue;
       for (let turn = 0; turn < 4; turn++) {
-        if (turn === ((d + 2) & 3) || (p === start && turn !== d)) continue;
+        if (turn === ((d + 2) & 3) || (first && turn !== d)) continue;
         const axis = turn & 1;
         const q = turn === right ? p + 1 : turn === left ? p - 1 : turn === down ? p + width : p - width;
         if (turn === right ? p % width === width - 1 : turn === left ? p % width === 0 : q < 0 || q >= this.stop.length) continue;
@@ -236,11 +251,10 @@ export class Router {
         const stop = this.stop[q] as number;
         if (stop !== 0 && stop !== mark) continue;
         const across = this.passing[1 - axis]?.[q] as number;
-        const along = this.passing[axis]?.[q] as number;
         if (goal.has(q)) {
-          if ((across !== 0 && across !== mark) || (along !== 0 && along !== mark)) continue;
+          if (this.shared(q, mark)) continue;
           // Two lines that meet a third do so one after the other, not at one point.
-          if (across === mark && along === mark) spend += bendCost;
+          if (this.ways(q) > 2) spend += bendCost;
         } else if (across !== 0) spend += crossingCost;
         const side = axis === 0 ? width : 1;
         for (const beside of [edge - side, edge + side]) {
@@ -256,6 +270,17 @@ export class Router {
       }
     }
     return undefined;
+  }
+
+  /** How many stretches of line come together at a point. */
+  private ways(p: number): number {
+    const [level, upright] = this.taken;
+    return [level[p], level[p - 1], upright[p], upright[p - this.width]].filter((net) => net !== undefined && net !== 0).length;
+  }
+
+  /** Whether another net runs through a point. */
+  private shared(p: number, mark: number): boolean {
+    return this.passing.some((table) => table[p] !== 0 && table[p] !== mark);
   }
 
   private trace(state: number): Point[] {

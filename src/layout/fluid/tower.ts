@@ -77,6 +77,8 @@ export function planTower(group: readonly FluidComponent[], graph: FluidGraph, h
           continue;
         }
         const out = beyond(component, entered);
+        // A pilot taken off here; what it belongs to stands in a line of its own.
+        if (out === undefined && component.kind === "pilot-operated-check-valve") continue;
         if (out === undefined) return false;
         onward.push({ component, upper: entered, lower: out });
       }
@@ -181,7 +183,7 @@ const turning = 2;
  * @param height how far the cylinders' axes stand over the valve; the least that is possible if not given
  * @param slack more room between things, where lines found no way
  */
-export function placeTower(tower: Tower, symbolOf: SymbolOf, slack: number, height?: number): Arrangement {
+export function placeTower(tower: Tower, graph: FluidGraph, symbolOf: SymbolOf, slack: number, height?: number): Arrangement {
   const { root, cylinders } = tower;
   const valve: Placed | undefined = root ? { block: valveBlock(root, symbolOf(root)), at: { x: 0, y: 0 } } : undefined;
   // 1. Cylinders side by side, their axes on one line, and everything on the lines below them.
@@ -189,7 +191,7 @@ export function placeTower(tower: Tower, symbolOf: SymbolOf, slack: number, heig
   let edge = 0;
   const low: number[] = [];
   for (let index = 0; index < cylinders.length; index++) {
-    const part = hang(tower, index, symbolOf, slack);
+    const part = hang(tower, index, graph, symbolOf, slack);
     const extent = extentOfAll(part.placed);
     const shift = index === 0 ? 0 : Math.ceil(edge + 4 + slack - extent.left);
     for (const one of part.placed) upper.push({ block: one.block, at: { x: one.at.x + shift, y: one.at.y } });
@@ -213,7 +215,7 @@ export function placeTower(tower: Tower, symbolOf: SymbolOf, slack: number, heig
   if (valve) {
     for (const { cylinder, port, beside } of tower.lanes) {
       if (cylinder >= 0) continue;
-      placeOver(portOf(valve.block, port), beside.flat(), valve, placed, symbolOf);
+      placeOver(portOf(valve.block, port), beside.flat(), valve, placed, graph, symbolOf);
     }
     placed.push(...placeDrops(tower.drops, valve, symbolOf, slack));
   }
@@ -221,7 +223,7 @@ export function placeTower(tower: Tower, symbolOf: SymbolOf, slack: number, heig
 }
 
 /** A cylinder at the origin and what stands in and beside the lines below it; `bottom` is where the lines are free again. */
-function hang(tower: Tower, index: number, symbolOf: SymbolOf, slack: number): { placed: Placed[]; bottom: number } {
+function hang(tower: Tower, index: number, graph: FluidGraph, symbolOf: SymbolOf, slack: number): { placed: Placed[]; bottom: number } {
   const component = tower.cylinders[index] as FluidComponent;
   const cylinder: Placed = { block: cylinderBlock(component, symbolOf(component)), at: { x: 0, y: 0 } };
   const placed: Placed[] = [cylinder];
@@ -243,7 +245,7 @@ function hang(tower: Tower, index: number, symbolOf: SymbolOf, slack: number): {
     const { lane, side, x } = way;
     const i = way.next++;
     const branches = lane.beside[i] ?? [];
-    if (branches.length > 0) way.y = placeBeside(branches, way, placed, symbolOf) + 1;
+    if (branches.length > 0) way.y = placeBeside(branches, way, placed, graph, symbolOf) + 1;
     const inline = lane.inline[i];
     if (!inline) continue;
     const block = inlineBlock(inline, side, symbolOf);
@@ -275,8 +277,8 @@ function inlineBlock({ component, upper, lower }: Inline, side: "left" | "right"
 }
 
 /** Sets branches beside a line, standing up from a row that leads to them; gives that row. */
-function placeBeside(branches: readonly Entered[][], way: { side: "left" | "right"; x: number; y: number }, placed: Placed[], symbolOf: SymbolOf): number {
-  const chains = branches.map((chain) => standing(chain, way.side, symbolOf));
+function placeBeside(branches: readonly Entered[][], way: { side: "left" | "right"; x: number; y: number }, placed: Placed[], graph: FluidGraph, symbolOf: SymbolOf): number {
+  const chains = branches.map((chain) => standing(chain, way.side, symbolOf, graph));
   const tallest = Math.max(...chains.map(({ top }) => -top));
   const row = Math.ceil(way.y + tallest + 2);
   const sign = way.side === "left" ? -1 : 1;
@@ -296,11 +298,11 @@ function placeBeside(branches: readonly Entered[][], way: { side: "left" | "righ
 }
 
 /** Things over a valve's working port, side by side. */
-function placeOver(port: { x: number; y: number }, chains: readonly Entered[][], valve: Placed, placed: Placed[], symbolOf: SymbolOf): void {
+function placeOver(port: { x: number; y: number }, chains: readonly Entered[][], valve: Placed, placed: Placed[], graph: FluidGraph, symbolOf: SymbolOf): void {
   let x = port.x;
   const side: Side = "right";
   for (const chain of chains) {
-    const { placed: standingUp, right } = standing(chain, side, symbolOf);
+    const { placed: standingUp, right } = standing(chain, side, symbolOf, graph);
     const base = Math.floor(Math.min(port.y - 3, valve.block.full.top - 1));
     const free = (to: number) => !standingUp.some((one) => placed.some((other) => meet(moved(other.block.full, other.at), moved(one.block.full, { x: one.at.x + to - 1, y: one.at.y + base }))));
     while (!free(x)) x++;
@@ -331,7 +333,7 @@ function placeDrops(drops: readonly Drop[], valve: Placed, symbolOf: SymbolOf, s
     if (sign < 0) x = Math.min(x, Math.floor(limit - Math.max(...all.map((block) => block.body.right))));
     if (sign > 0) x = Math.max(x, Math.ceil(limit - Math.min(...all.map((block) => block.body.left))));
     const straight = x === port.x;
-    let y = port.y + (straight ? (drop.direct ? 0 : 2) : 3) + slack / 2;
+    let y = port.y + (straight ? (drop.direct ? (drop.sink?.kind === "exhaust" && drop.inline.length === 0 ? 1 : 0) : 2) : 3) + slack / 2;
     const below = valve.block.texts.reduce((most, { at }) => Math.max(most, at.y), port.y);
     if (!straight || all.some((block) => block.full.right - block.full.left > 3)) y = Math.max(y, Math.ceil(below + 1));
     y = Math.ceil(y);

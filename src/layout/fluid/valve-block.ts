@@ -1,6 +1,7 @@
 import type { Mm } from "../../drawing/geometry.js";
 import type { FluidComponent, ValveActuator } from "../../machine/model.js";
-import type { Symbol } from "../../symbols/symbol.js";
+import type { Symbol, Turn } from "../../symbols/symbol.js";
+import { turnSymbol } from "../../symbols/turn.js";
 import { addText, bareBlock, type Block, pitch, smallHeight, textHeight, wordsOf } from "./block.js";
 import { extentOf, module, moved } from "./modules.js";
 
@@ -11,26 +12,26 @@ const referenceRoom: Mm = 10.5;
  * A directional valve, lying, with its port names at the leads, its designation over a box without lines, and at each
  * solenoid the coil's designation and the ladder line it is driven from.
  */
-export function valveBlock(component: FluidComponent, symbol: Symbol): Block {
-  const block = bareBlock(component, symbol, { quarter: 0 });
+export function valveBlock(component: FluidComponent, symbol: Symbol, turn: Turn = { quarter: 0 }): Block {
+  const block = bareBlock(component, symbol, turn);
+  const turned = turnSymbol(symbol, turn);
   const { offset } = block;
-  const joined = new Set(component.ports.filter(({ node }) => node !== undefined).map(({ name }) => name));
   for (const port of block.ports) {
-    const spot = symbol.spots[`port-${port.name}`];
+    const spot = turned.spots[`port-${port.name}`];
     if (!spot) continue;
     const at = { x: spot.x / module + offset.x, y: spot.y / module + offset.y };
     addText(block, { part: component.id, role: "port", text: port.name, height: smallHeight, anchor: spot.anchor, at });
   }
   const spec = component.valve;
-  if (spec) for (const side of ["left", "right"] as const) addEnd(block, side, spec[side], joined);
+  if (spec) for (const side of ["left", "right"] as const) addEnd(block, turned, side, spec[side]);
   addName(block);
   return block;
 }
 
-function addEnd(block: Block, side: "left" | "right", actuators: readonly ValveActuator[], _joined: ReadonlySet<string>): void {
-  const { symbol, offset, component } = block;
+function addEnd(block: Block, turned: Symbol, side: "left" | "right", actuators: readonly ValveActuator[]): void {
+  const { offset, component } = block;
   const part = `${component.id}/${side}`;
-  const drawn = (symbol.actuators ?? []).filter((actuator) => actuator.side === side);
+  const drawn = (turned.actuators ?? []).filter((actuator) => actuator.side === side);
   if (drawn.length > 0) {
     const boxes = drawn.map(({ box }) => moved(extentOf(box), offset));
     const extent = {
@@ -41,12 +42,18 @@ function addEnd(block: Block, side: "left" | "right", actuators: readonly ValveA
   }
   const coils = actuators.flatMap(({ solenoid }) => (solenoid === undefined ? [] : [solenoid]));
   if (coils.length === 0) return;
-  const over = symbol.spots[`${side}-solenoid`];
-  const under = symbol.spots[`${side}-reference`];
-  if (!over || !under) return;
+  const spots = block.symbol.spots;
+  const flipped = block.turn.quarter === 2;
+  const above = spots[`${side}-solenoid`];
+  const below = spots[`${side}-reference`];
+  if (!above || !below) return;
+  // Upside down, what was free below the end is above it; texts stand on their baselines either way.
+  const over = flipped ? { ...below, y: textHeight - below.y } : above;
+  const under = flipped ? { ...above, y: textHeight - above.y } : below;
   coils.forEach((coil, index) => {
-    const up = { x: over.x / module + offset.x, y: over.y / module + offset.y - index * pitch };
-    const down = { x: under.x / module + offset.x, y: under.y / module + offset.y + index * pitch };
+    const outward = side === "left" ? -0.4 : 0.4;
+    const up = { x: over.x / module + offset.x + outward, y: over.y / module + offset.y - index * pitch };
+    const down = { x: under.x / module + offset.x + outward, y: under.y / module + offset.y + index * pitch };
     addText(block, { part, role: "designation", text: coil, height: textHeight, anchor: over.anchor, at: up });
     addText(block, { part, role: "reference", text: { to: "ladder-line", device: coil, room: referenceRoom }, height: textHeight, anchor: under.anchor, at: down });
   });
