@@ -7,7 +7,7 @@ import { layOut } from "./layout/lay-out.js";
 import type { Layout } from "./layout/placement.js";
 import { buildMachine } from "./machine/build.js";
 import type { Machine } from "./machine/model.js";
-import { crossReference, switchReference } from "./schedules/cross-reference.js";
+import { crossReference } from "./schedules/cross-reference.js";
 import type { CrossReferenceRow } from "./schedules/rows.js";
 import { numberWires } from "./schedules/wire-numbers.js";
 import { composeSheets } from "./sheets/compose.js";
@@ -77,7 +77,7 @@ export async function compile(path: string, world: World, told: Told = () => {})
 
   // 7. Places and rows → whole sheets: references worded, tables set, frame and title block.
   told("drawing");
-  const set = composeSheets(machine, layout, [...rows, ...switchReference(machine, layout)], world);
+  const set = composeSheets(machine, layout, rows, world);
   return { ...examined, layout, rows, set };
 }
 

@@ -61,6 +61,16 @@ describe.each(samples)("%s", async (path) => {
     }
   });
 
+  test("the cross-reference lists each device once", () => {
+    const circuits = new Set(layout.sheets.map(({ number }) => number));
+    const heads = set.sheets
+      .filter(({ number }) => !circuits.has(number))
+      .flatMap(({ marks }) => marks.flatMap((mark) => (mark.kind === "text" && mark.bold ? [mark.text] : [])))
+      .filter((text) => machine.devices.has(text));
+    const used = [...machine.devices.values()].filter(({ contacts, loads }) => contacts.length + loads.length > 0).map(({ name }) => name);
+    expect(heads.sort()).toEqual(used.sort());
+  });
+
   test.each(layout.sheets)("sheet $number, $title, holds to the facts of a good sheet", (sheet) => {
     expect(facts.textOverlaps(sheet)).toEqual([]);
     expect(facts.textsOnWires(sheet)).toEqual([]);
