@@ -110,6 +110,9 @@ export function symbolForComponent(component: FluidComponent, start: StartState,
   return componentSymbols[component.kind](component, start, library);
 }
 
+/** mm, for a cylinder whose stroke is not given: the same as the machine takes for places along it. */
+const unstatedStroke = 100;
+
 type Choice = (component: FluidComponent, start: StartState, library: SymbolLibrary) => Symbol;
 
 const file =
@@ -133,9 +136,7 @@ const componentSymbols: Record<FluidKind, Choice> = {
   cylinder: ({ id, name, cylinder, medium }, start) => {
     const spec: CylinderSpec = cylinder ?? { action: "double-acting", cushion: "none", start: 0, switches: [] };
     const at = start.cylinders.get(name ?? id) ?? spec.start;
-    // A cylinder with no stroke given can only be told to be at one of its ends.
-    const fraction = spec.stroke ? at / spec.stroke.value : at > 0 ? 1 : 0;
-    return composeCylinder(spec, fraction, medium);
+    return composeCylinder(spec, at / (spec.stroke?.value ?? unstatedStroke), medium);
   },
   valve: ({ id, name, valve, medium, ports }, start) => {
     if (!valve) throw new Error(`The valve ${name ?? id} has no positions.`);

@@ -1,5 +1,6 @@
 import { describe, expect, test } from "vitest";
 import type { StartState } from "../../src/behaviour/start-state.js";
+import { strokeOf } from "../../src/machine/cylinder.js";
 import { deviceRoles, fluidMedia } from "../../src/machine/kinds.js";
 import type { ContactUse, Device, DeviceKind, FluidComponent, FluidKind, LoadUse } from "../../src/machine/model.js";
 import { portsOf } from "../../src/machine/ports.js";
@@ -200,6 +201,11 @@ describe("fluid components", () => {
       );
     expect(cylinder(100).spots["rod-end"]?.x).toBeCloseTo(31);
     expect(cylinder(200).box.width).toBe(36);
+    const unstated = { ...spec, stroke: undefined, switches: [] };
+    const half = { ...start(), cylinders: new Map([["C1", strokeOf(unstated) / 2]]) };
+    expect(symbolForComponent(component("cylinder", "hydraulic", { cylinder: unstated }), half, library).spots["rod-end"]?.x).toBeCloseTo(
+      31,
+    );
   });
 
   test("a valve's lines stand on the box of the start", () => {
