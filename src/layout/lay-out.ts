@@ -11,9 +11,15 @@ import type { CircuitSheet, Layout, PageArea, Place } from "./placement.js";
  * every part. References are not worded yet; room is kept for them. Never throws for a machine that could be built.
  * @param pageFor the room on a sheet of this drawing
  */
-export async function layOut(machine: Machine, start: StartState, symbols: SymbolLibrary, pageFor: (drawing: DrawingInfo) => PageArea): Promise<Layout> {
+export async function layOut(
+  machine: Machine,
+  start: StartState,
+  symbols: SymbolLibrary,
+  pageFor: (drawing: DrawingInfo) => PageArea,
+): Promise<Layout> {
   const page = pageFor(machine.drawing);
-  const symbolOf = (use: ContactUse | LoadUse) => symbolForDevice(use, machine.devices.get(use.device) as Device, start, machine.drawing.convention, symbols);
+  const symbolOf = (use: ContactUse | LoadUse) =>
+    symbolForDevice(use, machine.devices.get(use.device) as Device, start, machine.drawing.convention, symbols);
   const sheets: CircuitSheet[] = [];
   const places = new Map<PartId, Place>();
   let line = 1;

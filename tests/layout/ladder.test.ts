@@ -35,7 +35,8 @@ const at = (sheet: CircuitSheet, part: string) => {
   return found.at;
 };
 const lineNumbers = (sheet: CircuitSheet) => sheet.texts.filter(({ role }) => role === "line-number").map(({ text }) => text);
-const loadsOf = (sheet: CircuitSheet) => sheet.symbols.filter(({ part }) => /^(CR|TR|LT|SOL|MS)\d+:(A1|X1)/.test(part) || /^(SOL|LT)/.test(part));
+const loadsOf = (sheet: CircuitSheet) =>
+  sheet.symbols.filter(({ part }) => /^(CR|TR|LT|SOL|MS)\d+:(A1|X1)/.test(part) || /^(SOL|LT)/.test(part));
 
 describe("a ladder sheet", () => {
   test("holds a stop, start and holding contact as the trade draws them", () => {
@@ -110,10 +111,14 @@ describe("a ladder sheet", () => {
   });
 
   test("keeps a bridge in a network of two branches right", () => {
-    expect(faults(drawn(`
+    expect(
+      faults(
+        drawn(`
       rung: (PB1 @a LS1 | PB2 @b LS2) -> CR1
       rung: @a CR2 @b
-      rung: CR1 -> CR2`))).toEqual([]);
+      rung: CR1 -> CR2`),
+      ),
+    ).toEqual([]);
   });
 
   test("stacks loads in one column and lets a branch carry its own arrow", () => {
@@ -131,6 +136,21 @@ describe("a ladder sheet", () => {
     const [sheet] = laid.sheets as [CircuitSheet];
     expect(at(sheet, "OL1").x).toBeGreaterThan(at(sheet, "MS1").x);
     expect(at(sheet, "CR1:A1").x).toBe(at(sheet, "MS1").x);
+  });
+
+  test("draws the four states of limit switches", () => {
+    // The clamp starts retracted, so LS1 is held and LS2 is free. NEMA practice, from memory: a held switch keeps its form in name and terminals.
+    const laid = drawn("rung: LS1 /LS1 LS2 /LS2 -> CR1");
+    expect(faults(laid)).toEqual([]);
+    const states = (laid.sheets[0] as CircuitSheet).symbols
+      .filter(({ device }) => device?.startsWith("LS"))
+      .map(({ symbol, part }) => [symbol.name, part]);
+    expect(states).toEqual([
+      ["north-american/limit-no-held-closed", "LS1:13-14"],
+      ["north-american/limit-nc-held-open", "LS1:21-22"],
+      ["north-american/limit-no", "LS2:13-14"],
+      ["north-american/limit-nc", "LS2:21-22"],
+    ]);
   });
 
   test("breaks between rungs and says where the rails go on", () => {
@@ -153,11 +173,18 @@ describe("a ladder sheet", () => {
   });
 
   test.each(["A4", "A3", "A1", "ANSI-A", "ANSI-B", "ANSI-D"])("keeps within %s", (paper) => {
-    expect(faults(drawn(`
+    expect(
+      faults(
+        drawn(
+          `
       rung "Cycle running": /PB2 (PB1 | CR1 (/CR2 | /LS1)) @run -> (CR1 | LT1)
       rung "Stamp done": @run (TR1 | CR2) -> CR2
       rung "Stamp": @run LS2 /CR2 -> SOL1
-      rung "Dwell": @run LS2 -> TR1`, `paper ${paper}`))).toEqual([]);
+      rung "Dwell": @run LS2 -> TR1`,
+          `paper ${paper}`,
+        ),
+      ),
+    ).toEqual([]);
   });
 });
 
@@ -169,7 +196,9 @@ proximity-switch PRS1 "Part here"
 selector-switch SS1 "Mode" { positions hand off auto }
 pressure-switch PS1 "Air on" rising 5 bar`;
 
-const contact = fc.tuple(fc.boolean(), fc.constantFrom(...names)).map(([closed, name]) => `${closed && name !== "EMERGENCY_STOP_PANEL" ? "/" : ""}${name}`);
+const contact = fc
+  .tuple(fc.boolean(), fc.constantFrom(...names))
+  .map(([closed, name]) => `${closed && name !== "EMERGENCY_STOP_PANEL" ? "/" : ""}${name}`);
 const path = fc.letrec<{ series: string; item: string }>((tie) => ({
   series: fc.array(tie("item"), { minLength: 1, maxLength: 3 }).map((items) => items.join(" ")),
   item: fc.oneof(
@@ -206,7 +235,10 @@ const columnsOf = (text: string): number => {
 };
 
 describe("random rungs", () => {
-  const rungs = fc.array(path.filter((text) => columnsOf(text) <= 5), { minLength: 1, maxLength: 12 });
+  const rungs = fc.array(
+    path.filter((text) => columnsOf(text) <= 5),
+    { minLength: 1, maxLength: 12 },
+  );
 
   test("overlap nothing, cross nothing, leave no end open and join what the machine joins", () => {
     fc.assert(
@@ -231,7 +263,9 @@ describe("random rungs", () => {
     fc.assert(
       fc.property(fc.array(pointed, { minLength: 2, maxLength: 10 }), (list) => {
         const lamps = list.map((_, i) => `pilot-light LT${i} red`).join("\n");
-        const text = list.map(({ start, head, point, tail, end }, i) => `rung: ${start}${head} ${point} ${tail} ${end === "load" ? `-> LT${i}` : end}`).join("\n");
+        const text = list
+          .map(({ start, head, point, tail, end }, i) => `rung: ${start}${head} ${point} ${tail} ${end === "load" ? `-> LT${i}` : end}`)
+          .join("\n");
         const laid = ladderOf(`supply CTRL 24 V DC { rails L+ M }\n${declared}\n${lamps}\nladder "Control" supply CTRL {\n${text}\n}\n`);
         expect(faults(laid)).toEqual([]);
         for (const sheet of laid.sheets) expect(crossings(sheet)).toEqual([]);
@@ -249,7 +283,9 @@ describe("rungs larger than a sheet", () => {
       relay CR1 "Everything in place"
       pilot-light LT1 green
       pilot-light LT2 red
-      ${contacts(40).map((name) => `limit-switch ${name} "Gate closed"`).join("\n")}
+      ${contacts(40)
+        .map((name) => `limit-switch ${name} "Gate closed"`)
+        .join("\n")}
       ladder "Control" supply CTRL {
         ${rung}
         rung: LS1 -> LT1
@@ -258,14 +294,23 @@ describe("rungs larger than a sheet", () => {
   test.each(["A4", "A3", "ANSI-A"])("go on with letters when they are too long for %s", (paper) => {
     const laid = large(`rung "Chain": ${contacts(23).join(" ")} -> CR1`, paper);
     expect(faults(laid)).toEqual([]);
-    const names = laid.sheets.flatMap((sheet) => sheet.texts).flatMap(({ text }) => (typeof text !== "string" && text.to === "point" ? [text.point] : []));
+    const names = laid.sheets
+      .flatMap((sheet) => sheet.texts)
+      .flatMap(({ text }) => (typeof text !== "string" && text.to === "point" ? [text.point] : []));
     // Every letter stands at two ends.
     expect(names.length).toBeGreaterThan(0);
     for (const name of names) expect(names.filter((other) => other === name)).toHaveLength(2);
   });
 
   test.each(["A4", "A3"])("put long branches on lines of their own on %s", (paper) => {
-    expect(faults(large(`rung "Bracket": LS30 (${contacts(15).join(" ")} | LS31 (LS32 | ${contacts(12).join(" ")})) LS33 -> (CR1 | LS34 ${contacts(14).join(" ")} -> LT2)`, paper))).toEqual([]);
+    expect(
+      faults(
+        large(
+          `rung "Bracket": LS30 (${contacts(15).join(" ")} | LS31 (LS32 | ${contacts(12).join(" ")})) LS33 -> (CR1 | LS34 ${contacts(14).join(" ")} -> LT2)`,
+          paper,
+        ),
+      ),
+    ).toEqual([]);
   });
 
   test("put branches that have no room below the others on the next sheet", () => {
@@ -278,7 +323,9 @@ describe("rungs larger than a sheet", () => {
 test("time grows no faster than the ladder", () => {
   const time = (count: number) => {
     const lamps = Array.from({ length: count }, (_, i) => `pilot-light LT${i} red`).join("\n");
-    const rungs = Array.from({ length: count }, (_, i) => (i % 4 === 0 ? `rung: PB1 (CR1 | LS2A) @p${i} -> LT${i}` : `rung: @p${i - (i % 4)} CR1 -> LT${i}`)).join("\n");
+    const rungs = Array.from({ length: count }, (_, i) =>
+      i % 4 === 0 ? `rung: PB1 (CR1 | LS2A) @p${i} -> LT${i}` : `rung: @p${i - (i % 4)} CR1 -> LT${i}`,
+    ).join("\n");
     const text = `supply CTRL 24 V DC { rails L+ M }\n${declared}\n${lamps}\nladder "Control" supply CTRL {\n${rungs}\n}\n`;
     const laid = ladderOf(text);
     const again = () => {

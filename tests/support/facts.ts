@@ -85,14 +85,17 @@ export function wiresThroughSymbols(sheet: CircuitSheet): string[] {
       for (const stretch of stretchesOf(wire.points)) {
         if (!stretchMeetsBox(stretch, inner)) continue;
         const port = ports.find(
-          ({ at, direction }) => ends.some((end) => same(end, at)) && (leaves(stretch.a, stretch.b, at, direction) || leaves(stretch.b, stretch.a, at, direction)),
+          ({ at, direction }) =>
+            ends.some((end) => same(end, at)) &&
+            (leaves(stretch.a, stretch.b, at, direction) || leaves(stretch.b, stretch.a, at, direction)),
         );
         strokes ??= symbolStretches(placed);
         const hit = strokes.some((s) => {
           const meet = meetingPoint(s, stretch);
           return meet !== undefined && (port === undefined || distance(meet, port.at) > 0.3);
         });
-        if (port === undefined || hit) found.push(`wire ${wire.part} runs through the symbol of ${placed.part} at ${show(stretch.a)}–${show(stretch.b)}`);
+        if (port === undefined || hit)
+          found.push(`wire ${wire.part} runs through the symbol of ${placed.part} at ${show(stretch.a)}–${show(stretch.b)}`);
       }
     }
   }
@@ -104,7 +107,8 @@ export function symbolOverlaps(sheet: CircuitSheet): string[] {
   const found: string[] = [];
   sheet.symbols.forEach((one, index) => {
     for (const other of sheet.symbols.slice(index + 1)) {
-      if (boxesMeet(grow(symbolBox(one), -0.05), grow(symbolBox(other), -0.05), 0)) found.push(`the symbols of ${one.part} and ${other.part} overlap`);
+      if (boxesMeet(grow(symbolBox(one), -0.05), grow(symbolBox(other), -0.05), 0))
+        found.push(`the symbols of ${one.part} and ${other.part} overlap`);
     }
   });
   return found;
@@ -148,7 +152,8 @@ export function crossings(sheet: CircuitSheet): string[] {
       if (!meet) continue;
       if (one.wire.node === other.wire.node) {
         const throughBoth = !atEnd(meet, one) && !atEnd(meet, other);
-        if (throughBoth && !sheet.dots.some((dot) => same(dot.at, meet))) found.add(`wires ${one.wire.part} and ${other.wire.part} cross without a dot at ${show(meet)}`);
+        if (throughBoth && !sheet.dots.some((dot) => same(dot.at, meet)))
+          found.add(`wires ${one.wire.part} and ${other.wire.part} cross without a dot at ${show(meet)}`);
       } else found.add(`wires ${one.wire.part} and ${other.wire.part} cross at ${show(meet)}`);
     }
   });
@@ -173,7 +178,10 @@ export function slantedWires(sheet: CircuitSheet): string[] {
 /** Everything that reaches out of a region of the sheet. */
 export function outside(sheet: CircuitSheet, area: Box): string[] {
   const within = (box: Box) =>
-    box.x >= area.x - near && box.y >= area.y - near && box.x + box.width <= area.x + area.width + near && box.y + box.height <= area.y + area.height + near;
+    box.x >= area.x - near &&
+    box.y >= area.y - near &&
+    box.x + box.width <= area.x + area.width + near &&
+    box.y + box.height <= area.y + area.height + near;
   const points = (list: readonly Point[]) => list.every(({ x, y }) => within({ x, y, width: 0, height: 0 }));
   return [
     ...sheet.symbols.filter((placed) => !within(symbolBox(placed))).map((placed) => `the symbol of ${placed.part} reaches outside`),
@@ -316,7 +324,8 @@ function flatten(path: readonly Segment[]): Stretch[] {
     for (let i = 1; i <= 8; i++) {
       const t = i / 8;
       const u = 1 - t;
-      const mix = (p0: number, p1: number, p2: number, p3: number) => u * u * u * p0 + 3 * u * u * t * p1 + 3 * u * t * t * p2 + t * t * t * p3;
+      const mix = (p0: number, p1: number, p2: number, p3: number) =>
+        u * u * u * p0 + 3 * u * u * t * p1 + 3 * u * t * t * p2 + t * t * t * p3;
       const next = { x: mix(from.x, c.x1, c.x2, c.x), y: mix(from.y, c.y1, c.y2, c.y) };
       out.push({ a: at, b: next });
       at = next;
@@ -405,9 +414,7 @@ function stretchMeetsBox({ a, b }: Stretch, box: Box): boolean {
 }
 
 function boxesMeet(a: Box, b: Box, gap: Mm): boolean {
-  return (
-    a.x < b.x + b.width + gap && b.x < a.x + a.width + gap && a.y < b.y + b.height + gap && b.y < a.y + a.height + gap
-  );
+  return a.x < b.x + b.width + gap && b.x < a.x + a.width + gap && a.y < b.y + b.height + gap && b.y < a.y + a.height + gap;
 }
 
 function grow(box: Box, by: Mm): Box {
@@ -423,6 +430,7 @@ function boxOf(points: readonly Point[]): Box {
 }
 
 function describe(text: PlacedText): string {
-  const words = typeof text.text === "string" ? `“${text.text}”` : `reference to ${text.text.to} ${"device" in text.text ? text.text.device : ""}`;
+  const words =
+    typeof text.text === "string" ? `“${text.text}”` : `reference to ${text.text.to} ${"device" in text.text ? text.text.device : ""}`;
   return `${text.role} ${words} at ${show(text.at)}`;
 }

@@ -1,14 +1,24 @@
 import { startOfCycle } from "../../src/behaviour/start-of-cycle.js";
-import { nodeWorld } from "../../src/node-world.js";
 import { parse } from "../../src/language/parse.js";
-import { layOutLadder, type LadderLayout } from "../../src/layout/ladder/lay-out-ladder.js";
+import { type LadderLayout, layOutLadder } from "../../src/layout/ladder/lay-out-ladder.js";
 import type { CircuitSheet, PageArea } from "../../src/layout/placement.js";
 import { buildMachine } from "../../src/machine/build.js";
 import type { ContactUse, Device, LadderCircuit, LoadUse, Machine, NodeId } from "../../src/machine/model.js";
+import { nodeWorld } from "../../src/node-world.js";
 import { pageArea } from "../../src/sheets/page.js";
 import { symbolForDevice } from "../../src/symbols/choose.js";
 import { openSymbols } from "../../src/symbols/library.js";
-import { crossings, looseEnds, netlistOf, outside, slantedWires, symbolOverlaps, textOverlaps, textsOnWires, wiresThroughSymbols } from "./facts.js";
+import {
+  crossings,
+  looseEnds,
+  netlistOf,
+  outside,
+  slantedWires,
+  symbolOverlaps,
+  textOverlaps,
+  textsOnWires,
+  wiresThroughSymbols,
+} from "./facts.js";
 
 export interface LaidLadder {
   machine: Machine;
@@ -32,7 +42,8 @@ export function ladderOf(text: string): LaidLadder {
   const circuit = machine.circuits.find(({ kind }) => kind === "ladder") as LadderCircuit;
   const page = pageArea(machine.drawing);
   const start = startOfCycle(machine);
-  const symbolOf = (use: ContactUse | LoadUse) => symbolForDevice(use, machine.devices.get(use.device) as Device, start, machine.drawing.convention, library);
+  const symbolOf = (use: ContactUse | LoadUse) =>
+    symbolForDevice(use, machine.devices.get(use.device) as Device, start, machine.drawing.convention, library);
   const again = () => layOutLadder(circuit, machine, symbolOf, library, page, { sheet: 1, line: 1 });
   const laid = again();
   return { machine, circuit, sheets: laid.sheets, places: new Map(laid.places), page, again };
@@ -43,8 +54,14 @@ export function faults({ sheets, page, circuit }: LaidLadder): string[] {
   return [
     ...sheets.flatMap((sheet) =>
       [
-        ...textOverlaps(sheet), ...textsOnWires(sheet), ...wiresThroughSymbols(sheet), ...symbolOverlaps(sheet), ...looseEnds(sheet),
-        ...crossings(sheet), ...slantedWires(sheet), ...outside(sheet, page.area),
+        ...textOverlaps(sheet),
+        ...textsOnWires(sheet),
+        ...wiresThroughSymbols(sheet),
+        ...symbolOverlaps(sheet),
+        ...looseEnds(sheet),
+        ...crossings(sheet),
+        ...slantedWires(sheet),
+        ...outside(sheet, page.area),
       ].map((fault) => `sheet ${sheet.number}: ${fault}`),
     ),
     ...misplacedParts(circuit, sheets),
@@ -104,14 +121,17 @@ function wrongNets(circuit: LadderCircuit, sheets: readonly CircuitSheet[]): str
       const [node] = nodes;
       if (node === undefined) continue;
       const referred = group.wires.some(
-        ({ role, points }) => role === "rail" || points.some((point) => referring.some((path) => path.some(({ x, y }) => Math.hypot(x - point.x, y - point.y) < 0.02))),
+        ({ role, points }) =>
+          role === "rail" ||
+          points.some((point) => referring.some((path) => path.some(({ x, y }) => Math.hypot(x - point.x, y - point.y) < 0.02))),
       );
       islands.set(node, [...(islands.get(node) ?? []), { referred, ports: group.ports }]);
     }
   }
   for (const [node, parts] of islands) {
     if (parts.length < 2) continue;
-    for (const { referred, ports } of parts) if (!referred) found.push(`node ${node} is drawn in ${parts.length} parts, and ${ports.join(" ")} does not say where it goes on`);
+    for (const { referred, ports } of parts)
+      if (!referred) found.push(`node ${node} is drawn in ${parts.length} parts, and ${ports.join(" ")} does not say where it goes on`);
   }
   return found;
 }

@@ -35,7 +35,13 @@ export interface SheetRoom {
  * Shares the rungs out over sheets: each rung whole on one sheet, a new sheet where the author asks and where the next rung
  * has no room left, below the others or with its columns among theirs. Distances between lines grow with what stands on them.
  */
-export function breakSheets(rungs: readonly MeasuredRung[], breaks: readonly { before: number; title?: string }[], room: SheetRoom, pitch: LinePitch, arrangement: Arrangement): RungSheet[] {
+export function breakSheets(
+  rungs: readonly MeasuredRung[],
+  breaks: readonly { before: number; title?: string }[],
+  room: SheetRoom,
+  pitch: LinePitch,
+  arrangement: Arrangement,
+): RungSheet[] {
   const sheets: RungSheet[] = [];
   const asked = new Map(breaks.map((wanted) => [wanted.before, wanted]));
   let sheet: RungSheet | undefined;
@@ -69,7 +75,8 @@ export function stack(rung: MeasuredRung, depth: Mm, below: Mm, pitch: LinePitch
   let last: Mm | undefined = depth > 0 ? depth - below : undefined;
   let hang = below;
   const lines = rung.lines.map((room) => {
-    const at: Mm = last === undefined ? room.above : last + Math.max(pitch.least, Math.ceil((hang + room.above + between) / pitch.step) * pitch.step);
+    const at: Mm =
+      last === undefined ? room.above : last + Math.max(pitch.least, Math.ceil((hang + room.above + between) / pitch.step) * pitch.step);
     last = at;
     hang = room.below;
     return at;

@@ -4,7 +4,7 @@ import type { LadderCircuit, NodeId } from "../../machine/model.js";
 import type { CircuitSheet, Place, PlacedText } from "../placement.js";
 import type { Arrangement } from "./arrangement.js";
 import type { RungSheet } from "./break-sheets.js";
-import { boundaryOf, type Cell, type Link, loadColumn, returnRail, type Stop } from "./grid.js";
+import type { Link, Stop } from "./grid.js";
 import { joinWires, type Straight } from "./join-wires.js";
 import { endingSize, numberRise } from "./measure-rungs.js";
 import type { Columns } from "./set-columns.js";
@@ -39,14 +39,25 @@ export interface DrawnLadderSheet {
 /** Sets everything of a sheet down in millimetres. */
 export function drawSheet(given: SheetGiven): DrawnLadderSheet {
   const { circuit, sheet, number, title, columns, arrangement, rails, origin, firstLine, links, zoneOf } = given;
-  const out: CircuitSheet = { kind: "ladder", circuit: circuit.id, number, title, symbols: [], wires: [], dots: [], texts: [], strokes: [] };
+  const out: CircuitSheet = {
+    kind: "ladder",
+    circuit: circuit.id,
+    number,
+    title,
+    symbols: [],
+    wires: [],
+    dots: [],
+    texts: [],
+    strokes: [],
+  };
   const places: [PartId, Place][] = [];
   const pieces: Straight[] = [];
   const at = (along: Mm, across: Mm): Point => {
     const { x, y } = arrangement.orient(along, across);
     return { x: tidy(origin.x + x), y: tidy(origin.y + y) };
   };
-  const text = (placed: PlacedText, by: Point) => out.texts.push({ ...placed, at: { x: tidy(placed.at.x + by.x), y: tidy(placed.at.y + by.y) } });
+  const text = (placed: PlacedText, by: Point) =>
+    out.texts.push({ ...placed, at: { x: tidy(placed.at.x + by.x), y: tidy(placed.at.y + by.y) } });
   const place = (part: PartId, line: number, box: Box) =>
     places.push([part, { sheet: number, line, zone: zoneOf({ x: box.x + box.width / 2, y: box.y + box.height / 2 }), box }]);
   const across = (rung: number, line: number) => sheet.rungs[rung - sheet.first]?.lines[line];
@@ -74,13 +85,21 @@ export function drawSheet(given: SheetGiven): DrawnLadderSheet {
     }
     for (const up of grid.uprights) {
       const x = columns.boundary(up.boundary);
-      pieces.push({ node: up.node, from: { along: x, across: lines[up.fromLine] as Mm }, to: { along: x, across: lines[up.toLine] as Mm } });
+      pieces.push({
+        node: up.node,
+        from: { along: x, across: lines[up.fromLine] as Mm },
+        to: { along: x, across: lines[up.toLine] as Mm },
+      });
     }
     for (const wanted of numbers) {
       const { words, room } = arrangement.wireNumber(wanted.node);
       const anchor = wanted.beside ? "start" : "middle";
       const by = at(columns.boundary(wanted.boundary) + (wanted.beside ? 0.9 : 0), (lines[wanted.line] as Mm) - numberRise.gap);
-      if (room > 0) text({ part: wirePart(circuit, wanted.node), role: "wire-number", at: { x: 0, y: 0 }, anchor, height: numberRise.height, text: words }, by);
+      if (room > 0)
+        text(
+          { part: wirePart(circuit, wanted.node), role: "wire-number", at: { x: 0, y: 0 }, anchor, height: numberRise.height, text: words },
+          by,
+        );
     }
     for (const { line: row, block } of margins) for (const words of block.texts) text(words, at(columns.span, lines[row] as Mm));
     for (const ending of endings) {
@@ -94,15 +113,32 @@ export function drawSheet(given: SheetGiven): DrawnLadderSheet {
       const height = arrangement.endingHeight;
       const words = { part, role: "reference", height, text: reference } as const;
       if (ending.kind === "start") {
-        arrow(part, [[x - lead - head, y - half], [x - lead, y], [x - lead - head, y + half], [x - lead - head, y - half]]);
+        arrow(part, [
+          [x - lead - head, y - half],
+          [x - lead, y],
+          [x - lead - head, y + half],
+          [x - lead - head, y - half],
+        ]);
         pieces.push({ node: ending.node, from: { along: x - lead, across: y }, to: { along: x, across: y } });
         text({ ...words, at: { x: 0, y: height / 2 }, anchor: "end" }, at(x - lead - head - gap, y));
       } else if (ending.kind === "end") {
-        arrow(part, [[x + lead, y], [x + lead, y - half], [x + lead + head, y], [x + lead, y + half], [x + lead, y]]);
+        arrow(part, [
+          [x + lead, y],
+          [x + lead, y - half],
+          [x + lead + head, y],
+          [x + lead, y + half],
+          [x + lead, y],
+        ]);
         pieces.push({ node: ending.node, from: { along: x, across: y }, to: { along: x + lead, across: y } });
         text({ ...words, at: { x: 0, y: height / 2 }, anchor: "start" }, at(x + lead + head + gap, y));
       } else {
-        arrow(part, [[x, y + drop], [x - half, y + drop], [x, y + drop + head], [x + half, y + drop], [x, y + drop]]);
+        arrow(part, [
+          [x, y + drop],
+          [x - half, y + drop],
+          [x, y + drop + head],
+          [x + half, y + drop],
+          [x, y + drop],
+        ]);
         pieces.push({ node: ending.node, from: { along: x, across: y }, to: { along: x, across: y + drop } });
         text({ ...words, at: { x: 0, y: 0 }, anchor: "middle" }, at(x, y + drop + head + gap + height));
       }
@@ -110,7 +146,12 @@ export function drawSheet(given: SheetGiven): DrawnLadderSheet {
       place(part, line + ending.line, { x: mark.x - 3, y: mark.y - 3, width: 6, height: 6 });
     }
     const start = at(columns.boundary(grid.start), lines[0] as Mm);
-    place(grid.rung.id, line, { x: start.x, y: start.y - 4, width: columns.span - columns.boundary(grid.start), height: (lines.at(-1) as Mm) - (lines[0] as Mm) + 8 });
+    place(grid.rung.id, line, {
+      x: start.x,
+      y: start.y - 4,
+      width: columns.span - columns.boundary(grid.start),
+      height: (lines.at(-1) as Mm) - (lines[0] as Mm) + 8,
+    });
     for (const y of lines) {
       text({ role: "line-number", at: { x: -4, y: 1.25 }, anchor: "end", height: 2.5, text: String(line) }, at(0, y));
       line++;
@@ -123,22 +164,50 @@ export function drawSheet(given: SheetGiven): DrawnLadderSheet {
     if (from === undefined && to === undefined) continue;
     const x = columns.boundary(link.boundary);
     const { head, half } = endingSize;
-    if (from !== undefined && to !== undefined) pieces.push({ node: link.node, from: { along: x, across: from }, to: { along: x, across: to } });
+    if (from !== undefined && to !== undefined)
+      pieces.push({ node: link.node, from: { along: x, across: from }, to: { along: x, across: to } });
     else if (from !== undefined) {
       // Above the words that say where the rails go on.
       const end = given.railTo - head - 4.5;
       pieces.push({ node: link.node, from: { along: x, across: from }, to: { along: x, across: end } });
-      broken(link, "foot", [[x, end], [x - half, end], [x, end + head], [x + half, end], [x, end]], at(x + half + 0.8, end + head));
+      broken(
+        link,
+        "foot",
+        [
+          [x, end],
+          [x - half, end],
+          [x, end + head],
+          [x + half, end],
+          [x, end],
+        ],
+        at(x + half + 0.8, end + head),
+      );
     } else if (to !== undefined) {
       const end = given.railFrom + head;
       pieces.push({ node: link.node, from: { along: x, across: end }, to: { along: x, across: to } });
-      broken(link, "head", [[x - half, end - head], [x, end], [x + half, end - head], [x - half, end - head]], at(x + half + 0.8, end));
+      broken(
+        link,
+        "head",
+        [
+          [x - half, end - head],
+          [x, end],
+          [x + half, end - head],
+          [x - half, end - head],
+        ],
+        at(x + half + 0.8, end),
+      );
     }
   }
   const span = columns.span;
   for (const [index, node] of rails.entries()) {
     const x = index === 0 ? 0 : span;
-    out.wires.push({ part: railPart(circuit, index), node, role: "rail", points: [at(x, given.railFrom), at(x, given.railTo)], width: 0.5 });
+    out.wires.push({
+      part: railPart(circuit, index),
+      node,
+      role: "rail",
+      points: [at(x, given.railFrom), at(x, given.railTo)],
+      width: 0.5,
+    });
   }
   const onRail = (along: Mm) => Math.abs(along) < 0.01 || Math.abs(along - span) < 0.01;
   const joined = joinWires(pieces, onRail);

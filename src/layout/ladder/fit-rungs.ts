@@ -41,7 +41,8 @@ export function fitRungs(
 ): FittedRungs {
   const taken = new Set(rungs.flatMap(pointsOf));
   const limits = new Map<number, RungLimits>();
-  const limitsOf = (index: number): RungLimits => limits.get(index) ?? { columns: Number.POSITIVE_INFINITY, lines: Number.POSITIVE_INFINITY };
+  const limitsOf = (index: number): RungLimits =>
+    limits.get(index) ?? { columns: Number.POSITIVE_INFINITY, lines: Number.POSITIVE_INFINITY };
   let scale = 1;
   let triedSmall = false;
   let wideAtFull = 0;
@@ -52,7 +53,12 @@ export function fitRungs(
       const at = origin.findIndex((index) => index >= before);
       return { before: at < 0 ? folded.length : at, ...(title === undefined ? {} : { title }) };
     });
-    const joined = joinPoints(folded, new Set(breaks.map(({ before }) => before)), letters, (index) => limitsOf(origin[index] as number).columns);
+    const joined = joinPoints(
+      folded,
+      new Set(breaks.map(({ before }) => before)),
+      letters,
+      (index) => limitsOf(origin[index] as number).columns,
+    );
     const measured = measureRungs(joined, new Set(rails), arrangement);
     const fitted = { joined, measured, arrangement, scale, breaks };
     const next = new Map(limits);
@@ -76,7 +82,11 @@ export function fitRungs(
       if (across > offer.depth) {
         tall++;
         const { lines } = rung.grid;
-        next.set(of, { ...lowered, ...next.get(of), lines: Math.max(1, Math.min(lowered.lines, known.lines - 1, lines - 1, Math.floor((lines * offer.depth) / across))) });
+        next.set(of, {
+          ...lowered,
+          ...next.get(of),
+          lines: Math.max(1, Math.min(lowered.lines, known.lines - 1, lines - 1, Math.floor((lines * offer.depth) / across))),
+        });
       }
     });
     if ((wide === 0 && tall === 0) || round === rounds) return fitted;
@@ -103,7 +113,10 @@ const roomyColumns = 6;
 
 /** How many columns before its loads a rung takes. */
 function columnsOf(grid: RungGrid): number {
-  const boundaries = [...grid.cells.map(({ column }) => column + 1), ...grid.runs.flatMap(({ from, to }) => [boundaryOf(from), boundaryOf(to)])];
+  const boundaries = [
+    ...grid.cells.map(({ column }) => column + 1),
+    ...grid.runs.flatMap(({ from, to }) => [boundaryOf(from), boundaryOf(to)]),
+  ];
   return Math.max(0, ...boundaries.filter((boundary) => boundary < loadColumn));
 }
 

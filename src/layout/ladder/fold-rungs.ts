@@ -42,6 +42,7 @@ export function foldRungs(rungs: readonly Rung[], limitsOf: (index: number) => R
       function cutWide(whole: Rung): Rung {
         const begins = whole.start.kind === "rail" ? 0 : 1;
         const ends = whole.end.kind === "rail" ? 0 : 1;
+        // The least a piece can be: an arrow in, a bracket narrowed to two arrows, and an arrow out.
         const room = Math.max(limits.columns, 4) - begins;
         if (contactWidth(whole.path) + (bearsLoad(whole.path) ? 0 : ends) <= room) return whole;
         const { items } = whole.path;
@@ -64,8 +65,16 @@ export function foldRungs(rungs: readonly Rung[], limitsOf: (index: number) => R
         const node = rest[0]?.from ?? whole.path.to;
         if (rest.length === 0) return whole;
         const letter = letters();
-        more.unshift({ ...continued(whole, letter, node), end: whole.end, path: { kind: "series", items: rest, from: node, to: whole.path.to } });
-        return { ...whole, end: { kind: "point", point: letter, node, at: whole.at }, path: { kind: "series", items: items.slice(0, kept), from: whole.path.from, to: node } };
+        more.unshift({
+          ...continued(whole, letter, node),
+          end: whole.end,
+          path: { kind: "series", items: rest, from: node, to: whole.path.to },
+        });
+        return {
+          ...whole,
+          end: { kind: "point", point: letter, node, at: whole.at },
+          path: { kind: "series", items: items.slice(0, kept), from: whole.path.from, to: node },
+        };
       }
 
       function narrow(parallel: ParallelPath, room: number): ParallelPath {
@@ -108,14 +117,18 @@ export function foldRungs(rungs: readonly Rung[], limitsOf: (index: number) => R
             if (item.kind !== "parallel" || heightOf({ ...path, items: [item] }) <= lines) return [item];
             let used = 0;
             let kept = 0;
-            while (kept < item.branches.length && used + heightOf(item.branches[kept] as SeriesPath) <= lines) used += heightOf(item.branches[kept++] as SeriesPath);
+            while (kept < item.branches.length && used + heightOf(item.branches[kept] as SeriesPath) <= lines)
+              used += heightOf(item.branches[kept++] as SeriesPath);
             const own = kept > 0 ? item.branches.slice(0, kept) : [lower(item.branches[0] as SeriesPath, whole, lines)];
             const rest = item.branches.slice(own.length);
             if (rest.length === 0) return [{ ...item, branches: own }];
             const fromRail = whole.start.kind === "rail" && whole.start.node === item.from;
             const toRail = whole.end.kind === "rail" && whole.end.node === item.to;
             const [out, back] = [fromRail ? "" : letters(), toRail ? "" : letters()];
-            const beside: SeriesPath = rest.length === 1 ? (rest[0] as SeriesPath) : { kind: "series", items: [{ ...item, branches: rest }], from: item.from, to: item.to };
+            const beside: SeriesPath =
+              rest.length === 1
+                ? (rest[0] as SeriesPath)
+                : { kind: "series", items: [{ ...item, branches: rest }], from: item.from, to: item.to };
             more.push({
               ...continued(whole, out, item.from),
               ...(fromRail ? { start: whole.start } : {}),
@@ -123,7 +136,9 @@ export function foldRungs(rungs: readonly Rung[], limitsOf: (index: number) => R
               path: beside,
             });
             const point = (name: string, node: NodeId): PointUse[] =>
-              name === "" ? [] : [{ kind: "point", id: `${whole.id}/${name}`, point: name, from: node, to: node, rung: whole.id, at: whole.at }];
+              name === ""
+                ? []
+                : [{ kind: "point", id: `${whole.id}/${name}`, point: name, from: node, to: node, rung: whole.id, at: whole.at }];
             return [...point(out, item.from), { ...item, branches: own }, ...point(back, item.to)];
           }),
         };
@@ -140,7 +155,9 @@ export function foldRungs(rungs: readonly Rung[], limitsOf: (index: number) => R
 
 /** How many columns an item takes before the load column. */
 function headWidth(item: Item): number {
-  return isLoad(item) ? contactWidth({ kind: "series", items: [item] as SeriesPath["items"], from: item.from, to: item.to }) : widthOfItem(item);
+  return isLoad(item)
+    ? contactWidth({ kind: "series", items: [item] as SeriesPath["items"], from: item.from, to: item.to })
+    : widthOfItem(item);
 }
 
 const isLoad = (item: Item) => item.kind === "load" || (item.kind === "parallel" && item.branches.some(bearsLoad));

@@ -11,6 +11,8 @@ export interface Ending {
   /** `start` and `end`: the arrow stands before or behind the rung on its line. `drop`: it hangs below a wire on `boundary`. */
   kind: "start" | "end" | "drop";
   boundary: number;
+  /** Nothing stands behind it on its line, so that its text may reach as far as the return rail. */
+  last?: boolean;
 }
 
 /** Rungs on the grid with the points they share. */
@@ -35,11 +37,17 @@ interface Open {
  * @param columnsOf how many columns a rung may take before its loads
  * @param letters points made by cutting a rung: what begins or ends there is not joined by wire
  */
-export function joinPoints(rungs: readonly Rung[], barriers: ReadonlySet<number>, letters: ReadonlySet<string>, columnsOf: (index: number) => number): Joined {
+export function joinPoints(
+  rungs: readonly Rung[],
+  barriers: ReadonlySet<number>,
+  letters: ReadonlySet<string>,
+  columnsOf: (index: number) => number,
+): Joined {
   const lastUse = lastUses(rungs, letters);
   const grids: RungGrid[] = [];
   const links: Link[] = [];
   const endings: Ending[] = [];
+  const lastOnLine = new Set<number>();
   let open = new Map<NodeId, Open>();
   rungs.forEach((rung, index) => {
     if (barriers.has(index)) open = new Map();
@@ -61,6 +69,7 @@ export function joinPoints(rungs: readonly Rung[], barriers: ReadonlySet<number>
     grids.push(grid);
     joinWithin(grid);
 
+    if (grid.end < loadColumn && ![...open.values()].some(({ boundary }) => boundary > grid.end)) lastOnLine.add(index);
     const next = new Map<NodeId, Open>();
     for (const [node, upright] of open) {
       if (blocked(grid, node, upright.boundary)) {
@@ -83,7 +92,10 @@ export function joinPoints(rungs: readonly Rung[], barriers: ReadonlySet<number>
     for (const node of next.keys()) if ((lastUse.get(node) ?? 0) <= index) next.delete(node);
     open = next;
   });
-  endings.push(...findEndings(grids, links));
+  for (const ending of findEndings(grids, links)) {
+    const last = ending.kind === "end" && ending.boundary === grids[ending.rung]?.end && lastOnLine.has(ending.rung);
+    endings.push(last ? { ...ending, last } : ending);
+  }
   return { grids, links, endings };
 }
 
@@ -155,7 +167,9 @@ function wayDown(grid: RungGrid, node: NodeId): { boundary: number; line: number
 /** Joins places of one point in different branches of a rung where they lie straight above each other. */
 function joinWithin(grid: RungGrid): void {
   for (const [index, site] of grid.sites.entries()) {
-    const below = grid.sites.slice(index + 1).find((other) => other.node === site.node && other.boundary === site.boundary && other.line > site.line);
+    const below = grid.sites
+      .slice(index + 1)
+      .find((other) => other.node === site.node && other.boundary === site.boundary && other.line > site.line);
     if (!below) continue;
     let free = true;
     for (let line = site.line + 1; line < below.line && free; line++) {
@@ -214,7 +228,8 @@ function findEndings(grids: readonly RungGrid[], links: readonly Link[]): Ending
   for (const [node, parts] of islands) {
     for (const { sites } of parts) {
       const open = sites.filter(({ rung, site }) => isOpen(rung, site));
-      for (const { rung, site } of open) endings.push({ rung, node, point: site.point, line: site.line, kind: site.open as "start" | "end", boundary: site.boundary });
+      for (const { rung, site } of open)
+        endings.push({ rung, node, point: site.point, line: site.line, kind: site.open as "start" | "end", boundary: site.boundary });
       if (open.length > 0 || parts.length < 2) continue;
       // The lowest place, because no upright goes on down from there.
       const lowest = sites.reduce((low, next) => (next.rung > low.rung ? next : low));
@@ -235,12 +250,18 @@ interface Piece {
 /** The connected parts in which a node is drawn within a rung. */
 function partsOf(grid: RungGrid, node: NodeId): Piece[][] {
   const pieces: Piece[] = [
-    ...grid.runs.filter((run) => run.node === node).map((run) => ({ line: run.line, toLine: run.line, from: boundaryOf(run.from), to: boundaryOf(run.to) })),
-    ...grid.uprights.filter((up) => up.node === node).map((up) => ({ line: up.fromLine, toLine: up.toLine, from: up.boundary, to: up.boundary })),
+    ...grid.runs
+      .filter((run) => run.node === node)
+      .map((run) => ({ line: run.line, toLine: run.line, from: boundaryOf(run.from), to: boundaryOf(run.to) })),
+    ...grid.uprights
+      .filter((up) => up.node === node)
+      .map((up) => ({ line: up.fromLine, toLine: up.toLine, from: up.boundary, to: up.boundary })),
   ];
   const parts: Piece[][] = [];
   for (const piece of pieces) {
-    const touching = parts.filter((part) => part.some((other) => piece.line <= other.toLine && other.line <= piece.toLine && piece.from <= other.to && other.from <= piece.to));
+    const touching = parts.filter((part) =>
+      part.some((other) => piece.line <= other.toLine && other.line <= piece.toLine && piece.from <= other.to && other.from <= piece.to),
+    );
     for (const part of touching) parts.splice(parts.indexOf(part), 1);
     parts.push([...touching.flat(), piece]);
   }
@@ -256,7 +277,8 @@ function bottomOfPart(grid: RungGrid, node: NodeId, site: PointSite): number {
   let line = site.line;
   for (let before = -1; before !== line; ) {
     before = line;
-    for (const up of grid.uprights) if (up.node === node && up.boundary === site.boundary && up.fromLine <= line) line = Math.max(line, up.toLine);
+    for (const up of grid.uprights)
+      if (up.node === node && up.boundary === site.boundary && up.fromLine <= line) line = Math.max(line, up.toLine);
   }
   return line;
 }

@@ -31,11 +31,25 @@ export function joinWires(pieces: readonly Straight[], onRail: (along: Mm) => bo
   const wires: JoinedWires["wires"] = [];
   const dots: JoinedWires["dots"] = [];
   for (const [node, list] of byNode) {
-    const level = merge(list.filter(({ from, to }) => same(from.across, to.across)), "along", "across");
-    const upright = merge(list.filter(({ from, to }) => !same(from.across, to.across)), "across", "along");
+    const level = merge(
+      list.filter(({ from, to }) => same(from.across, to.across)),
+      "along",
+      "across",
+    );
+    const upright = merge(
+      list.filter(({ from, to }) => !same(from.across, to.across)),
+      "across",
+      "along",
+    );
     const lines = [
-      ...level.map(({ at, from, to }) => [{ x: from, y: at }, { x: to, y: at }]),
-      ...upright.map(({ at, from, to }) => [{ x: at, y: from }, { x: at, y: to }]),
+      ...level.map(({ at, from, to }) => [
+        { x: from, y: at },
+        { x: to, y: at },
+      ]),
+      ...upright.map(({ at, from, to }) => [
+        { x: at, y: from },
+        { x: at, y: to },
+      ]),
     ];
     const corners: Point[] = [];
     for (const up of upright) {
@@ -85,7 +99,11 @@ function bend(lines: Point[][], corners: readonly Point[]): Point[][] {
   };
   const remove = (wire: Point[]) => {
     wires.delete(wire);
-    for (const end of [wire[0] as Point, wire.at(-1) as Point]) ends.set(key(end), (ends.get(key(end)) ?? []).filter((other) => other !== wire));
+    for (const end of [wire[0] as Point, wire.at(-1) as Point])
+      ends.set(
+        key(end),
+        (ends.get(key(end)) ?? []).filter((other) => other !== wire),
+      );
   };
   lines.forEach(add);
   for (const corner of corners) {

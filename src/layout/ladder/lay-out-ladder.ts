@@ -1,18 +1,18 @@
 import type { Mm } from "../../drawing/geometry.js";
-import { measureText } from "../../drawing/text.js";
 import type { PartId } from "../../drawing/marks.js";
+import { measureText } from "../../drawing/text.js";
 import type { ContactUse, LadderCircuit, LoadUse, Machine, NodeId, Rung } from "../../machine/model.js";
 import type { SymbolLibrary } from "../../symbols/library.js";
 import type { Symbol } from "../../symbols/symbol.js";
 import type { CircuitSheet, PageArea, Place, PlacedText } from "../placement.js";
 import { breakSheets, type RungSheet } from "./break-sheets.js";
 import { drawSheet } from "./draw-sheet.js";
-import { fuseBlock, fuseScale, fuseSymbol, setFuse } from "./supply-fuse.js";
-import { scaleSymbol } from "./scale-symbol.js";
 import { columnPitch, fitRungs, linePitch } from "./fit-rungs.js";
 import type { Link } from "./grid.js";
 import { northAmerican } from "./north-american.js";
+import { scaleSymbol } from "./scale-symbol.js";
 import { setColumns } from "./set-columns.js";
+import { fuseBlock, fuseScale, fuseSymbol, setFuse } from "./supply-fuse.js";
 
 /** The numbers a ladder's first sheet and first line get. */
 export interface Numbering {
@@ -34,21 +34,39 @@ export interface LadderLayout {
  * @param symbols for what stands in no rung: the supply's fuse
  * @param page the room on each sheet
  */
-export function layOutLadder(circuit: LadderCircuit, machine: Machine, symbolOf: (use: ContactUse | LoadUse) => Symbol, symbols: SymbolLibrary, page: PageArea, numbering: Numbering): LadderLayout {
+export function layOutLadder(
+  circuit: LadderCircuit,
+  machine: Machine,
+  symbolOf: (use: ContactUse | LoadUse) => Symbol,
+  symbols: SymbolLibrary,
+  page: PageArea,
+  numbering: Numbering,
+): LadderLayout {
   const rails = railNodes(circuit, machine);
   const rungs = circuit.rungs.map((rung) => onRails(rung, rails));
   if (rungs.length === 0) return { sheets: [], places: [], nextLine: numbering.line };
   const room = shareWidth(page.area.width);
-  const fuse = circuit.supply.fuse && symbols.names().includes(fuseSymbol) ? fuseBlock(circuit.supply.fuse, scaleSymbol(symbols.get(fuseSymbol), fuseScale)) : undefined;
+  const fuse =
+    circuit.supply.fuse && symbols.names().includes(fuseSymbol)
+      ? fuseBlock(circuit.supply.fuse, scaleSymbol(symbols.get(fuseSymbol), fuseScale))
+      : undefined;
   const firstHead = headRoom + (fuse?.length ?? 0);
   const depth = page.area.height - headRoom - footRoom;
   const offer = { ...room, depth: page.area.height - firstHead - footRoom };
 
   // 1. Every part has a column and a line on the grid, shared points are joined or end in a reference, every text is
   //    measured, and no rung needs more than a sheet offers.
-  const { joined, measured, arrangement, scale, breaks } = fitRungs(circuit, rungs, rails, offer, (scale) => northAmerican({ machine, symbolOf, margin: room.margin, scale }));
+  const { joined, measured, arrangement, scale, breaks } = fitRungs(circuit, rungs, rails, offer, (scale) =>
+    northAmerican({ machine, symbolOf, margin: room.margin, scale }),
+  );
   // 2. Every rung is whole on one sheet; line numbers are known.
-  const broken = breakSheets(measured, breaks, { depth, first: page.area.height - firstHead - footRoom, span: room.span, columns: columnPitch(scale) }, linePitch(scale), arrangement);
+  const broken = breakSheets(
+    measured,
+    breaks,
+    { depth, first: page.area.height - firstHead - footRoom, span: room.span, columns: columnPitch(scale) },
+    linePitch(scale),
+    arrangement,
+  );
   const firstLines = numberLines(broken, machine, numbering);
   // 3. Every sheet is set down in millimetres.
   const places: [PartId, Place][] = [];
@@ -62,8 +80,19 @@ export function layOutLadder(circuit: LadderCircuit, machine: Machine, symbolOf:
     const railTo = sheet.depth + footRoom - railFoot;
     const links = linksOf[index] ?? [];
     const drawn = drawSheet({
-      circuit, sheet, number, title: sheet.title ?? circuit.title, columns, arrangement, rails, origin, railFrom, railTo,
-      firstLine: firstLines[index] as number, links, zoneOf: (point) => page.zoneOf(point),
+      circuit,
+      sheet,
+      number,
+      title: sheet.title ?? circuit.title,
+      columns,
+      arrangement,
+      rails,
+      origin,
+      railFrom,
+      railTo,
+      firstLine: firstLines[index] as number,
+      links,
+      zoneOf: (point) => page.zoneOf(point),
     });
     if (fuse && index === 0) setFuse(drawn.sheet, fuse, { x: origin.x, y: origin.y + railFrom });
     nameRails(drawn.sheet, circuit, columns.span, origin, railFrom, railTo, {
@@ -131,12 +160,21 @@ function numberLines(sheets: readonly RungSheet[], machine: Machine, numbering: 
   });
 }
 
-const startOf = (firstLines: readonly number[], index: number, numbering: Numbering) => `sheet ${numbering.sheet + index}, line ${firstLines[index]}`;
+const startOf = (firstLines: readonly number[], index: number, numbering: Numbering) =>
+  `sheet ${numbering.sheet + index}, line ${firstLines[index]}`;
 const endOf = (sheets: readonly RungSheet[], firstLines: readonly number[], index: number, numbering: Numbering) =>
   `sheet ${numbering.sheet + index}, line ${(firstLines[index] as number) + (sheets[index] as RungSheet).rungs.reduce((sum, { lines }) => sum + lines.length, 0) - 1}`;
 
 /** Names the rails at their heads, and says where they come from and go on. */
-function nameRails(sheet: CircuitSheet, circuit: LadderCircuit, span: Mm, origin: { x: Mm; y: Mm }, from: Mm, to: Mm, other: { from?: string; to?: string }) {
+function nameRails(
+  sheet: CircuitSheet,
+  circuit: LadderCircuit,
+  span: Mm,
+  origin: { x: Mm; y: Mm },
+  from: Mm,
+  to: Mm,
+  other: { from?: string; to?: string },
+) {
   const { rails, voltage, current } = circuit.supply;
   const say = (x: Mm, y: Mm, anchor: PlacedText["anchor"], height: Mm, role: PlacedText["role"], text: string) =>
     sheet.texts.push({ role, at: { x: origin.x + x, y: origin.y + y }, anchor, height, text });

@@ -42,7 +42,10 @@ export function measureRungs({ grids, links, endings }: Joined, rails: ReadonlyS
   const arrivals = groupBy(links, (link) => link.to.rung);
   return grids.map((grid, index) => {
     const dressed = new Map(grid.cells.map((cell) => [cell, arrangement.dress(cell.use)]));
-    const lines = Array.from({ length: grid.lines }, () => ({ above: numberRise.gap + numberRise.height + 0.4, below: 1, drop: 0 }) satisfies LineRoom as LineRoom);
+    const lines = Array.from(
+      { length: grid.lines },
+      () => ({ above: numberRise.gap + numberRise.height + 0.4, below: 1, drop: 0 }) satisfies LineRoom as LineRoom,
+    );
     const claim = (line: number, above: Mm, below: Mm) => {
       const room = lines[line];
       if (!room) return;
@@ -64,7 +67,12 @@ export function measureRungs({ grids, links, endings }: Joined, rails: ReadonlyS
 }
 
 /** The number of each potential stands once in a rung: on the uppermost of its wires, as near to its source as it can. */
-function placeNumbers(grid: RungGrid, rails: ReadonlySet<NodeId>, fromAbove: ReadonlySet<string>, endings: readonly Ending[]): NumberPlace[] {
+function placeNumbers(
+  grid: RungGrid,
+  rails: ReadonlySet<NodeId>,
+  fromAbove: ReadonlySet<string>,
+  endings: readonly Ending[],
+): NumberPlace[] {
   const best = new Map<NodeId, NumberPlace>();
   for (const run of grid.runs) {
     if (rails.has(run.node)) continue;

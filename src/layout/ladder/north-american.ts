@@ -59,12 +59,27 @@ function dress(use: ContactUse | LoadUse, machine: Machine, symbol: Symbol, scal
   const texts: PlacedText[] = [];
 
   const inside = insideWords(use, device, scale);
-  if (inside) texts.push({ part: use.id, role: "designation", at: { x: 0, y: inside.height / 2 }, anchor: "middle", height: inside.height, text: inside.words });
+  if (inside)
+    texts.push({
+      part: use.id,
+      role: "designation",
+      at: { x: 0, y: inside.height / 2 },
+      anchor: "middle",
+      height: inside.height,
+      text: inside.words,
+    });
   const labels = selectorLabels(use, device, symbol);
   texts.push(...labels.map((text) => ({ ...text, at: { x: text.at.x + shift.x, y: text.at.y + shift.y } })));
   const highest = Math.min(top, ...labels.map((text) => roomOf(text).y + shift.y - clearance));
   if (!inside) {
-    texts.push({ part: use.id, role: "designation", at: { x: 0, y: highest - hang(use.device) }, anchor: "middle", height: textHeight.usual, text: use.device });
+    texts.push({
+      part: use.id,
+      role: "designation",
+      at: { x: 0, y: highest - hang(use.device) },
+      anchor: "middle",
+      height: textHeight.usual,
+      text: use.device,
+    });
   }
 
   // Over the middle of the lead, clear of the symbol; a long number reaches out over the wire.
@@ -75,7 +90,14 @@ function dress(use: ContactUse | LoadUse, machine: Machine, symbol: Symbol, scal
     const half = measureText(terminal, textHeight.small) / 2;
     const middle = Math.max(reach - 1.8 * scale, leads + 0.6 + half);
     body = Math.max(body, middle + half + 0.4);
-    texts.push({ part: use.id, role: "terminal", at: { x: pin === 0 ? -middle : middle, y: -0.7 }, anchor: "middle", height: textHeight.small, text: terminal });
+    texts.push({
+      part: use.id,
+      role: "terminal",
+      at: { x: pin === 0 ? -middle : middle, y: -0.7 },
+      anchor: "middle",
+      height: textHeight.small,
+      text: terminal,
+    });
   });
 
   let baseline = bottom;
@@ -120,7 +142,16 @@ function selectorLabels(use: ContactUse | LoadUse, device: Device | undefined, s
   return positions.flatMap((position, index) => {
     const spot = symbol.spots[`position-${index + 1}`];
     if (!spot) return [];
-    return [{ part: use.id, role: "value", at: { x: spot.x, y: spot.y }, anchor: spot.anchor, height: textHeight.small, text: position } satisfies PlacedText];
+    return [
+      {
+        part: use.id,
+        role: "value",
+        at: { x: spot.x, y: spot.y },
+        anchor: spot.anchor,
+        height: textHeight.small,
+        text: position,
+      } satisfies PlacedText,
+    ];
   });
 }
 
@@ -153,10 +184,17 @@ function underWords(use: ContactUse | LoadUse, device: Device | undefined, width
       return [reference({ to: "coil", device: device.name }, "(88888)", usual)];
     case "limit-switch":
     case "proximity-switch":
-      return [...words(device.text), ...(operator ? [reference({ to: "switch-place", device: device.name }, `${operator} 88/H8`, small)] : [])];
+      return [
+        ...words(device.text),
+        ...(operator ? [reference({ to: "switch-place", device: device.name }, `${operator} 88/H8`, small)] : []),
+      ];
     case "pressure-switch": {
       const settings = [device.senses?.rising?.text, device.senses?.falling?.text].filter((text) => text !== undefined).join(" / ");
-      return [...words(device.text), ...words(settings, "value"), ...(operator ? [reference({ to: "switch-place", device: device.name }, `${operator} 88/H8`, small)] : [])];
+      return [
+        ...words(device.text),
+        ...words(settings, "value"),
+        ...(operator ? [reference({ to: "switch-place", device: device.name }, `${operator} 88/H8`, small)] : []),
+      ];
     }
     default:
       return words(device.text);
@@ -170,22 +208,46 @@ function marginBlock({ title, load }: MarginEntry, machine: Machine, margin: Mar
   const { usual } = textHeight;
   if (load && device) {
     const to: ReferenceTo | undefined =
-      device.kind === "solenoid" ? { to: "valve", device: device.name } : device.contacts.length > 0 ? { to: "contacts", device: device.name } : undefined;
+      device.kind === "solenoid"
+        ? { to: "valve", device: device.name }
+        : device.contacts.length > 0
+          ? { to: "contacts", device: device.name }
+          : undefined;
     if (to) {
-      texts.push({ part: load.id, role: "margin", at: { x: marginGap, y: usual / 2 }, anchor: "start", height: usual, text: { ...to, room: margin.references } });
+      texts.push({
+        part: load.id,
+        role: "margin",
+        at: { x: marginGap, y: usual / 2 },
+        anchor: "start",
+        height: usual,
+        text: { ...to, room: margin.references },
+      });
     }
   }
-  const words = [title, device?.text].filter((text, index, all) => text !== undefined && text !== "" && all.indexOf(text) === index) as string[];
+  const words = [title, device?.text].filter(
+    (text, index, all) => text !== undefined && text !== "" && all.indexOf(text) === index,
+  ) as string[];
   const lines = words.flatMap((text) => wrapText(text, usual, margin.words, 3));
   const pitch = usual * 1.6;
   lines.forEach((line, index) => {
     const y = usual / 2 + (index - (lines.length - 1) / 2) * pitch;
-    texts.push({ ...(load ? { part: load.id } : {}), role: "function", at: { x: 2 * marginGap + margin.references, y }, anchor: "start", height: usual, text: line });
+    texts.push({
+      ...(load ? { part: load.id } : {}),
+      role: "function",
+      at: { x: 2 * marginGap + margin.references, y },
+      anchor: "start",
+      height: usual,
+      text: line,
+    });
   });
   // A long contact list is set in up to three rows.
   const listed = device && device.contacts.length > 2 ? 4.8 : usual;
   const boxes = around(texts.map(roomOf));
-  return { texts, above: Math.max(-boxes.y, texts.length > 0 ? listed : 0), below: Math.max(boxes.y + boxes.height, texts.length > 0 ? listed : 0) };
+  return {
+    texts,
+    above: Math.max(-boxes.y, texts.length > 0 ? listed : 0),
+    below: Math.max(boxes.y + boxes.height, texts.length > 0 ? listed : 0),
+  };
 }
 
 export const marginGap: Mm = 3;

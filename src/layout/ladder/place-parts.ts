@@ -49,9 +49,7 @@ export function placeRung(rung: Rung, ends: RungEnds): RungGrid {
     let lines = before.lines;
     if (load.kind === "parallel") {
       run(line, before.stop, { boundary: before.boundary }, load.from);
-      const join = after.some((item) => item.kind !== "point")
-        ? loadColumn + 1 + Math.max(0, ...load.branches.map(returnWidth))
-        : to;
+      const join = after.some((item) => item.kind !== "point") ? loadColumn + 1 + Math.max(0, ...load.branches.map(returnWidth)) : to;
       lines = Math.max(lines, placeBranches(load, line, before.boundary, join));
       return Math.max(lines, follow(after, load.to, series.to, line, { boundary: join }, join, to));
     }
@@ -159,7 +157,10 @@ export function returnWidth(series: SeriesPath): number {
 
 /** How many lines a path takes. */
 export function heightOf(series: SeriesPath): number {
-  return Math.max(1, ...series.items.map((item) => (item.kind === "parallel" ? item.branches.reduce((sum, branch) => sum + heightOf(branch), 0) : 1)));
+  return Math.max(
+    1,
+    ...series.items.map((item) => (item.kind === "parallel" ? item.branches.reduce((sum, branch) => sum + heightOf(branch), 0) : 1)),
+  );
 }
 
 export function bearsLoad(series: SeriesPath): boolean {

@@ -11,7 +11,9 @@ export function scaleSymbol(symbol: Symbol, by: number): Symbol {
     box: { x: box.x * by, y: box.y * by, width: box.width * by, height: box.height * by },
     ports: symbol.ports.map((port) => ({ ...port, ...scaled(port, by) })),
     shapes: symbol.shapes.map((shape) =>
-      shape.kind === "text" ? { ...shape, at: scaled(shape.at, by), height: Math.max(1.8, shape.height * by) } : { ...shape, path: shape.path.map((s) => scaleSegment(s, by)) },
+      shape.kind === "text"
+        ? { ...shape, at: scaled(shape.at, by), height: Math.max(1.8, shape.height * by) }
+        : { ...shape, path: shape.path.map((s) => scaleSegment(s, by)) },
     ),
     spots: Object.fromEntries(Object.entries(symbol.spots).map(([name, spot]) => [name, { ...spot, ...scaled(spot, by) }])),
   };

@@ -26,18 +26,28 @@ export interface ColumnNeeds {
   labels: Map<number, Mm>;
   gaps: Map<number, Mm>;
   spans: Map<number, Mm>;
+  /** Texts behind the last of a line: from their boundary, as far as the return rail at most. */
+  ends: Map<number, Mm>;
   contacts: number;
   returns: number;
 }
 
 export function noNeeds(): ColumnNeeds {
-  return { bodies: new Map(), labels: new Map(), gaps: new Map(), spans: new Map(), contacts: 0, returns: 1 };
+  return { bodies: new Map(), labels: new Map(), gaps: new Map(), spans: new Map(), ends: new Map(), contacts: 0, returns: 1 };
 }
 
 /** Of these needs, those of the loads and what lies behind them: the part of a sheet that all rungs of a ladder share. */
 export function needsOfLoads(needs: ColumnNeeds): ColumnNeeds {
   const behind = (map: Map<number, Mm>) => new Map([...map].filter(([index]) => index >= loadColumn));
-  return { bodies: behind(needs.bodies), labels: behind(needs.labels), gaps: behind(needs.gaps), spans: behind(needs.spans), contacts: 0, returns: needs.returns };
+  return {
+    bodies: behind(needs.bodies),
+    labels: behind(needs.labels),
+    gaps: behind(needs.gaps),
+    spans: behind(needs.spans),
+    ends: new Map(),
+    contacts: 0,
+    returns: needs.returns,
+  };
 }
 
 /** The needs of a rung beside those of others. */
@@ -48,6 +58,7 @@ export function withNeeds(others: ColumnNeeds, { grid, dressed, numbers, endings
     labels: new Map(others.labels),
     gaps: new Map(others.gaps),
     spans: new Map(others.spans),
+    ends: new Map(others.ends),
   };
   const widen = (map: Map<number, Mm>, key: number, by: Mm) => map.set(key, Math.max(map.get(key) ?? 0, by));
   const reach = (boundary: number) => {
@@ -64,10 +75,11 @@ export function withNeeds(others: ColumnNeeds, { grid, dressed, numbers, endings
     const { room } = arrangement.wireNumber(node);
     if (room > 0) widen(needs.gaps, boundary, beside ? 2 * (room + 1.8) : room + 2);
   }
-  for (const { kind, boundary, point } of endings) {
+  for (const { kind, boundary, point, last } of endings) {
     const room = arrangement.endingRoom(point);
     const along = endingSize.lead + endingSize.head + endingSize.gap + room + 1.5;
     if (kind === "start") widen(needs.spans, boundary - 1, along);
+    else if (kind === "end" && last) widen(needs.ends, boundary, along);
     else if (kind === "end") {
       widen(needs.spans, boundary, along);
       reach(boundary + 1);
@@ -95,10 +107,15 @@ function leastColumns({ bodies, labels, gaps, spans, contacts, returns }: Column
 
 const sum = (list: readonly Mm[]) => list.reduce((total, width) => total + width, 0);
 
+/** How far the texts behind the last of a line reach. */
+function reachOfEnds({ ends }: ColumnNeeds, contactColumns: readonly Mm[]): Mm {
+  return Math.max(0, ...[...ends].map(([boundary, along]) => sum(contactColumns.slice(0, boundary)) + along));
+}
+
 /** From rail to rail at the least. */
 export function leastSpan(needs: ColumnNeeds, pitch: ColumnPitch): Mm {
   const { contactColumns, loads } = leastColumns(needs, pitch);
-  return sum(contactColumns) + sum(loads);
+  return Math.max(sum(contactColumns) + sum(loads), reachOfEnds(needs, contactColumns));
 }
 
 /**
@@ -109,14 +126,15 @@ export function leastSpan(needs: ColumnNeeds, pitch: ColumnPitch): Mm {
 export function setColumns(needs: ColumnNeeds, span: Mm, pitch: ColumnPitch): Columns {
   const { gap, contactColumns, loads } = leastColumns(needs, pitch);
   const behind = sum(loads);
-  const length = Math.max(span, sum(contactColumns) + behind);
+  const length = Math.max(span, leastSpan(needs, pitch));
   // Even pitch first, then a share of what is left over.
   const evened = contactColumns.map((width) => Math.max(width, pitch.usual));
   const fits = sum(evened) + behind <= length;
   const base = fits ? evened : contactColumns;
   const spare = length - sum(base) - behind;
   const stretch = contactColumns.length > 0 && fits ? Math.min(spare / (contactColumns.length + 1), pitch.widest - pitch.usual) : 0;
-  const widths = base.map((width) => (width >= pitch.widest ? width : Math.min(width + Math.max(0, stretch), pitch.widest)));
+  const stretched = base.map((width) => (width >= pitch.widest ? width : Math.min(width + Math.max(0, stretch), pitch.widest)));
+  const widths = reachOfEnds(needs, stretched) <= length ? stretched : contactColumns;
   const at: Mm[] = [0];
   for (const width of widths) at.push((at.at(-1) as Mm) + width);
   const loadAt: Mm[] = [length - behind];
