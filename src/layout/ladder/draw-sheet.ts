@@ -228,7 +228,13 @@ export function drawSheet(given: SheetGiven): DrawnLadderSheet {
     const point = grid?.sites.find((site) => site.node === link.node)?.point ?? "";
     const part = endingPart(grid?.rung.id ?? circuit.id, point, end);
     arrow(part, points);
-    const reference = { to: "point", point, from: part, way: end === "head" ? "in" : "out", room: arrangement.endingRoom(point) } as const;
+    const reference = {
+      to: "point",
+      point,
+      from: part,
+      way: end === "head" ? "in" : "out",
+      room: arrangement.endingRoom(point),
+    } as const;
     text({ part, role: "reference", at: { x: 0, y: 0 }, anchor: "start", height: 2.5, text: reference }, by);
     const printed = (lineOf.get(rung) ?? firstLine) + (end === "foot" ? link.from.line : link.to.line);
     place(part, printed, { x: by.x - 3, y: by.y - 3, width: 6, height: 6 });

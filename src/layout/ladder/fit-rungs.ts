@@ -71,11 +71,11 @@ export function fitRungs(
       // What held for this round; several pieces of one rung must not lower its limit several times.
       const known = limitsOf(of);
       const lowered = next.get(of) ?? known;
-      const along = leastSpan(withNeeds(loads, rung, arrangement), columnPitch(scale));
+      const along = leastSpan(withNeeds(noNeeds(), rung, arrangement), columnPitch(scale));
       if (along > offer.span) {
         wide++;
         const columns = columnsOf(rung.grid);
-        const share = Math.floor((columns * (offer.span - behind)) / (along - behind));
+        const share = Math.floor((columns * (offer.span - behind)) / Math.max(along - behind, 1));
         next.set(of, { ...lowered, columns: Math.max(1, Math.min(lowered.columns, known.columns - 1, Math.max(columns - 1, 1), share)) });
       }
       const across = stack(rung, 0, 0, linePitch(scale)).depth;
