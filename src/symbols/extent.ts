@@ -19,13 +19,7 @@ export function extentOf(shapes: readonly Shape[], ports: readonly Port[]): Box 
   return bounds.box();
 }
 
-/** The box around a path, taken over its curves and not over their handles. */
-export function pathExtent(path: readonly Segment[]): Box {
-  const bounds = new Bounds();
-  bounds.addPath(path);
-  return bounds.box();
-}
-
+/** Gathers points; a curve counts with what it reaches and not with its handles. */
 class Bounds {
   private left = Number.POSITIVE_INFINITY;
   private top = Number.POSITIVE_INFINITY;

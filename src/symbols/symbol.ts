@@ -31,7 +31,7 @@ export interface Symbol {
    * A symbol file marks them with `<circle class="spot" data-name=…>`. Not counted in the box.
    */
   spots: Record<string, Spot>;
-  /** Valves: where each control is drawn, in the order of the valve's ends, left before right, innermost first. */
+  /** Valves: where each control is drawn, those of the left end first. A solenoid's box is that of its coil alone. */
   actuators?: { side: "left" | "right"; solenoid?: string; box: Box }[];
 }
 
