@@ -113,15 +113,17 @@ function elsewhere(reference: Reference & { to: "point" }, sheet: CircuitSheet, 
 }
 
 /**
- * Where a point comes from on the sheet before that has it, or where it goes on on the next; both where it is not known which
- * of them the end is. Of several ends on that sheet the nearest is named: the lowest before, the highest after.
+ * Where a point comes from, or where it goes on: the nearest of its other ends above this one, or below it, reading through
+ * the set. Both where it is not known which of them the end is.
  */
 function neighbouringEnds(reference: Reference & { to: "point" }, sheet: CircuitSheet, appearances: Appearances): PointEnd[] {
   const ends = [...appearances.pointEnds(sheet.kind, reference.point)].sort(
     (a, b) => a.place.sheet - b.place.sheet || a.place.box.y - b.place.box.y,
   );
-  const following = ends.find(({ place }) => place.sheet > sheet.number);
-  const preceding = ends.findLast(({ place }) => place.sheet < sheet.number);
+  const own = ends.findIndex(({ from }) => from === reference.from);
+  if (own < 0) return [];
+  const following = ends[own + 1];
+  const preceding = ends[own - 1];
   if (reference.way === "in") return [preceding ?? following].filter((end) => end !== undefined);
   if (reference.way === "out") return [following ?? preceding].filter((end) => end !== undefined);
   return [following, preceding].filter((end) => end !== undefined);

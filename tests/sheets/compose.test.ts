@@ -73,7 +73,7 @@ describe("references", () => {
     expect(said(compose(made), 1, "reference")).toEqual(expect.arrayContaining(["run A2", "run C2"]));
   });
 
-  test("an end that comes in names the sheet before, one that goes out the sheet after, and the nearest end there", () => {
+  test("an end that comes in names the nearest end before it, one that goes out the nearest after it", () => {
     const made = handMade();
     const [first] = made.layout.sheets as [Made["layout"]["sheets"][number]];
     const end = (sheet: number, from: string, y: number, way?: "in" | "out") => ({
@@ -96,7 +96,7 @@ describe("references", () => {
     const set = compose({ ...made, layout: { ...made.layout, sheets } });
     expect([1, 2, 3].map((number) => said(set, number, "reference"))).toEqual([
       ["on 2/A2"],
-      ["on 3/A2", "on 1/D2", "on 3/A2", ", 1/D2"],
+      ["on 3/A2", "on 1/D2", "on D2", ", A2"],
       ["on 2/D2"],
     ]);
   });
