@@ -71,7 +71,12 @@ export function bareBlock(component: FluidComponent, symbol: Symbol, turn: Turn)
   const turned = turnSymbol(symbol, turn);
   const [first] = turned.ports;
   const offset = first ? { x: toGrid(first.x / module), y: toGrid(first.y / module) } : { x: 0, y: 0 };
-  const ports = turned.ports.map(({ name, direction, x, y }) => ({ name, direction, x: round(x / module + offset.x), y: round(y / module + offset.y) }));
+  const ports = turned.ports.map(({ name, direction, x, y }) => ({
+    name,
+    direction,
+    x: round(x / module + offset.x),
+    y: round(y / module + offset.y),
+  }));
   const box = extentOf(turned.box);
   const body = { left: box.left + offset.x, right: box.right + offset.x, top: box.top + offset.y, bottom: box.bottom + offset.y };
   return { component, symbol, turn, offset, ports, body, texts: [], strokes: [], parts: [], full: body };
@@ -90,7 +95,8 @@ function round(value: number): number {
 export function wordsOf(component: FluidComponent, width: Mm = 30): { role: PlacedText["role"]; text: string }[] {
   const words: { role: PlacedText["role"]; text: string }[] = [];
   if (component.name !== undefined) words.push({ role: "designation", text: component.name });
-  if (component.text !== undefined) for (const text of wrapText(component.text, textHeight, width, 2)) words.push({ role: "function", text });
+  if (component.text !== undefined)
+    for (const text of wrapText(component.text, textHeight, width, 2)) words.push({ role: "function", text });
   for (const text of joinedValues(component.values, width)) words.push({ role: "value", text });
   return words;
 }
@@ -113,7 +119,12 @@ export function addText(block: Block, text: BlockText): void {
 }
 
 /** Writes a component's words on one side of its body, each on a line of its own. */
-export function addWords(block: Block, side: Side, more: readonly { role: PlacedText["role"]; text: string | Reference }[] = [], clear: Extent = block.body): void {
+export function addWords(
+  block: Block,
+  side: Side,
+  more: readonly { role: PlacedText["role"]; text: string | Reference }[] = [],
+  clear: Extent = block.body,
+): void {
   if (side === "none") return;
   const lines = [...wordsOf(block.component), ...more];
   const cap = textHeight / module;
@@ -121,7 +132,11 @@ export function addWords(block: Block, side: Side, more: readonly { role: Placed
   const middle = { x: (clear.left + clear.right) / 2, y: (clear.top + clear.bottom) / 2 };
   const gap = 0.6;
   const first =
-    side === "above" ? clear.top - gap - 0.4 - (lines.length - 1) * pitch : side === "below" ? clear.bottom + gap + cap : middle.y - high / 2 + cap;
+    side === "above"
+      ? clear.top - gap - 0.4 - (lines.length - 1) * pitch
+      : side === "below"
+        ? clear.bottom + gap + cap
+        : middle.y - high / 2 + cap;
   const anchor: Anchor = side === "left" ? "end" : side === "right" ? "start" : "middle";
   const x = side === "left" ? clear.left - gap : side === "right" ? clear.right + gap : middle.x;
   lines.forEach(({ role, text }, index) => {
@@ -149,7 +164,8 @@ export const bodyClearance = 0.6;
 /** What of a block lines keep out of. */
 export function forbidden(placed: Placed): { body: Extent; texts: Extent[] } {
   const { block, at } = placed;
-  const set = (extent: Extent, by: number) => grown({ left: extent.left + at.x, right: extent.right + at.x, top: extent.top + at.y, bottom: extent.bottom + at.y }, by);
+  const set = (extent: Extent, by: number) =>
+    grown({ left: extent.left + at.x, right: extent.right + at.x, top: extent.top + at.y, bottom: extent.bottom + at.y }, by);
   return {
     body: set(block.body, bodyClearance),
     texts: [
@@ -161,8 +177,10 @@ export function forbidden(placed: Placed): { body: Extent; texts: Extent[] } {
 
 function extentOfPath(path: readonly Point[]): Extent {
   return {
-    left: Math.min(...path.map(({ x }) => x)), right: Math.max(...path.map(({ x }) => x)),
-    top: Math.min(...path.map(({ y }) => y)), bottom: Math.max(...path.map(({ y }) => y)),
+    left: Math.min(...path.map(({ x }) => x)),
+    right: Math.max(...path.map(({ x }) => x)),
+    top: Math.min(...path.map(({ y }) => y)),
+    bottom: Math.max(...path.map(({ y }) => y)),
   };
 }
 

@@ -12,6 +12,8 @@ export interface HeaderLine {
   y: number;
   from: number;
   to: number;
+  /** It serves several, and is drawn as a header. */
+  shared: boolean;
   /** It comes from or goes on to another sheet. */
   fromLeft: boolean;
   toRight: boolean;
@@ -29,6 +31,9 @@ export interface Composition {
 /** Rows between headers, and between the last one and what stands below. */
 const headerPitch = 3;
 
+/** How long a line is beyond the last thing on it, for the name and place it goes on to. */
+const wordRoom = 12;
+
 export interface Content {
   groups: readonly Arrangement[];
   unit?: PowerUnit;
@@ -38,18 +43,29 @@ export interface Content {
   gap: number;
   /** At even distances, as wide as the widest needs. */
   even: boolean;
+  /** How wide a sheet is. */
+  width: number;
 }
 
 /** Sets groups side by side on common lines, headers below them and the power unit at the bottom left. */
-export function compose({ groups, unit, headers, gap, even }: Content, _graph: FluidGraph): Composition {
+export function compose({ groups, unit, headers, gap, even, width }: Content, _graph: FluidGraph): Composition {
   const placed: Placed[] = [];
-  const origins = sideBySide(groups.map(({ extent }) => extent), gap, even);
+  const origins = sideBySide(
+    groups.map(({ extent }) => extent),
+    gap,
+    even,
+  );
   groups.forEach(({ placed: members }, index) => {
     for (const { block, at } of members) placed.push({ block, at: { x: at.x + (origins[index] as number), y: at.y } });
   });
   const right = groups.length > 0 ? (origins.at(-1) as number) + (groups.at(-1) as Arrangement).extent.right : 0;
-  const firstRow = groups.length > 0 ? Math.ceil(Math.max(...groups.map(({ extent }) => extent.bottom))) + 2 : 0;
-  const joined = headers.filter(({ node, before, after }) => before || after || portsOn(placed, node).length > 1 || (unit !== undefined && hasPort(unit.placed, node)));
+  const joined = headers.filter(
+    ({ node, before, after }) => before || after || portsOn(placed, node).length > 1 || (unit !== undefined && hasPort(unit.placed, node)),
+  );
+  // A line that goes on elsewhere says so over its end.
+  const worded = joined.some(({ before, after }) => before || after);
+  const firstRow = groups.length > 0 ? Math.ceil(Math.max(...groups.map(({ extent }) => extent.bottom))) + (worded ? 3 : 2) : 0;
+  const drops = joined.flatMap(({ node }) => portsOn(placed, node));
   const lastRow = firstRow + Math.max(0, joined.length - 1) * headerPitch;
 
   // The unit's first riser goes straight on to the first valve, if that leaves it on the sheet's left.
@@ -58,21 +74,38 @@ export function compose({ groups, unit, headers, gap, even }: Content, _graph: F
   if (unit) {
     const riser = unit.risers[0];
     const target = riser ? portsOn(placed, riser.node)[0] : undefined;
-    const shift = riser && target !== undefined ? besideOthers(unit, riser.x, target, placed) : Math.ceil(-unit.extent.left);
+    const shift =
+      riser && target !== undefined ? besideOthers(unit, riser.x, target, placed, width - (worded ? 10 : 0)) : Math.ceil(-unit.extent.left);
     const down = (groups.length > 0 ? lastRow : -1) + 1;
     for (const { block, at } of unit.placed) placed.push({ block, at: { x: at.x + shift, y: at.y + down } });
     for (const { node, x: at, from } of unit.risers) rising.push({ node, x: at + shift, from: { x: from.x + shift, y: from.y + down } });
     for (const { node, x: at } of [...unit.risers, ...unit.returns]) risers.set(node, [...(risers.get(node) ?? []), at + shift]);
   }
-  const lines = joined.map(({ node, before, after }, index): HeaderLine => {
-    const ends = [...portsOn(placed.slice(0, placed.length - (unit?.placed.length ?? 0)), node), ...(risers.get(node) ?? [])];
-    const from = before ? Math.floor(Math.min(...ends, 0)) - 3 : Math.min(...ends);
-    const to = after ? Math.ceil(Math.max(...ends, right)) + 3 : Math.max(...ends);
-    return { node, y: firstRow + index * headerPitch, from, to, fromLeft: before, toRight: after };
-  }).filter(({ from, to }) => Number.isFinite(from) && Number.isFinite(to));
+  const lines = joined
+    .map(({ node, before, after }, index): HeaderLine => {
+      const users = portsOn(placed.slice(0, placed.length - (unit?.placed.length ?? 0)), node);
+      const ends = [...users, ...(risers.get(node) ?? [])];
+      const from = before ? Math.min(Math.floor(Math.min(...ends, 0)) - 3, ...drops.map((drop) => drop - wordRoom)) : Math.min(...ends);
+      const to = after ? Math.max(Math.ceil(Math.max(...ends, right)) + 3, ...drops.map((drop) => drop + wordRoom)) : Math.max(...ends);
+      return {
+        node,
+        y: firstRow + index * headerPitch,
+        from,
+        to,
+        shared: before || after || users.length > 1,
+        fromLeft: before,
+        toRight: after,
+      };
+    })
+    .filter(({ from, to }) => Number.isFinite(from) && Number.isFinite(to));
   const extent = union([
     ...placed.map(({ block, at }) => moved(block.full, at)),
-    ...lines.map(({ from, to, y, fromLeft, toRight }) => ({ left: fromLeft ? from - 1 : from, right: toRight ? to + 1 : to, top: y - (fromLeft || toRight ? 2 : 0), bottom: y })),
+    ...lines.map(({ from, to, y, fromLeft, toRight }) => ({
+      left: fromLeft ? from - 1 : from,
+      right: toRight ? to + 1 : to,
+      top: y - (fromLeft || toRight ? 2 : 0),
+      bottom: y,
+    })),
   ]);
   const rows = new Map(lines.map(({ node, y }) => [node, y]));
   const straight = rising.flatMap(({ node, x, from }) => {
@@ -82,15 +115,14 @@ export function compose({ groups, unit, headers, gap, even }: Content, _graph: F
   return { placed, headers: lines, risers: straight, extent };
 }
 
-/** How far the unit may stand out to the left of what it feeds. */
-const outstanding = 12;
-
-/** Where the unit goes: its riser straight below the first valve, or where it stands too far out, its edge below theirs. */
-function besideOthers(unit: PowerUnit, riser: number, target: number, placed: readonly Placed[]): number {
-  const edge = Math.min(...placed.map(({ block, at }) => at.x + block.full.left));
-  if (target - riser + unit.extent.left >= edge - outstanding) return target - riser;
-  const shift = Math.ceil(edge - outstanding / 2 - unit.extent.left);
-  return shift;
+/** Where the unit goes: its riser straight below the first valve, or where the sheet is too narrow, its edge below theirs. */
+function besideOthers(unit: PowerUnit, riser: number, target: number, placed: readonly Placed[], width: number): number {
+  const left = Math.min(...placed.map(({ block, at }) => at.x + block.full.left));
+  const right = Math.max(...placed.map(({ block, at }) => at.x + block.full.right));
+  const below = target - riser;
+  if (below + unit.extent.left >= left || Math.max(right, below + unit.extent.right) - (below + unit.extent.left) <= width) return below;
+  const spare = Math.max(0, width - (right - left));
+  return Math.ceil(left - spare - unit.extent.left);
 }
 
 /** Where the origins of groups stand. */

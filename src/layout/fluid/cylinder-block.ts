@@ -2,7 +2,7 @@ import type { Mm } from "../../drawing/geometry.js";
 import { measureText } from "../../drawing/text.js";
 import type { CylinderSpec, FluidComponent } from "../../machine/model.js";
 import type { Symbol } from "../../symbols/symbol.js";
-import { addText, bareBlock, type Block, pitch, smallHeight, textExtent, textHeight, titleHeight } from "./block.js";
+import { addText, type Block, bareBlock, pitch, smallHeight, textExtent, textHeight, titleHeight } from "./block.js";
 import { module, union } from "./modules.js";
 
 /** Room for the ladder lines of a switch under its designation. */
@@ -56,7 +56,15 @@ function addCams(block: Block, spec: CylinderSpec): void {
   const cylinder = block.component.id;
   const ends = switches.map((one) => ({ device: one.device, from: along(one.from), to: along(one.to), written: placeOf(one, stroke) }));
 
-  block.strokes.push({ part: cylinder, role: "stroke-line", path: [{ x: from, y: line }, { x: to, y: line }], width: 0.25 });
+  block.strokes.push({
+    part: cylinder,
+    role: "stroke-line",
+    path: [
+      { x: from, y: line },
+      { x: to, y: line },
+    ],
+    width: 0.25,
+  });
   const widths = switches.map(({ device }) => Math.max(measureText(device, textHeight), referenceRoom) / module);
   const wanted = ends.map((end) => (end.written === "retracted" ? from : end.written === "extended" ? to : (end.from + end.to) / 2));
   const least = 10.4 + block.offset.x;
@@ -68,18 +76,55 @@ function addCams(block: Block, spec: CylinderSpec): void {
     const at = wanted[i] as number;
     const label = labels[i] as number;
     const mark = { part, role: "cam", width: 0.35 } as const;
-    block.strokes.push({ ...mark, path: [{ x: at, y: line + markHalf }, { x: at, y: line - markHalf }] });
+    block.strokes.push({
+      ...mark,
+      path: [
+        { x: at, y: line + markHalf },
+        { x: at, y: line - markHalf },
+      ],
+    });
     // A stretch of the stroke rather than a place is drawn as a bar along it.
-    if (end.written === "stretch") block.strokes.push({ ...mark, width: 0.7, path: [{ x: end.from, y: line }, { x: end.to, y: line }] });
-    if (apart[i]) block.strokes.push({ part, role: "cam-leader", width: 0.18, path: [{ x: at, y: line - markHalf }, { x: label, y: labelBottom + 0.15 }] });
+    if (end.written === "stretch")
+      block.strokes.push({
+        ...mark,
+        width: 0.7,
+        path: [
+          { x: end.from, y: line },
+          { x: end.to, y: line },
+        ],
+      });
+    if (apart[i])
+      block.strokes.push({
+        part,
+        role: "cam-leader",
+        width: 0.18,
+        path: [
+          { x: at, y: line - markHalf },
+          { x: label, y: labelBottom + 0.15 },
+        ],
+      });
     const before = block.texts.length;
     addText(block, {
-      part, role: "reference", text: { to: "ladder-line", device: end.device, room: referenceRoom }, height: smallHeight, anchor: "middle",
+      part,
+      role: "reference",
+      text: { to: "ladder-line", device: end.device, room: referenceRoom },
+      height: smallHeight,
+      anchor: "middle",
       at: { x: label, y: labelBottom - 0.35 },
     });
-    addText(block, { part, role: "designation", text: end.device, height: textHeight, anchor: "middle", at: { x: label, y: labelBottom - 1.75 } });
+    addText(block, {
+      part,
+      role: "designation",
+      text: end.device,
+      height: textHeight,
+      anchor: "middle",
+      at: { x: label, y: labelBottom - 1.75 },
+    });
     const extents = block.texts.slice(before).map(textExtent);
-    block.parts.push({ part, extent: union([...extents, { left: at - 0.5, right: at + 0.5, top: line - markHalf, bottom: line + markHalf }]) });
+    block.parts.push({
+      part,
+      extent: union([...extents, { left: at - 0.5, right: at + 0.5, top: line - markHalf, bottom: line + markHalf }]),
+    });
   });
   block.full = union([block.full, { left: from, right: to, top: line - markHalf, bottom: line }]);
 }

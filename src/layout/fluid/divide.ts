@@ -66,7 +66,10 @@ function supplySide(graph: FluidGraph): SupplySide {
     }
     return users;
   };
+  const assigned = new Set<FluidNodeId>();
   const assign = (node: FluidNodeId, total: number): void => {
+    if (assigned.has(node)) return;
+    assigned.add(node);
     for (const { component, users, to } of branches.get(node) ?? []) {
       if (users.size === 1 && total > 1) continue;
       unit.add(component);
@@ -102,7 +105,10 @@ function addSuction(graph: FluidGraph, pump: FluidComponent, unit: Set<FluidComp
 function feedsSeveral(graph: FluidGraph, valve: FluidComponent, port: string): boolean {
   if (!inletPorts.has(port) || !valve.valve || valve.valve.ports > 3) return false;
   const outlet = valve.ports.find(({ name }) => name === "A" || name === "2")?.node;
-  return outlet !== undefined && graph.others(outlet, valve).filter(({ component, port: fed }) => component.kind === "valve" && inletPorts.has(fed)).length > 1;
+  return (
+    outlet !== undefined &&
+    graph.others(outlet, valve).filter(({ component, port: fed }) => component.kind === "valve" && inletPorts.has(fed)).length > 1
+  );
 }
 
 /** Valves that only let a supply back to the tank, as a pump is unloaded. */
@@ -112,7 +118,8 @@ function idleValves(graph: FluidGraph): Set<FluidComponent> {
     if (valve.kind !== "valve") continue;
     const rest = valve.ports.filter(({ name, node }) => !inletPorts.has(name) && node !== undefined);
     const working = rest.filter(({ name }) => !returnPorts.has(name));
-    if (working.length > 0 && working.every(({ node }) => graph.others(node, valve).some(({ component }) => component.kind === "tank"))) found.add(valve);
+    if (working.length > 0 && working.every(({ node }) => graph.others(node, valve).some(({ component }) => component.kind === "tank")))
+      found.add(valve);
   }
   return found;
 }
@@ -150,8 +157,12 @@ function addReturns(graph: FluidGraph, unit: Set<FluidComponent>): void {
 }
 
 function followBack(
-  graph: FluidGraph, node: FluidNodeId, from: FluidComponent, found: { users: Set<FluidComponent>; through: FluidComponent[] },
-  seen: Set<FluidNodeId>, unit: ReadonlySet<FluidComponent>,
+  graph: FluidGraph,
+  node: FluidNodeId,
+  from: FluidComponent,
+  found: { users: Set<FluidComponent>; through: FluidComponent[] },
+  seen: Set<FluidNodeId>,
+  unit: ReadonlySet<FluidComponent>,
 ): void {
   for (const { component, port } of graph.others(node, from)) {
     if (unit.has(component)) continue;
@@ -175,8 +186,11 @@ function sharedNodes(graph: FluidGraph, unit: ReadonlySet<FluidComponent>): Set<
     const joints = graph.at(node);
     const inUnit = joints.some(({ component }) => unit.has(component));
     const outside = joints.filter(({ component }) => !unit.has(component));
-    const valves = (ports: ReadonlySet<string>) => new Set(outside.filter(({ component, port }) => component.kind === "valve" && ports.has(port)).map(({ component }) => component)).size;
-    if ((inUnit && outside.some(({ component }) => !isSink(component))) || valves(inletPorts) > 1 || valves(returnPorts) > 1) shared.add(node);
+    const valves = (ports: ReadonlySet<string>) =>
+      new Set(outside.filter(({ component, port }) => component.kind === "valve" && ports.has(port)).map(({ component }) => component))
+        .size;
+    if ((inUnit && outside.some(({ component }) => !isSink(component))) || valves(inletPorts) > 1 || valves(returnPorts) > 1)
+      shared.add(node);
   }
   return shared;
 }

@@ -25,8 +25,21 @@ interface SheetToDraw {
 const pointRoom: Mm = 24;
 
 /** Sets a composed sheet down in millimetres. */
-export function drawFluidSheet({ circuit, start, page, number, title, origin, composition, led }: SheetToDraw): { sheet: CircuitSheet; places: [PartId, Place][] } {
-  const sheet: CircuitSheet = { kind: "fluid", circuit: circuit.id, number, title, symbols: [], wires: [], dots: [], texts: [], strokes: [] };
+export function drawFluidSheet({ circuit, start, page, number, title, origin, composition, led }: SheetToDraw): {
+  sheet: CircuitSheet;
+  places: [PartId, Place][];
+} {
+  const sheet: CircuitSheet = {
+    kind: "fluid",
+    circuit: circuit.id,
+    number,
+    title,
+    symbols: [],
+    wires: [],
+    dots: [],
+    texts: [],
+    strokes: [],
+  };
   const places: [PartId, Place][] = [];
   const placeOf = (box: Box): Place => ({ sheet: number, zone: page.zoneOf({ x: box.x + box.width / 2, y: box.y + box.height / 2 }), box });
   const notes: string[] = [];
@@ -34,15 +47,20 @@ export function drawFluidSheet({ circuit, start, page, number, title, origin, co
     const { block, at } = one;
     const { component } = block;
     sheet.symbols.push({
-      part: component.id, ...(component.name === undefined ? {} : { device: component.name }), symbol: block.symbol, turn: block.turn,
+      part: component.id,
+      ...(component.name === undefined ? {} : { device: component.name }),
+      symbol: block.symbol,
+      turn: block.turn,
       at: onSheet({ x: at.x + block.offset.x, y: at.y + block.offset.y }, origin),
     });
     for (const text of block.texts) sheet.texts.push({ ...text, at: onSheet({ x: at.x + text.at.x, y: at.y + text.at.y }, origin) });
-    for (const stroke of block.strokes) sheet.strokes.push({ ...stroke, path: stroke.path.map(({ x, y }) => onSheet({ x: x + at.x, y: y + at.y }, origin)) });
+    for (const stroke of block.strokes)
+      sheet.strokes.push({ ...stroke, path: stroke.path.map(({ x, y }) => onSheet({ x: x + at.x, y: y + at.y }, origin)) });
     places.push([component.id, placeOf(boxAt(block.body, at, origin))]);
     for (const { part, extent } of block.parts) places.push([part, placeOf(boxAt(extent, at, origin))]);
     drawPlugs(one, origin, sheet);
-    if (start.restingByStart.has(component.name ?? component.id)) notes.push(`${component.name ?? component.kind} has no normal position; it is drawn as it stands at the start of the cycle.`);
+    if (start.restingByStart.has(component.name ?? component.id))
+      notes.push(`${component.name ?? component.kind} has no normal position; it is drawn as it stands at the start of the cycle.`);
   }
   for (const [node, steps] of led.steps) {
     const { wires, dots } = drawNet(node, steps, origin);
@@ -84,18 +102,41 @@ function nameOf(node: FluidNodeId, circuit: FluidCircuit): string {
 }
 
 /** An open arrow at the end of a line that goes on on another sheet, with the name and the other place over it. */
-function drawContinuations({ node, y, from, to, fromLeft, toRight }: HeaderLine, circuit: FluidCircuit, origin: Point, sheet: CircuitSheet): void {
+function drawContinuations(
+  { node, y, from, to, fromLeft, toRight }: HeaderLine,
+  circuit: FluidCircuit,
+  origin: Point,
+  sheet: CircuitSheet,
+): void {
   const point = nameOf(node, circuit);
   const part = `${circuit.id}/${point}`;
-  const ends = [...(fromLeft ? [{ x: from, out: -1, anchor: "start" as const }] : []), ...(toRight ? [{ x: to, out: 1, anchor: "end" as const }] : [])];
+  const ends = [
+    ...(fromLeft ? [{ x: from, out: -1, anchor: "start" as const }] : []),
+    ...(toRight ? [{ x: to, out: 1, anchor: "end" as const }] : []),
+  ];
   for (const { x, out, anchor } of ends) {
     const tip = onSheet({ x: x + out, y }, origin);
     sheet.strokes.push({
-      part, role: "continuation", width: 0.25,
-      path: [onSheet({ x, y }, origin), onSheet({ x, y: y - 0.5 }, origin), tip, onSheet({ x, y: y + 0.5 }, origin), onSheet({ x, y }, origin)],
+      part,
+      role: "continuation",
+      width: 0.25,
+      path: [
+        onSheet({ x, y }, origin),
+        onSheet({ x, y: y - 0.5 }, origin),
+        tip,
+        onSheet({ x, y: y + 0.5 }, origin),
+        onSheet({ x, y }, origin),
+      ],
     });
-    const at = onSheet({ x: x + out, y: y - 1.3 }, origin);
-    const text: PlacedText = { part, role: "reference", text: { to: "point", point, from: part, room: pointRoom }, at, anchor, height: textHeight };
+    const at = onSheet({ x: x + out, y: y - 1.05 }, origin);
+    const text: PlacedText = {
+      part,
+      role: "reference",
+      text: { to: "point", point, from: part, room: pointRoom },
+      at,
+      anchor,
+      height: textHeight,
+    };
     sheet.texts.push(text);
   }
 }

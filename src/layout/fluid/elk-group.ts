@@ -2,10 +2,9 @@ import type { ELK, ElkExtendedEdge, ElkNode } from "elkjs/lib/elk-api.js";
 import type { FluidComponent, FluidNodeId } from "../../machine/model.js";
 import type { Direction } from "../../symbols/symbol.js";
 import { type Arrangement, extentOfAll, type SymbolOf } from "./arrangement.js";
-import { addWords, bareBlock, type Block, chooseTurn, type Placed } from "./block.js";
-import { cylinderBlock } from "./cylinder-block.js";
+import type { Block, Placed } from "./block.js";
 import { type FluidGraph, isSink, throughPorts } from "./graph.js";
-import { valveBlock } from "./valve-block.js";
+import { uprightBlock } from "./upright-block.js";
 
 /** Components that stand higher the more they are at the end of the flow. */
 function rank(component: FluidComponent): number {
@@ -21,8 +20,14 @@ const sides: Record<Direction, string> = { up: "NORTH", down: "SOUTH", left: "WE
  * Places a group that is no plain tower: layer by layer upward along the flow, with the ports where the symbols have them.
  * Only the places are taken; its lines are led on the module grid with all others.
  */
-export async function placeByLayers(group: readonly FluidComponent[], graph: FluidGraph, headers: ReadonlySet<FluidNodeId>, symbolOf: SymbolOf, slack: number): Promise<Arrangement> {
-  const blocks = new Map(group.map((component) => [component.id, blockOf(component, graph, symbolOf)]));
+export async function placeByLayers(
+  group: readonly FluidComponent[],
+  graph: FluidGraph,
+  headers: ReadonlySet<FluidNodeId>,
+  symbolOf: SymbolOf,
+  slack: number,
+): Promise<Arrangement> {
+  const blocks = new Map(group.map((component) => [component.id, uprightBlock(component, graph, symbolOf)]));
   const margin = 1.5 + slack / 2;
   const children: ElkNode[] = group.map((component) => {
     const block = blocks.get(component.id) as Block;
@@ -45,9 +50,12 @@ export async function placeByLayers(group: readonly FluidComponent[], graph: Flu
   const nodes = new Set(group.flatMap(({ ports }) => ports.flatMap(({ node }) => (node === undefined || headers.has(node) ? [] : [node]))));
   for (const node of nodes) {
     const joints = graph.at(node).filter(({ component }) => members.has(component));
-    const looking = (joint: (typeof joints)[number]) => blocks.get(joint.component.id)?.ports.find(({ name }) => name === joint.port)?.direction;
+    const looking = (joint: (typeof joints)[number]) =>
+      blocks.get(joint.component.id)?.ports.find(({ name }) => name === joint.port)?.direction;
     // The line begins at what lies lowest along the flow.
-    const sorted = joints.map((joint, index) => ({ joint, index, key: (looking(joint) === "up" ? -10 : 0) + rank(joint.component) })).sort((a, b) => a.key - b.key || a.index - b.index);
+    const sorted = joints
+      .map((joint, index) => ({ joint, index, key: (looking(joint) === "up" ? -10 : 0) + rank(joint.component) }))
+      .sort((a, b) => a.key - b.key || a.index - b.index);
     const [first, ...others] = sorted;
     for (const other of others) {
       if (!first) break;
@@ -64,10 +72,17 @@ export async function placeByLayers(group: readonly FluidComponent[], graph: Flu
   const laid = await elk.layout({
     id: "group",
     layoutOptions: {
-      "elk.algorithm": "layered", "elk.direction": "UP", "elk.edgeRouting": "ORTHOGONAL", "elk.randomSeed": "1",
-      "elk.layered.considerModelOrder.strategy": "NODES_AND_EDGES", "elk.layered.nodePlacement.strategy": "NETWORK_SIMPLEX",
+      "elk.algorithm": "layered",
+      "elk.direction": "UP",
+      "elk.edgeRouting": "ORTHOGONAL",
+      "elk.randomSeed": "1",
+      "elk.layered.considerModelOrder.strategy": "NODES_AND_EDGES",
+      "elk.layered.nodePlacement.strategy": "NETWORK_SIMPLEX",
       "elk.layered.nodePlacement.favorStraightEdges": "true",
-      "elk.spacing.nodeNode": String(2 + slack), "elk.layered.spacing.nodeNodeBetweenLayers": String(4 + slack), "elk.spacing.edgeNode": "2", "elk.spacing.edgeEdge": "2",
+      "elk.spacing.nodeNode": String(2 + slack),
+      "elk.layered.spacing.nodeNodeBetweenLayers": String(4 + slack),
+      "elk.spacing.edgeNode": "2",
+      "elk.spacing.edgeEdge": "2",
     },
     children,
     edges,
@@ -83,25 +98,19 @@ export async function placeByLayers(group: readonly FluidComponent[], graph: Flu
   const leftmost = Math.min(...base.filter(({ at }) => at.y === line).map(({ at }) => at.x));
   for (const one of placed) one.at = { x: one.at.x - leftmost, y: one.at.y - line };
   const cylinders = placed.filter(({ block }) => block.component.kind === "cylinder");
-  return { placed, extent: extentOfAll(placed), ...(cylinders.length > 0 ? { height: Math.max(...cylinders.map(({ at }) => -at.y)) } : {}) };
+  return {
+    placed,
+    extent: extentOfAll(placed),
+    ...(cylinders.length > 0 ? { height: Math.max(...cylinders.map(({ at }) => -at.y)) } : {}),
+  };
 }
 
 /** Stands the topmost cylinders of a group higher, so that they are level with those of other groups. */
 export function raiseCylinders({ placed, height }: Arrangement, to: number): Arrangement {
   if (height === undefined || to <= height) return { placed, extent: extentOfAll(placed), ...(height === undefined ? {} : { height }) };
-  const raised = placed.map(({ block, at }) => ({ block, at: block.component.kind === "cylinder" && at.y === -height ? { x: at.x, y: -to } : at }));
+  const raised = placed.map(({ block, at }) => ({
+    block,
+    at: block.component.kind === "cylinder" && at.y === -height ? { x: at.x, y: -to } : at,
+  }));
   return { placed: raised, extent: extentOfAll(raised), height: to };
-}
-
-function blockOf(component: FluidComponent, graph: FluidGraph, symbolOf: SymbolOf): Block {
-  const symbol = symbolOf(component);
-  if (component.kind === "cylinder") return cylinderBlock(component, symbol);
-  if (component.kind === "valve") return valveBlock(component, symbol);
-  const through = throughPorts(component);
-  // A line through it leads upward, and down where it ends in a tank.
-  const toSink = through && graph.others(graph.nodeOf(component, through[1]), component).some((joint) => isSink(joint.component));
-  const wanted: Record<string, Direction> = through ? { [through[0]]: toSink ? "up" : "down", [through[1]]: toSink ? "down" : "up" } : {};
-  const block = bareBlock(component, symbol, chooseTurn(symbol, wanted));
-  addWords(block, "right");
-  return block;
 }

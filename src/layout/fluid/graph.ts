@@ -9,7 +9,13 @@ export interface Joint {
 
 /** A component's two main ports, where a line leads in at one and out at the other. */
 const throughKinds: ReadonlySet<FluidKind> = new Set<FluidKind>([
-  "service-unit", "filter", "check-valve", "pilot-operated-check-valve", "throttle", "one-way-flow-control", "shut-off-valve",
+  "service-unit",
+  "filter",
+  "check-valve",
+  "pilot-operated-check-valve",
+  "throttle",
+  "one-way-flow-control",
+  "shut-off-valve",
 ]);
 
 const sinkKinds: ReadonlySet<FluidKind> = new Set<FluidKind>(["tank", "silencer", "exhaust"]);

@@ -32,7 +32,12 @@ const attempts = 4;
  * @param numbering the number of the first sheet
  */
 export async function layOutFluid(
-  circuit: FluidCircuit, _machine: Machine, start: StartState, symbols: SymbolLibrary, page: PageArea, numbering: { sheet: number },
+  circuit: FluidCircuit,
+  _machine: Machine,
+  start: StartState,
+  symbols: SymbolLibrary,
+  page: PageArea,
+  numbering: { sheet: number },
 ): Promise<FluidLayout> {
   if (circuit.components.length === 0) return { sheets: [], places: [] };
   const graph = new FluidGraph(circuit);
@@ -57,7 +62,11 @@ export async function layOutFluid(
     const groups = division.groups.map((_, index) => ({
       height: plans[index] ? placeTower(plans[index] as Tower, graph, symbolOf, slack).height : layered[index]?.height,
       at: (height: number | undefined): Arrangement =>
-        plans[index] ? placeTower(plans[index] as Tower, graph, symbolOf, slack, height) : height === undefined ? (layered[index] as Arrangement) : raiseCylinders(layered[index] as Arrangement, height),
+        plans[index]
+          ? placeTower(plans[index] as Tower, graph, symbolOf, slack, height)
+          : height === undefined
+            ? (layered[index] as Arrangement)
+            : raiseCylinders(layered[index] as Arrangement, height),
     }));
     return { ...(unit ? { unit } : {}), groups };
   };
@@ -82,7 +91,13 @@ export async function layOutFluid(
     if (!composed) continue;
     const number = numbering.sheet + index;
     const drawn = drawFluidSheet({
-      circuit, start, page, number, title: one.title ?? circuit.title, origin: originOf(composed.composition, page), ...composed,
+      circuit,
+      start,
+      page,
+      number,
+      title: one.title ?? circuit.title,
+      origin: originOf(composed.composition, page),
+      ...composed,
     });
     sheets.push(drawn.sheet);
     places.push(...drawn.places);
@@ -116,12 +131,19 @@ function breaksOf(circuit: FluidCircuit, { groups }: Division): Map<number, stri
 }
 
 /** Fills sheets one after the other, each with as many groups as it takes. */
-function share(parts: Parts, division: Division, graph: FluidGraph, page: PageArea, breaks: ReadonlyMap<number, string | undefined>): Share[] {
+function share(
+  parts: Parts,
+  division: Division,
+  graph: FluidGraph,
+  page: PageArea,
+  breaks: ReadonlyMap<number, string | undefined>,
+): Share[] {
   const shares: Share[] = [];
   let open: Share = { groups: [], unit: parts.unit !== undefined };
   const fits = (candidate: Share) => {
-    const { extent } = compositionOf(parts, candidate, shares.length > 0, false, division, graph, tight);
     const room = roomOf(page);
+    const more = (candidate.groups.at(-1) ?? -1) < parts.groups.length - 1;
+    const { extent } = compositionOf(parts, candidate, shares.length > 0, more, division, graph, { ...tight, width: room.width / module });
     return (extent.right - extent.left) * module <= room.width && (extent.bottom - extent.top) * module <= room.height;
   };
   if (open.unit && parts.groups.length > 0 && !fits({ ...open, groups: [0] }) && fits({ unit: false, groups: [0] })) {
@@ -143,13 +165,28 @@ function share(parts: Parts, division: Division, graph: FluidGraph, page: PageAr
   return shares;
 }
 
-function compositionOf(parts: Parts, one: Share, before: boolean, after: boolean, division: Division, graph: FluidGraph, { gap, taller, even }: Spacing, elsewhere?: Elsewhere): Composition {
+function compositionOf(
+  parts: Parts,
+  one: Share,
+  before: boolean,
+  after: boolean,
+  division: Division,
+  graph: FluidGraph,
+  { gap, taller, even, width }: Spacing,
+  elsewhere?: Elsewhere,
+): Composition {
   const heights = one.groups.flatMap((index) => parts.groups[index]?.height ?? []);
   const height = heights.length > 0 ? Math.max(...heights) + taller : undefined;
-  const groups = one.groups.map((index) => (parts.groups[index] as Parts["groups"][number]).at(parts.groups[index]?.height === undefined ? undefined : height));
-  const headers = division.headers.map(({ node }) => ({ node, before: elsewhere ? elsewhere.before(node) : before, after: elsewhere ? elsewhere.after(node) : after }));
+  const groups = one.groups.map((index) =>
+    (parts.groups[index] as Parts["groups"][number]).at(parts.groups[index]?.height === undefined ? undefined : height),
+  );
+  const headers = division.headers.map(({ node }) => ({
+    node,
+    before: elsewhere ? elsewhere.before(node) : before,
+    after: elsewhere ? elsewhere.after(node) : after,
+  }));
   const here = headers.filter(({ node }) => onSheet(node, groups, one.unit ? parts.unit : undefined) || !elsewhere);
-  return compose({ groups, ...(one.unit && parts.unit ? { unit: parts.unit } : {}), headers: here, gap, even }, graph);
+  return compose({ groups, ...(one.unit && parts.unit ? { unit: parts.unit } : {}), headers: here, gap, even, width }, graph);
 }
 
 /** How far apart things stand on a sheet, modules. */
@@ -157,9 +194,11 @@ interface Spacing {
   gap: number;
   taller: number;
   even: boolean;
+  /** The width of the sheet. */
+  width: number;
 }
 
-const tight: Spacing = { gap: 3, taller: 0, even: false };
+const tight = { gap: 3, taller: 0, even: false };
 
 interface Elsewhere {
   before(node: FluidNodeId): boolean;
@@ -167,11 +206,22 @@ interface Elsewhere {
 }
 
 function onSheet(node: FluidNodeId, groups: readonly Arrangement[], unit: PowerUnit | undefined): boolean {
-  return [...groups, ...(unit ? [unit] : [])].some(({ placed }) => placed.some(({ block }) => block.component.ports.some((port) => port.node === node)));
+  return [...groups, ...(unit ? [unit] : [])].some(({ placed }) =>
+    placed.some(({ block }) => block.component.ports.some((port) => port.node === node)),
+  );
 }
 
 /** A sheet with its spare room shared out between its groups. */
-function fill(parts: Parts, one: Share, index: number, shares: readonly Share[], division: Division, graph: FluidGraph, page: PageArea, generous: boolean): Composition {
+function fill(
+  parts: Parts,
+  one: Share,
+  index: number,
+  shares: readonly Share[],
+  division: Division,
+  graph: FluidGraph,
+  page: PageArea,
+  generous: boolean,
+): Composition {
   const reaches = (other: Share, node: FluidNodeId) => {
     const members = [...other.groups.flatMap((group) => division.groups[group] ?? []), ...(other.unit ? division.unit : [])];
     return members.some(({ ports }) => ports.some((port) => port.node === node));
@@ -180,19 +230,20 @@ function fill(parts: Parts, one: Share, index: number, shares: readonly Share[],
     before: (node) => shares.slice(0, index).some((other) => reaches(other, node)),
     after: (node) => shares.slice(index + 1).some((other) => reaches(other, node)),
   };
-  const least = compositionOf(parts, one, false, false, division, graph, tight, elsewhere);
-  if (!generous) return least;
   const room = roomOf(page);
+  const width = room.width / module;
+  const least = compositionOf(parts, one, false, false, division, graph, { ...tight, width }, elsewhere);
+  if (!generous) return least;
   const spareDown = room.height / module - (least.extent.bottom - least.extent.top);
   const taller = Math.max(0, Math.min(6, Math.floor(spareDown / 4)));
   // Even distances where they fit, and then as much air between the groups as is pleasant.
   for (const even of [true, false]) {
     const gaps = Math.max(1, one.groups.length - 1);
-    const first = compositionOf(parts, one, false, false, division, graph, { gap: 3, taller, even }, elsewhere);
+    const first = compositionOf(parts, one, false, false, division, graph, { gap: 3, taller, even, width }, elsewhere);
     const spare = room.width / module - (first.extent.right - first.extent.left);
     if (spare < 0) continue;
     const gap = 3 + Math.max(0, Math.min(9, Math.floor(spare / (gaps + 2))));
-    return compositionOf(parts, one, false, false, division, graph, { gap, taller, even }, elsewhere);
+    return compositionOf(parts, one, false, false, division, graph, { gap, taller, even, width }, elsewhere);
   }
   return least;
 }

@@ -47,15 +47,25 @@ export function leadLines(composition: Composition, graph: FluidGraph, softly: b
   return best as LedLines;
 }
 
-function attempt(composition: Composition, terminals: ReadonlyMap<FluidNodeId, Terminal[]>, first: readonly FluidNodeId[], softly: boolean): LedLines {
+function attempt(
+  composition: Composition,
+  terminals: ReadonlyMap<FluidNodeId, Terminal[]>,
+  first: readonly FluidNodeId[],
+  softly: boolean,
+): LedLines {
   const { extent, placed, headers } = composition;
   const router = new Router({
-    left: Math.floor(extent.left) - margin, top: Math.floor(extent.top) - margin,
-    right: Math.ceil(extent.right) + margin, bottom: Math.ceil(extent.bottom) + margin,
+    left: Math.floor(extent.left) - margin,
+    top: Math.floor(extent.top) - margin,
+    right: Math.ceil(extent.right) + margin,
+    bottom: Math.ceil(extent.bottom) + margin,
   });
   for (const one of placed) {
     const { body, texts } = forbidden(one);
-    router.keepOut(body, one.block.ports.map(({ x, y, direction }) => ({ x: x + one.at.x, y: y + one.at.y, direction })));
+    router.keepOut(
+      body,
+      one.block.ports.map(({ x, y, direction }) => ({ x: x + one.at.x, y: y + one.at.y, direction })),
+    );
     for (const text of texts) router.keepOutOfText(text);
     one.block.ports.forEach(({ name, x, y }, index) => {
       const node = one.block.component.ports.find((port) => port.name === name)?.node;
@@ -67,7 +77,7 @@ function attempt(composition: Composition, terminals: ReadonlyMap<FluidNodeId, T
   const lost: Terminal[] = [];
   for (const header of headers) {
     const style = terminals.get(header.node)?.[0]?.style;
-    if (header.to > header.from && style) layHeader(router, header, { ...style, header: true });
+    if (header.to > header.from && style) layHeader(router, header, { ...style, header: header.shared });
   }
   for (const { node, points } of composition.risers) {
     const mine = terminals.get(node)?.find(({ x, y }) => x === points[0]?.x && y === points[0]?.y);
@@ -106,7 +116,11 @@ function layHeader(router: Router, { node, y, from, to }: HeaderLine, style: Lin
 }
 
 /** Headers, then what failed before, then nets by how far they reach; those with control lines only come last. */
-function inOrder(terminals: ReadonlyMap<FluidNodeId, Terminal[]>, headers: ReadonlyMap<FluidNodeId, HeaderLine>, first: readonly FluidNodeId[]): FluidNodeId[] {
+function inOrder(
+  terminals: ReadonlyMap<FluidNodeId, Terminal[]>,
+  headers: ReadonlyMap<FluidNodeId, HeaderLine>,
+  first: readonly FluidNodeId[],
+): FluidNodeId[] {
   const reach = (list: readonly Terminal[]) => {
     const xs = list.map(({ x }) => x);
     const ys = list.map(({ y }) => y);
@@ -130,7 +144,9 @@ function layFacing(router: Router, node: FluidNodeId, list: readonly Terminal[])
     if (!down && one.direction !== "right") continue;
     const opposite = down ? "up" : "left";
     const facing = working
-      .filter((other) => other.direction === opposite && (down ? other.x === one.x && other.y > one.y : other.y === one.y && other.x > one.x))
+      .filter(
+        (other) => other.direction === opposite && (down ? other.x === one.x && other.y > one.y : other.y === one.y && other.x > one.x),
+      )
       .sort((a, b) => a.y - b.y || a.x - b.x)[0];
     if (facing) router.lay(node, one, facing, one.style);
   }
@@ -146,11 +162,14 @@ function joinUp(router: Router, node: FluidNodeId, list: readonly Terminal[], so
   const lost: Terminal[] = [];
   const given = new Set<Terminal>();
   for (;;) {
-    const pieces = router.pieces(node).map((piece) => {
-      const members = list.filter((terminal) => piece.has(terminal));
-      const stage = Math.min(...members.map(stageOf), members.length === 0 ? 0 : 3);
-      return { piece, members, stage, lone: piece.points.size === 1 };
-    }).filter(({ members }) => !members.some((member) => given.has(member)));
+    const pieces = router
+      .pieces(node)
+      .map((piece) => {
+        const members = list.filter((terminal) => piece.has(terminal));
+        const stage = Math.min(...members.map(stageOf), members.length === 0 ? 0 : 3);
+        return { piece, members, stage, lone: piece.points.size === 1 };
+      })
+      .filter(({ members }) => !members.some((member) => given.has(member)));
     if (pieces.length < 2) return lost;
     // The lowest stage at which there are two pieces to join.
     const stages = pieces.map(({ stage }) => stage).sort((a, b) => a - b);
@@ -159,7 +178,11 @@ function joinUp(router: Router, node: FluidNodeId, list: readonly Terminal[], so
     let best: { from: (typeof ready)[number]; way: number } | undefined;
     for (const from of ready) {
       // What stands higher on the sheet waits for the line to come up to it; a lone port is led to a line rather than the other way round.
-      const way = Math.min(...ready.filter((to) => to !== from).map((to) => apart(from.piece.box, to.piece.box))) + (from.lone ? 0 : 0.5) - from.piece.box.top * 1e-4 + (from.stage < stage ? 1000 : 0);
+      const way =
+        Math.min(...ready.filter((to) => to !== from).map((to) => apart(from.piece.box, to.piece.box))) +
+        (from.lone ? 0 : 0.5) -
+        from.piece.box.top * 1e-4 +
+        (from.stage < stage ? 1000 : 0);
       if (!best || way < best.way) best = { from, way };
     }
     const { from } = best as { from: (typeof ready)[number] };
@@ -200,7 +223,19 @@ function terminalsOf(placed: readonly Placed[], circuit: FluidCircuit): Map<Flui
       // A port that a working line comes to is on a working line, whatever else branches off there.
       const line = mine.find(({ role }) => role === "working") ?? mine[0] ?? onNode.get(node);
       const style: LineStyle = { part: line?.id ?? `${circuit.id}/node${node}`, role: line?.role ?? "working", header: false };
-      found.set(node, [...(found.get(node) ?? []), { node, component: block.component.id, port: name, x: x + at.x, y: y + at.y, direction, style, leaf: block.component.kind === "gauge" || block.component.kind === "pressure-switch" }]);
+      found.set(node, [
+        ...(found.get(node) ?? []),
+        {
+          node,
+          component: block.component.id,
+          port: name,
+          x: x + at.x,
+          y: y + at.y,
+          direction,
+          style,
+          leaf: block.component.kind === "gauge" || block.component.kind === "pressure-switch",
+        },
+      ]);
     }
   }
   return found;

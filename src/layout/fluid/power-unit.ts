@@ -1,10 +1,11 @@
 import type { Point } from "../../drawing/geometry.js";
 import type { FluidComponent, FluidNodeId } from "../../machine/model.js";
 import { type Arrangement, extentOfAll, type SymbolOf } from "./arrangement.js";
-import { addWords, bareBlock, type Block, chooseTurn, type Placed, portOf, type Side } from "./block.js";
+import { addWords, type Block, bareBlock, chooseTurn, type Placed, portOf, type Side } from "./block.js";
 import { beyond, type FluidGraph, isSink, sourcePort } from "./graph.js";
 import { module } from "./modules.js";
 import { type Chain, type Entered, hanging, standing } from "./standing.js";
+import { uprightBlock } from "./upright-block.js";
 import { valveBlock } from "./valve-block.js";
 
 /** The power unit or air preparation, set down below the headers: y = 0 is where its lines leave upward. */
@@ -32,22 +33,35 @@ interface ReturnChain {
   chain: Entered[];
 }
 
-export function placePowerUnit(unit: readonly FluidComponent[], graph: FluidGraph, headers: ReadonlySet<FluidNodeId>, symbolOf: SymbolOf, slack: number): PowerUnit {
+export function placePowerUnit(
+  unit: readonly FluidComponent[],
+  graph: FluidGraph,
+  headers: ReadonlySet<FluidNodeId>,
+  symbolOf: SymbolOf,
+  slack: number,
+): PowerUnit {
   const used = new Set<FluidComponent>();
   const members = new Set(unit);
-  const sources = unit.filter((component) => sourcePort(component) !== undefined).map((source) => readSource(source, graph, headers, members, used));
+  for (const component of unit) if (sourcePort(component) !== undefined) used.add(component);
+  const sources = unit
+    .filter((component) => sourcePort(component) !== undefined)
+    .map((source) => readSource(source, graph, headers, members, used));
   const returns = readReturns(unit, graph, headers, members, used);
   const placed: Placed[] = [];
   const risers: PowerUnit["risers"] = [];
   const downs: PowerUnit["returns"] = [];
   let left = 0;
   for (const chain of sources) {
-    const part = chain.source.kind === "air-supply" || chain.source.kind === "compressor" ? lyingChain(chain, graph, symbolOf, slack) : standingChain(chain, graph, symbolOf, slack);
+    const part =
+      chain.source.kind === "air-supply" || chain.source.kind === "compressor"
+        ? lyingChain(chain, graph, symbolOf, slack)
+        : standingChain(chain, graph, symbolOf, slack);
     const extent = extentOfAll(part.placed);
     const shift = Math.ceil(left - extent.left);
     for (const one of part.placed) placed.push({ block: one.block, at: { x: one.at.x + shift, y: one.at.y } });
     const node = chain.nodes.at(-1);
-    if (node !== undefined && headers.has(node)) risers.push({ node, x: part.riser + shift, from: { x: part.from.x + shift, y: part.from.y } });
+    if (node !== undefined && headers.has(node))
+      risers.push({ node, x: part.riser + shift, from: { x: part.from.x + shift, y: part.from.y } });
     left = extent.right + shift + 3 + slack;
   }
   const base = placed.length > 0 ? extentOfAll(placed).bottom : 0;
@@ -68,9 +82,7 @@ export function placePowerUnit(unit: readonly FluidComponent[], graph: FluidGrap
   for (const component of unit) {
     if (used.has(component)) continue;
     used.add(component);
-    const symbol = symbolOf(component);
-    const block = component.kind === "valve" ? valveBlock(component, symbol) : bareBlock(component, symbol, { quarter: 0 });
-    if (component.kind !== "valve") addWords(block, "right");
+    const block = uprightBlock(component, graph, symbolOf);
     const x = Math.ceil(left - block.full.left);
     placed.push({ block, at: { x, y: Math.ceil(4 + slack - block.full.top) } });
     left = x + block.full.right + 3 + slack;
@@ -79,10 +91,18 @@ export function placePowerUnit(unit: readonly FluidComponent[], graph: FluidGrap
   return { placed, extent: extentOfAll(placed), risers, returns: downs };
 }
 
-function readSource(source: FluidComponent, graph: FluidGraph, headers: ReadonlySet<FluidNodeId>, members: ReadonlySet<FluidComponent>, used: Set<FluidComponent>): SourceChain {
-  used.add(source);
+function readSource(
+  source: FluidComponent,
+  graph: FluidGraph,
+  headers: ReadonlySet<FluidNodeId>,
+  members: ReadonlySet<FluidComponent>,
+  used: Set<FluidComponent>,
+): SourceChain {
   const chain: SourceChain = { source, inline: [], nodes: [], beside: [], suction: [] };
-  const motor = source.drivenBy === undefined ? undefined : [...members].find(({ kind, name, id }) => kind === "electric-motor" && (name ?? id) === source.drivenBy);
+  const motor =
+    source.drivenBy === undefined
+      ? undefined
+      : [...members].find(({ kind, name, id }) => kind === "electric-motor" && (name ?? id) === source.drivenBy);
   if (motor && !used.has(motor)) {
     used.add(motor);
     chain.motor = motor;
@@ -96,7 +116,7 @@ function readSource(source: FluidComponent, graph: FluidGraph, headers: Readonly
     const joints = graph.others(node, at).filter(({ component }) => members.has(component) && !used.has(component));
     let next: Entered | undefined;
     for (const { component, port } of joints) {
-      if (used.has(component)) continue;
+      if (used.has(component) || component === next?.component) continue;
       const branch = branchOf(graph, component, port, members, used);
       if (branch && !leadsOn(branch, graph, headers)) {
         for (const one of branch) used.add(one.component);
@@ -125,7 +145,13 @@ function readSource(source: FluidComponent, graph: FluidGraph, headers: Readonly
 }
 
 /** A chain from a node that ends in a gauge, a switch or a sink, or at a line it does not follow further. */
-function branchOf(graph: FluidGraph, component: FluidComponent, entered: string, members: ReadonlySet<FluidComponent>, used: ReadonlySet<FluidComponent>): Entered[] | undefined {
+function branchOf(
+  graph: FluidGraph,
+  component: FluidComponent,
+  entered: string,
+  members: ReadonlySet<FluidComponent>,
+  used: ReadonlySet<FluidComponent>,
+): Entered[] | undefined {
   const chain: Entered[] = [];
   for (let at = component, port = entered; ; ) {
     if (!members.has(at) || used.has(at) || chain.some((one) => one.component === at)) return chain.length > 0 ? chain : undefined;
@@ -151,10 +177,21 @@ function leadsOn(branch: readonly Entered[], graph: FluidGraph, headers: Readonl
   return !graph.at(node).some(({ component }) => isSink(component)) || headers.has(node);
 }
 
-function readReturns(unit: readonly FluidComponent[], graph: FluidGraph, headers: ReadonlySet<FluidNodeId>, members: ReadonlySet<FluidComponent>, used: Set<FluidComponent>): ReturnChain[] {
+function readReturns(
+  unit: readonly FluidComponent[],
+  graph: FluidGraph,
+  headers: ReadonlySet<FluidNodeId>,
+  members: ReadonlySet<FluidComponent>,
+  used: Set<FluidComponent>,
+): ReturnChain[] {
   const found: ReturnChain[] = [];
   for (const node of headers) {
-    const start = graph.at(node).find(({ component, port }) => members.has(component) && !used.has(component) && (isSink(component) || leadsToSink(graph, component, port)));
+    const start = graph
+      .at(node)
+      .find(
+        ({ component, port }) =>
+          members.has(component) && !used.has(component) && (isSink(component) || leadsToSink(graph, component, port)),
+      );
     if (!start) continue;
     const chain: Entered[] = [];
     for (let next: { component: FluidComponent; port: string } | undefined = start; next; ) {
@@ -162,8 +199,12 @@ function readReturns(unit: readonly FluidComponent[], graph: FluidGraph, headers
       chain.push(next);
       const out = beyond(next.component, next.port);
       const beyondNode = out === undefined ? undefined : graph.nodeOf(next.component, out);
-      const others: readonly { component: FluidComponent; port: string }[] = graph.others(beyondNode, next.component).filter(({ component }) => members.has(component) && !used.has(component));
-      next = others.find(({ component }) => isSink(component)) ?? others.find(({ component, port }) => beyond(component, port) !== undefined && component.kind !== "valve");
+      const others: readonly { component: FluidComponent; port: string }[] = graph
+        .others(beyondNode, next.component)
+        .filter(({ component }) => members.has(component) && !used.has(component));
+      next =
+        others.find(({ component }) => isSink(component)) ??
+        others.find(({ component, port }) => beyond(component, port) !== undefined && component.kind !== "valve");
     }
     found.push({ node, chain });
   }
@@ -247,7 +288,10 @@ function standingChain(chain: SourceChain, graph: FluidGraph, symbolOf: SymbolOf
     if (!inline) return;
     const symbolHere = symbolOf(inline.component);
     const out = beyond(inline.component, inline.port) as string;
-    const block = inline.component.kind === "valve" ? valveBlock(inline.component, symbolHere) : bareBlock(inline.component, symbolHere, chooseTurn(symbolHere, { [inline.port]: "down", [out]: "up" }));
+    const block =
+      inline.component.kind === "valve"
+        ? valveBlock(inline.component, symbolHere)
+        : bareBlock(inline.component, symbolHere, chooseTurn(symbolHere, { [inline.port]: "down", [out]: "up" }));
     if (inline.component.kind !== "valve") addWords(block, "left");
     const lower = portOf(block, inline.port);
     const at = { x: -lower.x, y: Math.floor(y - 2 - lower.y) };
@@ -331,5 +375,9 @@ function lyingChain(chain: SourceChain, graph: FluidGraph, symbolOf: SymbolOf, s
   });
   const riser = Math.ceil(Math.max(x + 2, standsOn ? room + 1 : 0));
   const rise = Math.ceil(2 - Math.min(...placed.map(({ block: one, at }) => one.full.top + at.y), level));
-  return { placed: placed.map(({ block: one, at }) => ({ block: one, at: { x: at.x, y: at.y + rise } })), riser, from: { x: from, y: (from === 0 ? 0 : level) + rise } };
+  return {
+    placed: placed.map(({ block: one, at }) => ({ block: one, at: { x: at.x, y: at.y + rise } })),
+    riser,
+    from: { x: from, y: (from === 0 ? 0 : level) + rise },
+  };
 }

@@ -160,7 +160,14 @@ export class Router {
    * @param softly may run through a text where nothing else is possible
    * @returns false where there is no way
    */
-  connect(net: number, from: Piece, to: readonly Piece[], style: LineStyle, port: { direction: Direction } | undefined, softly = false): boolean {
+  connect(
+    net: number,
+    from: Piece,
+    to: readonly Piece[],
+    style: LineStyle,
+    port: { direction: Direction } | undefined,
+    softly = false,
+  ): boolean {
     const goal = new Set(to.flatMap(({ points }) => [...points]));
     if (goal.size === 0) return false;
     const seeds: number[] = [];
@@ -332,7 +339,12 @@ export class Router {
   }
 
   private boxOf(points: ReadonlySet<number>): Extent {
-    const box = { left: Number.POSITIVE_INFINITY, top: Number.POSITIVE_INFINITY, right: Number.NEGATIVE_INFINITY, bottom: Number.NEGATIVE_INFINITY };
+    const box = {
+      left: Number.POSITIVE_INFINITY,
+      top: Number.POSITIVE_INFINITY,
+      right: Number.NEGATIVE_INFINITY,
+      bottom: Number.NEGATIVE_INFINITY,
+    };
     for (const p of points) {
       const x = p % this.width;
       const y = (p - x) / this.width;

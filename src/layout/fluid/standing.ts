@@ -1,6 +1,6 @@
 import type { FluidComponent } from "../../machine/model.js";
 import type { SymbolOf } from "./arrangement.js";
-import { addWords, bareBlock, type Block, chooseTurn, type Placed, portOf, type Side } from "./block.js";
+import { addWords, type Block, bareBlock, chooseTurn, type Placed, portOf, type Side } from "./block.js";
 import { type FluidGraph, throughPorts } from "./graph.js";
 import { meet, moved, union } from "./modules.js";
 import { valveBlock } from "./valve-block.js";
@@ -39,7 +39,8 @@ function stack(chain: readonly Entered[], side: Side, symbolOf: SymbolOf, graph:
   chain.forEach(({ component, port }, index) => {
     const { block, near, far } = chainBlock(component, port, side, symbolOf, way);
     const first = portOf(block, near);
-    const clear = (to: number) => !placed.some((other) => meet(moved(other.block.full, other.at), moved(block.full, { x: -first.x, y: to - first.y })));
+    const clear = (to: number) =>
+      !placed.some((other) => meet(moved(other.block.full, other.at), moved(block.full, { x: -first.x, y: to - first.y })));
     if (index > 0) while (!clear(y)) y += sign;
     placed.push({ block, at: { x: -first.x, y: y - first.y } });
     const second = far === undefined ? undefined : portOf(block, far);
@@ -56,7 +57,13 @@ function stack(chain: readonly Entered[], side: Side, symbolOf: SymbolOf, graph:
 }
 
 /** A component of a chain turned so that the port nearest the line looks to it. */
-function chainBlock(component: FluidComponent, near: string, side: Side, symbolOf: SymbolOf, way: "up" | "down"): { block: Block; near: string; far?: string } {
+function chainBlock(
+  component: FluidComponent,
+  near: string,
+  side: Side,
+  symbolOf: SymbolOf,
+  way: "up" | "down",
+): { block: Block; near: string; far?: string } {
   const symbol = symbolOf(component);
   const through = throughPorts(component) ?? (component.kind === "relief-valve" ? (["P", "T"] as [string, string]) : undefined);
   const far = through ? (near === through[0] ? through[1] : through[0]) : undefined;
@@ -64,9 +71,17 @@ function chainBlock(component: FluidComponent, near: string, side: Side, symbolO
   if (component.kind === "valve") {
     // Upside down where the flow leads downward; left and right stay.
     const upright = symbol.ports.find(({ name }) => name === near)?.direction === toLine;
-    return { block: valveBlock(component, symbol, upright ? { quarter: 0 } : { quarter: 2, mirrored: true }), near, ...(far === undefined ? {} : { far }) };
+    return {
+      block: valveBlock(component, symbol, upright ? { quarter: 0 } : { quarter: 2, mirrored: true }),
+      near,
+      ...(far === undefined ? {} : { far }),
+    };
   }
-  const turn = chooseTurn(symbol, { [near]: toLine, ...(far === undefined ? {} : { [far]: way }) }, (turned) => turned.box.x * (side === "left" ? -1 : 1) * -1 * 0.01);
+  const turn = chooseTurn(
+    symbol,
+    { [near]: toLine, ...(far === undefined ? {} : { [far]: way }) },
+    (turned) => turned.box.x * (side === "left" ? -1 : 1) * -1 * 0.01,
+  );
   const block = bareBlock(component, symbol, turn);
   addWords(block, side);
   return { block, near, ...(far === undefined ? {} : { far }) };

@@ -1,7 +1,7 @@
 import type { FluidComponent, FluidNodeId } from "../../machine/model.js";
 import type { Direction } from "../../symbols/symbol.js";
 import { type Arrangement, extentOfAll, type SymbolOf } from "./arrangement.js";
-import { addWords, bareBlock, type Block, chooseTurn, type Placed, portOf, type Side } from "./block.js";
+import { addWords, type Block, bareBlock, chooseTurn, type Placed, portOf, type Side } from "./block.js";
 import { cylinderBlock } from "./cylinder-block.js";
 import { beyond, type FluidGraph, isSink, throughPorts } from "./graph.js";
 import { extentOf, meet, moved } from "./modules.js";
@@ -45,7 +45,12 @@ export interface Tower {
 }
 
 /** Reads a group as a tower, or gives nothing where it is something else. */
-export function planTower(group: readonly FluidComponent[], graph: FluidGraph, headers: ReadonlySet<FluidNodeId>, symbolOf: SymbolOf): Tower | undefined {
+export function planTower(
+  group: readonly FluidComponent[],
+  graph: FluidGraph,
+  headers: ReadonlySet<FluidNodeId>,
+  symbolOf: SymbolOf,
+): Tower | undefined {
   const members = new Set(group);
   const cylinders = group.filter(({ kind }) => kind === "cylinder");
   const valves = group.filter(({ kind }) => kind === "valve");
@@ -131,10 +136,17 @@ export function planTower(group: readonly FluidComponent[], graph: FluidGraph, h
 }
 
 /** A short chain that ends in a gauge, a switch or a sink; it stands beside the line. */
-function branchOf(graph: FluidGraph, component: FluidComponent, entered: string, members: ReadonlySet<FluidComponent>, used: ReadonlySet<FluidComponent>): Entered[] | undefined {
+function branchOf(
+  graph: FluidGraph,
+  component: FluidComponent,
+  entered: string,
+  members: ReadonlySet<FluidComponent>,
+  used: ReadonlySet<FluidComponent>,
+): Entered[] | undefined {
   const chain: Entered[] = [];
   for (let at = component, port = entered; ; ) {
-    if (!members.has(at) || used.has(at) || at.kind === "valve" || at.kind === "cylinder" || chain.some((one) => one.component === at)) return undefined;
+    if (!members.has(at) || used.has(at) || at.kind === "valve" || at.kind === "cylinder" || chain.some((one) => one.component === at))
+      return undefined;
     chain.push({ component: at, port });
     if (at.ports.filter(({ node }) => node !== undefined).length === 1) return chain;
     const out = beyond(at, port);
@@ -149,7 +161,12 @@ function branchOf(graph: FluidGraph, component: FluidComponent, entered: string,
 }
 
 function walkDrop(
-  graph: FluidGraph, root: FluidComponent, port: string, headers: ReadonlySet<FluidNodeId>, members: ReadonlySet<FluidComponent>, used: Set<FluidComponent>,
+  graph: FluidGraph,
+  root: FluidComponent,
+  port: string,
+  headers: ReadonlySet<FluidNodeId>,
+  members: ReadonlySet<FluidComponent>,
+  used: Set<FluidComponent>,
 ): Drop | undefined {
   const drop: Drop = { port, inline: [], beside: [], direct: false };
   let at = root;
@@ -159,7 +176,9 @@ function walkDrop(
   while (node !== undefined && !headers.has(node)) {
     const joints = graph.others(node, at).filter(({ component }) => members.has(component) && !used.has(component));
     const sink = joints.find(({ component }) => isSink(component));
-    const next = joints.find(({ component, port: entered }) => !isSink(component) && component.kind !== "valve" && beyond(component, entered) !== undefined);
+    const next = joints.find(
+      ({ component, port: entered }) => !isSink(component) && component.kind !== "valve" && beyond(component, entered) !== undefined,
+    );
     if (sink && !next) {
       used.add(sink.component);
       drop.sink = sink.component;
@@ -207,7 +226,8 @@ export function placeTower(tower: Tower, graph: FluidGraph, symbolOf: SymbolOf, 
   }
   const valveTop = valve ? valve.block.full.top : 0;
   const jogs = new Set(tower.lanes.filter(({ cylinder }) => cylinder >= 0).map(({ cylinder, port }) => `${cylinder} ${port}`)).size;
-  const least = cylinders.length === 0 ? undefined : Math.ceil(Math.max(...low) - Math.min(valveTop, -3) + turning + Math.max(0, jogs - 2) * 2 + slack);
+  const least =
+    cylinders.length === 0 ? undefined : Math.ceil(Math.max(...low) - Math.min(valveTop, -3) + turning + Math.max(0, jogs - 2) * 2 + slack);
   const rise = height === undefined ? (least ?? 0) : Math.max(height, least ?? 0);
   for (const one of upper) one.at = { x: one.at.x, y: one.at.y - rise };
   const placed = [...upper, ...(valve ? [valve] : [])];
@@ -236,7 +256,9 @@ function hang(tower: Tower, index: number, graph: FluidGraph, symbolOf: SymbolOf
   });
   const fits = (block: Block, x: number, y: number) => {
     const extent = moved(block.full, { x, y });
-    return !placed.some((other) => meet(moved(other.block.full, other.at), { ...extent, left: extent.left - 1, right: extent.right + 1, top: extent.top - 1 }));
+    return !placed.some((other) =>
+      meet(moved(other.block.full, other.at), { ...extent, left: extent.left - 1, right: extent.right + 1, top: extent.top - 1 }),
+    );
   };
   for (;;) {
     const open = ways.filter(({ lane, next }) => next < lane.beside.length).sort((a, b) => a.y - b.y || a.x - b.x);
@@ -255,7 +277,11 @@ function hang(tower: Tower, index: number, graph: FluidGraph, symbolOf: SymbolOf
     placed.push({ block, at: { x: x - above.x, y } });
     way.y = y + portOf(block, inline.lower).y;
   }
-  const bottom = Math.max(...ways.map(({ y }) => y), ...placed.slice(1).map(({ block, at }) => at.y + block.full.bottom), portOf(cylinder.block, lanes[0]?.port ?? "").y);
+  const bottom = Math.max(
+    ...ways.map(({ y }) => y),
+    ...placed.slice(1).map(({ block, at }) => at.y + block.full.bottom),
+    portOf(cylinder.block, lanes[0]?.port ?? "").y,
+  );
   return { placed, bottom };
 }
 
@@ -277,7 +303,13 @@ function inlineBlock({ component, upper, lower }: Inline, side: "left" | "right"
 }
 
 /** Sets branches beside a line, standing up from a row that leads to them; gives that row. */
-function placeBeside(branches: readonly Entered[][], way: { side: "left" | "right"; x: number; y: number }, placed: Placed[], graph: FluidGraph, symbolOf: SymbolOf): number {
+function placeBeside(
+  branches: readonly Entered[][],
+  way: { side: "left" | "right"; x: number; y: number },
+  placed: Placed[],
+  graph: FluidGraph,
+  symbolOf: SymbolOf,
+): number {
   const chains = branches.map((chain) => standing(chain, way.side, symbolOf, graph));
   const tallest = Math.max(...chains.map(({ top }) => -top));
   const row = Math.ceil(way.y + tallest + 2);
@@ -289,7 +321,10 @@ function placeBeside(branches: readonly Entered[][], way: { side: "left" | "righ
     let at = sign > 0 ? Math.ceil(x + inner) : Math.floor(x - inner);
     const free = (to: number) =>
       !chain.placed.some((one) =>
-        placed.some((other) => meet(moved(other.block.full, other.at), moved(one.block.full, { x: one.at.x + to - 0, y: one.at.y + row - 1 }))));
+        placed.some((other) =>
+          meet(moved(other.block.full, other.at), moved(one.block.full, { x: one.at.x + to - 0, y: one.at.y + row - 1 })),
+        ),
+      );
     for (let tries = 0; tries < 60 && !free(at); tries++) at += sign;
     for (const one of chain.placed) placed.push({ block: one.block, at: { x: one.at.x + at, y: one.at.y + row - 1 } });
     x = at + sign * (outer + 1);
@@ -298,13 +333,25 @@ function placeBeside(branches: readonly Entered[][], way: { side: "left" | "righ
 }
 
 /** Things over a valve's working port, side by side. */
-function placeOver(port: { x: number; y: number }, chains: readonly Entered[][], valve: Placed, placed: Placed[], graph: FluidGraph, symbolOf: SymbolOf): void {
+function placeOver(
+  port: { x: number; y: number },
+  chains: readonly Entered[][],
+  valve: Placed,
+  placed: Placed[],
+  graph: FluidGraph,
+  symbolOf: SymbolOf,
+): void {
   let x = port.x;
   const side: Side = "right";
   for (const chain of chains) {
     const { placed: standingUp, right } = standing(chain, side, symbolOf, graph);
     const base = Math.floor(Math.min(port.y - 3, valve.block.full.top - 1));
-    const free = (to: number) => !standingUp.some((one) => placed.some((other) => meet(moved(other.block.full, other.at), moved(one.block.full, { x: one.at.x + to - 1, y: one.at.y + base }))));
+    const free = (to: number) =>
+      !standingUp.some((one) =>
+        placed.some((other) =>
+          meet(moved(other.block.full, other.at), moved(one.block.full, { x: one.at.x + to - 1, y: one.at.y + base })),
+        ),
+      );
     while (!free(x)) x++;
     for (const one of standingUp) placed.push({ block: one.block, at: { x: one.at.x + x, y: one.at.y + base } });
     x = Math.ceil(x + right + 2);
@@ -369,4 +416,3 @@ function sinkBlock(component: FluidComponent, side: Side, symbolOf: SymbolOf): B
   addWords(block, side);
   return block;
 }
-

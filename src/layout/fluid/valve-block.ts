@@ -2,7 +2,7 @@ import type { Mm } from "../../drawing/geometry.js";
 import type { FluidComponent, ValveActuator } from "../../machine/model.js";
 import type { Symbol, Turn } from "../../symbols/symbol.js";
 import { turnSymbol } from "../../symbols/turn.js";
-import { addText, bareBlock, type Block, pitch, smallHeight, textHeight, wordsOf } from "./block.js";
+import { addText, type Block, bareBlock, pitch, smallHeight, textHeight, wordsOf } from "./block.js";
 import { extentOf, module, moved } from "./modules.js";
 
 /** Room for a solenoid's ladder line. */
@@ -35,8 +35,10 @@ function addEnd(block: Block, turned: Symbol, side: "left" | "right", actuators:
   if (drawn.length > 0) {
     const boxes = drawn.map(({ box }) => moved(extentOf(box), offset));
     const extent = {
-      left: Math.min(...boxes.map((box) => box.left)), right: Math.max(...boxes.map((box) => box.right)),
-      top: Math.min(...boxes.map((box) => box.top)), bottom: Math.max(...boxes.map((box) => box.bottom)),
+      left: Math.min(...boxes.map((box) => box.left)),
+      right: Math.max(...boxes.map((box) => box.right)),
+      top: Math.min(...boxes.map((box) => box.top)),
+      bottom: Math.max(...boxes.map((box) => box.bottom)),
     };
     block.parts.push({ part, extent });
   }
@@ -55,7 +57,14 @@ function addEnd(block: Block, turned: Symbol, side: "left" | "right", actuators:
     const up = { x: over.x / module + offset.x + outward, y: over.y / module + offset.y - index * pitch };
     const down = { x: under.x / module + offset.x + outward, y: under.y / module + offset.y + index * pitch };
     addText(block, { part, role: "designation", text: coil, height: textHeight, anchor: over.anchor, at: up });
-    addText(block, { part, role: "reference", text: { to: "ladder-line", device: coil, room: referenceRoom }, height: textHeight, anchor: under.anchor, at: down });
+    addText(block, {
+      part,
+      role: "reference",
+      text: { to: "ladder-line", device: coil, room: referenceRoom },
+      height: textHeight,
+      anchor: under.anchor,
+      at: down,
+    });
   });
 }
 
@@ -65,12 +74,23 @@ function addName(block: Block): void {
   const words = wordsOf(component, 24);
   if (words.length === 0) return;
   const upper = ports.filter(({ direction }) => direction === "up").map(({ x }) => x);
-  const boxesLeft = block.body.left < Math.min(-3, ...ports.filter(({ direction }) => direction === "up" || direction === "down").map(({ x }) => x - 2.5));
+  const boxesLeft =
+    block.body.left < Math.min(-3, ...ports.filter(({ direction }) => direction === "up" || direction === "down").map(({ x }) => x - 2.5));
   const x = boxesLeft ? Math.min(...upper, 0) - 2.3 : Math.max(...upper, 0) + 1;
   const y = -2 + block.offset.y - 1.4;
   // Over the designations of the solenoids.
-  const highest = Math.min(y, ...block.texts.filter(({ role, at }) => role === "designation" && (boxesLeft ? at.x <= x : at.x >= x)).map(({ at }) => at.y - 1.9));
+  const highest = Math.min(
+    y,
+    ...block.texts.filter(({ role, at }) => role === "designation" && (boxesLeft ? at.x <= x : at.x >= x)).map(({ at }) => at.y - 1.9),
+  );
   [...words].reverse().forEach(({ role, text }, index) => {
-    addText(block, { part: component.id, role, text, height: textHeight, anchor: boxesLeft ? "end" : "start", at: { x, y: highest - index * pitch } });
+    addText(block, {
+      part: component.id,
+      role,
+      text,
+      height: textHeight,
+      anchor: boxesLeft ? "end" : "start",
+      at: { x, y: highest - index * pitch },
+    });
   });
 }

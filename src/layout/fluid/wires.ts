@@ -52,7 +52,14 @@ export function drawNet(node: FluidNodeId, steps: readonly Step[], origin: Point
       return !before || !after || (before.x === point.x) !== (after.x === point.x);
     });
     const dash = dashes[style.role];
-    wires.push({ part: style.part, node, role: style.role, points: bends.map(toSheet), width: style.header ? headerWidth : lineWidth, ...(dash ? { dash } : {}) });
+    wires.push({
+      part: style.part,
+      node,
+      role: style.role,
+      points: bends.map(toSheet),
+      width: style.header ? headerWidth : lineWidth,
+      ...(dash ? { dash } : {}),
+    });
   };
   for (const step of steps) {
     if (done.has(step)) continue;
@@ -62,9 +69,11 @@ export function drawNet(node: FluidNodeId, steps: readonly Step[], origin: Point
   }
   // Rings, if there should ever be one.
   for (const step of steps) if (!done.has(step)) draw(walk(step.a, step), step.style);
-  const dots = [...at].filter(([, there]) => there.length > 2).map(([place, there]): PlacedDot => {
-    const [x, y] = place.split(" ").map(Number) as [number, number];
-    return { part: (there[0] as Step).style.part, at: toSheet({ x, y }), diameter: dotDiameter };
-  });
+  const dots = [...at]
+    .filter(([, there]) => there.length > 2)
+    .map(([place, there]): PlacedDot => {
+      const [x, y] = place.split(" ").map(Number) as [number, number];
+      return { part: (there[0] as Step).style.part, at: toSheet({ x, y }), diameter: dotDiameter };
+    });
   return { wires, dots };
 }

@@ -1,0 +1,57 @@
+import fc from "fast-check";
+import { describe, expect, it } from "vitest";
+import {
+  crossings,
+  looseEnds,
+  outside,
+  slantedWires,
+  symbolOverlaps,
+  textOverlaps,
+  textsOnWires,
+  wiresThroughSymbols,
+} from "../../support/facts.js";
+import { anyCircuit, layOutText, netsOfMachine, netsOfSheets, usualCircuit } from "../../support/fluid-circuits.js";
+
+const runs = Number(process.env.FLUID_RUNS ?? 25);
+
+describe("circuits as machines have them", () => {
+  it("draw with every line where it belongs and nothing in the way of anything", async () => {
+    await fc.assert(
+      fc.asyncProperty(usualCircuit, async (text) => {
+        const { circuit, sheets, area } = await layOutText(text);
+        for (const sheet of sheets) {
+          expect(symbolOverlaps(sheet)).toEqual([]);
+          expect(textOverlaps(sheet)).toEqual([]);
+          expect(textsOnWires(sheet)).toEqual([]);
+          expect(wiresThroughSymbols(sheet)).toEqual([]);
+          expect(looseEnds(sheet)).toEqual([]);
+          expect(slantedWires(sheet)).toEqual([]);
+          expect(outside(sheet, area)).toEqual([]);
+          expect(crossings(sheet).filter((one) => !one.includes(" cross at "))).toEqual([]);
+        }
+        expect(netsOfSheets(sheets)).toEqual(netsOfMachine(circuit));
+      }),
+      { numRuns: runs, seed: 7, endOnFailure: true },
+    );
+  }, 120_000);
+});
+
+describe("any netlist", () => {
+  it("is drawn as it is, however unusual", async () => {
+    await fc.assert(
+      fc.asyncProperty(anyCircuit, async (text) => {
+        const { circuit, sheets } = await layOutText(text);
+        for (const sheet of sheets) {
+          expect(symbolOverlaps(sheet)).toEqual([]);
+          expect(textOverlaps(sheet)).toEqual([]);
+          expect(wiresThroughSymbols(sheet)).toEqual([]);
+          expect(looseEnds(sheet)).toEqual([]);
+          expect(slantedWires(sheet)).toEqual([]);
+          expect(crossings(sheet).filter((one) => !one.includes(" cross at "))).toEqual([]);
+        }
+        expect(netsOfSheets(sheets)).toEqual(netsOfMachine(circuit));
+      }),
+      { numRuns: runs, seed: 11, endOnFailure: true },
+    );
+  }, 120_000);
+});
