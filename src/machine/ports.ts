@@ -34,10 +34,14 @@ export function valvePorts(ports: ValveSpec["ports"], medium: Medium): readonly 
   return { 2: ["1", "2"], 3: ["1", "3", "2"], 4: ["1", "3", "4", "2"], 5: ["1", "5", "3", "4", "2"] }[ports];
 }
 
-/** The port of a fluid pilot at one end of a valve. */
-export function pilotPort(side: "left" | "right", medium: Medium): string {
+/**
+ * The port of a fluid pilot at one end of a valve. ISO 11727 names a pneumatic control by what it joins: 14 joins 1 to 4,
+ * 12 joins 1 to 2, 10 closes 1.
+ */
+export function pilotPort(side: "left" | "right", medium: Medium, { ports, boxes }: Pick<ValveSpec, "ports" | "boxes">): string {
   if (medium === "hydraulic") return side === "left" ? "X" : "Y";
-  return side === "left" ? "14" : "12";
+  if (ports > 3) return side === "left" ? "14" : "12";
+  return (side === "left" ? boxes[0] : boxes.at(-1))?.startsWith("P>A") ? "12" : "10";
 }
 
 /**

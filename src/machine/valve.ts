@@ -236,16 +236,17 @@ function readNormally({ normally, component }: ValveDraft, ports: number, report
   return normally?.value;
 }
 
-function givePorts(draft: ValveDraft, { ports, left, right }: ValveSpec, medium: Medium): void {
+function givePorts(draft: ValveDraft, spec: ValveSpec, medium: Medium): void {
+  const { ports, left, right } = spec;
   const names = [...valvePorts(ports, medium)];
   for (const [side, end] of [
     ["left", left],
     ["right", right],
   ] as const) {
-    if (end.some(({ kind }) => kind === "pilot")) names.push(pilotPort(side, medium));
+    if (end.some(({ kind }) => kind === "pilot")) names.push(pilotPort(side, medium, spec));
   }
   draft.component.ports = names.map((name) => ({ name, plugged: false }));
   if ([...left, ...right].some(({ kind }) => kind === "piloted-solenoid")) {
-    draft.optionalPorts = (["left", "right"] as const).map((side) => pilotPort(side, medium)).filter((name) => !names.includes(name));
+    draft.optionalPorts = (["left", "right"] as const).map((side) => pilotPort(side, medium, spec)).filter((name) => !names.includes(name));
   }
 }

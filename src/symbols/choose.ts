@@ -141,7 +141,7 @@ const componentSymbols: Record<FluidKind, Choice> = {
   valve: ({ id, name, valve, medium, ports }, start) => {
     if (!valve) throw new Error(`The valve ${name ?? id} has no positions.`);
     const shown = start.valveBoxes.get(name ?? id) ?? valve.normal ?? valve.boxes.length - 1;
-    const pilots = ports.map((port) => port.name).filter((port) => ["X", "Y", "14", "12"].includes(port));
+    const pilots = ports.map((port) => port.name).filter((port) => ["X", "Y", "14", "12", "10"].includes(port));
     return composeValve(valve, medium, shown, pilots);
   },
   "relief-valve": file("relief-valve"),

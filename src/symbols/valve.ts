@@ -22,7 +22,7 @@ type Side = "left" | "right";
  * A directional valve by the rules of ISO 1219-1: one box for each position side by side, the lines on the box shown, each
  * control at the end whose box it drives. The origin is the middle of the box shown, so the ports do not move with the box.
  *
- * Ports: P T A B or 1 2 3 4 5, and for fluid pilots X and Y or 14 (left) and 12 (right).
+ * Ports: P T A B or 1 2 3 4 5, and for fluid pilots X and Y or 14 (left) and 12 (right), with two or three main ports 12 (opens) and 10 (closes).
  * Spots: `designation` under a box without lines, `port-NAME` left of each lead, `left-solenoid` and `right-solenoid` over
  * the end, `left-reference` and `right-reference` under it.
  * @param shownBox the box its lines are drawn to, 0 leftmost
@@ -149,7 +149,7 @@ function addControl(
   const drawing = actuatorDrawings[actuator.kind];
   let { length, top, bottom } = drawing;
   valve.shapes.push(...sketch(drawing.shapes, frame, medium));
-  if (drawing.pin) addPin(valve, pilotName(side, medium), drawing.pin, frame);
+  if (drawing.pin) addPin(valve, pilotName(side, medium, spec), drawing.pin, frame);
   if (actuator.kind === "piloted-solenoid") bottom = Math.min(bottom, addPilotLines(valve, end, frame));
   const coil = drawing.coilFrom;
   if (actuator.override && coil !== undefined) {
@@ -182,7 +182,7 @@ function pressedIn({ normal, boxes }: ValveSpec, side: Side, shown: number): boo
 function addPilotLines(valve: Symbol, end: End, frame: Frame): number {
   const { side, medium, external, spec } = end;
   const other = side === "left" ? "right" : "left";
-  const here = pilotName(side, medium);
+  const here = pilotName(side, medium, spec);
   const names = external.filter(
     (name) => name === here || !spec[other].some(({ kind }) => kind === "piloted-solenoid" || kind === "pilot"),
   );
@@ -207,10 +207,11 @@ function addPin(valve: Symbol, name: string, pin: { x: number; y: number }, fram
   valve.spots[`port-${name}`] = sideways ? { ...at, anchor: "middle" } : beside;
 }
 
-/** The pilot port of an end. */
-function pilotName(side: Side, medium: Medium): string {
+/** The pilot port of an end: pneumatic ones by what they join after ISO 11727, 10 for one that closes port 1. */
+function pilotName(side: Side, medium: Medium, { ports, boxes }: ValveSpec): string {
   if (medium === "hydraulic") return side === "left" ? "X" : "Y";
-  return side === "left" ? "14" : "12";
+  if (ports > 3) return side === "left" ? "14" : "12";
+  return (side === "left" ? boxes[0] : boxes.at(-1))?.startsWith("P>A") ? "12" : "10";
 }
 
 function controlBox(frame: Frame, { length, top, bottom, coilFrom }: ActuatorDrawing): Box {

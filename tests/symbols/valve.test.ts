@@ -142,7 +142,9 @@ describe("a whole valve", () => {
       for (const ports of medium === "hydraulic" ? ([2, 3, 4] as const) : ([2, 3, 4, 5] as const)) {
         const spec: ValveSpec = { ports, positions: 2, boxes: boxesOf(ports, 2, {}), left: end("pilot"), right: end("pilot") };
         const names = composeValve(spec, medium, 0).ports.map(({ name }) => name);
-        expect([...names].sort()).toEqual([...valvePorts(ports, medium), pilotPort("left", medium), pilotPort("right", medium)].sort());
+        expect([...names].sort()).toEqual(
+          [...valvePorts(ports, medium), pilotPort("left", medium, spec), pilotPort("right", medium, spec)].sort(),
+        );
       }
     }
   });
@@ -163,6 +165,15 @@ describe("a whole valve", () => {
     expect(held.shapes.length).toBe(free.shapes.length + 1);
     const cam = pieces([held.shapes.at(-2) as (typeof held.shapes)[0], held.shapes.at(-1) as (typeof held.shapes)[0]]);
     expect(cam.length).toBeGreaterThan(0);
+  });
+
+  test("pneumatic pilots are named by what they join (ISO 11727, from memory): 12 opens a three-port valve, 10 closes it", () => {
+    const [closed, open] = [boxesOf(3, 2, {}), boxesOf(3, 2, {}).reverse()].map((boxes) => {
+      const spec: ValveSpec = { ports: 3, positions: 2, boxes, left: end("pilot"), right: end("spring") };
+      return composeValve(spec, "pneumatic", 1).ports.map(({ name }) => name);
+    });
+    expect(closed).toContain("12");
+    expect(open).toContain("10");
   });
 
   test("external pilots take their own pins, downward", () => {
@@ -191,7 +202,7 @@ describe("a whole valve", () => {
     );
     fc.assert(
       fc.property(cases, ({ ports, boxes, left, right, normal, shown, medium }) => {
-        const external = medium === "hydraulic" ? ["X", "Y"] : ["14", "12"];
+        const external = medium === "hydraulic" ? ["X", "Y"] : ports > 3 ? ["14", "12"] : ["12", "10"];
         const valve = composeValve({ ports, positions: boxes.length as 2 | 3, boxes, left, right, normal }, medium, shown, external);
         for (const port of valve.ports) expect([port.x % M, port.y % M].map(Math.abs)).toEqual([0, 0]);
         expect(new Set(valve.ports.map(({ name }) => name)).size).toBe(valve.ports.length);
