@@ -1,3 +1,4 @@
+import { printQuantity } from "../language/print-quantity.js";
 import type { Quantity } from "../language/quantity.js";
 import type { Declaration, Item, Word } from "../language/tree.js";
 import type { FluidComponent, FluidKind, Medium } from "./model.js";
@@ -34,7 +35,7 @@ export const commonWords: ComponentTable["words"] = {
 };
 
 const printed = ({ component }: ComponentDraft, quantity: Quantity) => {
-  component.values.push(quantity.text);
+  component.values.push(printQuantity(quantity));
 };
 
 const drive: ComponentTable["words"] = {

@@ -1,4 +1,5 @@
 import type { SourceRange } from "../language/diagnostic.js";
+import { printQuantity } from "../language/print-quantity.js";
 import type { Quantity } from "../language/quantity.js";
 import type { Declaration, Item, Word } from "../language/tree.js";
 import type { Device, DeviceKind } from "./model.js";
@@ -56,7 +57,7 @@ const coil: DeviceWords = {
     const power = read.positive(word, "power", "apparent-power", "current");
     if (power) {
       device.coil = { ...device.coil, power };
-      device.values.push(power.text);
+      device.values.push(printQuantity(power));
     }
   },
   inrush: ({ device }, read, word) => {
@@ -121,7 +122,7 @@ const colour: DeviceWords = {
 
 /** A value printed as written. */
 const printed = ({ device }: DeviceDraft, quantity: Quantity) => {
-  device.values.push(quantity.text);
+  device.values.push(printQuantity(quantity));
 };
 
 /** How each kind's properties are read. */
@@ -190,11 +191,9 @@ const tables: Record<DeviceKind, DeviceTable> = {
       },
       rising: (draft, read, word) => {
         draft.rising = read.positive(word, "pressure");
-        if (draft.rising) printed(draft, draft.rising);
       },
       falling: (draft, read, word) => {
         draft.falling = read.positive(word, "pressure");
-        if (draft.falling) printed(draft, draft.falling);
       },
     },
   },
@@ -261,7 +260,7 @@ function delay({ device }: DeviceDraft, read: Parameters<DeviceWords[string]>[1]
     return;
   }
   device.delay = { mode: word.text as "on-delay" | "off-delay", time };
-  device.values.push(time.text);
+  device.values.push(printQuantity(time));
 }
 
 /** A device that has its name and kind and nothing else. */
@@ -283,6 +282,8 @@ export function readDevice(declaration: Declaration & { name: Word }, kind: Devi
     report.error("property-missing", declaration.name.at, `${device.name} needs its delay: "on-delay 2 s" or "off-delay 2 s".`);
   }
   if (kind === "selector-switch") settleSelector(draft, declaration, report);
+  const settings = [draft.rising, draft.falling].filter((setting) => setting !== undefined);
+  if (settings.length > 0) device.values.unshift(settings.map(printQuantity).join(" / "));
   if (draft.rising && draft.falling && draft.falling.value >= draft.rising.value) {
     const written = declaration.items.find((item) => item.kind === "quantity" && item.quantity === draft.falling);
     report.error(

@@ -1,4 +1,5 @@
 import type { SourceRange } from "../language/diagnostic.js";
+import { printQuantity } from "../language/print-quantity.js";
 import type { ComponentDraft } from "./components.js";
 import { bareComponent, draftOf } from "./components.js";
 import { strokeOf } from "./cylinder.js";
@@ -31,7 +32,7 @@ export function linkSolenoids(valve: ValveDraft, devices: Map<string, Device>, n
       solenoid.valve = { name: component.name as string, side };
       devices.set(name.text, solenoid);
     }
-    if (coil.power && !solenoid.coil?.power) solenoid.values.push(coil.power.text);
+    if (coil.power && !solenoid.coil?.power) solenoid.values.push(printQuantity(coil.power));
     if (coil.power || coil.inrush) solenoid.coil = { ...coil, ...solenoid.coil };
     if (component.text !== undefined) solenoid.text ??= component.text;
   }

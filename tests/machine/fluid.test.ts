@@ -96,7 +96,7 @@ describe("links across", () => {
     for (const on of ["@P", "C1.cap"]) {
       const machine = soundMachine(`pressure-switch PS1 "Clamped" on ${on} rising 4 bar falling 3 bar\n${pneumatic(text)}`);
       expect(nodesOf(firstFluid(machine))[0]).toBe("AIR1.1 C1.cap PS1.P");
-      expect(machine.components.get("PS1")).toMatchObject({ kind: "pressure-switch", values: ["4 bar", "3 bar"] });
+      expect(machine.components.get("PS1")).toMatchObject({ kind: "pressure-switch", values: ["4 bar / 3 bar"] });
       expect(device(machine, "PS1").senses?.rising?.value).toBe(4);
     }
   });
