@@ -12,6 +12,10 @@ export interface CheckOptions {
   color?: boolean;
 }
 
+/** Stands under every report: silence of the checks is not safety. */
+const caution =
+  "These checks do not certify the machine. Emergency stop, guarding and risk reduction follow local codes and qualified people; isolate and verify before work.\n";
+
 /** `spoolrung check FILE…`: says what is wrong with each drawing, to the reader or as data. */
 export async function check(files: readonly string[], { json, color }: CheckOptions, desk: Desk): Promise<ExitCode> {
   const world = await worldFor(files, desk);
@@ -19,7 +23,7 @@ export async function check(files: readonly string[], { json, color }: CheckOpti
   for (const file of files) examined.push(await examine(file, world));
   const all = examined.flatMap(({ diagnostics }) => diagnostics);
   if (json) desk.out(writeJson(all.map(asData)));
-  else desk.out(wordFindings(examined, useColor(desk, "out", color)) || "No errors, no warnings.\n");
+  else desk.out((wordFindings(examined, useColor(desk, "out", color)) || "No errors, no warnings.\n") + caution);
   return exitCodeFor(all, files);
 }
 
