@@ -101,7 +101,7 @@ export class LineBuilder {
 
   private readLine(draft: CircuitDraft, line: LineStatement): void {
     const properties = this.readLineItems(line);
-    const role = line.role.text as FluidLine["role"];
+    const role = line.role.text === "line" ? "working" : (line.role.text as FluidLine["role"]);
     if (role === "exhaust" && draft.circuit.medium === "hydraulic") {
       this.report.error("wrong-medium", line.role.at, 'Oil is not let out into the open: lead it to the tank with "line" or "drain".');
       return;

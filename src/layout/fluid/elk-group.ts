@@ -52,17 +52,22 @@ export async function placeByLayers(
     const joints = graph.at(node).filter(({ component }) => members.has(component));
     const looking = (joint: (typeof joints)[number]) =>
       blocks.get(joint.component.id)?.ports.find(({ name }) => name === joint.port)?.direction;
-    // The line begins at what lies lowest along the flow.
+    // Lines lead from ports that look up to ports that look down; where all look alike, from what lies lowest along the flow.
+    const lower = joints.filter((joint) => looking(joint) === "up");
+    const higher = joints.filter((joint) => looking(joint) !== "up");
     const sorted = joints
-      .map((joint, index) => ({ joint, index, key: (looking(joint) === "up" ? -10 : 0) + rank(joint.component) }))
-      .sort((a, b) => a.key - b.key || a.index - b.index);
-    const [first, ...others] = sorted;
-    for (const other of others) {
-      if (!first) break;
+      .map((joint, index) => ({ joint, index, key: rank(joint.component) }))
+      .sort((a, b) => a.key - b.key || a.index - b.index)
+      .map(({ joint }) => joint);
+    const pairs =
+      lower.length > 0 && higher.length > 0
+        ? lower.flatMap((from) => higher.map((to) => [from, to] as const))
+        : sorted.slice(1).map((to) => [sorted[0] as (typeof joints)[number], to] as const);
+    for (const [from, to] of pairs) {
       edges.push({
         id: `${node} ${edges.length}`,
-        sources: [`${first.joint.component.id} ${first.joint.port}`],
-        targets: [`${other.joint.component.id} ${other.joint.port}`],
+        sources: [`${from.component.id} ${from.port}`],
+        targets: [`${to.component.id} ${to.port}`],
       });
     }
   }

@@ -1,7 +1,7 @@
 import type { Point } from "../../drawing/geometry.js";
 import type { FluidComponent, FluidNodeId } from "../../machine/model.js";
 import { type Arrangement, extentOfAll, type SymbolOf } from "./arrangement.js";
-import { addWords, type Block, bareBlock, chooseTurn, type Placed, portOf, type Side } from "./block.js";
+import { addWords, type Block, bareBlock, chooseTurn, type Placed, portOf } from "./block.js";
 import { beyond, type FluidGraph, isSink, sourcePort } from "./graph.js";
 import { module } from "./modules.js";
 import { type Chain, type Entered, hanging, standing } from "./standing.js";
@@ -46,7 +46,7 @@ export function placePowerUnit(
   const sources = unit
     .filter((component) => sourcePort(component) !== undefined)
     .map((source) => readSource(source, graph, headers, members, used));
-  const returns = readReturns(unit, graph, headers, members, used);
+  const returns = readReturns(graph, headers, members, used);
   const placed: Placed[] = [];
   const risers: PowerUnit["risers"] = [];
   const downs: PowerUnit["returns"] = [];
@@ -178,7 +178,6 @@ function leadsOn(branch: readonly Entered[], graph: FluidGraph, headers: Readonl
 }
 
 function readReturns(
-  unit: readonly FluidComponent[],
   graph: FluidGraph,
   headers: ReadonlySet<FluidNodeId>,
   members: ReadonlySet<FluidComponent>,

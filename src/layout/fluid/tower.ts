@@ -252,7 +252,8 @@ function hang(tower: Tower, index: number, graph: FluidGraph, symbolOf: SymbolOf
     const port = portOf(cylinder.block, lane.port);
     // The lines stand outward of each other: the left one's things to its left, the right one's to its right.
     const side: "left" | "right" = lanes.length > 1 && port.x < 5 ? "left" : "right";
-    return { lane, side, x: port.x, y: port.y, next: 0 };
+    // Cylinders side by side share lines that run across below their ports.
+    return { lane, side, x: port.x, y: port.y + (tower.cylinders.length > 1 ? 3 : 0), next: 0 };
   });
   const fits = (block: Block, x: number, y: number) => {
     const extent = moved(block.full, { x, y });
