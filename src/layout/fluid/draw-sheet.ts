@@ -81,12 +81,18 @@ function tidy(value: Mm): Mm {
   return Math.round(value * 1e4) / 1e4;
 }
 
+const ahead = { up: [0, -1], down: [0, 1], left: [-1, 0], right: [1, 0] } as const;
+
 /** A closed port carries a small cross. */
 function drawPlugs({ block, at }: Placed, origin: Point, sheet: CircuitSheet): void {
   for (const { name, plugged } of block.component.ports) {
     const port = block.ports.find((one) => one.name === name);
     if (!plugged || !port) continue;
-    const centre = { x: port.x + at.x, y: port.y + at.y };
+    const [dx, dy] = ahead[port.direction];
+    const end = { x: port.x + at.x, y: port.y + at.y };
+    // Beyond the port's name, which stands beside the lead.
+    const centre = { x: end.x + 0.9 * dx, y: end.y + 0.9 * dy };
+    sheet.strokes.push({ part: block.component.id, role: "plug", path: [onSheet(end, origin), onSheet(centre, origin)], width: 0.25 });
     for (const sign of [-1, 1]) {
       const path = [-1, 1].map((end) => onSheet({ x: centre.x + 0.4 * end, y: centre.y + 0.4 * end * sign }, origin));
       sheet.strokes.push({ part: block.component.id, role: "plug", path, width: 0.25 });
@@ -144,8 +150,7 @@ function drawContinuations(
 /** A port no line could be led to names the line it belongs to. */
 function drawLost({ node, x, y, direction }: Terminal, circuit: FluidCircuit, origin: Point, sheet: CircuitSheet): void {
   const point = nameOf(node, circuit);
-  const ways = { up: [0, -1], down: [0, 1], left: [-1, 0], right: [1, 0] } as const;
-  const [dx, dy] = ways[direction];
+  const [dx, dy] = ahead[direction];
   const end = onSheet({ x: x + dx, y: y + dy }, origin);
   sheet.strokes.push({ role: "continuation", width: 0.25, path: [onSheet({ x, y }, origin), end] });
   sheet.texts.push({ role: "reference", text: point, at: { x: end.x + 0.6, y: end.y }, anchor: "start", height: textHeight });

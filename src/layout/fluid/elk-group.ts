@@ -28,6 +28,11 @@ export async function placeByLayers(
   slack: number,
 ): Promise<Arrangement> {
   const blocks = new Map(group.map((component) => [component.id, uprightBlock(component, graph, symbolOf)]));
+  const [only] = blocks.values();
+  if (group.length === 1 && only) {
+    const alone: Placed[] = [{ block: only, at: { x: 0, y: 0 } }];
+    return { placed: alone, extent: extentOfAll(alone), ...(only.component.kind === "cylinder" ? { height: 0 } : {}) };
+  }
   const margin = 1.5 + slack / 2;
   const children: ElkNode[] = group.map((component) => {
     const block = blocks.get(component.id) as Block;

@@ -1,0 +1,240 @@
+import { readFileSync } from "node:fs";
+import { describe, expect, it } from "vitest";
+import type { CircuitSheet } from "../../../src/layout/placement.js";
+import {
+  bends,
+  crossings,
+  looseEnds,
+  outside,
+  portsOf,
+  symbolBox,
+  symbolOverlaps,
+  textOverlaps,
+  textsOnWires,
+  wiresThroughSymbols,
+} from "../../support/facts.js";
+import { layOutText, netsOfMachine, netsOfSheets } from "../../support/fluid-circuits.js";
+
+const sample = (name: string) => readFileSync(new URL(`../../../samples/${name}.sprung`, import.meta.url), "utf8");
+
+const symbol = (sheet: CircuitSheet, part: string) => {
+  const found = sheet.symbols.find((one) => one.part === part);
+  if (!found) throw new Error(`${part} is not drawn.`);
+  return found;
+};
+
+const port = (sheet: CircuitSheet, part: string, name: string) => {
+  const found = portsOf(symbol(sheet, part)).find((one) => one.name === name);
+  if (!found) throw new Error(`${part} has no port ${name}.`);
+  return found.at;
+};
+
+const textsOf = (sheet: CircuitSheet, part: string) => sheet.texts.filter((text) => text.part === part).map(({ text }) => text);
+
+for (const [name, most] of [
+  ["tray-stamper", { crossings: 0, bends: 6 }],
+  ["billet-shear", { crossings: 2, bends: 12 }],
+] as const) {
+  describe(`the fluid sheet of ${name}`, () => {
+    it("shows every component once and joins what the machine joins", async () => {
+      const { circuit, sheets } = await layOutText(sample(name));
+      expect(sheets).toHaveLength(1);
+      expect(sheets[0]?.symbols.map(({ part }) => part).sort()).toEqual(circuit.components.map(({ id }) => id).sort());
+      expect(netsOfSheets(sheets)).toEqual(netsOfMachine(circuit));
+    });
+
+    it("has nothing in the way of anything", async () => {
+      const { sheets, area } = await layOutText(sample(name));
+      const [sheet] = sheets as [CircuitSheet];
+      for (const found of [symbolOverlaps, textOverlaps, textsOnWires, wiresThroughSymbols, looseEnds]) expect(found(sheet)).toEqual([]);
+      expect(outside(sheet, area)).toEqual([]);
+      expect(crossings(sheet).length).toBeLessThanOrEqual(most.crossings);
+      expect(bends(sheet)).toBeLessThanOrEqual(most.bends);
+    });
+
+    it("comes out the same every time", async () => {
+      const [one, two] = await Promise.all([layOutText(sample(name)), layOutText(sample(name))]);
+      expect(JSON.stringify(one.sheets)).toBe(JSON.stringify(two.sheets));
+    });
+  });
+}
+
+/** After ISO 1219-2, from memory: energy flows upward, actuators stand along the top in working order. */
+describe("arrangement", () => {
+  it("puts cylinders level along the top, valves level below them and the supply lowest", async () => {
+    const { sheets } = await layOutText(sample("tray-stamper"));
+    const [sheet] = sheets as [CircuitSheet];
+    const at = (part: string) => symbol(sheet, part).at;
+    expect(at("CLAMP").y).toBe(at("STAMP").y);
+    expect(at("V1").y).toBe(at("V2").y);
+    expect(at("CLAMP").x).toBeLessThan(at("STAMP").x);
+    expect(at("CLAMP").y).toBeLessThan(symbolBox(symbol(sheet, "FC1")).y);
+    expect(symbolBox(symbol(sheet, "FC1")).y).toBeLessThan(at("V2").y);
+    expect(at("V1").y).toBeLessThan(at("FRL1").y);
+    expect(at("AIR1").x).toBeLessThan(at("FRL1").x);
+  });
+
+  it("leads a working line straight up from the valve to the cap", async () => {
+    const { sheets } = await layOutText(sample("tray-stamper"));
+    const [sheet] = sheets as [CircuitSheet];
+    expect(port(sheet, "V1", "4").x).toBe(port(sheet, "CLAMP", "cap").x);
+    expect(port(sheet, "FC1", "out").x).toBe(port(sheet, "V2", "4").x);
+  });
+
+  it("stands a silencer at its port", async () => {
+    const { circuit, sheets } = await layOutText(sample("tray-stamper"));
+    const [sheet] = sheets as [CircuitSheet];
+    for (const silencer of circuit.components.filter(({ kind }) => kind === "silencer")) {
+      const mate = circuit.nodes
+        .find(({ ports }) => ports.some(({ component }) => component === silencer.id))
+        ?.ports.find(({ component }) => component !== silencer.id);
+      expect(port(sheet, silencer.id, "in")).toEqual(port(sheet, mate?.component ?? "", mate?.port ?? ""));
+    }
+  });
+
+  it("draws the shared pressure line as one straight header, twice as wide", async () => {
+    const { sheets } = await layOutText(sample("billet-shear"));
+    const [sheet] = sheets as [CircuitSheet];
+    const wide = sheet.wires.filter(({ width }) => width === 0.5);
+    for (const node of new Set(wide.map((wire) => wire.node))) {
+      const levels = new Set(wide.filter((wire) => wire.node === node).flatMap(({ points }) => points.map(({ y }) => y)));
+      expect(levels.size).toBe(1);
+    }
+    expect(new Set(wide.map(({ node }) => node)).size).toBe(2);
+  });
+
+  it("keeps everything on the 2 mm grid", async () => {
+    const { sheets } = await layOutText(sample("billet-shear"));
+    const [sheet] = sheets as [CircuitSheet];
+    const [first] = sheet.wires[0]?.points ?? [];
+    if (!first) throw new Error("No line is drawn.");
+    const off = (value: number) => Math.abs(value / 2 - Math.round(value / 2)) > 1e-3;
+    const points = [...sheet.wires.flatMap((wire) => wire.points), ...sheet.symbols.flatMap((one) => portsOf(one).map(({ at }) => at))];
+    expect(points.filter(({ x, y }) => off(x - first.x) || off(y - first.y))).toEqual([]);
+  });
+});
+
+describe("texts", () => {
+  it("names each solenoid and refers to its ladder line", async () => {
+    const { sheets, places } = await layOutText(sample("tray-stamper"));
+    const [sheet] = sheets as [CircuitSheet];
+    expect(textsOf(sheet, "V1/left")).toEqual(["SOL1", { to: "ladder-line", device: "SOL1", room: expect.any(Number) }]);
+    expect(places.get("V1/left")).toMatchObject({ sheet: 1 });
+  });
+
+  it("marks a switch at its place along the rod's way, true to scale", async () => {
+    const { sheets, places } = await layOutText(sample("tray-stamper"));
+    const [sheet] = sheets as [CircuitSheet];
+    const way = sheet.strokes.filter(({ role, part }) => role === "stroke-line" && part === "STAMP")[0]?.path.map(({ x }) => x) ?? [];
+    const window =
+      sheet.strokes
+        .filter(({ role, part }) => role === "cam" && part === "STAMP/LS4")
+        .find(({ path }) => path[0]?.y === path[1]?.y)
+        ?.path.map(({ x }) => x) ?? [];
+    const [from, to] = way as [number, number];
+    // LS4 is operated from 118 mm to 125 mm of a stroke of 125 mm.
+    expect(window[0]).toBeCloseTo(from + ((to - from) * 118) / 125, 3);
+    expect(window[1]).toBeCloseTo(to, 3);
+    expect(places.get("STAMP/LS4")).toMatchObject({ sheet: 1 });
+  });
+
+  it("says that a valve without a normal position is drawn as it stands at the start", async () => {
+    const { sheets } = await layOutText(`fluid "One" hydraulic {
+      cylinder C1 double-acting bore 40 mm rod 22 mm stroke 100 mm start extended
+      valve V1 4/2 left solenoid SA right solenoid SB detent
+      line V1.A -- C1.cap
+      line V1.B -- C1.rod
+    }`);
+    expect(sheets[0]?.notes).toEqual(["V1 has no normal position; it is drawn as it stands at the start of the cycle."]);
+  });
+});
+
+describe("more than one sheet takes", () => {
+  const axes = Array.from(
+    { length: 12 },
+    (_, i) => `
+    cylinder C${i} "Axis ${i}" double-acting bore 40 mm rod 16 mm stroke 100 mm
+    valve V${i} "Axis ${i}" 5/2 left solenoid SOL${i} right spring
+    line @P -- V${i}.1
+    line V${i}.4 -- C${i}.cap
+    line V${i}.2 -- C${i}.rod
+    exhaust V${i}.3, V${i}.5`,
+  );
+  const text = `fluid "Many" pneumatic {\n air-supply AIR1 6 bar\n line AIR1 -- @P\n ${axes.join("\n")}\n}`;
+
+  it("goes on to further sheets between actuators, with a named reference at both ends", async () => {
+    const { circuit, sheets, area } = await layOutText(text);
+    expect(sheets.length).toBeGreaterThan(1);
+    expect(netsOfSheets(sheets)).toEqual(netsOfMachine(circuit));
+    for (const [index, sheet] of sheets.entries()) {
+      expect(sheet.number).toBe(index + 1);
+      expect(outside(sheet, area)).toEqual([]);
+      const references = sheet.texts.flatMap(({ text: one }) => (typeof one !== "string" && one.to === "point" ? [one.point] : []));
+      expect(references).toEqual(index === 0 || index === sheets.length - 1 ? ["P"] : ["P", "P"]);
+    }
+    const order = sheets.flatMap((sheet) => sheet.symbols.filter(({ part }) => /^C\d+$/.test(part)).map(({ part }) => part));
+    expect(order).toEqual(Array.from({ length: 12 }, (_, i) => `C${i}`));
+  });
+});
+
+describe("unusual circuits", () => {
+  const cases: Record<string, string> = {
+    "a lone gauge": "gauge PG1",
+    "a valve with nothing": "valve V1 4/2 left solenoid SA right spring\nplug V1.A, V1.B",
+    "two valves in series": `cylinder C1 double-acting bore 40 mm rod 22 mm stroke 100 mm
+      valve V1 4/2 left solenoid SA right spring
+      valve V2 4/3 centre closed left solenoid SC right solenoid SD springs
+      line V1.A -- V2.P
+      line V1.B -- V2.T
+      line V2.A -- C1.cap
+      line V2.B -- C1.rod`,
+    "a cylinder fed by two valves": `cylinder C1 double-acting bore 40 mm rod 22 mm stroke 100 mm
+      valve V1 4/2 left solenoid SA right spring
+      valve V2 4/2 left solenoid SC right spring
+      line V1.A -- C1.cap
+      line V2.A -- C1.cap
+      line V1.B -- C1.rod
+      line V2.B -- C1.rod`,
+    "crossed working lines": `cylinder C1 double-acting bore 40 mm rod 22 mm stroke 100 mm
+      valve V1 4/2 left solenoid SA right spring
+      line V1.A -- C1.rod
+      line V1.B -- C1.cap`,
+    "lock valves piloted from each other's line": `cylinder C1 double-acting bore 40 mm rod 22 mm stroke 100 mm
+      valve V1 4/3 centre float left solenoid SA right solenoid SB springs
+      pilot-operated-check-valve PC1
+      pilot-operated-check-valve PC2
+      line V1.A -- @a -- PC1 -- C1.cap
+      line V1.B -- @b -- PC2 -- C1.rod
+      pilot @a -- PC2.X
+      pilot @b -- PC1.X`,
+    "two pumps on one line": `tank TK1
+      pump P1
+      pump P2
+      check-valve CV1
+      check-valve CV2
+      gauge PG1
+      line TK1 -- P1 -- CV1 -- @P
+      line TK1 -- P2 -- CV2 -- @P
+      line @P -- PG1`,
+    "a filter with a check valve across it": `tank TK1
+      pump P1
+      filter F1
+      check-valve CV1
+      cylinder C1 double-acting bore 40 mm rod 22 mm stroke 100 mm
+      valve V1 4/2 left solenoid SA right spring
+      line TK1 -- P1 -- @Q -- F1 -- @P -- V1.P
+      line @Q -- CV1 -- @P
+      line V1.A -- C1.cap
+      line V1.B -- C1.rod
+      line V1.T -- tank`,
+  };
+  for (const [name, body] of Object.entries(cases)) {
+    it(`draws ${name}`, async () => {
+      const { circuit, sheets } = await layOutText(`fluid "Unusual" hydraulic {\n${body}\n}`);
+      expect(sheets).toHaveLength(1);
+      const [sheet] = sheets as [CircuitSheet];
+      for (const found of [symbolOverlaps, textOverlaps, textsOnWires, wiresThroughSymbols, looseEnds]) expect(found(sheet)).toEqual([]);
+      expect(netsOfSheets(sheets)).toEqual(netsOfMachine(circuit));
+    });
+  }
+});
