@@ -118,6 +118,9 @@ export function addText(block: Block, text: BlockText): void {
   block.full = union([block.full, textExtent(text)]);
 }
 
+/** Room for the ladder lines of a pressure switch, mm. */
+const switchRoom: Mm = 16;
+
 /** Writes a component's words on one side of its body, each on a line of its own. */
 export function addWords(
   block: Block,
@@ -126,7 +129,10 @@ export function addWords(
   clear: Extent = block.body,
 ): void {
   if (side === "none") return;
+  const { kind, name } = block.component;
   const lines = [...wordsOf(block.component), ...more];
+  if (kind === "pressure-switch" && name !== undefined)
+    lines.push({ role: "reference", text: { to: "ladder-line", device: name, room: switchRoom } });
   const cap = textHeight / module;
   const high = (lines.length - 1) * pitch + cap;
   const middle = { x: (clear.left + clear.right) / 2, y: (clear.top + clear.bottom) / 2 };
@@ -169,10 +175,26 @@ export function forbidden(placed: Placed): { body: Extent; texts: Extent[] } {
   return {
     body: set(block.body, bodyClearance),
     texts: [
-      ...block.texts.map((text) => set(textExtent(text), textClearance)),
+      ...paragraphs(block.texts.map(textExtent)).map((extent) => set(extent, textClearance)),
       ...block.strokes.map(({ path, width }) => set(extentOfPath(path), width / 2 / module + 0.2)),
     ],
   };
+}
+
+/** Texts that stand close below each other as one: no line runs between the lines of a text. */
+function paragraphs(extents: readonly Extent[]): Extent[] {
+  const found: Extent[] = [];
+  for (const extent of extents) {
+    const last = found.at(-1);
+    const close =
+      last &&
+      Math.max(last.top, extent.top) - Math.min(last.bottom, extent.bottom) < 1 &&
+      last.left < extent.right &&
+      extent.left < last.right;
+    if (last && close) found[found.length - 1] = union([last, extent]);
+    else found.push(extent);
+  }
+  return found;
 }
 
 function extentOfPath(path: readonly Point[]): Extent {

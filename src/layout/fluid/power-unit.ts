@@ -278,7 +278,7 @@ function standingChain(chain: SourceChain, graph: FluidGraph, symbolOf: SymbolOf
     }
     for (const part of down) {
       const at = Math.ceil(rightEdge - part.left);
-      add(placed, part, at, row + 2);
+      add(placed, part, at, row + Math.max(2, Math.ceil(1 - part.top)));
       rightEdge = Math.ceil(at + part.right + 2);
     }
     y = branches.length > 0 ? row : y;
