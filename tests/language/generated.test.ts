@@ -11,9 +11,13 @@ test("the generated parser tables are those of the grammar (npm run generate)", 
     config.out = join(folder, "generated");
     config.languages[0].grammar = resolve(config.languages[0].grammar);
     writeFileSync(join(folder, "langium-config.json"), JSON.stringify(config));
-    execFileSync(process.execPath, ["src/language/generate.mjs", "--mode=production", "--file", join(folder, "langium-config.json")], {
-      stdio: "pipe",
-    });
+    execFileSync(
+      process.execPath,
+      ["node_modules/langium-cli/bin/langium.js", "generate", "--mode=production", "--file", join(folder, "langium-config.json")],
+      {
+        stdio: "pipe",
+      },
+    );
     for (const file of ["ast.ts", "grammar.ts", "module.ts"]) {
       expect(readFileSync(join("src/language/generated", file), "utf8"), file).toBe(readFileSync(join(config.out, file), "utf8"));
     }
