@@ -71,6 +71,29 @@ export function textsOnWires(sheet: CircuitSheet, gap: Mm = 0.2): string[] {
   });
 }
 
+/**
+ * Texts nearer to a line than `lines`, or to another text, a symbol's stroke or a plain stroke than `others`, mm. A port's name
+ * stands between the lines of its own symbol, a reference at the end of a line over that line: they are held to `others`.
+ */
+export function tooClose(sheet: CircuitSheet, { lines, others }: { lines: Mm; others: Mm }): string[] {
+  const atEnds = new Set(sheet.strokes.filter(({ role }) => role === "continuation").map(({ part }) => part));
+  const nodesOf = (part: string | undefined) => {
+    const placed = sheet.symbols.filter((one) => one.part === part);
+    const ports = placed.flatMap((one) => portsOf(one).map(({ at }) => at));
+    return new Set(sheet.wires.filter((wire) => ports.some((port) => onWire(port, wire))).map(({ node }) => node));
+  };
+  const found = textOverlaps(sheet, others);
+  for (const text of sheet.texts) {
+    const own = text.role === "port" ? nodesOf(text.part) : undefined;
+    const wires = sheet.wires.filter(({ node }) => !own?.has(node));
+    const gap = text.role === "reference" && atEnds.has(text.part) ? others : lines;
+    const alone = { ...sheet, texts: [text], strokes: [], dots: [] };
+    found.push(...textsOnWires({ ...alone, wires }, gap));
+    found.push(...textsOnWires({ ...alone, wires: [], strokes: sheet.strokes.filter(({ part }) => part !== text.part) }, others));
+  }
+  return found;
+}
+
 // ---------------------------------------------------------------- symbols
 
 /** Wires that enter a symbol otherwise than straight to one of its ports. */

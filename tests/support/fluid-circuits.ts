@@ -32,6 +32,11 @@ export async function layOutText(text: string): Promise<LaidFluid> {
   return { machine, circuit, sheets, places: new Map(places), area: page.area };
 }
 
+/** Ports whose line found no way and only says its name. */
+export function stubs(sheet: CircuitSheet): string[] {
+  return sheet.strokes.filter(({ role, part }) => role === "continuation" && part === undefined).map(({ path }) => JSON.stringify(path));
+}
+
 /** Which ports the machine joins, as `part.port part.port …`, sorted; ports with nothing joined are left out. */
 export function netsOfMachine(circuit: FluidCircuit): string[] {
   return circuit.nodes
@@ -175,6 +180,7 @@ export const usualCircuit: fc.Arbitrary<string> = fc
         rod: fc.array(fc.constantFrom("throttle", "one-way-flow-control", "check-valve", "pilot-operated-check-valve"), { maxLength: 2 }),
         gauge: fc.boolean(),
         second: fc.boolean(),
+        lock: fc.constantFrom("none", "none", "cap", "rod", "both"),
         switches: fc.nat(4),
         text: fc.constantFrom("Clamp", "Transfer slide to the second station", "X"),
       }),
@@ -199,7 +205,7 @@ export const usualCircuit: fc.Arbitrary<string> = fc
       else lines.push("line AIR1 -- FRL1 -- @P");
     }
     if (gauge) lines.push('gauge PG1 "Line pressure"', "line @P -- PG1");
-    axes.forEach(({ valve, cap, rod, gauge: own, second, switches: marks, text }, i) => {
+    axes.forEach(({ valve, cap, rod, gauge: own, second, lock, switches: marks, text }, i) => {
       const kind = hydraulic ? valve.replace("5/", "4/") : valve;
       const single = kind === "3/2";
       const [p, a, b] = hydraulic ? ["P", "A", "B"] : single ? ["1", "2", ""] : ["1", "4", "2"];
@@ -216,8 +222,13 @@ export const usualCircuit: fc.Arbitrary<string> = fc
           lines.push(`${one} ${name}${one === "one-way-flow-control" ? ` "Speed" free-to C${i}` : ""}`);
           return ` -- ${name}`;
         });
-      lines.push(`line @P -- V${i}.${p}`, `line V${i}.${a}${inline(cap).join("")} -- C${i}.cap`);
-      if (!single) lines.push(`line V${i}.${b}${inline(rod).join("")} -- C${i}.rod`);
+      const locked = (side: string) => {
+        if (single || (lock !== side && lock !== "both")) return "";
+        lines.push(`pilot-operated-check-valve L${i}${side}`, `pilot V${i}.${side === "cap" ? b : a} -- L${i}${side}.X`);
+        return ` -- L${i}${side}`;
+      };
+      lines.push(`line @P -- V${i}.${p}`, `line V${i}.${a}${locked("cap")}${inline(cap).join("")} -- C${i}.cap`);
+      if (!single) lines.push(`line V${i}.${b}${locked("rod")}${inline(rod).join("")} -- C${i}.rod`);
       if (second && !single)
         lines.push(
           `cylinder D${i} double-acting bore 50 mm rod 20 mm stroke 200 mm`,

@@ -163,9 +163,10 @@ export function portOf(block: Block, name: string): Block["ports"][number] {
   return block.ports.find((port) => port.name === name) ?? (block.ports[0] as Block["ports"][number]);
 }
 
-/** The least distance of anything from a text or from the outline of a symbol, modules. */
-export const textClearance = 0.25;
-export const bodyClearance = 0.6;
+/** How far the middle of a line keeps from a text, from a port's name beside its own lead, and from a symbol's outline, modules. */
+const textClearance = 0.53;
+const portNameClearance = 0.25;
+const bodyClearance = 0.6;
 
 /** What of a block lines keep out of. */
 export function forbidden(placed: Placed): { body: Extent; texts: Extent[] } {
@@ -175,7 +176,8 @@ export function forbidden(placed: Placed): { body: Extent; texts: Extent[] } {
   return {
     body: set(block.body, bodyClearance),
     texts: [
-      ...paragraphs(block.texts.map(textExtent)).map((extent) => set(extent, textClearance)),
+      ...paragraphs(block.texts.filter(({ role }) => role !== "port").map(textExtent)).map((extent) => set(extent, textClearance)),
+      ...block.texts.filter(({ role }) => role === "port").map((text) => set(textExtent(text), portNameClearance)),
       ...block.strokes.map(({ path, width }) => set(extentOfPath(path), width / 2 / module + 0.2)),
     ],
   };

@@ -28,8 +28,9 @@ export interface Composition {
   extent: Extent;
 }
 
-/** Rows between headers, and between the last one and what stands below. */
-const headerPitch = 3;
+/** Rows between headers; more where they say over their ends where they go on. */
+const plainPitch = 3;
+const wordedPitch = 4;
 
 /** How long a line is beyond the last thing on it, for the name and place it goes on to. */
 const wordRoom = 12;
@@ -64,6 +65,7 @@ export function compose({ groups, unit, headers, gap, even, width }: Content, _g
   );
   // A line that goes on elsewhere says so over its end.
   const worded = joined.some(({ before, after }) => before || after);
+  const headerPitch = worded ? wordedPitch : plainPitch;
   const firstRow = groups.length > 0 ? Math.ceil(Math.max(...groups.map(({ extent }) => extent.bottom))) + (worded ? 3 : 2) : 0;
   const drops = joined.flatMap(({ node }) => portsOn(placed, node));
   const lastRow = firstRow + Math.max(0, joined.length - 1) * headerPitch;

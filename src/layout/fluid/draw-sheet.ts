@@ -134,7 +134,7 @@ function drawContinuations(
         onSheet({ x, y }, origin),
       ],
     });
-    const at = onSheet({ x: x + out, y: y - 1.05 }, origin);
+    const at = onSheet({ x: x + out, y: y - 1.2 }, origin);
     const text: PlacedText = {
       part,
       role: "reference",

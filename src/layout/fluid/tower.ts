@@ -209,6 +209,7 @@ export function placeTower(tower: Tower, graph: FluidGraph, symbolOf: SymbolOf, 
   const upper: Placed[] = [];
   let edge = 0;
   const low: number[] = [];
+  let lineOfFirst: ((port: string) => number | undefined) | undefined;
   for (let index = 0; index < cylinders.length; index++) {
     const part = hang(tower, index, graph, symbolOf, slack);
     const extent = extentOfAll(part.placed);
@@ -216,12 +217,13 @@ export function placeTower(tower: Tower, graph: FluidGraph, symbolOf: SymbolOf, 
     for (const one of part.placed) upper.push({ block: one.block, at: { x: one.at.x + shift, y: one.at.y } });
     edge = extent.right + shift;
     low.push(part.bottom);
+    lineOfFirst ??= part.lineOf;
   }
   // 2. The first straight line down ends at the valve's port.
   const lane = tower.lanes.find(({ rootPort, cylinder }) => rootPort !== undefined && cylinder === 0);
   const first = upper[0];
   if (valve && first && lane) {
-    const shift = portOf(valve.block, lane.rootPort as string).x - portOf(first.block, lane.port).x;
+    const shift = portOf(valve.block, lane.rootPort as string).x - (lineOfFirst?.(lane.port) ?? portOf(first.block, lane.port).x);
     for (const one of upper) one.at = { x: one.at.x + shift, y: one.at.y };
   }
   const valveTop = valve ? valve.block.full.top : 0;
@@ -242,19 +244,62 @@ export function placeTower(tower: Tower, graph: FluidGraph, symbolOf: SymbolOf, 
   return { placed, extent: extentOfAll(placed), ...(least === undefined ? {} : { height: least }) };
 }
 
-/** A cylinder at the origin and what stands in and beside the lines below it; `bottom` is where the lines are free again. */
-function hang(tower: Tower, index: number, graph: FluidGraph, symbolOf: SymbolOf, slack: number): { placed: Placed[]; bottom: number } {
+/** How much further apart the lines of a cylinder stand where a pilot line passes between their parts, or one from each side. */
+const pilotRoom = { one: 4, two: 8 };
+
+/**
+ * How much further out the right one of a cylinder's two lines stands. A check valve that is opened from the other line has
+ * its pilot lead straight on that line, unless that has parts of its own.
+ */
+function roomBetween(lanes: readonly Lane[], graph: FluidGraph): number {
+  const [one, two] = lanes;
+  if (!one || !two || one.inline.length === 0 || two.inline.length === 0) return 0;
+  const piloted = [one, two].filter((lane) => lane.inline.some((inline) => pilotNode(inline, graph) !== undefined));
+  return piloted.length === 0 ? 0 : piloted.length === 1 ? pilotRoom.one : pilotRoom.two;
+}
+
+/** The node that opens a check valve from outside. */
+function pilotNode({ component }: Inline, graph: FluidGraph): FluidNodeId | undefined {
+  return component.kind === "pilot-operated-check-valve" ? graph.nodeOf(component, "X") : undefined;
+}
+
+/** Every node along a lane. */
+function nodesOf(lane: Lane, cylinder: FluidComponent, graph: FluidGraph): Set<FluidNodeId | undefined> {
+  return new Set([graph.nodeOf(cylinder, lane.port), ...lane.inline.map(({ component, lower }) => graph.nodeOf(component, lower))]);
+}
+
+/**
+ * A cylinder at the origin and what stands in and beside the lines below it; `bottom` is where the lines are free again, and
+ * `lineOf` says where the line of a port runs.
+ */
+function hang(
+  tower: Tower,
+  index: number,
+  graph: FluidGraph,
+  symbolOf: SymbolOf,
+  slack: number,
+): { placed: Placed[]; bottom: number; lineOf(port: string): number | undefined } {
   const component = tower.cylinders[index] as FluidComponent;
   const cylinder: Placed = { block: cylinderBlock(component, symbolOf(component)), at: { x: 0, y: 0 } };
   const placed: Placed[] = [cylinder];
   const lanes = tower.lanes.filter((lane) => lane.cylinder === index);
+  const apart = roomBetween(lanes, graph);
+  const first = Math.min(...lanes.map((lane) => portOf(cylinder.block, lane.port).x));
   const ways = lanes.map((lane) => {
     const port = portOf(cylinder.block, lane.port);
     // The lines stand outward of each other: the left one's things to its left, the right one's to its right.
-    const side: "left" | "right" = lanes.length > 1 && port.x < 5 ? "left" : "right";
+    const side: "left" | "right" = lanes.length > 1 && port.x === first ? "left" : "right";
+    const aside = side === "right" ? apart : 0;
     // Cylinders side by side share lines that run across below their ports.
-    return { lane, side, x: port.x, y: port.y + (tower.cylinders.length > 1 ? 3 : 0), next: 0 };
+    const y = port.y + (tower.cylinders.length > 1 ? 3 : 0) + (apart > 0 ? 2 : 0);
+    return { lane, side, x: port.x + aside, y, next: 0 };
   });
+  /** A pilot looks to where the other line is, if that is what it is taken from. */
+  const pilotInward = (lane: Lane, inline: Inline) => {
+    const node = pilotNode(inline, graph);
+    const others = lanes.filter((other) => other !== lane);
+    return node === undefined || others.length === 0 || others.some((other) => nodesOf(other, component, graph).has(node));
+  };
   const fits = (block: Block, x: number, y: number) => {
     const extent = moved(block.full, { x, y });
     return !placed.some((other) =>
@@ -271,30 +316,33 @@ function hang(tower: Tower, index: number, graph: FluidGraph, symbolOf: SymbolOf
     if (branches.length > 0) way.y = placeBeside(branches, way, placed, graph, symbolOf) + 1;
     const inline = lane.inline[i];
     if (!inline) continue;
-    const block = inlineBlock(inline, side, symbolOf);
+    const block = inlineBlock(inline, side, symbolOf, pilotInward(lane, inline));
     const above = portOf(block, inline.upper);
     let y = Math.ceil(way.y + (i === 0 && branches.length === 0 ? 1 : 1) + slack / 2 - above.y);
     while (!fits(block, x - above.x, y)) y++;
     placed.push({ block, at: { x: x - above.x, y } });
     way.y = y + portOf(block, inline.lower).y;
   }
-  const bottom = Math.max(
+  // Pilot lines cross over below their valves.
+  const pilots = lanes.reduce((sum, lane) => sum + lane.inline.filter((inline) => pilotNode(inline, graph) !== undefined).length, 0);
+  const lowest = Math.max(
     ...ways.map(({ y }) => y),
     ...placed.slice(1).map(({ block, at }) => at.y + block.full.bottom),
     portOf(cylinder.block, lanes[0]?.port ?? "").y,
   );
-  return { placed, bottom };
+  const bottom = lowest + (apart > 0 ? pilots : 0);
+  return { placed, bottom, lineOf: (port) => ways.find(({ lane }) => lane.port === port)?.x };
 }
 
 /** A part in a vertical line: of the ways to turn it, the one that keeps the room between the lines free. */
-function inlineBlock({ component, upper, lower }: Inline, side: "left" | "right", symbolOf: SymbolOf): Block {
+function inlineBlock({ component, upper, lower }: Inline, side: "left" | "right", symbolOf: SymbolOf, pilotInward = true): Block {
   if (component.kind === "valve") return valveBlock(component, symbolOf(component));
   const symbol = symbolOf(component);
   const inward = side === "left" ? 1 : -1;
   const turn = chooseTurn(symbol, { [upper]: "up", [lower]: "down" }, (turned) => {
     const third = turned.ports.find(({ name }) => name !== upper && name !== lower);
-    // A pilot looks to where the other line is; all else keeps its bulk away from it.
-    if (third) return -inward * third.x;
+    // All but a pilot keeps its bulk away from the other line.
+    if (third) return (pilotInward ? -inward : inward) * third.x;
     const { left, right } = extentOf(turned.box);
     return inward > 0 ? right : -left;
   });

@@ -8,9 +8,10 @@ import {
   symbolOverlaps,
   textOverlaps,
   textsOnWires,
+  tooClose,
   wiresThroughSymbols,
 } from "../../support/facts.js";
-import { anyCircuit, layOutText, netsOfMachine, netsOfSheets, usualCircuit } from "../../support/fluid-circuits.js";
+import { anyCircuit, layOutText, netsOfMachine, netsOfSheets, stubs, usualCircuit } from "../../support/fluid-circuits.js";
 
 const runs = Number(process.env.FLUID_RUNS ?? 25);
 
@@ -23,6 +24,8 @@ describe("circuits as machines have them", () => {
           expect(symbolOverlaps(sheet)).toEqual([]);
           expect(textOverlaps(sheet)).toEqual([]);
           expect(textsOnWires(sheet)).toEqual([]);
+          expect(tooClose(sheet, { lines: 0.8, others: 0.5 })).toEqual([]);
+          expect(stubs(sheet)).toEqual([]);
           expect(wiresThroughSymbols(sheet)).toEqual([]);
           expect(looseEnds(sheet)).toEqual([]);
           expect(slantedWires(sheet)).toEqual([]);
