@@ -10,8 +10,8 @@ import type { CircuitSheet, PlacedText } from "../placement.js";
 export interface Arrangement {
   /** A point of the sheet from its distance along the current and across it, both from the ladder's origin. */
   orient(along: Mm, across: Mm): Point;
-  /** The symbol of a part with its texts about the middle of its line. */
-  dress(use: ContactUse | LoadUse): Dressed;
+  /** The symbol of a part with its texts about the middle of its line. `tight`: the texts are wrapped so as not to widen its column. */
+  dress(use: ContactUse | LoadUse, tight: boolean): Dressed;
   /** Texts beside the return rail at the line of a load or at a rung's first line. */
   margin(entry: MarginEntry): Block;
   /** The number over a wire: how much room it takes along and above its line. */

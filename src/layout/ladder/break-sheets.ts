@@ -1,7 +1,7 @@
 import type { Mm } from "../../drawing/geometry.js";
 import type { Arrangement } from "./arrangement.js";
 import type { MeasuredRung } from "./measure-rungs.js";
-import { type ColumnNeeds, type ColumnPitch, leastSpan, noNeeds, withNeeds } from "./set-columns.js";
+import { type ColumnNeeds, type ColumnPitch, leastSpan, needsOfLoads, noNeeds, withNeeds } from "./set-columns.js";
 
 /** The rungs of one sheet with the distance of every line from the first line's room, across. */
 export interface RungSheet {
@@ -12,8 +12,8 @@ export interface RungSheet {
   title?: string;
   /** All room its lines take. */
   depth: Mm;
-  /** What its rungs ask of its columns. */
-  needs: ColumnNeeds;
+  /** Rungs that share their columns, from one of the sheet's rungs on, with what they ask of them. */
+  groups: { from: number; needs: ColumnNeeds }[];
 }
 
 /** Least distance between lines, and the grid that distances keep to, mm. */
@@ -33,7 +33,9 @@ export interface SheetRoom {
 
 /**
  * Shares the rungs out over sheets: each rung whole on one sheet, a new sheet where the author asks and where the next rung
- * has no room left, below the others or with its columns among theirs. Distances between lines grow with what stands on them.
+ * has no room left. Rungs keep to the same columns as long as these go into the sheet's width; where they do not, the rungs from
+ * there on have columns of their own. Distances between lines grow with what stands on them.
+ * @param linked whether wire joins a rung to one before it, so that both must keep to the same columns
  */
 export function breakSheets(
   rungs: readonly MeasuredRung[],
@@ -41,13 +43,14 @@ export function breakSheets(
   room: SheetRoom,
   pitch: LinePitch,
   arrangement: Arrangement,
+  linked: (rung: number) => boolean,
 ): RungSheet[] {
   const sheets: RungSheet[] = [];
   const asked = new Map(breaks.map((wanted) => [wanted.before, wanted]));
   let sheet: RungSheet | undefined;
   let below: Mm = 0;
   const open = (first: number, title: string | undefined) => {
-    sheet = { first, rungs: [], depth: 0, needs: noNeeds(), ...(title === undefined ? {} : { title }) };
+    sheet = { first, rungs: [], depth: 0, groups: [{ from: 0, needs: noNeeds() }], ...(title === undefined ? {} : { title }) };
     sheets.push(sheet);
     below = 0;
     return sheet;
@@ -57,14 +60,27 @@ export function breakSheets(
     if (!sheet || (wanted && sheet.rungs.length > 0)) sheet = open(index, wanted?.title);
     else if (wanted?.title !== undefined) sheet.title = wanted.title;
     let placed = stack(rung, sheet.depth, below, pitch);
-    const tooWide = leastSpan(withNeeds(sheet.needs, rung, arrangement), room.columns) > room.span;
-    if ((placed.depth > (sheets.length === 1 ? room.first : room.depth) || tooWide) && sheet.rungs.length > 0) {
+    const wide = (needs: ColumnNeeds) => leastSpan(needs, room.columns) > room.span;
+    const group = () => (sheet as RungSheet).groups.at(-1) as RungSheet["groups"][number];
+    let needs = withNeeds(group().needs, rung, arrangement);
+    const apart = sheet.rungs.length > 0 && wide(needs);
+    if (apart && !linked(index)) {
+      // The loads of a sheet stay in one column as long as that can be.
+      const loads = needsOfLoads(needs);
+      const own = withNeeds(loads, rung, arrangement);
+      sheet.groups.push({ from: sheet.rungs.length, needs: noNeeds() });
+      needs = wide(own) ? withNeeds(noNeeds(), rung, arrangement) : own;
+    }
+    if (sheet.rungs.length > 0 && (placed.depth > (sheets.length === 1 ? room.first : room.depth) || (apart && linked(index)))) {
+      const empty = group();
+      if (empty.from === sheet.rungs.length) sheet.groups.pop();
       sheet = open(index, sheet.title);
       placed = stack(rung, 0, 0, pitch);
+      needs = withNeeds(noNeeds(), rung, arrangement);
     }
     sheet.rungs.push({ rung, lines: placed.lines });
     sheet.depth = placed.depth;
-    sheet.needs = withNeeds(sheet.needs, rung, arrangement);
+    group().needs = needs;
     below = placed.below;
   });
   return sheets;

@@ -15,7 +15,10 @@ export interface SheetGiven {
   sheet: RungSheet;
   number: number;
   title: string;
-  columns: Columns;
+  /** From rail to rail. */
+  span: Mm;
+  /** The columns that hold from one of the sheet's rungs on. */
+  groups: { from: number; columns: Columns }[];
   arrangement: Arrangement;
   /** The live and the return rail. */
   rails: [NodeId, NodeId];
@@ -38,7 +41,7 @@ export interface DrawnLadderSheet {
 
 /** Sets everything of a sheet down in millimetres. */
 export function drawSheet(given: SheetGiven): DrawnLadderSheet {
-  const { circuit, sheet, number, title, columns, arrangement, rails, origin, firstLine, links, zoneOf } = given;
+  const { circuit, sheet, number, title, span, groups, arrangement, rails, origin, firstLine, links, zoneOf } = given;
   const out: CircuitSheet = {
     kind: "ladder",
     circuit: circuit.id,
@@ -62,10 +65,14 @@ export function drawSheet(given: SheetGiven): DrawnLadderSheet {
     places.push([part, { sheet: number, line, zone: zoneOf({ x: box.x + box.width / 2, y: box.y + box.height / 2 }), box }]);
   const across = (rung: number, line: number) => sheet.rungs[rung - sheet.first]?.lines[line];
 
+  const columnsOf = (index: number) =>
+    (groups.findLast(({ from }) => from <= index) ?? (groups[0] as SheetGiven["groups"][number])).columns;
+
   let line = firstLine;
   const lineOf = new Map<number, number>();
   for (const [index, { rung, lines }] of sheet.rungs.entries()) {
     const { grid, dressed, numbers, margins, endings } = rung;
+    const columns = columnsOf(index);
     lineOf.set(index + sheet.first, line);
     const stop = (end: Stop): Mm => {
       if ("boundary" in end) return columns.boundary(end.boundary);
@@ -94,19 +101,23 @@ export function drawSheet(given: SheetGiven): DrawnLadderSheet {
     for (const wanted of numbers) {
       const { words, room } = arrangement.wireNumber(wanted.node);
       const anchor = wanted.beside ? "start" : "middle";
-      const by = at(columns.boundary(wanted.boundary) + (wanted.beside ? 0.9 : 0), (lines[wanted.line] as Mm) - numberRise.gap);
+      const by = at(
+        columns.boundary(wanted.boundary) + (wanted.beside ? numberRise.beside : 0),
+        (lines[wanted.line] as Mm) - numberRise.gap,
+      );
       if (room > 0)
         text(
           { part: wirePart(circuit, wanted.node), role: "wire-number", at: { x: 0, y: 0 }, anchor, height: numberRise.height, text: words },
           by,
         );
     }
-    for (const { line: row, block } of margins) for (const words of block.texts) text(words, at(columns.span, lines[row] as Mm));
+    for (const { line: row, block } of margins) for (const words of block.texts) text(words, at(span, lines[row] as Mm));
     for (const ending of endings) {
       const part = endingPart(rung.grid.rung.id, ending.point, ending.kind);
       const x = columns.boundary(ending.boundary);
       const y = lines[ending.line] as Mm;
-      const { lead, head, half, gap } = endingSize;
+      const { head, half, gap } = endingSize;
+      const { lead } = ending;
       const drop = rung.lines[ending.line]?.drop ?? 0;
       const room = arrangement.endingRoom(ending.point);
       const reference = { to: "point", point: ending.point, from: part, way: ending.kind === "start" ? "in" : "out", room } as const;
@@ -149,7 +160,7 @@ export function drawSheet(given: SheetGiven): DrawnLadderSheet {
     place(grid.rung.id, line, {
       x: start.x,
       y: start.y - 4,
-      width: columns.span - columns.boundary(grid.start),
+      width: span - columns.boundary(grid.start),
       height: (lines.at(-1) as Mm) - (lines[0] as Mm) + 8,
     });
     for (const y of lines) {
@@ -162,7 +173,7 @@ export function drawSheet(given: SheetGiven): DrawnLadderSheet {
     const from = across(link.from.rung, link.from.line);
     const to = across(link.to.rung, link.to.line);
     if (from === undefined && to === undefined) continue;
-    const x = columns.boundary(link.boundary);
+    const x = columnsOf((from === undefined ? link.to.rung : link.from.rung) - sheet.first).boundary(link.boundary);
     const { head, half } = endingSize;
     if (from !== undefined && to !== undefined)
       pieces.push({ node: link.node, from: { along: x, across: from }, to: { along: x, across: to } });
@@ -198,7 +209,6 @@ export function drawSheet(given: SheetGiven): DrawnLadderSheet {
       );
     }
   }
-  const span = columns.span;
   for (const [index, node] of rails.entries()) {
     const x = index === 0 ? 0 : span;
     out.wires.push({

@@ -26,7 +26,7 @@ export const columnPitch = (scale: number): ColumnPitch => ({ usual: 30 * scale,
 export const linePitch = (scale: number): LinePitch => ({ least: scale === 1 ? 15 : 12.5, step: 1.25 });
 
 /** More than anybody draws; each round cuts what was still too large. */
-const rounds = 8;
+const rounds = 10;
 
 /**
  * Places and measures the rungs. Where many are wider than the sheet the symbols take the smaller module; a rung that is
@@ -41,6 +41,8 @@ export function fitRungs(
 ): FittedRungs {
   const taken = new Set(rungs.flatMap(pointsOf));
   const limits = new Map<number, RungLimits>();
+  /** Rungs that were too wide: their texts are wrapped as narrow as they go before anything is cut. */
+  const tight = new Set<number>();
   const limitsOf = (index: number): RungLimits =>
     limits.get(index) ?? { columns: Number.POSITIVE_INFINITY, lines: Number.POSITIVE_INFINITY };
   let scale = 1;
@@ -59,9 +61,10 @@ export function fitRungs(
       letters,
       (index) => limitsOf(origin[index] as number).columns,
     );
-    const measured = measureRungs(joined, new Set(rails), arrangement);
+    const measured = measureRungs(joined, new Set(rails), arrangement, (index) => tight.has(origin[index] as number));
     const fitted = { joined, measured, arrangement, scale, breaks };
     const next = new Map(limits);
+    const wideRungs = new Set<number>();
     let wide = 0;
     let tall = 0;
     const loads = needsOfLoads(measured.reduce((needs, rung) => withNeeds(needs, rung, arrangement), noNeeds()));
@@ -74,6 +77,7 @@ export function fitRungs(
       const along = leastSpan(withNeeds(noNeeds(), rung, arrangement), columnPitch(scale));
       if (along > offer.span) {
         wide++;
+        wideRungs.add(of);
         const columns = columnsOf(rung.grid);
         const share = Math.floor((columns * (offer.span - behind)) / Math.max(along - behind, 1));
         next.set(of, { ...lowered, columns: Math.max(1, Math.min(lowered.columns, known.columns - 1, Math.max(columns - 1, 1), share)) });
@@ -90,6 +94,11 @@ export function fitRungs(
       }
     });
     if ((wide === 0 && tall === 0) || round === rounds) return fitted;
+    const loose = [...wideRungs].filter((index) => !tight.has(index));
+    if (loose.length > 0) {
+      for (const index of loose) tight.add(index);
+      continue;
+    }
     if (!triedSmall && wide > 0 && (wide > measured.length * fewWide || offer.span < roomyColumns * columnPitch(1).usual)) {
       // Many wide rungs, or a narrow sheet: see what the smaller module does for them.
       triedSmall = true;

@@ -39,13 +39,14 @@ export function foldRungs(rungs: readonly Rung[], limitsOf: (index: number) => R
       queue.unshift(...more);
 
       /** Cuts a rung at its widest that fits; the rest goes on as a rung of its own. */
-      function cutWide(whole: Rung): Rung {
+      function cutWide(given: Rung): Rung {
+        let whole = given;
         const begins = whole.start.kind === "rail" ? 0 : 1;
         const ends = whole.end.kind === "rail" ? 0 : 1;
-        // The least a piece can be: an arrow in, a bracket narrowed to two arrows, and an arrow out.
-        const room = Math.max(limits.columns, 4) - begins;
+        // The least a piece can be: one part, or a bracket narrowed to two arrows, before an arrow out.
+        const room = Math.max(limits.columns - begins, 1);
         if (contactWidth(whole.path) + (bearsLoad(whole.path) ? 0 : ends) <= room) return whole;
-        const { items } = whole.path;
+        let { items } = whole.path;
         let width = 0;
         let kept = 0;
         while (kept < items.length && width + headWidth(items[kept] as Item) <= room - 1 && !isLoad(items[kept] as Item)) {
@@ -58,7 +59,11 @@ export function foldRungs(rungs: readonly Rung[], limitsOf: (index: number) => R
           const share = room - (items.length > 1 ? 1 : 0);
           const narrowed = first.kind === "parallel" ? narrow(first, Math.max(share, 2)) : first;
           const again: Rung = { ...whole, path: { ...whole.path, items: [narrowed, ...items.slice(1)] as SeriesPath["items"] } };
-          return narrowed === first || contactWidth(again.path) >= contactWidth(whole.path) ? again : cutWide(again);
+          if (narrowed !== first && contactWidth(again.path) < contactWidth(whole.path)) return cutWide(again);
+          if (items.length === 1 || isLoad(first)) return again;
+          whole = again;
+          items = again.path.items;
+          kept = 1;
         }
         while (kept < items.length && items[kept]?.kind === "point") kept++;
         const rest = items.slice(kept);

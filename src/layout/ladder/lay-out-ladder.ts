@@ -1,17 +1,17 @@
 import type { Mm } from "../../drawing/geometry.js";
 import type { PartId } from "../../drawing/marks.js";
-import { measureText } from "../../drawing/text.js";
 import type { ContactUse, LadderCircuit, LoadUse, Machine, NodeId, Rung } from "../../machine/model.js";
 import type { SymbolLibrary } from "../../symbols/library.js";
 import type { Symbol } from "../../symbols/symbol.js";
-import type { CircuitSheet, PageArea, Place, PlacedText } from "../placement.js";
+import type { CircuitSheet, PageArea, Place } from "../placement.js";
 import { breakSheets, type RungSheet } from "./break-sheets.js";
 import { drawSheet } from "./draw-sheet.js";
 import { columnPitch, fitRungs, linePitch } from "./fit-rungs.js";
 import type { Link } from "./grid.js";
+import { measureRailHead, nameRails } from "./name-rails.js";
 import { northAmerican } from "./north-american.js";
 import { scaleSymbol } from "./scale-symbol.js";
-import { setColumns } from "./set-columns.js";
+import { leastSpan, setColumns } from "./set-columns.js";
 import { fuseBlock, fuseScale, fuseSymbol, setFuse } from "./supply-fuse.js";
 
 /** The numbers a ladder's first sheet and first line get. */
@@ -50,8 +50,11 @@ export function layOutLadder(
     circuit.supply.fuse && symbols.names().includes(fuseSymbol)
       ? fuseBlock(circuit.supply.fuse, scaleSymbol(symbols.get(fuseSymbol), fuseScale))
       : undefined;
-  const firstHead = headRoom + (fuse?.length ?? 0);
-  const depth = page.area.height - headRoom - footRoom;
+  const beside = { left: lineNumberRoom, span: room.span, right: page.area.width - lineNumberRoom - room.span };
+  const heads = { plain: measureRailHead(circuit, beside, "next"), first: measureRailHead(circuit, beside, fuse ? "fused" : "first") };
+  const firstHead = headRoom + heads.first.above + heads.first.below + (fuse?.length ?? 0);
+  const nextHead = headRoom + heads.plain.above;
+  const depth = page.area.height - nextHead - footRoom;
   const offer = { ...room, depth: page.area.height - firstHead - footRoom };
 
   // 1. Every part has a column and a line on the grid, shared points are joined or end in a reference, every text is
@@ -66,6 +69,7 @@ export function layOutLadder(
     { depth, first: page.area.height - firstHead - footRoom, span: room.span, columns: columnPitch(scale) },
     linePitch(scale),
     arrangement,
+    linkedRungs(joined.links),
   );
   const firstLines = numberLines(broken, machine, numbering);
   // 3. Every sheet is set down in millimetres.
@@ -73,10 +77,11 @@ export function layOutLadder(
   const linksOf = shareLinks(joined.links, broken);
   const sheets = broken.map((sheet, index) => {
     const number = numbering.sheet + index;
-    const columns = setColumns(sheet.needs, room.span, columnPitch(scale));
-    const head = index === 0 ? firstHead : headRoom;
+    const span = Math.max(room.span, ...sheet.groups.map(({ needs }) => leastSpan(needs, columnPitch(scale))));
+    const groups = sheet.groups.map(({ from, needs }) => ({ from, columns: setColumns(needs, span, columnPitch(scale)) }));
+    const [head, heading] = index === 0 ? [firstHead, heads.first] : [nextHead, heads.plain];
     const origin = { x: page.area.x + lineNumberRoom, y: page.area.y + head };
-    const railFrom = railHead - head;
+    const railFrom = railHead + heading.above - head;
     const railTo = sheet.depth + footRoom - railFoot;
     const links = linksOf[index] ?? [];
     const drawn = drawSheet({
@@ -84,7 +89,8 @@ export function layOutLadder(
       sheet,
       number,
       title: sheet.title ?? circuit.title,
-      columns,
+      span,
+      groups,
       arrangement,
       rails,
       origin,
@@ -94,10 +100,17 @@ export function layOutLadder(
       links,
       zoneOf: (point) => page.zoneOf(point),
     });
-    if (fuse && index === 0) setFuse(drawn.sheet, fuse, { x: origin.x, y: origin.y + railFrom });
-    nameRails(drawn.sheet, circuit, columns.span, origin, railFrom, railTo, {
-      ...(index > 0 ? { from: endOf(broken, firstLines, index - 1, numbering) } : {}),
-      ...(index < broken.length - 1 ? { to: startOf(firstLines, index + 1, numbering) } : {}),
+    const behindFuse =
+      fuse && index === 0 ? setFuse(drawn.sheet, fuse, { x: origin.x, y: origin.y + railFrom }, span) - origin.y : undefined;
+    nameRails(drawn.sheet, circuit, {
+      head: heading,
+      origin,
+      room: { ...beside, span: span, right: beside.right + beside.span - span },
+      from: railFrom,
+      to: railTo,
+      ...(behindFuse !== undefined ? { behindFuse } : {}),
+      ...(index > 0 ? { comesFrom: endOf(broken, firstLines, index - 1, numbering) } : {}),
+      ...(index < broken.length - 1 ? { goesTo: startOf(firstLines, index + 1, numbering) } : {}),
     });
     places.push(...drawn.places);
     return drawn.sheet;
@@ -111,7 +124,7 @@ const lineNumberRoom: Mm = 14;
 /** Over the first line: the rails' names, and the rails down to it. */
 const headRoom: Mm = 14;
 /** From the top of the sheet's room to where the rails begin. */
-const railHead: Mm = 5;
+const railHead: Mm = 5.5;
 const footRoom: Mm = 9;
 const railFoot: Mm = 1;
 
@@ -150,6 +163,13 @@ function shareLinks(links: readonly Link[], sheets: readonly RungSheet[]): Link[
   return shared;
 }
 
+/** Whether wire joins a rung to one before it. */
+function linkedRungs(links: readonly Link[]): (rung: number) => boolean {
+  const joined = new Set<number>();
+  for (const { from, to } of links) for (let rung = from.rung + 1; rung <= to.rung; rung++) joined.add(rung);
+  return (rung) => joined.has(rung);
+}
+
 /** The number of the first line of each sheet. */
 function numberLines(sheets: readonly RungSheet[], machine: Machine, numbering: Numbering): number[] {
   let running = numbering.line;
@@ -164,31 +184,3 @@ const startOf = (firstLines: readonly number[], index: number, numbering: Number
   `sheet ${numbering.sheet + index}, line ${firstLines[index]}`;
 const endOf = (sheets: readonly RungSheet[], firstLines: readonly number[], index: number, numbering: Numbering) =>
   `sheet ${numbering.sheet + index}, line ${(firstLines[index] as number) + (sheets[index] as RungSheet).rungs.reduce((sum, { lines }) => sum + lines.length, 0) - 1}`;
-
-/** Names the rails at their heads, and says where they come from and go on. */
-function nameRails(
-  sheet: CircuitSheet,
-  circuit: LadderCircuit,
-  span: Mm,
-  origin: { x: Mm; y: Mm },
-  from: Mm,
-  to: Mm,
-  other: { from?: string; to?: string },
-) {
-  const { rails, voltage, current } = circuit.supply;
-  const say = (x: Mm, y: Mm, anchor: PlacedText["anchor"], height: Mm, role: PlacedText["role"], text: string) =>
-    sheet.texts.push({ role, at: { x: origin.x + x, y: origin.y + y }, anchor, height, text });
-  say(0, from - 1.3, "middle", 3.5, "rail", rails[0]);
-  say(span, from - 1.3, "middle", 3.5, "rail", rails[1]);
-  const volts = voltage ? `${voltage.text}${/[AD]C/.test(voltage.text) ? "" : ` ${current}`}` : current;
-  if (other.from === undefined) say(span / 2, from - 1.3, "middle", 2.5, "note", volts);
-  const inset = Math.max(measureText(rails[0], 3.5), measureText(rails[1], 3.5)) / 2 + 2;
-  if (other.from !== undefined) {
-    say(inset, from - 1.3, "start", 2.5, "note", `from ${other.from}`);
-    say(span - inset, from - 1.3, "end", 2.5, "note", `from ${other.from}`);
-  }
-  if (other.to !== undefined) {
-    say(2, to, "start", 2.5, "note", `to ${other.to}`);
-    say(span - 2, to, "end", 2.5, "note", `to ${other.to}`);
-  }
-}

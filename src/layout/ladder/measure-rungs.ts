@@ -18,10 +18,15 @@ export interface MeasuredRung {
   dressed: Map<Cell, Dressed>;
   numbers: NumberPlace[];
   margins: { line: number; block: Block }[];
-  endings: Ending[];
+  endings: MeasuredEnding[];
+  /** Boundaries on which wire comes to it or goes past it from other rungs. */
+  passes: number[];
   /** Room each line needs before and behind it, across. */
   lines: LineRoom[];
 }
+
+/** An ending with the wire from its boundary to its arrow, mm. */
+export type MeasuredEnding = Ending & { lead: Mm };
 
 export interface LineRoom {
   above: Mm;
@@ -33,15 +38,25 @@ export interface LineRoom {
 /** Where an ending's arrow and text stand off the wire, mm. */
 export const endingSize = { lead: 3.5, head: 2.5, half: 1.25, gap: 0.9 } as const;
 
-/** Height of a wire number with its distance from the wire, mm. */
-export const numberRise = { gap: 1.1, height: 2.5 } as const;
+/** Height of a wire number with its distances from the wire and from an upright it stands behind, mm. */
+export const numberRise = { gap: 1.1, height: 2.5, beside: 0.9 } as const;
 
-/** Dresses every part, chooses where each wire carries its number, and says how much room every line needs. */
-export function measureRungs({ grids, links, endings }: Joined, rails: ReadonlySet<NodeId>, arrangement: Arrangement): MeasuredRung[] {
+/**
+ * Dresses every part, chooses where each wire carries its number, and says how much room every line needs.
+ * @param tight whether the texts of a rung are to be wrapped as narrow as its symbols
+ */
+export function measureRungs(
+  { grids, links, endings }: Joined,
+  rails: ReadonlySet<NodeId>,
+  arrangement: Arrangement,
+  tight: (rung: number) => boolean,
+): MeasuredRung[] {
   const endingsOf = groupBy(endings, (ending) => ending.rung);
+  const passes = grids.map(() => new Set<number>());
+  for (const { boundary, from, to } of links) for (let rung = from.rung; rung <= to.rung; rung++) passes[rung]?.add(boundary);
   const arrivals = groupBy(links, (link) => link.to.rung);
   return grids.map((grid, index) => {
-    const dressed = new Map(grid.cells.map((cell) => [cell, arrangement.dress(cell.use)]));
+    const dressed = new Map(grid.cells.map((cell) => [cell, arrangement.dress(cell.use, tight(index))]));
     const lines = Array.from(
       { length: grid.lines },
       () => ({ above: numberRise.gap + numberRise.height + 0.4, below: 1, drop: 0 }) satisfies LineRoom as LineRoom,
@@ -56,14 +71,23 @@ export function measureRungs({ grids, links, endings }: Joined, rails: ReadonlyS
     const margins = marginsOf(grid, arrangement);
     for (const { line, block } of margins) claim(line, block.above, block.below);
     const own = endingsOf.get(index) ?? [];
-    for (const room of lines) room.drop = Math.max(room.below, 3);
+    for (const room of lines) room.drop = Math.max(room.below + 0.7, 3);
     for (const { kind, line } of own) {
       if (kind === "drop") claim(line, 0, (lines[line] as LineRoom).drop + endingSize.head + endingSize.gap + 2.5 * 1.3);
     }
     const fromAbove = new Set((arrivals.get(index) ?? []).map(({ node, boundary }) => `${node} ${boundary}`));
     const numbers = placeNumbers(grid, rails, fromAbove, own);
-    return { grid, dressed, numbers, margins, endings: own, lines };
+    const leads = own.map((ending) => ({ ...ending, lead: leadOf(ending, numbers, arrangement) }));
+    return { grid, dressed, numbers, margins, endings: leads, passes: [...(passes[index] ?? [])], lines };
   });
+}
+
+/** An arrow at the end of a line stands clear of a number over its wire. */
+function leadOf({ kind, line, boundary }: Ending, numbers: readonly NumberPlace[], arrangement: Arrangement): Mm {
+  const number = kind === "end" ? numbers.find((other) => other.line === line && other.boundary === boundary) : undefined;
+  if (!number) return endingSize.lead;
+  const { room } = arrangement.wireNumber(number.node);
+  return Math.max(endingSize.lead, (number.beside ? room + numberRise.beside : room / 2) + 0.8);
 }
 
 /** The number of each potential stands once in a rung: on the uppermost of its wires, as near to its source as it can. */

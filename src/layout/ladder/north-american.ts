@@ -1,5 +1,5 @@
 import type { Mm } from "../../drawing/geometry.js";
-import { measureText, wrapText } from "../../drawing/text.js";
+import { measureText } from "../../drawing/text.js";
 import type { ContactUse, Device, LoadUse, Machine } from "../../machine/model.js";
 import type { Symbol } from "../../symbols/symbol.js";
 import type { PlacedText, Reference, ReferenceTo } from "../placement.js";
@@ -7,7 +7,9 @@ import type { Arrangement, Block, Dressed, MarginEntry } from "./arrangement.js"
 import { numberRise } from "./measure-rungs.js";
 import { reachInBand } from "./reach-in-band.js";
 import { scaleSymbol } from "./scale-symbol.js";
-import { around, roomOf } from "./text-box.js";
+import { around, hang, roomOf } from "./text-box.js";
+import { wrapName, wrapNameAt, wrappedPitch } from "./wrap-name.js";
+import { wrapOwnTexts } from "./wrap-own-texts.js";
 
 /** Heights of text on a ladder sheet, mm (ISO 3098 series). */
 export const textHeight = { usual: 2.5, small: 1.8 } as const;
@@ -32,7 +34,11 @@ export function northAmerican({ machine, symbolOf, margin, scale }: NorthAmerica
   const potentials = new Map(machine.potentials.map((potential) => [potential.id, potential]));
   return {
     orient: (along, across) => ({ x: along, y: across }),
-    dress: (use) => dress(use, machine, scaleSymbol(symbolOf(use), scale), scale),
+    dress: (use, tight) => {
+      const selector = machine.devices.get(use.device)?.kind === "selector-switch";
+      const width = Math.max((tight ? tightLabel : widestLabel) * scale, selector ? narrowestSelector : 0);
+      return dress(use, machine, wrapOwnTexts(scaleSymbol(symbolOf(use), scale), width), scale, width);
+    },
     margin: (entry) => marginBlock(entry, machine, margin),
     wireNumber: (node) => {
       const words = potentials.get(node)?.number.value ?? "";
@@ -41,11 +47,22 @@ export function northAmerican({ machine, symbolOf, margin, scale }: NorthAmerica
       return { words, room: measureText(longest, textHeight.usual) };
     },
     endingHeight,
-    endingRoom: (point) => measureText(`${point} 8/8888`, endingHeight),
+    endingRoom: (point) => Math.min(measureText(`${point} 8/8888`, endingHeight), widestEnding * scale),
   };
 }
 
-function dress(use: ContactUse | LoadUse, machine: Machine, symbol: Symbol, scale: number): Dressed {
+/** No text makes a column wider than this, mm on the usual module. */
+const widestLabel: Mm = 43;
+/** Texts that leave a column as wide as its symbol needs. */
+const tightLabel: Mm = 25;
+/** Room that the positions of a selector need about its pointer on any module. */
+const narrowestSelector: Mm = 28;
+/** Room at an arrow: a longer name is shortened there, so that the place after it is kept. */
+const widestEnding: Mm = 24;
+/** A name takes no more lines than this. */
+const mostLines = 3;
+
+function dress(use: ContactUse | LoadUse, machine: Machine, symbol: Symbol, scale: number, width: Mm): Dressed {
   const device = machine.devices.get(use.device);
   const ports = symbol.ports;
   const left = ports.find((port) => port.direction === "left") ?? ports[0] ?? { x: -10, y: 0 };
@@ -68,17 +85,14 @@ function dress(use: ContactUse | LoadUse, machine: Machine, symbol: Symbol, scal
       height: inside.height,
       text: inside.words,
     });
-  const labels = selectorLabels(use, device, symbol);
+  const labels = selectorLabels(use, device, symbol, width);
   texts.push(...labels.map((text) => ({ ...text, at: { x: text.at.x + shift.x, y: text.at.y + shift.y } })));
   const highest = Math.min(top, ...labels.map((text) => roomOf(text).y + shift.y - clearance));
   if (!inside) {
-    texts.push({
-      part: use.id,
-      role: "designation",
-      at: { x: 0, y: highest - hang(use.device) },
-      anchor: "middle",
-      height: textHeight.usual,
-      text: use.device,
+    const { lines, height } = wrapNameAt([textHeight.usual, textHeight.small], use.device, width, mostLines);
+    lines.forEach((text, index) => {
+      const y = highest - hang(lines.at(-1) as string, height) - (lines.length - 1 - index) * wrappedPitch(height);
+      texts.push({ part: use.id, role: "designation", at: { x: 0, y }, anchor: "middle", height, text });
     });
   }
 
@@ -101,7 +115,7 @@ function dress(use: ContactUse | LoadUse, machine: Machine, symbol: Symbol, scal
   });
 
   let baseline = bottom;
-  for (const { role, words, height } of underWords(use, device, 2 * reach)) {
+  for (const { role, words, height } of underWords(use, device, Math.min(2 * reach + 4, width), width)) {
     baseline += height;
     texts.push({ part: use.id, role, at: { x: 0, y: baseline }, anchor: "middle", height, text: words });
     baseline += height * 0.45 + 0.3;
@@ -124,9 +138,6 @@ function dress(use: ContactUse | LoadUse, machine: Machine, symbol: Symbol, scal
 /** Between a symbol and a text over or under it. */
 const clearance: Mm = 0.8;
 
-/** Room for letters that hang below the line. */
-const hang = (words: string): Mm => (/[gjpqyQ_,;()]/.test(words) ? textHeight.usual * 0.3 : 0);
-
 /** A coil's designation stands in its circle if it has room there. */
 function insideWords(use: ContactUse | LoadUse, device: Device | undefined, scale: number): { words: string; height: Mm } | undefined {
   if (use.kind !== "load" || !device) return undefined;
@@ -136,23 +147,41 @@ function insideWords(use: ContactUse | LoadUse, device: Device | undefined, scal
   return height === undefined ? undefined : { words: use.device, height };
 }
 
-function selectorLabels(use: ContactUse | LoadUse, device: Device | undefined, symbol: Symbol): PlacedText[] {
+/**
+ * The positions of a selector about its pointer: those at the sides wrapped about their height, the one between them over
+ * the pointer and, where it is wide, over the others too.
+ */
+function selectorLabels(use: ContactUse | LoadUse, device: Device | undefined, symbol: Symbol, width: Mm): PlacedText[] {
   const positions = use.kind === "contact" ? device?.selector?.positions : undefined;
   if (!positions) return [];
-  return positions.flatMap((position, index) => {
+  const height = textHeight.small;
+  const pitch = wrappedPitch(height);
+  const spots = positions.flatMap((position, index) => {
     const spot = symbol.spots[`position-${index + 1}`];
-    if (!spot) return [];
-    return [
-      {
-        part: use.id,
-        role: "value",
-        at: { x: spot.x, y: spot.y },
-        anchor: spot.anchor,
-        height: textHeight.small,
-        text: position,
-      } satisfies PlacedText,
-    ];
+    return spot ? [{ position, spot }] : [];
   });
+  const placed: PlacedText[] = [];
+  const set = (lines: readonly string[], x: Mm, last: Mm, anchor: PlacedText["anchor"]) =>
+    lines.forEach((text, index) => {
+      placed.push({ part: use.id, role: "value", at: { x, y: last - (lines.length - 1 - index) * pitch }, anchor, height, text });
+    });
+  for (const { position, spot } of spots) {
+    if (spot.anchor === "middle") continue;
+    const lines = wrapName(position, height, width / 2 - Math.abs(spot.x), mostLines);
+    // Clear of the numbers over the wire, as far as they have to come down at all.
+    const lowest = Math.max(spot.y, -numberRise.gap - numberRise.height - clearance - hang(lines.at(-1) ?? "", height));
+    set(lines, spot.x, Math.min(spot.y + ((lines.length - 1) * pitch) / 2, lowest), spot.anchor);
+  }
+  const sides = placed.map(roomOf);
+  for (const { position, spot } of spots) {
+    if (spot.anchor !== "middle") continue;
+    const lines = wrapName(position, height, width, mostLines);
+    const reach = Math.max(0, ...lines.map((line) => measureText(line, height) / 2)) + 0.8;
+    const beside = sides.filter(({ x, width }) => x < spot.x + reach && x + width > spot.x - reach);
+    const below = Math.min(symbol.box.y - 0.6, ...beside.map(({ y }) => y - 0.6)) - hang(lines.at(-1) ?? "", height);
+    set(lines, spot.x, Math.min(spot.y, below), spot.anchor);
+  }
+  return placed;
 }
 
 interface UnderWords {
@@ -161,17 +190,17 @@ interface UnderWords {
   height: Mm;
 }
 
-/** What stands under a symbol, from its line outward. */
-function underWords(use: ContactUse | LoadUse, device: Device | undefined, width: Mm): UnderWords[] {
+/** What stands under a symbol, from its line outward: words no wider than `width`, references no wider than `widest`. */
+function underWords(use: ContactUse | LoadUse, device: Device | undefined, width: Mm, widest: Mm): UnderWords[] {
   if (!device) return [];
   const { usual, small } = textHeight;
   const reference = (to: ReferenceTo, longest: string, height: Mm): UnderWords => ({
     role: "reference",
-    words: { ...to, room: measureText(longest, height) },
+    words: { ...to, room: Math.min(measureText(longest, height), widest) },
     height,
   });
   const words = (text: string | undefined, role: "function" | "value" = "function"): UnderWords[] =>
-    wrapText(text ?? "", small, width + 4, 2).map((line) => ({ role, words: line, height: small }));
+    wrapName(text ?? "", small, width, mostLines).map((line) => ({ role, words: line, height: small }));
   if (use.kind === "load") {
     if (device.kind !== "timer" || !device.delay) return [];
     return words(`${device.delay.mode === "on-delay" ? "ON DELAY" : "OFF DELAY"} ${device.delay.time.text}`, "value");
@@ -227,7 +256,7 @@ function marginBlock({ title, load }: MarginEntry, machine: Machine, margin: Mar
   const words = [title, device?.text].filter(
     (text, index, all) => text !== undefined && text !== "" && all.indexOf(text) === index,
   ) as string[];
-  const lines = words.flatMap((text) => wrapText(text, usual, margin.words, 3));
+  const lines = words.flatMap((text) => wrapName(text, usual, margin.words, mostLines));
   const pitch = usual * 1.6;
   lines.forEach((line, index) => {
     const y = usual / 2 + (index - (lines.length - 1) / 2) * pitch;

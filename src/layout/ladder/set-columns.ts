@@ -20,11 +20,12 @@ export interface ColumnPitch {
   gap: Mm;
 }
 
-/** What rungs ask of the columns they share: half widths of parts and of texts, gaps between, and stretches from boundary to boundary. */
+/** What rungs ask of the columns they share: half widths of parts and of texts, room before and behind boundaries, and stretches from boundary to boundary. */
 export interface ColumnNeeds {
   bodies: Map<number, Mm>;
   labels: Map<number, Mm>;
-  gaps: Map<number, Mm>;
+  before: Map<number, Mm>;
+  behind: Map<number, Mm>;
   spans: Map<number, Mm>;
   /** Texts behind the last of a line: from their boundary, as far as the return rail at most. */
   ends: Map<number, Mm>;
@@ -33,17 +34,27 @@ export interface ColumnNeeds {
 }
 
 export function noNeeds(): ColumnNeeds {
-  return { bodies: new Map(), labels: new Map(), gaps: new Map(), spans: new Map(), ends: new Map(), contacts: 0, returns: 1 };
+  return {
+    bodies: new Map(),
+    labels: new Map(),
+    before: new Map(),
+    behind: new Map(),
+    spans: new Map(),
+    ends: new Map(),
+    contacts: 0,
+    returns: 0,
+  };
 }
 
 /** Of these needs, those of the loads and what lies behind them: the part of a sheet that all rungs of a ladder share. */
 export function needsOfLoads(needs: ColumnNeeds): ColumnNeeds {
-  const behind = (map: Map<number, Mm>) => new Map([...map].filter(([index]) => index >= loadColumn));
+  const shared = (map: Map<number, Mm>) => new Map([...map].filter(([index]) => index >= loadColumn));
   return {
-    bodies: behind(needs.bodies),
-    labels: behind(needs.labels),
-    gaps: behind(needs.gaps),
-    spans: behind(needs.spans),
+    bodies: shared(needs.bodies),
+    labels: shared(needs.labels),
+    before: shared(needs.before),
+    behind: shared(needs.behind),
+    spans: shared(needs.spans),
     ends: new Map(),
     contacts: 0,
     returns: needs.returns,
@@ -51,12 +62,17 @@ export function needsOfLoads(needs: ColumnNeeds): ColumnNeeds {
 }
 
 /** The needs of a rung beside those of others. */
-export function withNeeds(others: ColumnNeeds, { grid, dressed, numbers, endings }: MeasuredRung, arrangement: Arrangement): ColumnNeeds {
+export function withNeeds(
+  others: ColumnNeeds,
+  { grid, dressed, numbers, endings, passes }: MeasuredRung,
+  arrangement: Arrangement,
+): ColumnNeeds {
   const needs: ColumnNeeds = {
     ...others,
     bodies: new Map(others.bodies),
     labels: new Map(others.labels),
-    gaps: new Map(others.gaps),
+    before: new Map(others.before),
+    behind: new Map(others.behind),
     spans: new Map(others.spans),
     ends: new Map(others.ends),
   };
@@ -70,14 +86,17 @@ export function withNeeds(others: ColumnNeeds, { grid, dressed, numbers, endings
     widen(needs.labels, cell.column, label);
     reach(cell.column + 1);
   }
+  for (const boundary of passes) reach(boundary);
   for (const run of grid.runs) for (const stop of [run.from, run.to]) reach(boundaryOf(stop));
   for (const { node, boundary, beside } of numbers) {
     const { room } = arrangement.wireNumber(node);
-    if (room > 0) widen(needs.gaps, boundary, beside ? 2 * (room + 1.8) : room + 2);
+    if (room === 0) continue;
+    widen(needs.behind, boundary, beside ? room + 1.8 : room / 2 + 1);
+    if (!beside) widen(needs.before, boundary, room / 2 + 1);
   }
-  for (const { kind, boundary, point, last } of endings) {
+  for (const { kind, boundary, point, last, lead } of endings) {
     const room = arrangement.endingRoom(point);
-    const along = endingSize.lead + endingSize.head + endingSize.gap + room + 1.5;
+    const along = lead + endingSize.head + endingSize.gap + room + 1.5;
     if (kind === "start") widen(needs.spans, boundary - 1, along);
     else if (kind === "end" && last) widen(needs.ends, boundary, along);
     else if (kind === "end") {
@@ -88,18 +107,25 @@ export function withNeeds(others: ColumnNeeds, { grid, dressed, numbers, endings
   return needs;
 }
 
+/** Kept free beside the texts of a column, to either side, mm. */
+const beside: Mm = 1.2;
+
 /** The least widths of columns that meet the needs. */
-function leastColumns({ bodies, labels, gaps, spans, contacts, returns }: ColumnNeeds, pitch: ColumnPitch) {
-  const gap = (boundary: number) => Math.max(gaps.get(boundary) ?? 0, pitch.gap);
+function leastColumns({ bodies, labels, before, behind, spans, contacts, returns }: ColumnNeeds, pitch: ColumnPitch) {
+  const roomBefore = (boundary: number) => Math.max(before.get(boundary) ?? 0, pitch.gap / 2);
+  const roomBehind = (boundary: number) => Math.max(behind.get(boundary) ?? 0, pitch.gap / 2);
   const half = (column: number) => {
-    const body = bodies.get(column) ?? pitch.usual / 2 - pitch.gap / 2;
+    const body = bodies.get(column) ?? pitch.usual * 0.3;
     // Texts may reach into the gaps, up to the uprights that may run there.
-    const overhang = Math.min(...[column, column + 1].map((side) => gap(side) / 2));
-    return Math.max(body, (labels.get(column) ?? 0) + 0.8 - overhang);
+    const overhang = Math.min(roomBehind(column), roomBefore(column + 1));
+    return Math.max(body, (labels.get(column) ?? 0) + beside - overhang);
   };
-  const advance = (column: number) => Math.max((gap(column) + gap(column + 1)) / 2 + 2 * half(column), spans.get(column) ?? 0);
+  const advance = (column: number) => Math.max(roomBehind(column) + 2 * half(column) + roomBefore(column + 1), spans.get(column) ?? 0);
   return {
-    gap,
+    roomBefore,
+    roomBehind,
+    // What stands over the last boundary before the loads needs its room on both sides.
+    between: contacts > 0 ? Math.max(0, roomBehind(contacts) - roomBehind(loadColumn)) : 0,
     contactColumns: Array.from({ length: contacts }, (_, c) => advance(c)),
     loads: Array.from({ length: returns }, (_, c) => advance(loadColumn + c)),
   };
@@ -114,8 +140,8 @@ function reachOfEnds({ ends }: ColumnNeeds, contactColumns: readonly Mm[]): Mm {
 
 /** From rail to rail at the least. */
 export function leastSpan(needs: ColumnNeeds, pitch: ColumnPitch): Mm {
-  const { contactColumns, loads } = leastColumns(needs, pitch);
-  return Math.max(sum(contactColumns) + sum(loads), reachOfEnds(needs, contactColumns));
+  const { contactColumns, between, loads } = leastColumns(needs, pitch);
+  return Math.max(sum(contactColumns) + between + sum(loads), reachOfEnds(needs, contactColumns));
 }
 
 /**
@@ -124,14 +150,14 @@ export function leastSpan(needs: ColumnNeeds, pitch: ColumnPitch): Mm {
  * their wires run straight between.
  */
 export function setColumns(needs: ColumnNeeds, span: Mm, pitch: ColumnPitch): Columns {
-  const { gap, contactColumns, loads } = leastColumns(needs, pitch);
+  const { roomBefore, roomBehind, contactColumns, between, loads } = leastColumns(needs, pitch);
   const behind = sum(loads);
   const length = Math.max(span, leastSpan(needs, pitch));
   // Even pitch first, then a share of what is left over.
   const evened = contactColumns.map((width) => Math.max(width, pitch.usual));
-  const fits = sum(evened) + behind <= length;
+  const fits = sum(evened) + between + behind <= length;
   const base = fits ? evened : contactColumns;
-  const spare = length - sum(base) - behind;
+  const spare = length - sum(base) - between - behind;
   const stretch = contactColumns.length > 0 && fits ? Math.min(spare / (contactColumns.length + 1), pitch.widest - pitch.usual) : 0;
   const stretched = base.map((width) => (width >= pitch.widest ? width : Math.min(width + Math.max(0, stretch), pitch.widest)));
   const widths = reachOfEnds(needs, stretched) <= length ? stretched : contactColumns;
@@ -145,8 +171,8 @@ export function setColumns(needs: ColumnNeeds, span: Mm, pitch: ColumnPitch): Co
   return {
     boundary,
     middle: (column) => {
-      const from = boundary(column) + gap(column) / 2;
-      const to = (column >= loadColumn || column + 1 < at.length ? boundary(column + 1) : length) - gap(column + 1) / 2;
+      const from = boundary(column) + roomBehind(column);
+      const to = (column >= loadColumn || column + 1 < at.length ? boundary(column + 1) : length) - roomBefore(column + 1);
       return (from + to) / 2;
     },
     span: length,

@@ -1,5 +1,5 @@
 import { textBox } from "../../drawing/extent.js";
-import type { Box } from "../../drawing/geometry.js";
+import type { Box, Mm } from "../../drawing/geometry.js";
 import type { PlacedText } from "../placement.js";
 
 /** The box a level text needs, with what hangs below its baseline; a reference needs all of its room. */
@@ -22,3 +22,6 @@ export function around(boxes: readonly Box[]): Box {
     height: Math.max(...boxes.map((box) => box.y + box.height)) - y,
   };
 }
+
+/** Room for what hangs below the baseline of these words, mm. */
+export const hang = (words: string, height: Mm): Mm => (/[gjpqyQ_,;()@/]/.test(words) ? height * 0.3 : 0);
