@@ -1,5 +1,6 @@
 import { readdirSync, readFileSync } from "node:fs";
-import { readFile } from "node:fs/promises";
+import { readFile, realpath } from "node:fs/promises";
+import { sep } from "node:path";
 import { fileURLToPath } from "node:url";
 import type { World } from "./world.js";
 
@@ -8,8 +9,12 @@ const home = new URL("../", import.meta.url);
 
 /** The world on disk: the user's files below the working folder, and the symbols and templates carried with the package. */
 export const nodeWorld: World = {
-  async readText(path) {
+  async readText(path, within) {
     try {
+      if (within !== undefined) {
+        const [file, folder] = await Promise.all([realpath(path), realpath(within || ".")]);
+        if (!file.startsWith(folder.endsWith(sep) ? folder : folder + sep)) return { problem: "outside" };
+      }
       return decodeText(await readFile(path));
     } catch (error) {
       const code = (error as NodeJS.ErrnoException).code;

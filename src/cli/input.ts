@@ -8,7 +8,7 @@ import { ExitCode } from "./exit-code.js";
 export async function worldFor(files: readonly string[], desk: Desk): Promise<World> {
   if (!files.includes("-")) return desk;
   const input = decodeText(await desk.readInput());
-  return { ...desk, readText: async (path) => (path === "-" ? input : desk.readText(path)) };
+  return { ...desk, readText: async (path, within) => (path === "-" ? input : desk.readText(path, within)) };
 }
 
 /** Codes of findings that mean: the file named on the command line was never seen. */

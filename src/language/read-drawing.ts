@@ -43,38 +43,46 @@ async function readFile(file: string, at: SourceRange, written: string | undefin
     return [];
   }
   if (reading.sources.has(file)) return [];
-  const read = await reading.world.readText(file);
+  const read = await (written === undefined ? reading.world.readText(file) : reading.world.readText(file, reading.root));
   if ("problem" in read) {
+    const { problem } = read;
+    if (problem === "outside") {
+      outside(written ?? file, at, reading);
+      return [];
+    }
     const name = written ?? file;
     if (written === undefined) reading.sources.set(file, "");
-    const code = read.problem === "not-text" ? "not-text" : written === undefined ? `file-${read.problem}` : `include-${read.problem}`;
+    const code = problem === "not-text" ? "not-text" : written === undefined ? `file-${problem}` : `include-${problem}`;
     report(
       reading,
       code,
       at,
-      unreadable(name, read.problem),
-      read.problem === "not-text" ? { hint: "A drawing is a plain text file in UTF-8, usually ending in .sprung." } : {},
+      unreadable(name, problem),
+      problem === "not-text" ? { hint: "A drawing is a plain text file in UTF-8, usually ending in .sprung." } : {},
     );
     return [];
   }
   reading.sources.set(file, withoutMark(read.text));
   const { tree, diagnostics, includes } = parse(read.text, file);
-  reading.diagnostics.push(...diagnostics);
+  for (const diagnostic of diagnostics) reading.diagnostics.push(diagnostic);
   reading.open.push({ file, at });
   const statements: Statement[] = [];
   let done = 0;
   for (const include of includes) {
     for (; done < include.index; done++) statements.push(tree.statements[done] as Statement);
     const target = within(reading.root, folderOf(file), include.path);
-    if (target === undefined) {
-      report(reading, "include-outside-folder", include.at, `"${include.path}" leads out of the folder of the drawing.`, {
-        hint: `Write a path below ${reading.root === "" ? "the drawing's folder" : reading.root}, with "/" between folders.`,
-      });
-    } else for (const statement of await readFile(target, include.at, include.path, reading)) statements.push(statement);
+    if (target === undefined) outside(include.path, include.at, reading);
+    else for (const statement of await readFile(target, include.at, include.path, reading)) statements.push(statement);
   }
   for (; done < tree.statements.length; done++) statements.push(tree.statements[done] as Statement);
   reading.open.pop();
   return statements;
+}
+
+function outside(path: string, at: SourceRange, reading: Reading): void {
+  report(reading, "include-outside-folder", at, `"${path}" leads out of the folder of the drawing.`, {
+    hint: `Write a path below ${reading.root === "" ? "the drawing's folder" : reading.root}, with "/" between folders.`,
+  });
 }
 
 function unreadable(name: string, problem: "missing" | "unreadable" | "not-text" | "folder"): string {

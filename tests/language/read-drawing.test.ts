@@ -1,5 +1,9 @@
+import { mkdirSync, mkdtempSync, rmSync, symlinkSync, writeFileSync } from "node:fs";
+import { tmpdir } from "node:os";
+import { join } from "node:path";
 import { describe, expect, test } from "vitest";
 import { readDrawing } from "../../src/language/read-drawing.js";
+import { nodeWorld } from "../../src/node-world.js";
 import type { World } from "../../src/world.js";
 import { at } from "./view.js";
 
@@ -94,6 +98,27 @@ describe("includes", () => {
     expect(result.found.map((it) => it.split(" ")[1])).toEqual(["include-outside-folder"]);
     expect(result.asked).toEqual(["d/m"]);
     expect(result.names).toEqual(["d/m M"]);
+  });
+
+  test("a link that leads out of the folder is not followed; one that stays within is", async () => {
+    const folder = mkdtempSync(join(tmpdir(), "includes-"));
+    try {
+      mkdirSync(join(folder, "machine/parts"), { recursive: true });
+      writeFileSync(join(folder, "secret"), "relay S");
+      writeFileSync(join(folder, "machine/parts/own"), "relay R");
+      writeFileSync(join(folder, "machine/m"), 'include "a"\ninclude "b"\ninclude "c/secret"');
+      symlinkSync("../secret", join(folder, "machine/a"));
+      symlinkSync("parts/own", join(folder, "machine/b"));
+      symlinkSync("..", join(folder, "machine/c"));
+      const { tree, diagnostics } = await readDrawing(join(folder, "machine/m"), nodeWorld);
+      expect(diagnostics.map((d) => `${d.code} ${at(d.at)}`)).toEqual([
+        "include-outside-folder 1:9-1:12",
+        "include-outside-folder 3:9-3:19",
+      ]);
+      expect(tree.statements.map((it) => (it.kind === "declaration" ? it.name?.text : it.kind))).toEqual(["R"]);
+    } finally {
+      rmSync(folder, { recursive: true });
+    }
   });
 
   test("one file's includes never leave the first file's folder, though they leave their own", async () => {
