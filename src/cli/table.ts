@@ -2,7 +2,7 @@
 export function writeTable(head: readonly string[], rows: readonly (readonly string[])[], color: boolean): string {
   const plain = (cell: string) => cell.replace(/\p{Cc}/gu, " ");
   const cells = [head, ...rows].map((row) => row.map(plain));
-  const widths = head.map((_, column) => Math.max(...cells.map((row) => width(row[column] ?? ""))));
+  const widths = head.map((_, column) => cells.reduce((most, row) => Math.max(most, width(row[column] ?? "")), 0));
   const lines = cells.map((row) =>
     row
       .map((cell, column) => cell + " ".repeat((widths[column] ?? 0) - width(cell)))

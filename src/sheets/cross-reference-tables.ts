@@ -1,3 +1,4 @@
+import type { Device, DrawingInfo } from "../machine/model.js";
 import type { ContactReference, CrossReferenceRow } from "../schedules/rows.js";
 import { type Appearances, operatorOf } from "./appearances.js";
 import type { Piece } from "./references.js";
@@ -105,14 +106,18 @@ function operatedBy(row: CrossReferenceRow, appearances: Appearances): Cell {
   if (!device || operator === undefined) return { text: "" };
   const found = appearances.fluidSideOf(row.coil);
   const where = found ? `${found.place.sheet}${found.place.zone === "" ? "" : `/${found.place.zone}`}` : "";
-  const stretch = device.place ? placeName(device.place) : "";
+  const stretch = device.place ? placeName(device.place, appearances.machine.drawing.units) : "";
   const text = [operator, stretch, where].filter((part) => part !== "").join(" ");
   return { text, ...(found ? { to: found.part } : {}) };
 }
 
-function placeName({ written, from, to }: { written: string; from: number; to: number }): string {
+/** Where along the stroke, in the drawing's unit of length. */
+function placeName({ written, from, to }: NonNullable<Device["place"]>, units: DrawingInfo["units"]): string {
   if (written === "retracted" || written === "extended") return written;
-  return from === to ? `at ${from} mm` : `${from} to ${to} mm`;
+  const figure = (mm: number) => (units === "inch" ? Math.round((mm / 25.4) * 1000) / 1000 : Math.round(mm * 100) / 100);
+  const unit = units === "inch" ? "in" : "mm";
+  // A switch set to one place works a little before and behind it.
+  return written === "at" ? `at ${figure((from + to) / 2)} ${unit}` : `${figure(from)} to ${figure(to)} ${unit}`;
 }
 
 function kindName(kind: string): string {

@@ -2,7 +2,7 @@ import { textBox } from "../drawing/extent.js";
 import type { Box, Mm } from "../drawing/geometry.js";
 import type { Mark, PartId } from "../drawing/marks.js";
 import { fitText, measureText } from "../drawing/text.js";
-import type { CircuitSheet, Place, PlacedText, Reference } from "../layout/placement.js";
+import { type CircuitSheet, type Place, type PlacedText, type Reference, rowPitch } from "../layout/placement.js";
 import { type Appearance, type Appearances, operatorOf, type PointEnd } from "./appearances.js";
 
 /** A reference put into words: texts in a row, each of which may lead somewhere. */
@@ -20,6 +20,10 @@ export interface Piece {
 export function referenceMarks(text: PlacedText & { text: Reference }, sheet: CircuitSheet, appearances: Appearances): Mark[] {
   const reference = text.text;
   if (reference.to === "contacts") return contactListMarks(text, reference.room, contactPieces(reference.device, sheet, appearances));
+  if (reference.to === "ladder-line" && (reference.rows ?? 1) > 1) {
+    const rows = ladderLineRows(reference, text.height, sheet, appearances);
+    if (rows) return rows.flatMap((row, line) => rowMarks(text, row, text.height, line * rowPitch(text.height)));
+  }
   const wordings = wordingsOf(reference, sheet, appearances);
   const [first] = wordings;
   if (!first) return [];
@@ -30,6 +34,13 @@ export function referenceMarks(text: PlacedText & { text: Reference }, sheet: Ci
   }
   const shortest = wordings.at(-1) as Wording;
   const height = Math.min(text.height, least);
+  const whole = plain(shortest);
+  if (reference.to === "point" && whole.startsWith(`${reference.point} `)) {
+    // Where it goes on is worth more than the end of a long name.
+    const place = whole.slice(reference.point.length);
+    const name = fitText(reference.point, height, reference.room - measureText(place, height));
+    return rowMarks(text, [{ text: name + place, to: shortest.pieces[0]?.to }], height, 0);
+  }
   return rowMarks(text, [{ text: fitText(plain(shortest), height, reference.room), to: shortest.pieces[0]?.to }], height, 0);
 }
 
@@ -94,9 +105,38 @@ function ladderLines(device: string, sheet: CircuitSheet, appearances: Appearanc
   return wordings;
 }
 
+/**
+ * A switch's contacts over several rows, each row in brackets of its own: `(204, 207)` over `(301)`. The last row ends with
+ * `…` where there are more. Nothing where a single number is wider than the room.
+ */
+function ladderLineRows(
+  { device, room, rows: most = 1 }: Reference & { to: "ladder-line" },
+  height: Mm,
+  sheet: CircuitSheet,
+  appearances: Appearances,
+): Piece[][] | undefined {
+  if (appearances.loadOf(device)) return undefined;
+  const contacts = appearances.contactsOf(device).map(({ part, place }) => ({ text: lineName(place, sheet, appearances), to: part }));
+  const inBrackets = (pieces: Piece[], end: string) =>
+    pieces.map((piece, i) => ({ ...piece, text: `${i === 0 ? "(" : ""}${piece.text}${i === pieces.length - 1 ? `${end})` : ", "}` }));
+  const wide = (pieces: Piece[], end = "") => measureText(plain({ pieces: inBrackets(pieces, end) }), height) > room;
+  const rows: Piece[][] = [];
+  for (const contact of contacts) {
+    if (wide([contact])) return undefined;
+    const row = rows.at(-1);
+    if (row && !wide([...row, contact])) row.push(contact);
+    else rows.push([contact]);
+  }
+  const shown = rows.slice(0, most);
+  const last = shown.at(-1);
+  const more = rows.length > most ? "…" : "";
+  while (last && last.length > 1 && more !== "" && wide(last, more)) last.pop();
+  return shown.map((row) => inBrackets(row, row === last ? more : ""));
+}
+
 /** A point's other ends: `run 2/204`, on a fluid sheet `P 2/B1`, and `run 104` or `P B1` where they are all on this sheet. */
 function elsewhere(reference: Reference & { to: "point" }, sheet: CircuitSheet, appearances: Appearances): Wording[] {
-  const all = appearances.pointEnds(sheet.kind, reference.point).filter(({ from }) => from !== reference.from);
+  const all = appearances.pointEnds(sheet.kind, reference.point).filter((end) => !isOwn(end, reference, sheet));
   const ordered = neighbouringEnds(reference, sheet, appearances);
   if (ordered.length === 0) ordered.push(...all);
   if (ordered.length === 0) return [{ pieces: [{ text: reference.point }] }];
@@ -120,13 +160,18 @@ function neighbouringEnds(reference: Reference & { to: "point" }, sheet: Circuit
   const ends = [...appearances.pointEnds(sheet.kind, reference.point)].sort(
     (a, b) => a.place.sheet - b.place.sheet || a.place.box.y - b.place.box.y,
   );
-  const own = ends.findIndex(({ from }) => from === reference.from);
+  const own = ends.findIndex((end) => isOwn(end, reference, sheet));
   if (own < 0) return [];
-  const following = ends[own + 1];
+  const following = ends.slice(own).find((end) => !isOwn(end, reference, sheet));
   const preceding = ends[own - 1];
   if (reference.way === "in") return [preceding ?? following].filter((end) => end !== undefined);
   if (reference.way === "out") return [following ?? preceding].filter((end) => end !== undefined);
   return [following, preceding].filter((end) => end !== undefined);
+}
+
+/** A line that runs over several sheets bears one name on all of them, and may end twice on one: its ends there are no other place. */
+function isOwn({ from, place }: PointEnd, reference: Reference & { to: "point" }, sheet: CircuitSheet): boolean {
+  return from === reference.from && place.sheet === sheet.number;
 }
 
 /** `1/B4`; only the sheet where the zone is not known. */

@@ -99,7 +99,7 @@ function columnWidths(table: Table, width: Mm): Mm[] {
   const total = table.columns.reduce((sum, column) => sum + column.share, 0);
   const least = table.columns.map(({ title }, index) => {
     const cells = table.rows.map((row) => row[index] as Cell);
-    return 2 * padding + Math.max(measureText(title, textHeight, true), ...cells.map(unbreakable)) + 0.01;
+    return 2 * padding + Math.max(measureText(title, textHeight, true), longest(cells.map(unbreakable))) + 0.01;
   });
   const needed = least.reduce((sum, each) => sum + each, 0);
   if (needed >= width) return least.map((each) => (each * width) / needed);
@@ -111,9 +111,14 @@ function columnWidths(table: Table, width: Mm): Mm[] {
 /** Words longer than this may be broken after all. */
 const longWord: Mm = 32;
 
+/** Of any number of lengths: more than a call takes arguments. */
+function longest(lengths: readonly Mm[]): Mm {
+  return lengths.reduce((most, each) => Math.max(most, each), 0);
+}
+
 function unbreakable(cell: Cell): Mm {
-  if ("entries" in cell) return Math.max(0, ...cell.entries.map((entry) => measureText(entry.text, textHeight)));
-  return Math.min(longWord, Math.max(0, ...cell.text.split(/\s+/).map((word) => measureText(word, textHeight, cell.bold))));
+  if ("entries" in cell) return longest(cell.entries.map((entry) => measureText(entry.text, textHeight)));
+  return Math.min(longWord, longest(cell.text.split(/\s+/).map((word) => measureText(word, textHeight, cell.bold))));
 }
 
 /** Title and heads; gives back the upper edge of the heads. */

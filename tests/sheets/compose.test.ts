@@ -3,6 +3,7 @@ import { textBox } from "../../src/drawing/extent.js";
 import type { DrawingSet, Mark } from "../../src/drawing/marks.js";
 import { measureText } from "../../src/drawing/text.js";
 import type { Reference } from "../../src/layout/placement.js";
+import type { Device } from "../../src/machine/model.js";
 import { writePdf } from "../../src/output/pdf.js";
 import { writeSvg } from "../../src/output/svg.js";
 import { switchReference } from "../../src/schedules/cross-reference.js";
@@ -57,6 +58,18 @@ describe("references", () => {
   test("a point names the other sheet on which it goes on", () => {
     expect(said(set, 1, "reference")).toContain("run 2/A2");
     expect(said(set, 2, "reference")).toContain("run 1/C2");
+  });
+
+  test("a line that bears one name on all its sheets names its ends on the others, never its own", () => {
+    const made = handMade();
+    const [first, second] = made.layout.sheets as [Made["layout"]["sheets"][number], Made["layout"]["sheets"][number]];
+    for (const { texts } of [first, second])
+      for (const { text } of texts) if (typeof text !== "string" && text.to === "point") text.from = "header P";
+    const both = second.texts.find(({ text }) => typeof text !== "string" && text.to === "point") as (typeof second.texts)[number];
+    second.texts.push({ ...both, at: { ...both.at, y: both.at.y + 20 } });
+    const composed = compose(made);
+    expect(said(composed, 1, "reference").filter((text) => text.startsWith("run"))).toEqual(["run 2/A2"]);
+    expect(said(composed, 2, "reference").filter((text) => text.startsWith("run"))).toEqual(["run 1/C2", "run 1/C2"]);
   });
 
   test("running line numbers name the sheet only where it is another", () => {
@@ -279,6 +292,23 @@ describe("sheets", () => {
     const cells = said(set, 4, "cell");
     expect(cells).toEqual(expect.arrayContaining(["CR1", "1.101", "13-14  1.102", "33-34  2.202", "21-22  2.201", "V1 3/C3"]));
     expect(cells).toEqual(expect.arrayContaining(["PB1", "Push button", 'Start <& "go">', "LS1", "LIFT retracted 3/B3", "21-22  1.103"]));
+  });
+
+  test.each([
+    ["metric", { from: 39, to: 41, written: "at" }, "LIFT at 40 mm 3/B3"],
+    ["metric", { from: 28, to: 32.5, written: "from-to" }, "LIFT 28 to 32.5 mm 3/B3"],
+    // 19.5 and 20 inches of 25.4 mm.
+    ["inch", { from: 495.3, to: 508, written: "from-to" }, "LIFT 19.5 to 20 in 3/B3"],
+  ] as const)("a place along the stroke is printed in the %s units of the drawing", (units, place, cell) => {
+    const made = handMade({ units });
+    (made.machine.devices.get("LS1") as Device).place = { cylinder: "LIFT", ...place };
+    expect(said(compose(made), 4, "cell")).toContain(cell);
+  });
+
+  test("a function text of any length is set", () => {
+    const made = handMade();
+    (made.rows[0] as Made["rows"][number]).text = "on and on ".repeat(200_000);
+    expect(said(compose(made), 4, "cell")).toContain("CR1");
   });
 
   test("a column with nothing in it is left out", () => {
