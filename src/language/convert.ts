@@ -51,6 +51,7 @@ export function convert(document: Syntax.Document, source: SourceText, problems:
 
 /** The words of a statement without its brackets, arrows and dashes, of which only the first is complained about. */
 interface Reader {
+  /** How many signs stood where none is due. */
   signs: number;
 }
 
@@ -170,6 +171,7 @@ class Conversion {
       left = rest.slice(1);
     }
     this.refuse(left, ["supply"]);
+    this.expectBlock(node);
     for (const statement of node.statements) {
       if (statement.$type === "Rung") block.statements.push(this.rung(statement));
       else if (statement.$type === "SheetBreak") block.statements.push(this.sheetBreak(statement));
@@ -189,6 +191,7 @@ class Conversion {
     const [first] = rest;
     if (first?.kind === "word") block.medium = { text: first.text, at: first.at };
     this.refuse(first?.kind === "word" ? rest.slice(1) : rest, ["hydraulic", "pneumatic"]);
+    this.expectBlock(node);
     for (const statement of node.statements) {
       if (statement.$type === "Line") block.statements.push(this.line(statement));
       else if (statement.$type === "Plug") block.statements.push(this.plug(statement));
@@ -199,6 +202,26 @@ class Conversion {
       } else if (statement.$type === "Rung") this.misplaced(statement, "rung", "belongs inside a ladder");
       else this.lift(statement, "fluid");
     }
+  }
+
+  /** Without its braces a circuit is empty, and what was meant for it stands beside it. */
+  private expectBlock(node: Syntax.Ladder | Syntax.Fluid): void {
+    const { start, end } = this.extent(node);
+    if (
+      node.statements.length > 0 ||
+      this.source.text
+        .slice(start, end)
+        .replace(/"(\\.|[^"\\])*"/g, "")
+        .includes("{")
+    )
+      return;
+    const what = node.keyword === "ladder" ? "rungs" : "components and lines";
+    this.report(
+      "block-missing",
+      { start, end: start + node.keyword.length },
+      `The "{" of "${node.keyword}" is missing.`,
+      `Put "{" at the end of this line, and "}" behind the last of its ${what}.`,
+    );
   }
 
   /** A block that stands in another: it is understood as if it stood behind it. */
@@ -361,11 +384,28 @@ class Conversion {
 
   private line(node: Syntax.Line): LineStatement {
     const { start } = this.extent(node);
+    const groups = node.groups.map((group) => group.ends.map((end) => this.lineEnd(end)));
+    const reader: Reader = { signs: 0 };
+    let { items } = node;
+    for (;;) {
+      // `V1.4 - C1.cap`: what joins two ends is plain, though it is not written as a line writes it.
+      const [sign, end, ...rest] = items;
+      if (sign?.$type !== "Sign" || !/^[-=>]+$/.test(sign.text) || (end?.$type !== "Name" && end?.$type !== "Point")) break;
+      if (sign.text !== "--" && reader.signs++ === 0)
+        this.report(
+          "unexpected-symbol",
+          this.extent(sign),
+          `"${sign.text}" has no place here.`,
+          'The ends of a line are joined with "--".',
+        );
+      groups.push([this.lineEnd(end)]);
+      items = rest;
+    }
     return {
       kind: "line",
       role: this.keyword(start, node.keyword),
-      groups: node.groups.map((group) => group.ends.map((end) => this.lineEnd(end))),
-      items: this.items(node.items),
+      groups,
+      items: this.items(items, reader),
       ...this.located(node),
     };
   }

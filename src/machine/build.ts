@@ -178,6 +178,7 @@ class MachineBuilder {
         "name-missing",
         keyword.at,
         `${capital(withArticle(kind))} needs a designation, as in "${kind} ${usualNames[kind] ?? "X1"}".`,
+        declaration.text ? { hint: "The designation stands before the text." } : {},
       );
       return;
     }

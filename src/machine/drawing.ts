@@ -90,8 +90,10 @@ function missing(field: DrawingField, what: string, report: Report): void {
 }
 
 function tooMuch(field: DrawingField, extra: Item, report: Report): void {
-  report.error("value-extra", extra.at, `"${field.name.text}" takes one value.`, {
-    hint: 'Words that belong together stand in "double quotes".',
+  const another = extra.kind === "word" && Object.hasOwn(fields, extra.text);
+  const takes = field.name.text === "revision" ? "an index, a date and one text" : "one value";
+  report.error("value-extra", extra.at, `"${field.name.text}" takes ${takes}.`, {
+    hint: another ? `Put "${extra.text}" on a line of its own.` : 'Words that belong together stand in "double quotes".',
   });
 }
 
@@ -165,6 +167,8 @@ export function readDrawingInfo(blocks: readonly DrawingBlock[], file: string, r
   }
   if (info.title === "") info.title = stem === "" ? "Drawing" : stem;
   if (info.number === "") info.number = stem === "" ? "drawing" : stem;
+  // Some write the newest first: the sheets list them oldest first, and the last one is in force.
+  info.revisions.sort((a, b) => (a.date < b.date ? -1 : a.date > b.date ? 1 : 0));
   if (info.date === "") info.date = info.revisions.at(-1)?.date ?? "";
   return info;
 }

@@ -228,7 +228,12 @@ function bareUnits<Draft>(table: PropertyTable<Draft>): string[] {
 function unknownProperty<Draft>(item: Item, read: ItemReader, kind: string, table: PropertyTable<Draft>): void {
   const written = item.kind === "point" ? `@${item.name}` : item.kind === "quantity" ? item.text : item.text;
   const words = Object.keys(table.words);
-  const guess = item.kind === "word" ? didYouMean(item.text, [...words, ...(table.values ?? [])]) : {};
+  const guess =
+    item.kind === "text" && Object.hasOwn(table.words, "note")
+      ? { hint: "A function text stands once, directly behind the designation; any other text behind the word that says what it is." }
+      : item.kind === "word"
+        ? didYouMean(item.text, [...words, ...(table.values ?? [])])
+        : {};
   read.report.error("unknown-property", item.at, `"${written}" is not a property of ${kind}.`, {
     ...guess,
     hint: guess.hint ?? (words.length > 0 ? `It may have ${listed([...words, ...(table.values ?? [])].sort(), "and")}.` : undefined),

@@ -52,10 +52,16 @@ function readEnd(side: Side): PropertyTable<ValveDraft>["words"][string] {
       read.next();
       const actuator: ValveActuator = { kind, override: false };
       if (isSolenoid(actuator)) {
-        const name = read.name(item, "the designation of its coil");
-        if (!name) continue;
-        actuator.solenoid = name.text;
-        draft.coils.push({ name, side });
+        // `left solenoid right spring`: a word that goes on with the other end is not the coil's name.
+        const [following, behind] = [read.peek(), read.peek(1)];
+        const goesOn = following?.kind === "word" && (following.text === "left" || following.text === "right");
+        const isEnd = goesOn && behind?.kind === "word" && Object.hasOwn(actuatorWords, behind.text);
+        if (isEnd) read.missing(item, "the designation of its coil");
+        const name = isEnd ? undefined : read.name(item, "the designation of its coil");
+        if (name) {
+          actuator.solenoid = name.text;
+          draft.coils.push({ name, side });
+        }
       }
       if (read.take("override")) actuator.override = true;
       draft[side].push(actuator);

@@ -53,6 +53,8 @@ const slips: [what: string, text: string, finding: string][] = [
   ["a field without its word", 'drawing "A" {\n "x"\n}', "field-expected 2:2-2:5"],
   ["an include without its path", "include", "text-expected 1:1-1:8"],
   ["an include with two", 'include "a" "b"', "unexpected-word 1:13-1:16"],
+  ["a ladder without its braces", 'ladder "L" supply CTRL\nrelay CR1', "block-missing 1:1-1:7"],
+  ["a fluid circuit without its braces", 'fluid "a { b" pneumatic\nrelay CR1', "block-missing 1:1-1:6"],
   ["no dash between two ends", 'fluid "F" hydraulic {\n line V1.A V2.P\n}', "dash-missing 2:12-2:16"],
   ["a dash before nothing", 'fluid "F" hydraulic {\n line V1.A --\n}', "end-missing 2:12-2:14"],
   ["a dash behind nothing", 'fluid "F" hydraulic {\n line -- V1.A\n}', "end-missing 2:7-2:9"],

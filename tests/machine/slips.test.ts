@@ -25,6 +25,14 @@ test.each([
     "limit-switch LS1 on CLAMP at 40\nfluid pneumatic {\ncylinder CLAMP\n}",
     '"at" needs a unit: mm, cm, m, in or ft. Write for example 40 mm.',
   ],
+  [
+    'overload OL1 on M1 "Pump motor"\nmotor M1',
+    '"Pump motor" is not a property of an overload. A function text stands once, directly behind the designation; any other text behind the word that says what it is.',
+  ],
+  ['relay "Pump motor" CR1', 'A relay needs a designation, as in "relay CR1". The designation stands before the text.'],
+  ['drawing "X" { number A-1 paper A4 }', '"number" takes one value. Put "paper" on a line of its own.'],
+  ['fluid "A" pneumatic {\nvalve V1 5/2 left solenoid right spring\n}', '"solenoid" is followed by the designation of its coil.'],
+  ["fluid hydraulic {\ntank TK1\npump P1\nline TK1 -- P1 - tank\n}", '"-" has no place here. The ends of a line are joined with "--".'],
   ["counter C1 preset 12", "A counter is not yet supported."],
   [
     "fluid pneumatic {\nvalve V1 5/2 left lever right spring\nline V1.A -- @a\n}",
