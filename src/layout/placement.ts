@@ -57,7 +57,18 @@ export interface PlacedDot {
 /** Text standing on its baseline at `at`. A reference is worded later and never needs more than `room`. */
 export interface PlacedText {
   part?: PartId;
-  role: "designation" | "terminal" | "port" | "wire-number" | "line-number" | "function" | "value" | "rail" | "reference" | "note" | "margin";
+  role:
+    | "designation"
+    | "terminal"
+    | "port"
+    | "wire-number"
+    | "line-number"
+    | "function"
+    | "value"
+    | "rail"
+    | "reference"
+    | "note"
+    | "margin";
   at: Point;
   anchor: Anchor;
   height: Mm;
@@ -65,7 +76,16 @@ export interface PlacedText {
   text: string | Reference;
 }
 
-export type Reference = ReferenceTo & { room: Mm };
+export type Reference = ReferenceTo & {
+  room: Mm;
+  /** Ladder lines of a switch: how many rows may stand below each other, the first on the text's place, a `rowPitch` apart. */
+  rows?: number;
+};
+
+/** From row to row of a reference that takes several. */
+export function rowPitch(height: Mm): Mm {
+  return (height * 4) / 3;
+}
 
 export type ReferenceTo =
   /** Under a contact: where its coil is, `(201)`. */
@@ -79,7 +99,12 @@ export type ReferenceTo =
   /** At a solenoid or switch on a fluid sheet: the ladder line of its coil or contacts, `(204)`. */
   | { to: "ladder-line"; device: string }
   /** At a point that goes on elsewhere: name, sheet and line. */
-  | { to: "point"; point: string; from: PartId; /** Whether it comes from there or goes on there, where that is known. */ way?: "in" | "out" };
+  | {
+      to: "point";
+      point: string;
+      from: PartId /** Whether it comes from there or goes on there, where that is known. */;
+      way?: "in" | "out";
+    };
 
 /** Where each part stands in the set. */
 export interface Place {

@@ -2,7 +2,7 @@ import { textBox } from "../../src/drawing/extent.js";
 import type { Box, Mm, Point } from "../../src/drawing/geometry.js";
 import type { Segment } from "../../src/drawing/marks.js";
 import { arcCurves } from "../../src/drawing/path.js";
-import type { CircuitSheet, PlacedSymbol, PlacedText, PlacedWire } from "../../src/layout/placement.js";
+import { type CircuitSheet, type PlacedSymbol, type PlacedText, type PlacedWire, rowPitch } from "../../src/layout/placement.js";
 import type { Direction, Turn } from "../../src/symbols/symbol.js";
 
 /**
@@ -301,7 +301,9 @@ export function portsOf(placed: PlacedSymbol): { name: string; at: Point; direct
 export function inkBox(text: PlacedText): Box {
   const words = typeof text.text === "string" ? text.text : "";
   const box = textBox({ at: text.at, text: words, height: text.height, anchor: text.anchor, ...(text.rotated ? { rotated: true } : {}) });
-  const hangs = typeof text.text !== "string" || /[gjpqy,;()Q@_/]/.test(words) ? text.height * 0.3 : 0;
+  const rows = typeof text.text === "string" ? 1 : (text.text.rows ?? 1);
+  const descends = typeof text.text !== "string" || /[gjpqy,;()Q@_/]/.test(words) ? text.height * 0.3 : 0;
+  const hangs = descends + (rows - 1) * rowPitch(text.height);
   const wide = typeof text.text === "string" ? undefined : text.text.room;
   if (text.rotated) {
     const height = wide ?? box.height;

@@ -4,7 +4,11 @@ import type { Placed } from "./block.js";
 import { type Extent, moved, union } from "./modules.js";
 
 /** Gives the symbol a component is drawn with. */
-export type SymbolOf = (component: FluidComponent) => Symbol;
+export interface SymbolOf {
+  (component: FluidComponent): Symbol;
+  /** On how many ladder lines a device has contacts. */
+  usesOf(device: string): number;
+}
 
 /** A group of components set down about its own origin. Directional valves stand on the line y = 0. */
 export interface Arrangement {

@@ -4,7 +4,7 @@ import { measureText, wrapText } from "../../drawing/text.js";
 import type { FluidComponent } from "../../machine/model.js";
 import type { Direction, Symbol, Turn } from "../../symbols/symbol.js";
 import { turnSymbol } from "../../symbols/turn.js";
-import type { CircuitSheet, PlacedText, Reference } from "../placement.js";
+import { type CircuitSheet, type PlacedText, type Reference, rowPitch } from "../placement.js";
 import { type Extent, extentOf, grown, module, union } from "./modules.js";
 
 /** A text of a block; its place in modules from the block's origin. */
@@ -118,8 +118,9 @@ export function addText(block: Block, text: BlockText): void {
   block.full = union([block.full, textExtent(text)]);
 }
 
-/** Room for the ladder lines of a pressure switch, mm. */
+/** Room for the ladder lines of a pressure switch, mm, and how many rows they take. */
 const switchRoom: Mm = 16;
+const switchRows = 2;
 
 /** Writes a component's words on one side of its body, each on a line of its own. */
 export function addWords(
@@ -132,7 +133,7 @@ export function addWords(
   const { kind, name } = block.component;
   const lines = [...wordsOf(block.component), ...more];
   if (kind === "pressure-switch" && name !== undefined)
-    lines.push({ role: "reference", text: { to: "ladder-line", device: name, room: switchRoom } });
+    lines.push({ role: "reference", text: { to: "ladder-line", device: name, room: switchRoom, rows: switchRows } });
   const cap = textHeight / module;
   const high = (lines.length - 1) * pitch + cap;
   const middle = { x: (clear.left + clear.right) / 2, y: (clear.top + clear.bottom) / 2 };
@@ -154,7 +155,8 @@ export function addWords(
 export function textExtent({ at, anchor, height, text }: Pick<BlockText, "at" | "anchor" | "height" | "text">): Extent {
   const width = (typeof text === "string" ? measureText(text, height) : text.room) / module;
   const cap = height / module;
-  const hangs = typeof text !== "string" || /[gjpqy,;()Q@_/]/.test(text) ? 0.3 * cap : 0;
+  const rows = typeof text === "string" ? 1 : (text.rows ?? 1);
+  const hangs = (typeof text !== "string" || /[gjpqy,;()Q@_/]/.test(text) ? 0.3 * cap : 0) + ((rows - 1) * rowPitch(height)) / module;
   const left = anchor === "start" ? at.x : anchor === "middle" ? at.x - width / 2 : at.x - width;
   return { left, right: left + width, top: at.y - cap, bottom: at.y + hangs };
 }

@@ -2,6 +2,7 @@ import type { Point } from "../../drawing/geometry.js";
 import type { FluidComponent, FluidNodeId } from "../../machine/model.js";
 import type { Arrangement } from "./arrangement.js";
 import { type Placed, portOf } from "./block.js";
+import type { HeaderKind } from "./divide.js";
 import type { FluidGraph } from "./graph.js";
 import { type Extent, moved, union } from "./modules.js";
 import type { PowerUnit } from "./power-unit.js";
@@ -9,6 +10,7 @@ import type { PowerUnit } from "./power-unit.js";
 /** A shared line drawn straight across below the valves. */
 export interface HeaderLine {
   node: FluidNodeId;
+  kind: HeaderKind;
   y: number;
   from: number;
   to: number;
@@ -39,7 +41,7 @@ export interface Content {
   groups: readonly Arrangement[];
   unit?: PowerUnit;
   /** Shared nodes in their order from above, and on which other sheets they go on. */
-  headers: readonly { node: FluidNodeId; before: boolean; after: boolean }[];
+  headers: readonly { node: FluidNodeId; kind: HeaderKind; before: boolean; after: boolean }[];
   /** Free columns between groups. */
   gap: number;
   /** At even distances, as wide as the widest needs. */
@@ -84,13 +86,14 @@ export function compose({ groups, unit, headers, gap, even, width }: Content, _g
     for (const { node, x: at } of [...unit.risers, ...unit.returns]) risers.set(node, [...(risers.get(node) ?? []), at + shift]);
   }
   const lines = joined
-    .map(({ node, before, after }, index): HeaderLine => {
+    .map(({ node, kind, before, after }, index): HeaderLine => {
       const users = portsOn(placed.slice(0, placed.length - (unit?.placed.length ?? 0)), node);
       const ends = [...users, ...(risers.get(node) ?? [])];
       const from = before ? Math.min(Math.floor(Math.min(...ends, 0)) - 3, ...drops.map((drop) => drop - wordRoom)) : Math.min(...ends);
       const to = after ? Math.max(Math.ceil(Math.max(...ends, right)) + 3, ...drops.map((drop) => drop + wordRoom)) : Math.max(...ends);
       return {
         node,
+        kind,
         y: firstRow + index * headerPitch,
         from,
         to,

@@ -2,6 +2,8 @@ import type { Mm } from "../../drawing/geometry.js";
 import { measureText } from "../../drawing/text.js";
 import type { CylinderSpec, FluidComponent } from "../../machine/model.js";
 import type { Symbol } from "../../symbols/symbol.js";
+import { rowPitch } from "../placement.js";
+import type { SymbolOf } from "./arrangement.js";
 import { addText, type Block, bareBlock, pitch, smallHeight, textExtent, textHeight, titleHeight } from "./block.js";
 import { module, union } from "./modules.js";
 
@@ -12,8 +14,11 @@ const referenceRoom: Mm = 9.2;
 const strokeLine = -1.5;
 const markHalf = 0.6;
 
+/** The most rows that a switch's ladder lines take; `…` stands for more. */
+const referenceRows = 3;
+
 /** Where the function text stands over the axis. */
-const titleLine = -8;
+const titleLine = -8.6;
 
 /** The least travel a rod has for marks on it, mm, when no stroke is given. */
 const unknownStroke: Mm = 100;
@@ -21,8 +26,9 @@ const unknownStroke: Mm = 100;
 /**
  * A cylinder with its function text, designation and size over the barrel, and the places of its switches along the way of
  * the rod's end, true to scale.
+ * @param usesOf on how many ladder lines a switch has contacts
  */
-export function cylinderBlock(component: FluidComponent, symbol: Symbol): Block {
+export function cylinderBlock(component: FluidComponent, symbol: Symbol, usesOf: SymbolOf["usesOf"]): Block {
   const block = bareBlock(component, symbol, { quarter: 0 });
   const spec = component.cylinder;
   const barrelTop = Math.min(-2, block.body.top) + block.offset.y - 0.8;
@@ -33,17 +39,20 @@ export function cylinderBlock(component: FluidComponent, symbol: Symbol): Block 
   };
   for (const value of [...component.values].reverse()) write("value", value, textHeight);
   if (component.name !== undefined) write("designation", component.name, textHeight);
-  if (spec) addCams(block, spec);
+  if (spec) addCams(block, spec, usesOf);
   if (component.text !== undefined) {
     // At one height over all cylinders, clear of the marks' designations.
     if (component.name !== undefined && component.values.length > 0) y = Math.min(y, titleLine + block.offset.y);
-    else if (block.strokes.length > 0) y = Math.min(y, block.full.top - 0.6);
+    const title = textExtent({ at: { x: block.offset.x, y }, anchor: "start", height: titleHeight, text: component.text });
+    for (const { part, extent } of block.parts) {
+      if (part !== component.id && extent.left < title.right + 0.5) y = Math.min(y, extent.top - 0.6);
+    }
     write("function", component.text, titleHeight);
   }
   return block;
 }
 
-function addCams(block: Block, spec: CylinderSpec): void {
+function addCams(block: Block, spec: CylinderSpec, usesOf: SymbolOf["usesOf"]): void {
   const { switches } = spec;
   if (switches.length === 0) return;
   const spots = block.symbol.spots;
@@ -104,13 +113,15 @@ function addCams(block: Block, spec: CylinderSpec): void {
         ],
       });
     const before = block.texts.length;
+    const rows = Math.max(1, Math.min(referenceRows, usesOf(end.device)));
+    const referenceTop = labelBottom - 0.35 - ((rows - 1) * rowPitch(smallHeight)) / module;
     addText(block, {
       part,
       role: "reference",
-      text: { to: "ladder-line", device: end.device, room: referenceRoom },
+      text: { to: "ladder-line", device: end.device, room: referenceRoom, ...(rows > 1 ? { rows } : {}) },
       height: smallHeight,
       anchor: "middle",
-      at: { x: label, y: labelBottom - 0.35 },
+      at: { x: label, y: referenceTop },
     });
     addText(block, {
       part,
@@ -118,7 +129,7 @@ function addCams(block: Block, spec: CylinderSpec): void {
       text: end.device,
       height: textHeight,
       anchor: "middle",
-      at: { x: label, y: labelBottom - 1.75 },
+      at: { x: label, y: referenceTop - 1.4 },
     });
     const extents = block.texts.slice(before).map(textExtent);
     block.parts.push({

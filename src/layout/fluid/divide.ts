@@ -1,6 +1,8 @@
 import type { FluidComponent, FluidNodeId } from "../../machine/model.js";
 import { beyond, type FluidGraph, inletPorts, isSink, returnPorts, sourcePort, throughPorts } from "./graph.js";
 
+export type HeaderKind = "supply" | "return" | "other";
+
 /** A fluid circuit in the parts it is drawn by. */
 export interface Division {
   /** Pumps, supplies and what conditions and guards their fluid; tanks that all share, with the filters before them. */
@@ -8,7 +10,7 @@ export interface Division {
   /** What belongs together by lines that are nobody else's: usually an actuator with the valves that serve it. */
   groups: FluidComponent[][];
   /** Nodes the groups share with the unit or with each other, in the order they are to stand below the valves. */
-  headers: { node: FluidNodeId; kind: "supply" | "return" | "other" }[];
+  headers: { node: FluidNodeId; kind: HeaderKind }[];
 }
 
 /** Splits a circuit at its shared pressure, return and pilot nodes. */
@@ -28,7 +30,7 @@ export function divide(graph: FluidGraph): Division {
   return { unit: graph.components.filter((component) => unit.has(component)), groups, headers };
 }
 
-const order = ["supply", "other", "return"];
+const order: readonly HeaderKind[] = ["supply", "other", "return"];
 
 interface SupplySide {
   unit: Set<FluidComponent>;
@@ -228,7 +230,7 @@ function connected(graph: FluidGraph, unit: ReadonlySet<FluidComponent>, shared:
   return groups;
 }
 
-function kindOf(graph: FluidGraph, node: FluidNodeId, supplied: ReadonlySet<FluidNodeId>): "supply" | "return" | "other" {
+function kindOf(graph: FluidGraph, node: FluidNodeId, supplied: ReadonlySet<FluidNodeId>): HeaderKind {
   if (supplied.has(node)) return "supply";
   const joints = graph.at(node);
   if (joints.some(({ component, port }) => component.kind === "valve" && inletPorts.has(port))) return "supply";

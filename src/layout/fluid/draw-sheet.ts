@@ -7,6 +7,7 @@ import { boxAt, type Placed, textHeight } from "./block.js";
 import type { Composition, HeaderLine } from "./compose-sheet.js";
 import type { LedLines, Terminal } from "./lead-lines.js";
 import { module } from "./modules.js";
+import { nameHeaders } from "./name-headers.js";
 import { drawNet } from "./wires.js";
 
 interface SheetToDraw {
@@ -42,7 +43,7 @@ export function drawFluidSheet({ circuit, start, page, number, title, origin, co
   };
   const places: [PartId, Place][] = [];
   const placeOf = (box: Box): Place => ({ sheet: number, zone: page.zoneOf({ x: box.x + box.width / 2, y: box.y + box.height / 2 }), box });
-  const notes: string[] = [];
+  const resting: string[] = [];
   for (const one of composition.placed) {
     const { block, at } = one;
     const { component } = block;
@@ -59,8 +60,7 @@ export function drawFluidSheet({ circuit, start, page, number, title, origin, co
     places.push([component.id, placeOf(boxAt(block.body, at, origin))]);
     for (const { part, extent } of block.parts) places.push([part, placeOf(boxAt(extent, at, origin))]);
     drawPlugs(one, origin, sheet);
-    if (start.restingByStart.has(component.name ?? component.id))
-      notes.push(`${component.name ?? component.kind} has no normal position; it is drawn as it stands at the start of the cycle.`);
+    if (start.restingByStart.has(component.name ?? component.id)) resting.push(component.name ?? component.kind);
   }
   for (const [node, steps] of led.steps) {
     const { wires, dots } = drawNet(node, steps, origin);
@@ -69,8 +69,17 @@ export function drawFluidSheet({ circuit, start, page, number, title, origin, co
   }
   for (const header of composition.headers) drawContinuations(header, circuit, origin, sheet);
   for (const terminal of led.lost) drawLost(terminal, circuit, origin, sheet);
-  if (notes.length > 0) sheet.notes = notes;
+  nameHeaders(composition.headers, circuit, origin, sheet);
+  if (resting.length > 0) sheet.notes = [restingNote(resting)];
   return { sheet, places };
+}
+
+/** Of valves without a normal position, in one sentence. */
+function restingNote(valves: readonly string[]): string {
+  const [first] = valves;
+  if (valves.length === 1) return `${first} has no normal position; it is drawn as it stands at the start of the cycle.`;
+  const names = `${valves.slice(0, -1).join(", ")} and ${valves.at(-1)}`;
+  return `${names} have no normal position; they are drawn as they stand at the start of the cycle.`;
 }
 
 function onSheet({ x, y }: Point, origin: Point): Point {

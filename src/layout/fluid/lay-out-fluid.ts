@@ -33,7 +33,7 @@ const attempts = 4;
  */
 export async function layOutFluid(
   circuit: FluidCircuit,
-  _machine: Machine,
+  machine: Machine,
   start: StartState,
   symbols: SymbolLibrary,
   page: PageArea,
@@ -42,11 +42,14 @@ export async function layOutFluid(
   if (circuit.components.length === 0) return { sheets: [], places: [] };
   const graph = new FluidGraph(circuit);
   const known = new Map<FluidComponent, ReturnType<typeof symbolForComponent>>();
-  const symbolOf = (component: FluidComponent) => {
-    const symbol = known.get(component) ?? symbolForComponent(component, start, symbols);
-    known.set(component, symbol);
-    return symbol;
-  };
+  const symbolOf = Object.assign(
+    (component: FluidComponent) => {
+      const symbol = known.get(component) ?? symbolForComponent(component, start, symbols);
+      known.set(component, symbol);
+      return symbol;
+    },
+    { usesOf: (device: string) => machine.devices.get(device)?.contacts.length ?? 0 },
+  );
   // 1. The circuit in its parts: power unit, groups, shared nodes.
   const division = divide(graph);
   const headers = new Set(division.headers.map(({ node }) => node));
@@ -180,8 +183,9 @@ function compositionOf(
   const groups = one.groups.map((index) =>
     (parts.groups[index] as Parts["groups"][number]).at(parts.groups[index]?.height === undefined ? undefined : height),
   );
-  const headers = division.headers.map(({ node }) => ({
+  const headers = division.headers.map(({ node, kind }) => ({
     node,
+    kind,
     before: elsewhere ? elsewhere.before(node) : before,
     after: elsewhere ? elsewhere.after(node) : after,
   }));

@@ -280,7 +280,7 @@ function hang(
   slack: number,
 ): { placed: Placed[]; bottom: number; lineOf(port: string): number | undefined } {
   const component = tower.cylinders[index] as FluidComponent;
-  const cylinder: Placed = { block: cylinderBlock(component, symbolOf(component)), at: { x: 0, y: 0 } };
+  const cylinder: Placed = { block: cylinderBlock(component, symbolOf(component), symbolOf.usesOf), at: { x: 0, y: 0 } };
   const placed: Placed[] = [cylinder];
   const lanes = tower.lanes.filter((lane) => lane.cylinder === index);
   const apart = roomBetween(lanes, graph);

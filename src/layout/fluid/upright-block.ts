@@ -9,7 +9,7 @@ import { valveBlock } from "./valve-block.js";
 /** A component on its own, as it stands where nothing else is known: a line through it leads upward, and down where it ends in a tank. */
 export function uprightBlock(component: FluidComponent, graph: FluidGraph, symbolOf: SymbolOf): Block {
   const symbol = symbolOf(component);
-  if (component.kind === "cylinder") return cylinderBlock(component, symbol);
+  if (component.kind === "cylinder") return cylinderBlock(component, symbol, symbolOf.usesOf);
   if (component.kind === "valve") return valveBlock(component, symbol);
   const through = throughPorts(component);
   const toSink = through && graph.others(graph.nodeOf(component, through[1]), component).some((joint) => isSink(joint.component));

@@ -11,6 +11,7 @@ import {
   symbolOverlaps,
   textOverlaps,
   textsOnWires,
+  tooClose,
   wiresThroughSymbols,
 } from "../../support/facts.js";
 import { layOutText, netsOfMachine, netsOfSheets } from "../../support/fluid-circuits.js";
@@ -138,14 +139,59 @@ describe("texts", () => {
     expect(places.get("STAMP/LS4")).toMatchObject({ sheet: 1 });
   });
 
-  it("says that a valve without a normal position is drawn as it stands at the start", async () => {
-    const { sheets } = await layOutText(`fluid "One" hydraulic {
-      cylinder C1 double-acting bore 40 mm rod 22 mm stroke 100 mm start extended
-      valve V1 4/2 left solenoid SA right solenoid SB detent
-      line V1.A -- C1.cap
-      line V1.B -- C1.rod
+  it("says once for all valves without a normal position that they are drawn as they stand at the start", async () => {
+    const axes = (count: number) => {
+      const one = (i: number) => `cylinder C${i} double-acting bore 40 mm rod 22 mm stroke 100 mm
+        valve V${i} 4/2 left solenoid SA${i} right solenoid SB${i} detent
+        line V${i}.A -- C${i}.cap
+        line V${i}.B -- C${i}.rod`;
+      return `fluid "Resting" hydraulic {\n${Array.from({ length: count }, (_, i) => one(i + 1)).join("\n")}\n}`;
+    };
+    const notes = async (count: number) => (await layOutText(axes(count))).sheets[0]?.notes;
+    expect(await notes(1)).toEqual(["V1 has no normal position; it is drawn as it stands at the start of the cycle."]);
+    expect(await notes(3)).toEqual(["V1, V2 and V3 have no normal position; they are drawn as they stand at the start of the cycle."]);
+  });
+
+  it("keeps a row for each ladder line of a switch over its mark, three at the most", async () => {
+    const contacts = (count: number) => Array.from({ length: count }, (_, i) => `rung: LS1 -> CR${i}`).join("\n");
+    const rows = async (count: number) => {
+      const { sheets } = await layOutText(`supply C 24 V DC { rails P M }
+        limit-switch LS1 on C1 at extended
+        ${Array.from({ length: count }, (_, i) => `relay CR${i}`).join("\n")}
+        fluid "One" pneumatic { cylinder C1 double-acting bore 40 mm rod 16 mm stroke 100 mm }
+        ladder "Control" supply C {\n${contacts(count)}\n}`);
+      const [sheet] = sheets as [CircuitSheet];
+      for (const found of [textOverlaps, textsOnWires]) expect(found(sheet, 0.5)).toEqual([]);
+      return textsOf(sheet, "C1/LS1").flatMap((text) => (typeof text === "string" ? [] : [text.rows ?? 1]));
+    };
+    expect([await rows(1), await rows(2), await rows(3), await rows(5)]).toEqual([[1], [2], [3], [3]]);
+  });
+
+  it("names each shared line at one of its ends, by its letter where the author gave no name", async () => {
+    const axis = (i: number) => `cylinder C${i} double-acting bore 40 mm rod 22 mm stroke 100 mm
+      valve V${i} 4/2 left solenoid SA${i} right spring
+      line @pressure -- V${i}.P
+      line V${i}.A -- C${i}.cap
+      line V${i}.B -- C${i}.rod`;
+    const { sheets } = await layOutText(`fluid "Two" hydraulic {
+      tank T1
+      pump P1
+      filter F1
+      line T1 -- P1 -- @pressure
+      ${axis(1)}
+      ${axis(2)}
+      line V1.T, V2.T -- F1 -- tank
     }`);
-    expect(sheets[0]?.notes).toEqual(["V1 has no normal position; it is drawn as it stands at the start of the cycle."]);
+    const [sheet] = sheets as [CircuitSheet];
+    const names = sheet.texts.filter(({ part, role }) => part === undefined && role === "designation");
+    expect(names.map(({ text }) => text)).toEqual(["pressure", "T"]);
+    expect(tooClose(sheet, { lines: 0.8, others: 0.5 })).toEqual([]);
+    // Beside the end of its own header.
+    for (const [index, node] of [...new Set(sheet.wires.filter(({ width }) => width === 0.5).map((wire) => wire.node))].entries()) {
+      const ends = sheet.wires.filter((wire) => wire.node === node && wire.width === 0.5).flatMap(({ points }) => points);
+      const name = names[index]?.at ?? { x: 0, y: 0 };
+      expect(Math.min(...ends.map(({ x, y }) => Math.hypot(x - name.x, y - name.y)))).toBeLessThan(4.5);
+    }
   });
 });
 
