@@ -1,6 +1,5 @@
 import fc from "fast-check";
 import { describe, expect, test } from "vitest";
-import { measureText } from "../../src/drawing/text.js";
 import { wrapName } from "../../src/layout/ladder/wrap-name.js";
 import { faults, ladderOf } from "../support/ladder.js";
 

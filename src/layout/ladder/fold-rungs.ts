@@ -41,30 +41,28 @@ export function foldRungs(rungs: readonly Rung[], limitsOf: (index: number) => R
       /** Cuts a rung at its widest that fits; the rest goes on as a rung of its own. */
       function cutWide(given: Rung): Rung {
         let whole = given;
-        const begins = whole.start.kind === "rail" ? 0 : 1;
-        const ends = whole.end.kind === "rail" ? 0 : 1;
-        // The least a piece can be: one part, or a bracket narrowed to two arrows, before an arrow out.
-        const room = Math.max(limits.columns - begins, 1);
-        if (contactWidth(whole.path) + (bearsLoad(whole.path) ? 0 : ends) <= room) return whole;
-        let { items } = whole.path;
-        let width = 0;
+        // What begins with an arrow gives a column to it; an arrow at the end stands where the load would.
+        const room = Math.max(limits.columns - (whole.start.kind === "rail" ? 0 : 1), 1);
+        if (contactWidth(whole.path) <= room) return whole;
         let kept = 0;
-        while (kept < items.length && width + headWidth(items[kept] as Item) <= room - 1 && !isLoad(items[kept] as Item)) {
-          width += headWidth(items[kept] as Item);
-          kept++;
+        for (let width = 0; kept < whole.path.items.length; kept++) {
+          let item = whole.path.items[kept] as Item;
+          if (isLoad(item) && kept > 0) break;
+          if (item.kind === "parallel" && headWidth(item) > room && (kept === 0 || room - width >= 2)) {
+            // It fits on no line as it is: what stands in its long branches goes to lines of their own.
+            const at = kept;
+            const narrowed = narrow(item, Math.max(room - width, 2));
+            const items = whole.path.items.map((other, index) => (index === at ? narrowed : other));
+            whole = { ...whole, path: { ...whole.path, items } };
+            item = narrowed;
+          }
+          if (isLoad(item)) break;
+          // One part at least, or a bracket narrowed to two arrows, so that every cut gets on.
+          if (kept > 0 && width + headWidth(item) > room) break;
+          width += headWidth(item);
         }
-        if (kept === 0) {
-          // A single bracket too wide: what stands in its long branches goes to lines of its own.
-          const first = items[0] as Item;
-          const share = room - (items.length > 1 ? 1 : 0);
-          const narrowed = first.kind === "parallel" ? narrow(first, Math.max(share, 2)) : first;
-          const again: Rung = { ...whole, path: { ...whole.path, items: [narrowed, ...items.slice(1)] as SeriesPath["items"] } };
-          if (narrowed !== first && contactWidth(again.path) < contactWidth(whole.path)) return cutWide(again);
-          if (items.length === 1 || isLoad(first)) return again;
-          whole = again;
-          items = again.path.items;
-          kept = 1;
-        }
+        const { items } = whole.path;
+        if (kept === 0 || contactWidth(whole.path) <= room) return whole;
         while (kept < items.length && items[kept]?.kind === "point") kept++;
         const rest = items.slice(kept);
         const node = rest[0]?.from ?? whole.path.to;
