@@ -13,9 +13,9 @@ import { frameMarks } from "./frame.js";
 import { outlineOf } from "./outline.js";
 import { type Page, pageOf, zoneOf } from "./page.js";
 import { papers } from "./paper.js";
-import { setTables } from "./table.js";
+import { setTables, type Table } from "./table.js";
 import { readTemplate, templateNames } from "./template.js";
-import { stripMarks } from "./title-block.js";
+import { notesHeld, stripMarks } from "./title-block.js";
 
 /** What every circuit sheet says of the state it shows, and of what it is not. */
 const circuitNotes = ["Drawn de-energized, unpressurized, at start of cycle.", "Not a certification. Isolate and verify before work."];
@@ -30,15 +30,23 @@ export function composeSheets(machine: Machine, layout: Layout, rows: readonly C
   const page = pageOf(papers[drawing.paper] ?? papers.A3);
   const appearances = findAppearances(machine, layout, rows, (point) => zoneOf(page.paper, point));
 
-  const contents: Content[] = layout.sheets.map((sheet) => ({
-    number: sheet.number,
-    title: sheet.title,
-    marks: circuitMarks(sheet, appearances),
-    notes: [...circuitNotes, ...drawing.notes, ...(sheet.notes ?? [])],
-  }));
-  let next = Math.max(0, ...contents.map(({ number }) => number)) + 1;
-  for (const marks of setTables(crossReferenceTables(rows, switchReference(machine, layout), appearances), columnsOf(page.area))) {
-    contents.push({ number: next++, title: "Cross-reference", marks, notes: tableNotes });
+  let next = layout.sheets.reduce((last, { number }) => Math.max(last, number), 0) + 1;
+  let elsewhere = false;
+  const contents: Content[] = layout.sheets.map((sheet) => {
+    const own = [...circuitNotes, ...(sheet.notes ?? [])];
+    const notes = [...own, ...drawing.notes];
+    const held = notesHeld(page, notes);
+    if (held < notes.length) {
+      elsewhere = true;
+      notes.splice(Math.max(held, own.length), Number.POSITIVE_INFINITY, `All notes of the drawing: sheet ${next}.`);
+    }
+    return { number: sheet.number, title: sheet.title, marks: circuitMarks(sheet, appearances), notes };
+  });
+  const tables = crossReferenceTables(rows, switchReference(machine, layout), appearances);
+  if (elsewhere) tables.unshift(noteTable(drawing.notes));
+  for (const marks of setTables(tables, columnsOf(page.area))) {
+    const title = elsewhere && contents.length === layout.sheets.length ? "Notes, cross-reference" : "Cross-reference";
+    contents.push({ number: next++, title, marks, notes: tableNotes });
   }
   if (contents.length === 0) contents.push({ number: 1, title: "", marks: [], notes: circuitNotes });
   contents.sort((a, b) => a.number - b.number);
@@ -58,6 +66,18 @@ export function composeSheets(machine: Machine, layout: Layout, rows: readonly C
     anchors,
     parts: partNames(appearances, layout),
     outline: outlineOf(appearances).filter(({ home }) => home !== undefined && anchors.has(home)),
+  };
+}
+
+/** All notes of a drawing, for when the strips of its sheets do not hold them: a caution is never left out. */
+function noteTable(notes: readonly string[]): Table {
+  return {
+    title: "Notes",
+    columns: [
+      { title: "No.", share: 12 },
+      { title: "Note", share: 262 },
+    ],
+    rows: notes.map((note, index) => [{ text: `${index + 1}` }, { text: note, lines: Number.POSITIVE_INFINITY }]),
   };
 }
 

@@ -13,7 +13,9 @@ export interface Table {
 }
 
 /** What stands in a cell: a text that may take more lines, or entries of which none is broken and each may lead somewhere. */
-export type Cell = { text: string; to?: Piece["to"]; bold?: boolean } | { entries: Piece[] };
+export type Cell =
+  | { text: string; to?: Piece["to"]; bold?: boolean /** The most it may take; a few unless given. */; lines?: number }
+  | { entries: Piece[] };
 
 const textHeight: Mm = 2.5;
 const pitch: Mm = 4.2;
@@ -195,7 +197,7 @@ type CellLine = (Piece & { x: Mm; bold?: boolean })[];
 
 function cellLines(cell: Cell, room: Mm, step: Mm): CellLine[] {
   if ("text" in cell) {
-    return wrapText(cell.text, textHeight, room, mostLines, cell.bold).map((text) => [
+    return wrapText(cell.text, textHeight, room, cell.lines ?? mostLines, cell.bold).map((text) => [
       { text, x: 0, ...(cell.to === undefined ? {} : { to: cell.to }), ...(cell.bold ? { bold: true } : {}) },
     ]);
   }

@@ -1,4 +1,4 @@
-import type { Box } from "../drawing/geometry.js";
+import type { Box, Mm } from "../drawing/geometry.js";
 import type { Mark } from "../drawing/marks.js";
 import { polyline, rectangle } from "../drawing/path.js";
 import { fitText, measureText, wrapText } from "../drawing/text.js";
@@ -127,33 +127,57 @@ function revisionMarks(box: Box, revisions: DrawingInfo["revisions"]): Mark[] {
   return marks;
 }
 
+const noteIndent: Mm = 4.2;
+
+/** The most lines of notes a box takes, at the size they are set in when they are many; and how wide each may be. */
+function noteRoom(box: Box, { height, pitch }: { height: Mm; pitch: Mm }): { first: Mm; room: number; columns: number; width: Mm } {
+  const first = box.y + 4.6 + height;
+  // Long lines of small text are hard to follow: notes stand in two columns where the strip is wide.
+  const columns = box.width > 240 ? 2 : 1;
+  const room = Math.floor((box.y + box.height - 1.2 - first) / pitch) + 1;
+  return { first, room, columns, width: box.width / columns - 2 * inset - noteIndent };
+}
+
+const noteSizes = [
+  { height: 2.5, pitch: 4.2 },
+  { height: 1.8, pitch: 3.1 },
+] as const;
+
+/** How many of these notes, from the first, a strip holds whole; when not all, with a line to spare that says where the others are. */
+export function notesHeld(page: Page, notes: readonly string[]): number {
+  const [, small] = noteSizes;
+  const { room, columns, width } = noteRoom(page.notes, small);
+  const lines = notes.map((note) => wrapText(note, small.height, width, 99).length);
+  const total = lines.reduce((sum, each) => sum + each, 0);
+  if (total <= room * columns) return notes.length;
+  let used = 1;
+  const held = lines.findIndex((each) => {
+    used += each;
+    return used > room * columns;
+  });
+  return Math.max(0, held);
+}
+
 /** Notes one below the other, each with its number; set smaller when they are many, and the last shortened when even so they do not fit. */
 function noteMarks(box: Box, notes: string[]): Mark[] {
   if (notes.length === 0) return [];
   const marks: Mark[] = [
     { kind: "text", role: "label", at: { x: box.x + inset, y: box.y + 2.8 }, text: "Notes", height: 1.8, anchor: "start" },
   ];
-  const indent = 4.2;
-  for (const { height, pitch } of [
-    { height: 2.5, pitch: 4.2 },
-    { height: 1.8, pitch: 3.1 },
-  ]) {
-    const first = box.y + 4.6 + height;
-    const room = Math.floor((box.y + box.height - 1.2 - first) / pitch) + 1;
-    // Long lines of small text are hard to follow: notes stand in two columns where the strip is wide.
-    const columns = box.width > 240 ? 2 : 1;
+  for (const { height, pitch } of noteSizes) {
+    const { first, room, columns, width } = noteRoom(box, { height, pitch });
     const columnWidth = box.width / columns;
-    const wrapped = notes.map((note) => wrapText(note, height, columnWidth - 2 * inset - indent, 99));
+    const wrapped = notes.map((note) => wrapText(note, height, width, 99));
     const lines = wrapped.flatMap((note, index) => note.map((text, line) => ({ text, number: line === 0 ? `${index + 1}` : "" })));
     if (lines.length > room * columns && height > 1.8) continue;
     const shown = lines.slice(0, room * columns);
     const last = shown.at(-1);
-    if (last && lines.length > shown.length) last.text = fitText(`${last.text} …`, height, columnWidth - 2 * inset - indent);
+    if (last && lines.length > shown.length) last.text = fitText(`${last.text} …`, height, width);
     for (const [index, { text, number }] of shown.entries()) {
       const x = box.x + inset + Math.floor(index / room) * columnWidth;
       const y = first + (index % room) * pitch;
       if (number) marks.push({ kind: "text", role: "note", at: { x, y }, text: number, height, anchor: "start" });
-      marks.push({ kind: "text", role: "note", at: { x: x + indent, y }, text, height, anchor: "start" });
+      marks.push({ kind: "text", role: "note", at: { x: x + noteIndent, y }, text, height, anchor: "start" });
     }
     break;
   }

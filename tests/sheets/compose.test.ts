@@ -264,6 +264,27 @@ describe("sheets", () => {
     expect(said(set, 1, "note")).not.toContain("V1 is drawn as it stands at the start.");
   });
 
+  test("notes that do not fit the strip stand whole on the first table sheet, and every strip says so", () => {
+    const notes = Array.from(
+      { length: 12 },
+      (_, i) => `Caution ${i + 1}: ${"release the trapped pressure before any hose is loosened; ".repeat(2)}end.`,
+    );
+    const made = compose(handMade({ notes }));
+    const table = said(made, 4, "cell").join(" ");
+    for (const note of notes) expect(table.replace(/\s+/g, " ")).toContain(note);
+    expect(sheetOf(made, 4).title).toBe("Notes, cross-reference");
+    for (const number of [1, 2, 3]) {
+      const strip = said(made, number, "note");
+      expect(strip.at(-1)).toBe("All notes of the drawing: sheet 4.");
+      expect(strip.join(" ")).toContain("Caution 1:");
+      expect(strip.join(" ")).not.toContain("…");
+      expect(strip).not.toContain("…");
+    }
+    expect(said(made, 3, "note")).toContain("V1 is drawn as it stands at the start.");
+    const few = compose(handMade({ notes: ["One."] }));
+    expect(said(few, 4, "heading")).not.toContain("Notes");
+  });
+
   test("a symbol's own text stands with its middle where the symbol says", () => {
     const letter = texts(sheetOf(set, 1).marks, "symbol").find(({ text }) => text === "K");
     // The coil stands at y 55; capitals of 2.5 mm about it reach 1.25 mm below.
