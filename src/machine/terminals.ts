@@ -49,11 +49,10 @@ export function allotTerminals(device: Device, report: Report): void {
   const free = places(device.kind);
   // An overload's break and make contact share a place; anything else has one place a contact.
   const sharing = new Map<number, Set<ContactUse["form"]>>();
-  const sensor = new Set<ContactUse["form"]>();
   for (const contact of device.contacts) {
     if (contact.terminals.by === "author") continue;
-    if (device.kind === "proximity-switch" && !sensor.has(contact.form)) {
-      sensor.add(contact.form);
+    // A sensor has each output once: used again, it is the same two terminals, which only a wire there can join.
+    if (device.kind === "proximity-switch") {
       contact.terminals = { value: [...sensorTerminals[contact.form]], by: "sensor outputs" };
       continue;
     }

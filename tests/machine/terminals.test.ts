@@ -28,6 +28,7 @@ describe("contact terminals by EN 50005", () => {
   // IEC 60947-5-2: 1 supply, 4 output that makes, 2 output that breaks.
   test("a sensor has its supply on 1 and its outputs on 4 and 2", () => {
     expect(terminals("proximity-switch PRS1 wires 3", ["PRS1", "/PRS1"]).numbers).toEqual(["1-4", "1-2"]);
+    expect(terminals("proximity-switch PRS1 wires 3", ["PRS1", "PRS1", "/PRS1"]).numbers).toEqual(["1-4", "1-4", "1-2"]);
   });
   test("coils are A1-A2, lamps X1-X2, a horn is unmarked", () => {
     const machine = soundMachine(ladder("rung: PB1 -> (K1 | LT1 | HN1)", "push-button PB1\nrelay K1\npilot-light LT1\nhorn HN1"));
