@@ -313,6 +313,26 @@ describe("rungs larger than a sheet", () => {
     ).toEqual([]);
   });
 
+  test.each(["A4", "A3", "ANSI-A"])(
+    "are drawn whole or cut without a fault on %s: many in series, beside each other, and as loads",
+    (paper) => {
+      const lamps = Array.from({ length: 12 }, (_, i) => `LP${i}`);
+      const laid = ladderOf(`drawing "Large" { paper ${paper} }
+      ${contacts(20)
+        .map((name) => `limit-switch ${name} "Gate closed"`)
+        .join("\n")}
+      ${lamps.map((lamp) => `pilot-light ${lamp} "Gate" red`).join("\n")}
+      relay CR1
+      relay CR2
+      ladder {
+        rung "Series": ${contacts(16).join(" ")} -> CR1
+        rung "Beside": LS20 (${contacts(20).join(" | ")}) -> CR2
+        rung "Loads": LS20 -> (${lamps.join(" | ")})
+      }`);
+      expect(faults(laid)).toEqual([]);
+    },
+  );
+
   test("put branches that have no room below the others on the next sheet", () => {
     const laid = large(`rung "Any of many": LS40 (${contacts(38).join(" | ")}) -> CR1`, "A3");
     expect(faults(laid)).toEqual([]);

@@ -55,7 +55,7 @@ export function layOutLadder(
   const firstHead = headRoom + heads.first.above + heads.first.below + (fuse?.length ?? 0);
   const nextHead = headRoom + heads.plain.above;
   const depth = page.area.height - nextHead - footRoom;
-  const offer = { ...room, depth: page.area.height - firstHead - footRoom };
+  const offer = { ...room, depth: page.area.height - Math.max(firstHead, nextHead) - footRoom };
 
   // 1. Every part has a column and a line on the grid, shared points are joined or end in a reference, every text is
   //    measured, and no rung needs more than a sheet offers.

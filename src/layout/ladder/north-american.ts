@@ -274,9 +274,12 @@ function marginBlock({ title, load }: MarginEntry, machine: Machine, margin: Mar
   const boxes = around(texts.map(roomOf));
   return {
     texts,
-    above: Math.max(-boxes.y, texts.length > 0 ? listed : 0),
-    below: Math.max(boxes.y + boxes.height, texts.length > 0 ? listed : 0),
+    // Farther from the texts of the next line than their own lines are from each other.
+    above: Math.max(-boxes.y + blockGap, texts.length > 0 ? listed : 0),
+    below: Math.max(boxes.y + boxes.height + blockGap, texts.length > 0 ? listed : 0),
   };
 }
 
 export const marginGap: Mm = 3;
+/** Half of what function texts of two lines are kept apart beyond other things, mm. */
+const blockGap: Mm = 0.6;
