@@ -14,18 +14,19 @@ const colours: Record<Severity, string> = { error: "31", warning: "33", note: "3
 export function formatDiagnostic(d: Diagnostic, sources: ReadonlyMap<string, string>, options: { color: boolean }): string {
   const paint = (code: string, text: string): string => (options.color ? `\u001b[${code}m${text}\u001b[0m` : text);
   const severity = `${d.severity}[${d.code}]`;
-  const lines = [`${paint("1", place(d.at))} ${paint(`1;${colours[d.severity]}`, `${severity}:`)} ${visible(d.message)}`];
+  const lines = [`${paint("1", place(d.at, sources))} ${paint(`1;${colours[d.severity]}`, `${severity}:`)} ${visible(d.message)}`];
   lines.push(...quote(d.at, sources, (mark) => paint(`1;${colours[d.severity]}`, mark)));
   if (d.hint) lines.push(`  ${paint("1", "hint:")} ${visible(d.hint)}`);
   for (const other of d.seeAlso ?? []) {
-    lines.push(`  ${paint("1", `${place(other.at)} note:`)} ${visible(other.message)}`);
+    lines.push(`  ${paint("1", `${place(other.at, sources)} note:`)} ${visible(other.message)}`);
     lines.push(...quote(other.at, sources, (mark) => paint(colours.note, mark)));
   }
   return lines.join("\n");
 }
 
-function place(at: SourceRange): string {
-  return `${visible(at.file)}:${at.line}:${at.column}:`;
+/** Of a file that could not be read there is no line to name. */
+function place(at: SourceRange, sources: ReadonlyMap<string, string>): string {
+  return sources.has(at.file) ? `${visible(at.file)}:${at.line}:${at.column}:` : `${visible(at.file)}:`;
 }
 
 const sourceLines = new WeakMap<ReadonlyMap<string, string>, Map<string, string[]>>();

@@ -99,9 +99,9 @@ export function terminalsOf(contact: ContactUse): string {
   return printed === "-" ? "" : printed;
 }
 
-/** The cylinder or fluid point that works a switch. */
+/** What works a switch: a cylinder, a fluid point, or the motor that an overload guards. */
 export function operatorOf(device: Device): string | undefined {
-  return device.place?.cylinder ?? device.senses?.component ?? device.senses?.point;
+  return device.place?.cylinder ?? device.senses?.component ?? device.senses?.point ?? device.guards;
 }
 
 function onValve(device: Device | undefined, at: (part: PartId) => Appearance | undefined): Appearance | undefined {
@@ -128,10 +128,12 @@ function endsOfPoints(layout: Layout, zoneOf: (point: Point) => string): Map<str
     for (const { text, at, height } of sheet.texts) {
       if (typeof text === "string" || text.to !== "point") continue;
       const key = `${sheet.kind} ${text.point}`;
-      const known = layout.places.get(text.from);
+      const home = layout.places.get(text.from);
       // A part that runs over several sheets has its place on one of them only.
-      const place = known?.sheet === sheet.number ? known : placeless(sheet.number, at, height, zoneOf);
-      ends.set(key, [...(ends.get(key) ?? []), { from: text.from, place }]);
+      const place = home?.sheet === sheet.number ? home : placeless(sheet.number, at, height, zoneOf);
+      const known = ends.get(key);
+      if (known) known.push({ from: text.from, place });
+      else ends.set(key, [{ from: text.from, place }]);
     }
   }
   return ends;

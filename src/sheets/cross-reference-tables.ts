@@ -6,7 +6,7 @@ import type { Cell, Table } from "./table.js";
 
 /** What stands below the tables to explain their entries. */
 export const tableNotes = [
-  "Each contact: its terminals, then sheet.line. NO is normally open, NC normally closed.",
+  "Each contact: its terminals, then sheet/line. NO is normally open, NC normally closed.",
   "Not a certification. Isolate and verify before work.",
 ];
 
@@ -51,7 +51,7 @@ function coilTable(rows: readonly CrossReferenceRow[], appearances: Appearances)
         { text: row.coil, to: home, bold: true },
         { text: kindName(row.kind) },
         { text: row.text },
-        { entries: [{ text: `${row.sheet}.${row.line}`, to: home }] },
+        { entries: [{ text: `${row.sheet}/${row.line}`, to: home }] },
         contacts(row, "NO", appearances),
         contacts(row, "NC", appearances),
         valve(row, appearances),
@@ -88,7 +88,7 @@ function contacts(row: CrossReferenceRow, type: ContactReference["type"], appear
     .map((contact): Piece => {
       const to = appearances.contactOf(row.coil, contact);
       const terminals = [contact.terminals, contact.timed ? "timed" : ""].filter((part) => part !== "").join(" ");
-      return { text: `${terminals}${terminals === "" ? "" : "  "}${contact.sheet}.${contact.line}`, ...(to === undefined ? {} : { to }) };
+      return { text: `${terminals}${terminals === "" ? "" : "  "}${contact.sheet}/${contact.line}`, ...(to === undefined ? {} : { to }) };
     });
   return { entries };
 }

@@ -60,7 +60,9 @@ function wordingsOf(reference: Reference, sheet: CircuitSheet, appearances: Appe
     }
     case "valve": {
       const name = appearances.machine.devices.get(reference.device)?.valve?.name;
-      return named(name, appearances.fluidSideOf(reference.device) ?? (name ? appearances.component(name) : undefined));
+      const valve = name === undefined ? undefined : appearances.component(name);
+      // The words name the valve, the link leads to the coil's own end of it.
+      return named(name, valve && { ...valve, part: appearances.fluidSideOf(reference.device)?.part ?? valve.part });
     }
     case "ladder-line":
       return ladderLines(reference.device, sheet, appearances);

@@ -311,8 +311,8 @@ describe("sheets", () => {
       expect.arrayContaining(["Coils and other loads", "Switches and other contacts", "Valve", "Operated by"]),
     );
     const cells = said(set, 4, "cell");
-    expect(cells).toEqual(expect.arrayContaining(["CR1", "1.101", "13-14  1.102", "33-34  2.202", "21-22  2.201", "V1 3/C3"]));
-    expect(cells).toEqual(expect.arrayContaining(["PB1", "Push button", 'Start <& "go">', "LS1", "LIFT retracted 3/B3", "21-22  1.103"]));
+    expect(cells).toEqual(expect.arrayContaining(["CR1", "1/101", "13-14  1/102", "33-34  2/202", "21-22  2/201", "V1 3/C3"]));
+    expect(cells).toEqual(expect.arrayContaining(["PB1", "Push button", 'Start <& "go">', "LS1", "LIFT retracted 3/B3", "21-22  1/103"]));
   });
 
   test.each([
