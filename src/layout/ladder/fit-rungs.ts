@@ -26,7 +26,7 @@ export const columnPitch = (scale: number): ColumnPitch => ({ usual: 30 * scale,
 export const linePitch = (scale: number): LinePitch => ({ least: scale === 1 ? 15 : 12.5, step: 1.25 });
 
 /** More than anybody draws; each round cuts what was still too large. */
-const rounds = 10;
+const rounds = 16;
 
 /**
  * Places and measures the rungs. Where many are wider than the sheet the symbols take the smaller module; a rung that is

@@ -98,6 +98,7 @@ export function withNeeds(
     const room = arrangement.endingRoom(point);
     const along = lead + endingSize.head + endingSize.gap + room + 1.5;
     if (kind === "start") widen(needs.spans, boundary - 1, along);
+    else if (kind === "drop") widen(needs.ends, boundary, room / 2 + beside);
     else if (kind === "end" && last) widen(needs.ends, boundary, along);
     else if (kind === "end") {
       widen(needs.spans, boundary, along);
