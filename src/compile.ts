@@ -70,6 +70,8 @@ export async function compile(path: string, world: World, told: Told = () => {})
   // 5. Machine and symbols → places in millimetres, sheet by sheet; room is kept for references.
   told("placing");
   const layout = await layOut(machine, startOfCycle(machine), openSymbols(world), pageArea);
+  const diagnostics = inReadingOrder([...examined.diagnostics, ...(layout.diagnostics ?? [])], examined.sources);
+  if (diagnostics.some(({ severity }) => severity === "error")) return { ...examined, diagnostics };
 
   // 6. Machine and places → wire numbers by line, cross-reference rows.
   numberWires(machine, layout);
@@ -78,7 +80,7 @@ export async function compile(path: string, world: World, told: Told = () => {})
   // 7. Places and rows → whole sheets: references worded, tables set, frame and title block.
   told("drawing");
   const set = composeSheets(machine, layout, rows, world);
-  return { ...examined, layout, rows, set };
+  return { ...examined, diagnostics, layout, rows, set };
 }
 
 /** Sorts findings by place; those at one place keep the order in which the stages found them. */

@@ -1,5 +1,6 @@
 import type { StartState } from "../behaviour/start-state.js";
 import type { PartId } from "../drawing/marks.js";
+import type { Diagnostic } from "../language/diagnostic.js";
 import type { ContactUse, Device, DrawingInfo, LoadUse, Machine } from "../machine/model.js";
 import { symbolForDevice } from "../symbols/choose.js";
 import type { SymbolLibrary } from "../symbols/library.js";
@@ -22,6 +23,7 @@ export async function layOut(
     symbolForDevice(use, machine.devices.get(use.device) as Device, start, machine.drawing.convention, symbols);
   const sheets: CircuitSheet[] = [];
   const places = new Map<PartId, Place>();
+  const diagnostics: Diagnostic[] = [];
   let line = 1;
   for (const circuit of machine.circuits) {
     const numbering = { sheet: sheets.length + 1, line };
@@ -35,8 +37,9 @@ export async function layOut(
       const { layOutFluid } = await import("./fluid/lay-out-fluid.js");
       const laid = await layOutFluid(circuit, machine, start, symbols, page, numbering);
       sheets.push(...laid.sheets);
+      diagnostics.push(...laid.diagnostics);
       for (const [part, place] of laid.places) places.set(part, place);
     }
   }
-  return { sheets, places };
+  return { sheets, places, diagnostics };
 }

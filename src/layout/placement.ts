@@ -1,5 +1,6 @@
 import type { Box, Mm, Point } from "../drawing/geometry.js";
 import type { Anchor, PartId } from "../drawing/marks.js";
+import type { Diagnostic } from "../language/diagnostic.js";
 import type { Symbol, Turn } from "../symbols/symbol.js";
 
 /** The part of a sheet a circuit may use: inside the frame, clear of the title block and its revision table. */
@@ -118,4 +119,6 @@ export interface Place {
 export interface Layout {
   sheets: CircuitSheet[];
   places: ReadonlyMap<PartId, Place>;
+  /** What could not be set down; with an error among them the sheets are not whole. */
+  diagnostics?: Diagnostic[];
 }

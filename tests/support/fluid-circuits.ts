@@ -1,5 +1,6 @@
 import fc from "fast-check";
 import { startOfCycle } from "../../src/behaviour/start-of-cycle.js";
+import type { Diagnostic } from "../../src/language/diagnostic.js";
 import { parse } from "../../src/language/parse.js";
 import { layOutFluid } from "../../src/layout/fluid/lay-out-fluid.js";
 import type { CircuitSheet, Place } from "../../src/layout/placement.js";
@@ -16,6 +17,7 @@ export interface LaidFluid {
   circuit: FluidCircuit;
   sheets: CircuitSheet[];
   places: Map<string, Place>;
+  diagnostics: Diagnostic[];
   area: { x: number; y: number; width: number; height: number };
 }
 
@@ -28,8 +30,8 @@ export async function layOutText(text: string): Promise<LaidFluid> {
   const circuit = machine.circuits.find((one) => one.kind === "fluid");
   if (circuit?.kind !== "fluid") throw new Error("The drawing has no fluid circuit.");
   const page = pageArea(machine.drawing);
-  const { sheets, places } = await layOutFluid(circuit, machine, startOfCycle(machine), symbols, page, { sheet: 1 });
-  return { machine, circuit, sheets, places: new Map(places), area: page.area };
+  const { sheets, places, diagnostics } = await layOutFluid(circuit, machine, startOfCycle(machine), symbols, page, { sheet: 1 });
+  return { machine, circuit, sheets, places: new Map(places), diagnostics, area: page.area };
 }
 
 /** Ports whose line found no way and only says its name. */
@@ -166,90 +168,99 @@ export const anyCircuit: fc.Arbitrary<string> = fc
       if (one !== undefined && two !== undefined && one !== two) lines.push(`${role === 0 ? "pilot" : "line"} ${one} -- ${two}`);
     }
     if (ports.length === 0) lines.push("gauge PG99");
-    return `fluid "Any" ${medium} {\n  ${lines.join("\n  ")}\n}\n`;
+    return `drawing "Any" { paper A1 }\nfluid "Any" ${medium} {\n  ${lines.join("\n  ")}\n}\n`;
   });
 
 /** Circuits as machines have them: a supply, actuators with their valves, and things in and on their lines. */
-export const usualCircuit: fc.Arbitrary<string> = fc
-  .record({
-    medium: fc.constantFrom("hydraulic" as const, "pneumatic" as const),
-    axes: fc.array(
-      fc.record({
-        valve: fc.constantFrom("4/2", "4/3", "5/2", "5/3", "3/2"),
-        cap: fc.array(fc.constantFrom("throttle", "one-way-flow-control", "check-valve", "pilot-operated-check-valve"), { maxLength: 2 }),
-        rod: fc.array(fc.constantFrom("throttle", "one-way-flow-control", "check-valve", "pilot-operated-check-valve"), { maxLength: 2 }),
-        gauge: fc.boolean(),
-        second: fc.boolean(),
-        lock: fc.constantFrom("none", "none", "cap", "rod", "both"),
-        switches: fc.nat(4),
-        text: fc.constantFrom("Clamp", "Transfer slide to the second station", "X"),
-      }),
-      { minLength: 1, maxLength: 6 },
-    ),
-    tankHeader: fc.boolean(),
-    gauge: fc.boolean(),
-    filter: fc.boolean(),
-    paper: fc.constantFrom("A3", "A2", "A3"),
-  })
-  .map(({ medium, axes, tankHeader, gauge, filter, paper }) => {
-    const hydraulic = medium === "hydraulic";
-    const lines: string[] = [];
-    const switches: string[] = [];
-    let count = 0;
-    if (hydraulic) {
-      lines.push('tank TK1 "Tank" 100 l', "pump P1 displacement 16 cm3/rev", "relief-valve RV1 160 bar", 'filter F1 "Return filter" 10 um');
-      lines.push("line TK1 -- P1 -- @P", "line @P -- RV1 -- tank");
-    } else {
-      lines.push("air-supply AIR1 6 bar", 'service-unit FRL1 "Air preparation" 5.5 bar');
-      if (filter) lines.push('filter F1 "Main filter"', "line AIR1 -- F1 -- FRL1 -- @P");
-      else lines.push("line AIR1 -- FRL1 -- @P");
-    }
-    if (gauge) lines.push('gauge PG1 "Line pressure"', "line @P -- PG1");
-    axes.forEach(({ valve, cap, rod, gauge: own, second, lock, switches: marks, text }, i) => {
-      const kind = hydraulic ? valve.replace("5/", "4/") : valve;
-      const single = kind === "3/2";
-      const [p, a, b] = hydraulic ? ["P", "A", "B"] : single ? ["1", "2", ""] : ["1", "4", "2"];
-      const returns = hydraulic ? ["T"] : kind.startsWith("5") ? ["5", "3"] : ["3"];
-      lines.push(
-        `cylinder C${i} "${text}" ${single ? "spring-return" : "double-acting"} bore 50 mm ${single ? "" : "rod 20 mm "}stroke 200 mm`,
-      );
-      lines.push(
-        `valve V${i} "${text}" ${kind} left solenoid SOL${2 * i} ${kind.endsWith("3") ? `centre closed right solenoid SOL${2 * i + 1} springs` : single ? "right spring normally closed" : i % 2 ? "right spring" : `right solenoid SOL${2 * i + 1}`}`,
-      );
-      const inline = (kinds: string[]) =>
-        kinds.map((one) => {
-          const name = `N${++count}`;
-          lines.push(`${one} ${name}${one === "one-way-flow-control" ? ` "Speed" free-to C${i}` : ""}`);
-          return ` -- ${name}`;
-        });
-      const locked = (side: string) => {
-        if (single || (lock !== side && lock !== "both")) return "";
-        lines.push(`pilot-operated-check-valve L${i}${side}`, `pilot V${i}.${side === "cap" ? b : a} -- L${i}${side}.X`);
-        return ` -- L${i}${side}`;
-      };
-      lines.push(`line @P -- V${i}.${p}`, `line V${i}.${a}${locked("cap")}${inline(cap).join("")} -- C${i}.cap`);
-      if (!single) lines.push(`line V${i}.${b}${locked("rod")}${inline(rod).join("")} -- C${i}.rod`);
-      if (second && !single)
+export const usualCircuit: fc.Arbitrary<string> = usualCircuitOn("A3", "A2", "A3");
+
+export function usualCircuitOn(...papers: string[]): fc.Arbitrary<string> {
+  return fc
+    .record({
+      medium: fc.constantFrom("hydraulic" as const, "pneumatic" as const),
+      axes: fc.array(
+        fc.record({
+          valve: fc.constantFrom("4/2", "4/3", "5/2", "5/3", "3/2"),
+          cap: fc.array(fc.constantFrom("throttle", "one-way-flow-control", "check-valve", "pilot-operated-check-valve"), { maxLength: 2 }),
+          rod: fc.array(fc.constantFrom("throttle", "one-way-flow-control", "check-valve", "pilot-operated-check-valve"), { maxLength: 2 }),
+          gauge: fc.boolean(),
+          second: fc.boolean(),
+          lock: fc.constantFrom("none", "none", "cap", "rod", "both"),
+          switches: fc.nat(4),
+          text: fc.constantFrom("Clamp", "Transfer slide to the second station", "X"),
+        }),
+        { minLength: 1, maxLength: 6 },
+      ),
+      tankHeader: fc.boolean(),
+      gauge: fc.boolean(),
+      filter: fc.boolean(),
+      paper: fc.constantFrom(...papers),
+    })
+    .map(({ medium, axes, tankHeader, gauge, filter, paper }) => {
+      const hydraulic = medium === "hydraulic";
+      const lines: string[] = [];
+      const switches: string[] = [];
+      let count = 0;
+      if (hydraulic) {
         lines.push(
-          `cylinder D${i} double-acting bore 50 mm rod 20 mm stroke 200 mm`,
-          `line C${i}.cap -- D${i}.cap`,
-          `line C${i}.rod -- D${i}.rod`,
+          'tank TK1 "Tank" 100 l',
+          "pump P1 displacement 16 cm3/rev",
+          "relief-valve RV1 160 bar",
+          'filter F1 "Return filter" 10 um',
         );
-      if (own) lines.push(`gauge G${i}`, `line C${i}.cap -- G${i}`);
-      for (const port of returns)
-        lines.push(
-          hydraulic
-            ? tankHeader
-              ? `line V${i}.${port} -- @T`
-              : `line V${i}.${port} -- tank`
-            : `exhaust V${i}.${port} -- ${i % 2 ? "silencer" : "exhaust"}`,
-        );
-      for (let n = 0; n < marks; n++) {
-        const place = n === 0 ? "at retracted" : n === 1 ? "at extended" : n === 2 ? "at 90 mm" : "from 120 mm to 150 mm";
-        switches.push(`limit-switch LS${i}${n} "Place" on C${i} ${place}`);
+        lines.push("line TK1 -- P1 -- @P", "line @P -- RV1 -- tank");
+      } else {
+        lines.push("air-supply AIR1 6 bar", 'service-unit FRL1 "Air preparation" 5.5 bar');
+        if (filter) lines.push('filter F1 "Main filter"', "line AIR1 -- F1 -- FRL1 -- @P");
+        else lines.push("line AIR1 -- FRL1 -- @P");
       }
+      if (gauge) lines.push('gauge PG1 "Line pressure"', "line @P -- PG1");
+      axes.forEach(({ valve, cap, rod, gauge: own, second, lock, switches: marks, text }, i) => {
+        const kind = hydraulic ? valve.replace("5/", "4/") : valve;
+        const single = kind === "3/2";
+        const [p, a, b] = hydraulic ? ["P", "A", "B"] : single ? ["1", "2", ""] : ["1", "4", "2"];
+        const returns = hydraulic ? ["T"] : kind.startsWith("5") ? ["5", "3"] : ["3"];
+        lines.push(
+          `cylinder C${i} "${text}" ${single ? "spring-return" : "double-acting"} bore 50 mm ${single ? "" : "rod 20 mm "}stroke 200 mm`,
+        );
+        lines.push(
+          `valve V${i} "${text}" ${kind} left solenoid SOL${2 * i} ${kind.endsWith("3") ? `centre closed right solenoid SOL${2 * i + 1} springs` : single ? "right spring normally closed" : i % 2 ? "right spring" : `right solenoid SOL${2 * i + 1}`}`,
+        );
+        const inline = (kinds: string[]) =>
+          kinds.map((one) => {
+            const name = `N${++count}`;
+            lines.push(`${one} ${name}${one === "one-way-flow-control" ? ` "Speed" free-to C${i}` : ""}`);
+            return ` -- ${name}`;
+          });
+        const locked = (side: string) => {
+          if (single || (lock !== side && lock !== "both")) return "";
+          lines.push(`pilot-operated-check-valve L${i}${side}`, `pilot V${i}.${side === "cap" ? b : a} -- L${i}${side}.X`);
+          return ` -- L${i}${side}`;
+        };
+        lines.push(`line @P -- V${i}.${p}`, `line V${i}.${a}${locked("cap")}${inline(cap).join("")} -- C${i}.cap`);
+        if (!single) lines.push(`line V${i}.${b}${locked("rod")}${inline(rod).join("")} -- C${i}.rod`);
+        if (second && !single)
+          lines.push(
+            `cylinder D${i} double-acting bore 50 mm rod 20 mm stroke 200 mm`,
+            `line C${i}.cap -- D${i}.cap`,
+            `line C${i}.rod -- D${i}.rod`,
+          );
+        if (own) lines.push(`gauge G${i}`, `line C${i}.cap -- G${i}`);
+        for (const port of returns)
+          lines.push(
+            hydraulic
+              ? tankHeader
+                ? `line V${i}.${port} -- @T`
+                : `line V${i}.${port} -- tank`
+              : `exhaust V${i}.${port} -- ${i % 2 ? "silencer" : "exhaust"}`,
+          );
+        for (let n = 0; n < marks; n++) {
+          const place = n === 0 ? "at retracted" : n === 1 ? "at extended" : n === 2 ? "at 90 mm" : "from 120 mm to 150 mm";
+          switches.push(`limit-switch LS${i}${n} "Place" on C${i} ${place}`);
+        }
+      });
+      if (hydraulic && tankHeader) lines.push("line @T -- F1 -- TK1");
+      else if (hydraulic) lines.push("line F1 -- TK1");
+      return `drawing "Random" { paper ${paper} }\nfluid "Usual" ${medium} {\n  ${lines.join("\n  ")}\n}\n${switches.join("\n")}\n`;
     });
-    if (hydraulic && tankHeader) lines.push("line @T -- F1 -- TK1");
-    else if (hydraulic) lines.push("line F1 -- TK1");
-    return `drawing "Random" { paper ${paper} }\nfluid "Usual" ${medium} {\n  ${lines.join("\n  ")}\n}\n${switches.join("\n")}\n`;
-  });
+}

@@ -3,7 +3,6 @@ import type { FluidComponent, FluidNodeId } from "../../machine/model.js";
 import type { Arrangement } from "./arrangement.js";
 import { type Placed, portOf } from "./block.js";
 import type { HeaderKind } from "./divide.js";
-import type { FluidGraph } from "./graph.js";
 import { type Extent, moved, union } from "./modules.js";
 import type { PowerUnit } from "./power-unit.js";
 
@@ -34,6 +33,9 @@ export interface Composition {
 const plainPitch = 3;
 const wordedPitch = 4;
 
+/** Columns between the groups and a unit beside them, for its lines to come down in. */
+const besideRoom = 6;
+
 /** How long a line is beyond the last thing on it, for the name and place it goes on to. */
 const wordRoom = 12;
 
@@ -48,16 +50,14 @@ export interface Content {
   even: boolean;
   /** How wide a sheet is. */
   width: number;
+  /** The unit stands left of the groups rather than below them. */
+  beside: boolean;
 }
 
 /** Sets groups side by side on common lines, headers below them and the power unit at the bottom left. */
-export function compose({ groups, unit, headers, gap, even, width }: Content, _graph: FluidGraph): Composition {
+export function compose({ groups, unit, headers, gap, even, width, beside }: Content): Composition {
   const placed: Placed[] = [];
-  const origins = sideBySide(
-    groups.map(({ extent }) => extent),
-    gap,
-    even,
-  );
+  const origins = sideBySide(groups, gap, even);
   groups.forEach(({ placed: members }, index) => {
     for (const { block, at } of members) placed.push({ block, at: { x: at.x + (origins[index] as number), y: at.y } });
   });
@@ -75,12 +75,17 @@ export function compose({ groups, unit, headers, gap, even, width }: Content, _g
   // The unit's first riser goes straight on to the first valve, if that leaves it on the sheet's left.
   const rising: { node: FluidNodeId; x: number; from: Point }[] = [];
   const risers = new Map<FluidNodeId, number[]>();
-  if (unit) {
+  if (unit && beside && groups.length > 0) {
+    const left = Math.min(...placed.map(({ block, at }) => at.x + block.full.left));
+    const shift = Math.floor(left - besideRoom - unit.extent.right);
+    const down = Math.floor(lastRow + 1 - unit.extent.bottom);
+    for (const { block, at } of unit.placed) placed.push({ block, at: { x: at.x + shift, y: at.y + down } });
+  } else if (unit) {
     const riser = unit.risers[0];
     const target = riser ? portsOn(placed, riser.node)[0] : undefined;
     const shift =
       riser && target !== undefined ? besideOthers(unit, riser.x, target, placed, width - (worded ? 10 : 0)) : Math.ceil(-unit.extent.left);
-    const down = (groups.length > 0 ? lastRow : -1) + 1;
+    const down = groups.length > 0 || joined.length > 0 ? lastRow + 1 : 0;
     for (const { block, at } of unit.placed) placed.push({ block, at: { x: at.x + shift, y: at.y + down } });
     for (const { node, x: at, from } of unit.risers) rising.push({ node, x: at + shift, from: { x: from.x + shift, y: from.y + down } });
     for (const { node, x: at } of [...unit.risers, ...unit.returns]) risers.set(node, [...(risers.get(node) ?? []), at + shift]);
@@ -109,7 +114,7 @@ export function compose({ groups, unit, headers, gap, even, width }: Content, _g
       left: fromLeft ? from - 1 : from,
       right: toRight ? to + 1 : to,
       top: y - (fromLeft || toRight ? 2 : 0),
-      bottom: y,
+      bottom: y + (fromLeft || toRight ? 0.6 : 0),
     })),
   ]);
   const rows = new Map(lines.map(({ node, y }) => [node, y]));
@@ -131,14 +136,29 @@ function besideOthers(unit: PowerUnit, riser: number, target: number, placed: re
 }
 
 /** Where the origins of groups stand. */
-function sideBySide(extents: readonly Extent[], gap: number, even: boolean): number[] {
-  const steps = extents.slice(1).map(({ left }, index) => Math.ceil((extents[index] as Extent).right + gap - left));
+function sideBySide(groups: readonly Arrangement[], gap: number, even: boolean): number[] {
+  const steps = groups.slice(1).map((group, index) => stepTo(group, groups[index] as Arrangement, gap));
   const widest = Math.max(0, ...steps);
-  let x = Math.ceil(-(extents[0]?.left ?? 0));
-  return extents.map((_, index) => {
+  let x = Math.ceil(-(groups[0]?.extent.left ?? 0));
+  return groups.map((_, index) => {
     if (index > 0) x += even ? widest : (steps[index - 1] as number);
     return x;
   });
+}
+
+/** How far a group stands from the one before it: the symbols of one all right of the other's, texts between them where they fit. */
+function stepTo(group: Arrangement, before: Arrangement, gap: number): number {
+  const bodies = ({ placed }: Arrangement) => placed.map(({ block, at }) => moved(block.body, at));
+  const whole = ({ placed }: Arrangement) => placed.map(({ block, at }) => moved(block.full, at));
+  const right = Math.max(...bodies(before).map((extent) => extent.right));
+  const left = Math.min(...bodies(group).map((extent) => extent.left));
+  let step = right + gap - left;
+  for (const one of whole(before)) {
+    for (const other of whole(group)) {
+      if (one.top - gap < other.bottom && other.top - gap < one.bottom) step = Math.max(step, one.right + gap - other.left);
+    }
+  }
+  return Math.ceil(step);
 }
 
 /** Where ports on a node stand, from left to right. */

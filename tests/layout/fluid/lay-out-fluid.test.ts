@@ -195,6 +195,107 @@ describe("texts", () => {
   });
 });
 
+/** Cylinders with flow controls on both lines, all alike. */
+function stations(count: number, paper: string): string {
+  const one = (i: number) => `cylinder C${i} "Station ${i}" double-acting bore 32 mm rod 12 mm stroke 50 mm
+    valve V${i} 5/2 left solenoid S${i} right spring
+    one-way-flow-control FA${i} free-to C${i}
+    one-way-flow-control FB${i} free-to C${i}
+    line @P -- V${i}.1
+    line V${i}.4 -- FA${i} -- C${i}.cap
+    line V${i}.2 -- FB${i} -- C${i}.rod
+    exhaust V${i}.3, V${i}.5 -- silencer`;
+  const all = Array.from({ length: count }, (_, i) => one(i + 1)).join("\n");
+  return `drawing "Line" { paper ${paper} }\nfluid "Line" pneumatic {\nair-supply AIR 6 bar\nline AIR -- @P\n${all}\n}`;
+}
+
+describe("sharing out groups", () => {
+  const counts = async (text: string) =>
+    (await layOutText(text)).sheets.map((sheet) => sheet.symbols.filter(({ part }) => /^C\d+$/.test(part)).length);
+
+  it("closes up before it breaks", async () => {
+    // Six stations of about 56 mm each, with 2 mm between them, in 376 mm.
+    expect(await counts(stations(6, "A3"))).toEqual([6]);
+  });
+
+  it("gives each sheet about as many groups as the others", async () => {
+    expect(await counts(stations(8, "A3"))).toEqual([4, 4]);
+    expect(await counts(stations(7, "A3"))).toEqual([4, 3]);
+    expect(await counts(stations(8, "A4"))).toEqual([2, 2, 2, 2]);
+  });
+
+  it("keeps texts of neighbouring groups 2 mm apart", async () => {
+    const { sheets } = await layOutText(stations(6, "A3"));
+    const [sheet] = sheets as [CircuitSheet];
+    expect(textOverlaps({ ...sheet, symbols: [] }, 1.99).filter((found) => /F[AB]\d/.test(found))).toEqual([]);
+  });
+});
+
+describe("paper that is too small", () => {
+  const parallel = (count: number) => {
+    const one = (i: number) => `cylinder C${i} double-acting bore 50 mm rod 28 mm stroke 200 mm
+      line @a -- C${i}.cap
+      line @b -- C${i}.rod`;
+    return `fluid "Press" hydraulic {
+      valve V1 4/3 centre closed left solenoid SA right solenoid SB springs
+      line V1.A -- @a
+      line V1.B -- @b
+      ${Array.from({ length: count }, (_, i) => one(i + 1)).join("\n")}
+    }`;
+  };
+
+  it("is told, with the place of the circuit and what to do", async () => {
+    const { sheets, diagnostics } = await layOutText(`drawing "Press" { paper A4 }\n${parallel(6)}`);
+    expect(sheets).toEqual([]);
+    expect(diagnostics).toEqual([
+      {
+        code: "sheet-too-small",
+        severity: "error",
+        message: expect.stringMatching(
+          /^What belongs to C1 does not fit on a sheet: it takes \d+ × \d+ mm, and there is room for 166 × \d+ mm\.$/,
+        ),
+        at: expect.objectContaining({ line: 2 }),
+        hint: "Use a larger paper.",
+      },
+    ]);
+  });
+
+  it("is not told where it is enough", async () => {
+    const { sheets, diagnostics, area } = await layOutText(`drawing "Press" { paper A3 }\n${parallel(6)}`);
+    expect(diagnostics).toEqual([]);
+    expect(sheets.flatMap((sheet) => outside(sheet, area))).toEqual([]);
+  });
+
+  it("has the power unit beside the valves where it is not high enough for both", async () => {
+    const { circuit, sheets, area } = await layOutText(`drawing "Low" { paper ANSI-A }
+      fluid "Low" hydraulic {
+        tank T1
+        pump P1
+        check-valve K1
+        relief-valve R1 100 bar
+        filter F1
+        gauge G1
+        shut-off-valve S1
+        line T1 -- F1 -- P1 -- K1 -- @P
+        line @P -- S1 -- G1
+        line P1.P -- R1 -- tank
+        cylinder C1 "Lift" double-acting bore 50 mm rod 28 mm stroke 200 mm
+        valve V1 4/2 left solenoid SA right spring
+        throttle TH1
+        line @P -- V1.P
+        line V1.A -- TH1 -- C1.cap
+        line V1.B -- C1.rod
+        line V1.T -- tank
+      }`);
+    expect(sheets).toHaveLength(1);
+    const [sheet] = sheets as [CircuitSheet];
+    expect(outside(sheet, area)).toEqual([]);
+    expect(symbol(sheet, "R1").at.x).toBeLessThan(symbolBox(symbol(sheet, "V1")).x);
+    for (const found of [symbolOverlaps, textOverlaps, textsOnWires, wiresThroughSymbols, looseEnds]) expect(found(sheet)).toEqual([]);
+    expect(netsOfSheets(sheets)).toEqual(netsOfMachine(circuit));
+  });
+});
+
 describe("more than one sheet takes", () => {
   const axes = Array.from(
     { length: 12 },

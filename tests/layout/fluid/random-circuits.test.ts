@@ -11,7 +11,7 @@ import {
   tooClose,
   wiresThroughSymbols,
 } from "../../support/facts.js";
-import { anyCircuit, layOutText, netsOfMachine, netsOfSheets, stubs, usualCircuit } from "../../support/fluid-circuits.js";
+import { anyCircuit, layOutText, netsOfMachine, netsOfSheets, stubs, usualCircuit, usualCircuitOn } from "../../support/fluid-circuits.js";
 
 const runs = Number(process.env.FLUID_RUNS ?? 25);
 
@@ -39,12 +39,35 @@ describe("circuits as machines have them", () => {
   }, 120_000);
 });
 
+describe("circuits on small and large paper", () => {
+  it("stay within the sheet, or are told to be too large for it", async () => {
+    await fc.assert(
+      fc.asyncProperty(usualCircuitOn("A4", "A3", "ANSI-A"), async (text) => {
+        const { circuit, sheets, area, diagnostics } = await layOutText(text);
+        for (const sheet of sheets) {
+          expect(outside(sheet, area)).toEqual([]);
+          expect(stubs(sheet)).toEqual([]);
+          expect(tooClose(sheet, { lines: 0.8, others: 0.5 })).toEqual([]);
+          expect(symbolOverlaps(sheet)).toEqual([]);
+          expect(wiresThroughSymbols(sheet)).toEqual([]);
+          expect(looseEnds(sheet)).toEqual([]);
+        }
+        if (diagnostics.length === 0) expect(netsOfSheets(sheets)).toEqual(netsOfMachine(circuit));
+        for (const found of diagnostics) expect(found).toMatchObject({ code: "sheet-too-small", severity: "error", at: circuit.at });
+      }),
+      { numRuns: runs, seed: 13, endOnFailure: true },
+    );
+  }, 120_000);
+});
+
 describe("any netlist", () => {
   it("is drawn as it is, however unusual", async () => {
     await fc.assert(
       fc.asyncProperty(anyCircuit, async (text) => {
-        const { circuit, sheets } = await layOutText(text);
+        const { circuit, sheets, diagnostics, area } = await layOutText(text);
+        expect(diagnostics).toEqual([]);
         for (const sheet of sheets) {
+          expect(outside(sheet, area)).toEqual([]);
           expect(symbolOverlaps(sheet)).toEqual([]);
           expect(textOverlaps(sheet)).toEqual([]);
           expect(wiresThroughSymbols(sheet)).toEqual([]);
