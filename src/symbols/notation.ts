@@ -36,7 +36,7 @@ export const fluidModule: Mm = 2;
 /** Width of every line of a symbol, ISO 128-2. */
 export const lineWidth: Mm = 0.25;
 
-const dashes: Record<string, Mm[]> = { d: [2, 1], e: [6, 1, 0.25, 1], m: [1.5, 0.75] };
+const dashes: Record<string, Mm[]> = { d: [2, 1], e: [3, 0.8, 0.25, 0.8], m: [1.5, 0.75] };
 
 const arrowhead = { length: 0.75, width: 0.5 };
 

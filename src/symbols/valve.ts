@@ -49,10 +49,11 @@ export function composeValve(spec: ValveSpec, medium: Medium, shownBox: number, 
     const at = frameAt(frame, (index - shown) * width, 0);
     valve.shapes.push(...sketch(`R(${-width / 2},-2 ${width / 2},2) ${geometry}`, at, medium));
   });
-  addLeads(valve, spec, medium, frame);
+  const continuous = [...spec.left, ...spec.right].some(({ kind }) => kind === "proportional-solenoid");
+  addLeads(valve, spec, medium, frame, continuous);
 
   const edges = { left: -(shown + 0.5) * width, right: (spec.boxes.length - shown - 0.5) * width };
-  if ([...spec.left, ...spec.right].some(({ kind }) => kind === "proportional-solenoid")) {
+  if (continuous) {
     // Two lines along the boxes: any place between the positions can be held.
     valve.shapes.push(...sketch(`L(${edges.left},2.5 ${edges.right},2.5) L(${edges.left},-2.5 ${edges.right},-2.5)`, frame, medium));
   }
@@ -69,13 +70,15 @@ export function composeValve(spec: ValveSpec, medium: Medium, shownBox: number, 
 
 const emptyBox: Box = { x: 0, y: 0, width: 0, height: 0 };
 
-function addLeads(valve: Symbol, spec: ValveSpec, medium: Medium, frame: Frame): void {
+function addLeads(valve: Symbol, spec: ValveSpec, medium: Medium, frame: Frame, continuous: boolean): void {
+  // Port names stand clear of the lines along the boxes of a valve that holds any place.
+  const clear = continuous ? 0.45 : 0;
   for (const { code, x, y } of valvePlaces[spec.ports]) {
     const end = y > 0 ? y + 1 : y - 1;
     const name = portName(code, spec.ports, medium);
     valve.shapes.push(...sketch(`L(${x},${y} ${x},${end})`, frame, medium));
     valve.ports.push({ name, ...inFrame(frame, { x, y: end }), direction: y > 0 ? "up" : "down" });
-    valve.spots[`port-${name}`] = { ...inFrame(frame, { x: x - 0.3, y: y > 0 ? y + 0.4 : y - 1.4 }), anchor: "end" };
+    valve.spots[`port-${name}`] = { ...inFrame(frame, { x: x - 0.3, y: y > 0 ? y + 0.4 + clear : y - 1.4 - clear }), anchor: "end" };
   }
 }
 
