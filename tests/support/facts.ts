@@ -244,7 +244,8 @@ export function netlistOf(sheet: CircuitSheet): DrawnNode[] {
   };
   pins.forEach((pin, i) => {
     pins.forEach((other, j) => {
-      if (j > i && same(pin.at, other.at)) join(i, j);
+      // A tank drawn at several places is one tank.
+      if (j > i && (same(pin.at, other.at) || pin.id === other.id)) join(i, j);
     });
     sheet.wires.forEach((wire, w) => {
       if (onWire(pin.at, wire)) join(i, pins.length + w);
@@ -267,7 +268,8 @@ export function netlistOf(sheet: CircuitSheet): DrawnNode[] {
     const group = groups.get(root(i)) ?? { nodes: [], ports: [], wires: [] };
     groups.set(root(i), group);
     const pin = pins[i];
-    if (pin) group.ports.push(pin.id);
+    if (pin && !group.ports.includes(pin.id)) group.ports.push(pin.id);
+    else if (pin) continue;
     else {
       const wire = sheet.wires[i - pins.length] as PlacedWire;
       group.wires.push(wire);

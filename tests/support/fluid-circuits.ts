@@ -69,9 +69,12 @@ export function netsOfSheets(sheets: readonly CircuitSheet[]): string[] {
     );
     for (const { nodes, ports } of netlistOf(sheet)) {
       const node = nodes.find((one) => onward.has(one));
-      const known = node === undefined ? undefined : going.get(node);
-      if (known) known.push(...ports);
-      else {
+      const shared = nets.find((net) => ports.some((port) => net.includes(port)));
+      const known = (node === undefined ? undefined : going.get(node)) ?? shared;
+      if (known) {
+        known.push(...ports.filter((port) => !known.includes(port)));
+        if (node !== undefined) going.set(node, known);
+      } else {
         const net = [...ports];
         nets.push(net);
         if (node !== undefined) going.set(node, net);

@@ -118,22 +118,21 @@ export function addText(block: Block, text: BlockText): void {
   block.full = union([block.full, textExtent(text)]);
 }
 
-/** Room for the ladder lines of a pressure switch, mm, and how many rows they take. */
+/** Room for the ladder lines of a pressure switch, mm, how many of them a row takes, and how many rows they take. */
 const switchRoom: Mm = 16;
+const switchOneRow = 2;
 const switchRows = 2;
 
 /** Writes a component's words on one side of its body, each on a line of its own. */
-export function addWords(
-  block: Block,
-  side: Side,
-  more: readonly { role: PlacedText["role"]; text: string | Reference }[] = [],
-  clear: Extent = block.body,
-): void {
+export function addWords(block: Block, side: Side, usesOf: (device: string) => number = () => 1): void {
+  const clear = block.body;
   if (side === "none") return;
   const { kind, name } = block.component;
-  const lines = [...wordsOf(block.component), ...more];
-  if (kind === "pressure-switch" && name !== undefined)
-    lines.push({ role: "reference", text: { to: "ladder-line", device: name, room: switchRoom, rows: switchRows } });
+  const lines: { role: PlacedText["role"]; text: string | Reference }[] = wordsOf(block.component);
+  if (kind === "pressure-switch" && name !== undefined) {
+    const rows = usesOf(name) > switchOneRow ? { rows: switchRows } : {};
+    lines.push({ role: "reference", text: { to: "ladder-line", device: name, room: switchRoom, ...rows } });
+  }
   const cap = textHeight / module;
   const high = (lines.length - 1) * pitch + cap;
   const middle = { x: (clear.left + clear.right) / 2, y: (clear.top + clear.bottom) / 2 };

@@ -6,12 +6,13 @@ import type { CircuitSheet, PageArea, Place, PlacedText } from "../placement.js"
 import { boxAt, type Placed, textHeight } from "./block.js";
 import type { Composition, HeaderLine } from "./compose-sheet.js";
 import type { LedLines, Terminal } from "./lead-lines.js";
+import type { DrawnCircuit } from "./local-tanks.js";
 import { module } from "./modules.js";
 import { nameHeaders } from "./name-headers.js";
 import { drawNet } from "./wires.js";
 
 interface SheetToDraw {
-  circuit: FluidCircuit;
+  drawn: DrawnCircuit;
   start: StartState;
   page: PageArea;
   number: number;
@@ -26,10 +27,11 @@ interface SheetToDraw {
 const pointRoom: Mm = 24;
 
 /** Sets a composed sheet down in millimetres. */
-export function drawFluidSheet({ circuit, start, page, number, title, origin, composition, led }: SheetToDraw): {
+export function drawFluidSheet({ drawn, start, page, number, title, origin, composition, led }: SheetToDraw): {
   sheet: CircuitSheet;
   places: [PartId, Place][];
 } {
+  const { circuit, standsFor, nodeOf } = drawn;
   const sheet: CircuitSheet = {
     kind: "fluid",
     circuit: circuit.id,
@@ -47,23 +49,29 @@ export function drawFluidSheet({ circuit, start, page, number, title, origin, co
   for (const one of composition.placed) {
     const { block, at } = one;
     const { component } = block;
+    const own = standsFor.get(component.id);
     sheet.symbols.push({
-      part: component.id,
+      part: own ?? component.id,
       ...(component.name === undefined ? {} : { device: component.name }),
       symbol: block.symbol,
       turn: block.turn,
       at: onSheet({ x: at.x + block.offset.x, y: at.y + block.offset.y }, origin),
     });
-    for (const text of block.texts) sheet.texts.push({ ...text, at: onSheet({ x: at.x + text.at.x, y: at.y + text.at.y }, origin) });
+    for (const text of block.texts)
+      sheet.texts.push({
+        ...text,
+        ...(own === undefined ? {} : { part: own }),
+        at: onSheet({ x: at.x + text.at.x, y: at.y + text.at.y }, origin),
+      });
     for (const stroke of block.strokes)
       sheet.strokes.push({ ...stroke, path: stroke.path.map(({ x, y }) => onSheet({ x: x + at.x, y: y + at.y }, origin)) });
-    places.push([component.id, placeOf(boxAt(block.body, at, origin))]);
+    if (own === undefined) places.push([component.id, placeOf(boxAt(block.body, at, origin))]);
     for (const { part, extent } of block.parts) places.push([part, placeOf(boxAt(extent, at, origin))]);
     drawPlugs(one, origin, sheet);
     if (start.restingByStart.has(component.name ?? component.id)) resting.push(component.name ?? component.kind);
   }
   for (const [node, steps] of led.steps) {
-    const { wires, dots } = drawNet(node, steps, origin);
+    const { wires, dots } = drawNet(nodeOf.get(node) ?? node, steps, origin);
     sheet.wires.push(...wires);
     sheet.dots.push(...dots);
   }

@@ -13,6 +13,7 @@ import { drawFluidSheet } from "./draw-sheet.js";
 import { placeByLayers, raiseCylinders } from "./elk-group.js";
 import { FluidGraph } from "./graph.js";
 import { type LedLines, leadLines } from "./lead-lines.js";
+import { repeatTanks } from "./local-tanks.js";
 import { type Extent, module } from "./modules.js";
 import { placePowerUnit } from "./power-unit.js";
 import { canPart, fillSheet, isWithin, type Parts, part, type Share, type SheetOf, shareOut } from "./share-out.js";
@@ -44,7 +45,8 @@ export async function layOutFluid(
   numbering: { sheet: number },
 ): Promise<FluidLayout> {
   if (circuit.components.length === 0) return { sheets: [], places: [], diagnostics: [] };
-  const graph = new FluidGraph(circuit);
+  const drawn = repeatTanks(circuit);
+  const graph = new FluidGraph(drawn.circuit);
   const known = new Map<FluidComponent, ReturnType<typeof symbolForComponent>>();
   const symbolOf = Object.assign(
     (component: FluidComponent) => {
@@ -110,8 +112,8 @@ export async function layOutFluid(
       diagnostics.push(tooSmall(one, extent, circuit, division, room));
       continue;
     }
-    const drawn = drawFluidSheet({
-      circuit,
+    const { sheet, places: there } = drawFluidSheet({
+      drawn,
       start,
       page,
       number: numbering.sheet + sheets.length,
@@ -120,8 +122,8 @@ export async function layOutFluid(
       composition,
       led,
     });
-    sheets.push(drawn.sheet);
-    places.push(...drawn.places);
+    sheets.push(sheet);
+    places.push(...there);
   }
   return { sheets, places, diagnostics };
 }

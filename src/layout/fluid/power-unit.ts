@@ -51,11 +51,14 @@ export function placePowerUnit(
   const risers: PowerUnit["risers"] = [];
   const downs: PowerUnit["returns"] = [];
   let left = 0;
-  for (const chain of sources) {
-    const part =
-      chain.source.kind === "air-supply" || chain.source.kind === "compressor"
-        ? lyingChain(chain, graph, symbolOf, slack)
-        : standingChain(chain, graph, symbolOf, slack);
+  const parts = sources.map((chain) =>
+    chain.source.kind === "air-supply" || chain.source.kind === "compressor"
+      ? lyingChain(chain, graph, symbolOf, slack)
+      : standingChain(chain, graph, symbolOf, slack),
+  );
+  levelPumps(parts);
+  for (const [index, chain] of sources.entries()) {
+    const part = parts[index] as Stood;
     const extent = extentOfAll(part.placed);
     const shift = Math.ceil(left - extent.left);
     for (const one of part.placed) placed.push({ block: one.block, at: { x: one.at.x + shift, y: one.at.y } });
@@ -304,6 +307,19 @@ function standingChain(chain: SourceChain, graph: FluidGraph, symbolOf: SymbolOf
   return { placed: placed.map(({ block, at }) => ({ block, at: { x: at.x, y: at.y + rise } })), riser: 0, from: { x: 0, y: from + rise } };
 }
 
+/** Pumps of one unit stand level, as low as the lowest, and all that belongs to each goes with it. */
+function levelPumps(parts: readonly Stood[]): void {
+  const pumps = parts.flatMap((part) => {
+    const pump = part.placed.find(({ block }) => block.component.kind === "pump");
+    return pump ? [{ part, y: pump.at.y }] : [];
+  });
+  const lowest = Math.max(...pumps.map(({ y }) => y));
+  for (const { part, y } of pumps) {
+    for (const one of part.placed) one.at = { x: one.at.x, y: one.at.y + lowest - y };
+    part.from = { x: part.from.x, y: part.from.y + lowest - y };
+  }
+}
+
 /** Tanks of one unit stand level, as deep as the deepest. */
 function levelTanks(placed: Placed[]): void {
   const tanks = placed.filter(({ block }) => block.component.kind === "tank");
@@ -352,7 +368,7 @@ function lyingChain(chain: SourceChain, graph: FluidGraph, symbolOf: SymbolOf, s
       const part = standing(branch, "right", symbolOf, graph);
       // Clear of the words below and of the gauge on top of what comes before.
       const at = Math.ceil(Math.max(x + 1, room + 1) - part.left);
-      add(placed, part, at, level - 2);
+      add(placed, part, at, level - Math.max(2, Math.ceil(part.bottom + 0.6)));
       room = at + part.right;
       x = at;
       standsOn = true;

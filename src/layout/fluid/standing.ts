@@ -83,6 +83,6 @@ function chainBlock(
     (turned) => turned.box.x * (side === "left" ? -1 : 1) * -1 * 0.01,
   );
   const block = bareBlock(component, symbol, turn);
-  addWords(block, side);
+  addWords(block, side, symbolOf.usesOf);
   return { block, near, ...(far === undefined ? {} : { far }) };
 }

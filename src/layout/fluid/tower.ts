@@ -5,7 +5,7 @@ import { addWords, type Block, bareBlock, chooseTurn, type Placed, portOf, type 
 import { cylinderBlock } from "./cylinder-block.js";
 import { beyond, type FluidGraph, isSink, throughPorts } from "./graph.js";
 import { extentOf, meet, moved } from "./modules.js";
-import { type Entered, standing } from "./standing.js";
+import { type Entered, hanging, standing } from "./standing.js";
 import { valveBlock } from "./valve-block.js";
 
 /** A component in a vertical line, with the port that looks up. */
@@ -145,11 +145,12 @@ function branchOf(
 ): Entered[] | undefined {
   const chain: Entered[] = [];
   for (let at = component, port = entered; ; ) {
-    if (!members.has(at) || used.has(at) || at.kind === "valve" || at.kind === "cylinder" || chain.some((one) => one.component === at))
-      return undefined;
+    // A valve that only lets the line off to the tank hangs from it; any other leads on.
+    if (!members.has(at) || used.has(at) || at.kind === "cylinder" || chain.some((one) => one.component === at)) return undefined;
+    if (at.kind === "valve" && !letsOff(graph, at, port)) return undefined;
     chain.push({ component: at, port });
     if (at.ports.filter(({ node }) => node !== undefined).length === 1) return chain;
-    const out = beyond(at, port);
+    const out = onward(at, port);
     const node = out === undefined ? undefined : graph.nodeOf(at, out);
     const others = graph.others(node, at);
     const [next] = others;
@@ -158,6 +159,24 @@ function branchOf(
     at = next.component;
     port = next.port;
   }
+}
+
+/** The port a branch leaves a component by; a relief valve lets through as well. */
+function onward(component: FluidComponent, port: string): string | undefined {
+  if (component.kind === "relief-valve") return port === "P" ? "T" : "P";
+  return beyond(component, port);
+}
+
+/** Whether a valve's other end stands at a tank or the open air, and nothing else. */
+function letsOff(graph: FluidGraph, valve: FluidComponent, port: string): boolean {
+  const out = beyond(valve, port);
+  const others = out === undefined ? [] : graph.others(graph.nodeOf(valve, out), valve);
+  return others.length === 1 && others.every(({ component }) => isSink(component));
+}
+
+/** Whether a branch hangs below its line, as what lets it off does, or stands on it. */
+function hangs(chain: readonly Entered[]): boolean {
+  return isSink((chain.at(-1) as Entered).component);
 }
 
 function walkDrop(
@@ -351,7 +370,7 @@ function inlineBlock({ component, upper, lower }: Inline, side: "left" | "right"
   return block;
 }
 
-/** Sets branches beside a line, standing up from a row that leads to them; gives that row. */
+/** Sets branches beside a line, from a row that leads to them: what measures stands on it, what lets off hangs from it. Gives the row. */
 function placeBeside(
   branches: readonly Entered[][],
   way: { side: "left" | "right"; x: number; y: number },
@@ -359,23 +378,26 @@ function placeBeside(
   graph: FluidGraph,
   symbolOf: SymbolOf,
 ): number {
-  const chains = branches.map((chain) => standing(chain, way.side, symbolOf, graph));
-  const tallest = Math.max(...chains.map(({ top }) => -top));
+  const chains = branches.map((branch) =>
+    hangs(branch)
+      ? { ...hanging(branch, way.side, symbolOf, graph), down: true }
+      : { ...standing(branch, way.side, symbolOf, graph), down: false },
+  );
+  const tallest = Math.max(0, ...chains.filter(({ down }) => !down).map(({ top }) => -top));
   const row = Math.ceil(way.y + tallest + 2);
   const sign = way.side === "left" ? -1 : 1;
   let x = way.x + sign * 2;
   for (const chain of chains) {
+    const level = chain.down ? row + Math.max(2, Math.ceil(1 - chain.top)) : row - 1;
     const inner = way.side === "left" ? Math.max(chain.right, 0) : Math.max(-chain.left, 0);
     const outer = way.side === "left" ? -chain.left : chain.right;
     let at = sign > 0 ? Math.ceil(x + inner) : Math.floor(x - inner);
     const free = (to: number) =>
       !chain.placed.some((one) =>
-        placed.some((other) =>
-          meet(moved(other.block.full, other.at), moved(one.block.full, { x: one.at.x + to - 0, y: one.at.y + row - 1 })),
-        ),
+        placed.some((other) => meet(moved(other.block.full, other.at), moved(one.block.full, { x: one.at.x + to, y: one.at.y + level }))),
       );
     for (let tries = 0; tries < 60 && !free(at); tries++) at += sign;
-    for (const one of chain.placed) placed.push({ block: one.block, at: { x: one.at.x + at, y: one.at.y + row - 1 } });
+    for (const one of chain.placed) placed.push({ block: one.block, at: { x: one.at.x + at, y: one.at.y + level } });
     x = at + sign * (outer + 1);
   }
   return row;

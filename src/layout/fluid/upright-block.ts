@@ -15,6 +15,6 @@ export function uprightBlock(component: FluidComponent, graph: FluidGraph, symbo
   const toSink = through && graph.others(graph.nodeOf(component, through[1]), component).some((joint) => isSink(joint.component));
   const wanted: Record<string, Direction> = through ? { [through[0]]: toSink ? "up" : "down", [through[1]]: toSink ? "down" : "up" } : {};
   const block = bareBlock(component, symbol, chooseTurn(symbol, wanted));
-  addWords(block, "right");
+  addWords(block, "right", symbolOf.usesOf);
   return block;
 }

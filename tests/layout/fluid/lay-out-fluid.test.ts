@@ -115,6 +115,72 @@ describe("arrangement", () => {
   });
 });
 
+describe("tanks", () => {
+  const two = `fluid "Two pumps" hydraulic {
+    tank T1 "Reservoir" 160 l
+    pump P1 displacement 10 cm3/rev
+    pump P2 displacement 4 cm3/rev
+    check-valve K1
+    check-valve K2
+    gauge G1
+    relief-valve R1 100 bar
+    filter F1 "Return" 10 um
+    line T1 -- P1 -- K1 -- @P
+    line T1 -- P2 -- K2 -- @P
+    line @P -- G1
+    line P1.P -- R1 -- T1
+    cylinder A double-acting bore 50 mm rod 28 mm stroke 200 mm
+    cylinder B single-acting load-return bore 50 mm stroke 100 mm
+    valve V1 4/3 centre float left solenoid SA right solenoid SB springs
+    valve V2 3/2 normally open left solenoid SC right spring
+    valve V3 2/2 normally closed left push-button right spring
+    line @P -- V1.P, V2.P
+    line V1.T, V2.T -- F1 -- T1
+    line V1.A -- A.cap
+    line V1.B -- A.rod
+    line V2.A -- B.cap
+    line B.cap -- V3.P
+    line V3.A -- T1
+  }`;
+
+  it("stand straight below each pump, the pumps level", async () => {
+    const { circuit, sheets } = await layOutText(two);
+    const [sheet] = sheets as [CircuitSheet];
+    const tanks = sheet.symbols.filter(({ part }) => part === "T1").flatMap(portsOf);
+    for (const pump of ["P1", "P2"]) {
+      const suction = port(sheet, pump, "S");
+      expect(tanks.filter(({ at }) => Math.abs(at.x - suction.x) < 0.01 && at.y > suction.y)).toHaveLength(1);
+    }
+    expect(symbol(sheet, "P1").at.y).toBe(symbol(sheet, "P2").at.y);
+    expect(netsOfSheets(sheets)).toEqual(netsOfMachine(circuit));
+    for (const found of [symbolOverlaps, textOverlaps, textsOnWires, wiresThroughSymbols, looseEnds]) expect(found(sheet)).toEqual([]);
+  });
+
+  it("carry their designation wherever they are drawn, their data once", async () => {
+    const { circuit, sheets } = await layOutText(two);
+    const [sheet] = sheets as [CircuitSheet];
+    const drawn = sheet.symbols.filter(({ part }) => part === "T1").length;
+    // Two pumps, the relief valve, the return filter and the lowering valve.
+    expect(drawn).toBe(5);
+    expect(sheet.texts.filter(({ text }) => text === "T1")).toHaveLength(drawn);
+    expect(sheet.texts.filter(({ text }) => text === "Reservoir")).toHaveLength(1);
+    const nodes = new Set(circuit.nodes.map(({ id }) => id));
+    expect(sheet.wires.filter(({ node }) => !nodes.has(node))).toEqual([]);
+  });
+
+  it("stand below a valve that lets a cylinder's line off", async () => {
+    const { sheets } = await layOutText(two);
+    const [sheet] = sheets as [CircuitSheet];
+    const [inlet, outlet] = [port(sheet, "V3", "P"), port(sheet, "V3", "A")];
+    expect(inlet.y).toBeLessThan(outlet.y);
+    const tank = sheet.symbols
+      .filter(({ part }) => part === "T1")
+      .flatMap(portsOf)
+      .find(({ at }) => at.x === outlet.x && at.y >= outlet.y);
+    expect(tank).toBeDefined();
+  });
+});
+
 describe("texts", () => {
   it("names each solenoid and refers to its ladder line", async () => {
     const { sheets, places } = await layOutText(sample("tray-stamper"));
