@@ -326,6 +326,9 @@ class Conversion {
     }
     const [first] = nodes;
     const last = nodes[nodes.length - 1];
+    if (last?.$type === "Arrow" && arrow === items.length) {
+      this.report("load-missing", this.extent(last), 'Nothing stands behind this "->".', "Name what is driven, as in -> CR1.");
+    }
     const at = first && last ? this.source.range(this.extent(first).start, this.extent(last).end) : this.source.range(place, place);
     return { kind: "series", items, ...(arrow !== undefined && { arrow }), at };
   }

@@ -26,7 +26,7 @@ export function formatDiagnostic(d: Diagnostic, sources: ReadonlyMap<string, str
 
 /** Of a file that could not be read there is no line to name. */
 function place(at: SourceRange, sources: ReadonlyMap<string, string>): string {
-  return sources.has(at.file) ? `${visible(at.file)}:${at.line}:${at.column}:` : `${visible(at.file)}:`;
+  return sources.get(at.file) ? `${visible(at.file)}:${at.line}:${at.column}:` : `${visible(at.file)}:`;
 }
 
 const sourceLines = new WeakMap<ReadonlyMap<string, string>, Map<string, string[]>>();

@@ -279,7 +279,7 @@ export function readDevice(declaration: Declaration & { name: Word }, kind: Devi
   }
   const delayWritten = declaration.items.some((item) => item.kind === "word" && (item.text === "on-delay" || item.text === "off-delay"));
   if (kind === "timer" && !delayWritten) {
-    report.error("property-missing", declaration.name.at, `${device.name} needs its delay: "on-delay 2 s" or "off-delay 2 s".`);
+    report.missing(declaration.at, declaration.name.at, `${device.name} needs its delay: "on-delay 2 s" or "off-delay 2 s".`);
   }
   if (kind === "selector-switch") settleSelector(draft, declaration, report);
   const settings = [draft.rising, draft.falling].filter((setting) => setting !== undefined);
@@ -304,7 +304,7 @@ function settleSelector({ device }: DeviceDraft, declaration: Declaration & { na
   const { positions, start } = device.selector ?? { positions: [], start: "" };
   if (positions.length === 0) {
     if (!device.selector) {
-      report.error("property-missing", declaration.name.at, `${device.name} needs its positions, as in "positions hand off auto".`);
+      report.missing(declaration.at, declaration.name.at, `${device.name} needs its positions, as in "positions hand off auto".`);
     }
     device.selector = { positions: ["off", "on"], start: "off" };
     return;

@@ -237,7 +237,7 @@ export class LineBuilder {
     this.report.error(
       "unknown-port",
       port.at,
-      `${component.name ?? component.kind} has no port ${port.text}: it has ${listed(ports, "and")}.`,
+      `${component.name ?? component.kind} has no port ${port.text}: it has ${listed([...ports].sort(), "and")}.`,
       guess,
     );
   }

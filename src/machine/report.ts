@@ -19,6 +19,13 @@ export class Report {
     this.add(code, "note", at, message, more);
   }
 
+  /** Something a statement lacks; not said where a slip in the same statement may be that very thing. */
+  missing(statement: SourceRange, at: SourceRange, message: string): void {
+    const last = this.diagnostics.at(-1);
+    const within = last && last.at.file === statement.file && last.at.line >= statement.line && last.at.line <= statement.endLine;
+    if (!within || last.code !== "unknown-property") this.error("property-missing", at, message);
+  }
+
   private add(code: string, severity: Severity, at: SourceRange, message: string, more: More): void {
     this.diagnostics.push({ code, severity, message, at, ...more });
   }

@@ -109,7 +109,7 @@ export class RungBuilder {
     }
     const roles = new Roles((name) => this.devices.get(name)?.kind, this.report);
     roles.decide(syntax.path);
-    const work: RungWork = { id, roles, points: new Map(), incomplete: false };
+    const work: RungWork = { id, roles, points: new Map(), incomplete: syntax.incomplete ?? false };
 
     const start: RungEnd = { kind: "rail", node: rails[0] };
     const end: RungEnd = { kind: "rail", node: rails[1] };

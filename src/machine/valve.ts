@@ -151,7 +151,7 @@ export function readValve(declaration: Declaration & { name: Word }, medium: Med
   readProperties(draft, readerOf(declaration, report), "a valve", table);
 
   if (!draft.type) {
-    report.error("property-missing", name.at, `${name.text} needs its ports and positions, as in "5/2": ${listed(offered)}.`);
+    report.missing(declaration.at, name.at, `${name.text} needs its ports and positions, as in "5/2": ${listed(offered)}.`);
   }
   let { ports, positions } = draft.type ?? { ports: medium === "hydraulic" ? 4 : 5, positions: 2 };
   if (ports === 5 && medium === "hydraulic") {
@@ -223,7 +223,7 @@ function readCentre({ centre, component }: ValveDraft, ports: number, positions:
   }
   const words: readonly Centre[] = ports === 5 ? fivePortCentreWords : centreWords;
   if (!centre) {
-    report.error("property-missing", component.at, `${component.name} needs its centre position: "centre" with ${listed(words)}.`);
+    report.missing(component.at, component.at, `${component.name} needs its centre position: "centre" with ${listed(words)}.`);
   } else if (!words.includes(centre.value)) {
     report.error("value-unknown", centre.at, `The centre of a ${ports}/3 valve is ${listed(words)}, not "${centre.value}".`);
     return undefined;

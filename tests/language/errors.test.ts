@@ -10,6 +10,8 @@ const slips: [what: string, text: string, finding: string][] = [
   ["branches without brackets", "rung: A | B -> M", "branch-without-bracket 1:9-1:10"],
   ["two arrows", "rung: A -> M -> N", "arrow-twice 1:14-1:16"],
   ["a line that stops at its arrow", "rung: A ->\nrung: B -> M", "statement-unfinished 1:9-1:11"],
+  ["an arrow with nothing behind it", "ladder {\nrung: A ->\n}", "load-missing 2:9-2:11"],
+  ["a branch whose arrow has nothing behind it", "rung: (A -> | B) -> M", "load-missing 1:10-1:12"],
   ["a rung without its colon", 'rung "A" B -> M', "colon-missing 1:8-1:9"],
   ["a function text without quotation marks", "rung Clamp shut: A -> M", "text-not-quoted 1:6-1:16"],
   ["a text within a path", 'rung: A "b" -> M', "unexpected-text 1:9-1:12"],

@@ -19,6 +19,9 @@ test.each([
   ["timer TR1 on-delay 2", '"on-delay" needs a unit: s, ms, min or h. Write for example 2 s.'],
   ["timer TR1 on-delay 2 mm", '"on-delay" takes s, ms, min or h, not mm.'],
   ["timer TR1", 'TR1 needs its delay: "on-delay 2 s" or "off-delay 2 s".'],
+  ["timer TR1 2 s", "TR1 takes no value here: say what 2 s is."],
+  ["fluid pneumatic {\nvalve V1 5/3 center closed springs\n}", '"center" is not a property of a valve. Did you mean "centre"?'],
+  ["relay CR1\nladder {\nrung: CR1 ->\n}", 'Nothing stands behind this "->". Name what is driven, as in -> CR1.'],
   ["rely CR1", '"rely" is not a kind of device or component. Did you mean "relay"?'],
   ["pilot-light LT1 gren", '"gren" is not a property of a pilot-light. Did you mean "green"?'],
   [
@@ -36,7 +39,7 @@ test.each([
   ["counter C1 preset 12", "A counter is not yet supported."],
   [
     "fluid pneumatic {\nvalve V1 5/2 left lever right spring\nline V1.A -- @a\n}",
-    "V1 has no port A: it has 1, 5, 3, 4 and 2. In pneumatics it is V1.4.",
+    "V1 has no port A: it has 1, 2, 3, 4 and 5. In pneumatics it is V1.4.",
   ],
   ["fluid hydraulic {\nsilencer SL1\n}", "A silencer does not belong in a hydraulic circuit."],
 ])("%s is told in one plain sentence", (line, sentence) => {
