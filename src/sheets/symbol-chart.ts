@@ -1,7 +1,8 @@
 import type { Box, Mm, Point } from "../drawing/geometry.js";
 import type { DrawingSet, Mark, Segment } from "../drawing/marks.js";
 import { circle, movePath } from "../drawing/path.js";
-import { fitText, measureText, wrapText } from "../drawing/text.js";
+import { measureText, wrapText } from "../drawing/text.js";
+import { wrapName } from "../drawing/wrap-name.js";
 import type { DrawingInfo } from "../machine/model.js";
 import { composedExamples } from "../symbols/examples.js";
 import { openSymbols } from "../symbols/library.js";
@@ -191,8 +192,8 @@ function rowsOf(entries: readonly Entry[], width: Mm): Row[] {
   return rows;
 }
 
-/** Room under a symbol for its name and two lines of title. */
-const captionHeight = ({ title }: Entry): Mm => nameHeight * 1.5 + (title === "" ? 0 : 2 * smallHeight * 1.6) + 3;
+/** Room under a symbol for its name in a line, or smaller in two, and two lines of title. */
+const captionHeight = ({ title }: Entry): Mm => 2 * smallHeight * 1.6 + (title === "" ? 0 : 2 * smallHeight * 1.6) + 3;
 
 function cellMarks(entry: Entry, cell: Box): Mark[] {
   const { name, title, symbol, module } = entry;
@@ -213,20 +214,15 @@ function cellMarks(entry: Entry, cell: Box): Mark[] {
 
   const middle = cell.x + cell.width / 2;
   let y = room.y + room.height + nameHeight * 1.3;
-  // A long name is set smaller before it is cut.
+  // A long name is set smaller before it is broken.
   const height = measureText(name, nameHeight, true) <= room.width ? nameHeight : smallHeight;
-  marks.push({
-    kind: "text",
-    role: "name",
-    at: { x: middle, y },
-    text: fitText(name, height, room.width, true),
-    height,
-    anchor: "middle",
-    bold: true,
-  });
-  for (const line of wrapText(title, smallHeight, room.width, 2)) {
+  for (const text of wrapName(name, height, room.width, 2, true)) {
+    marks.push({ kind: "text", role: "name", at: { x: middle, y }, text, height, anchor: "middle", bold: true });
     y += smallHeight * 1.6;
+  }
+  for (const line of wrapText(title, smallHeight, room.width, 2)) {
     marks.push({ kind: "text", role: "title", at: { x: middle, y }, text: line, height: smallHeight, anchor: "middle" });
+    y += smallHeight * 1.6;
   }
   return marks;
 }

@@ -1,7 +1,7 @@
 import fc from "fast-check";
 import { describe, expect, test } from "vitest";
 import { measureText } from "../../src/drawing/text.js";
-import { wrapName } from "../../src/layout/ladder/wrap-name.js";
+import { wrapName } from "../../src/drawing/wrap-name.js";
 import { faults, ladderOf } from "../support/ladder.js";
 
 const letters = "ABCDEFGHIJKLMNOPQRSTUVWXYZ";

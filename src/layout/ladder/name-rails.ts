@@ -1,9 +1,9 @@
 import type { Mm, Point } from "../../drawing/geometry.js";
 import { fitText, measureText } from "../../drawing/text.js";
+import { wrapNameAt, wrappedPitch } from "../../drawing/wrap-name.js";
 import type { LadderCircuit } from "../../machine/model.js";
 import type { CircuitSheet, PlacedText } from "../placement.js";
 import { hang } from "./text-box.js";
-import { wrapNameAt, wrappedPitch } from "./wrap-name.js";
 
 /** How the names of both rails are set at their heads: above them, or beside the live rail behind the supply's fuse. */
 export interface RailHead {

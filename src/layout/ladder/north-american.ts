@@ -1,5 +1,6 @@
 import type { Mm } from "../../drawing/geometry.js";
 import { measureText } from "../../drawing/text.js";
+import { wrapName, wrapNameAt, wrappedPitch } from "../../drawing/wrap-name.js";
 import type { ContactUse, Device, LoadUse, Machine } from "../../machine/model.js";
 import type { Symbol } from "../../symbols/symbol.js";
 import type { PlacedText, Reference, ReferenceTo } from "../placement.js";
@@ -8,7 +9,6 @@ import { numberRise } from "./measure-rungs.js";
 import { reachInBand } from "./reach-in-band.js";
 import { scaleSymbol } from "./scale-symbol.js";
 import { around, hang, roomOf } from "./text-box.js";
-import { wrapName, wrapNameAt, wrappedPitch } from "./wrap-name.js";
 import { wrapOwnTexts } from "./wrap-own-texts.js";
 
 /** Heights of text on a ladder sheet, mm (ISO 3098 series). */

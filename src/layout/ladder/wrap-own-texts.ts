@@ -1,8 +1,8 @@
 import type { Mm } from "../../drawing/geometry.js";
 import { measureText } from "../../drawing/text.js";
+import { wrapName, wrappedPitch } from "../../drawing/wrap-name.js";
 import { extentOf } from "../../symbols/extent.js";
 import type { Shape, Symbol } from "../../symbols/symbol.js";
-import { wrapName, wrappedPitch } from "./wrap-name.js";
 
 /** The symbol with those of its own texts that are wider than `width` set in lines one under the other, the first in its place. */
 export function wrapOwnTexts(symbol: Symbol, width: Mm): Symbol {

@@ -1,15 +1,15 @@
-import type { Mm } from "../../drawing/geometry.js";
-import { fitText, measureText, printable } from "../../drawing/text.js";
+import type { Mm } from "./geometry.js";
+import { fitText, measureText, printable } from "./text.js";
 
 /**
  * Breaks a name behind its hyphens, underscores and slashes and at its spaces into lines no wider than `width` mm, and within a word
  * only where a word alone is wider. What does not go into `most` lines is shortened with `…` in the last of them.
  * @param height height of the capitals, mm
  */
-export function wrapName(name: string, height: Mm, width: Mm, most: number): string[] {
+export function wrapName(name: string, height: Mm, width: Mm, most: number, bold = false): string[] {
   const drawn = printable(name);
-  if (measureText(drawn, height) <= width + tolerance) return drawn.trim() === "" ? [] : [drawn];
-  const wide = (text: string) => measureText(text.trimEnd(), height) > width + tolerance;
+  if (measureText(drawn, height, bold) <= width + tolerance) return drawn.trim() === "" ? [] : [drawn];
+  const wide = (text: string) => measureText(text.trimEnd(), height, bold) > width + tolerance;
   const lines: string[] = [];
   let line = "";
   for (let piece of drawn.match(/[^\s\-_/]*(?:[\s\-_/]+|$)/g) ?? []) {
@@ -31,7 +31,7 @@ export function wrapName(name: string, height: Mm, width: Mm, most: number): str
     if (lines.length > most) break;
   }
   if (line !== "") lines.push(line);
-  const kept = lines.length <= most ? lines : [...lines.slice(0, most - 1), fitText(lines.slice(most - 1).join(""), height, width)];
+  const kept = lines.length <= most ? lines : [...lines.slice(0, most - 1), fitText(lines.slice(most - 1).join(""), height, width, bold)];
   return kept.map((text) => text.trim()).filter((text) => text !== "");
 }
 
