@@ -36,7 +36,7 @@ export function switchReference(machine: Machine, layout: Layout): CrossReferenc
 }
 
 function rowOf(device: Device, place: Place, layout: Layout): CrossReferenceRow {
-  const valve = device.valve && (layout.places.get(device.valve.name));
+  const valve = device.valve && layout.places.get(device.valve.name);
   return {
     coil: device.name,
     kind: device.kind,

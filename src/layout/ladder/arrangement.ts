@@ -1,7 +1,7 @@
 import type { Box, Mm, Point } from "../../drawing/geometry.js";
 import type { ContactUse, LoadUse } from "../../machine/model.js";
 import type { Symbol, Turn } from "../../symbols/symbol.js";
-import type { CircuitSheet, PlacedText } from "../placement.js";
+import type { PlacedText } from "../placement.js";
 
 /**
  * How a ladder lies on the sheet. The grid, the columns and the wires are worked out along the current and across it; what
@@ -52,5 +52,3 @@ export interface Block {
   above: Mm;
   below: Mm;
 }
-
-export type Stroke = CircuitSheet["strokes"][number];
