@@ -30,6 +30,11 @@ export interface CircuitSheet {
   strokes: { part?: PartId; role: string; path: Point[]; width: Mm; dash?: Mm[] }[];
 }
 
+/** A circuit sheet with nothing on it yet. */
+export function emptySheet(kind: CircuitSheet["kind"], circuit: PartId, number: number, title: string): CircuitSheet {
+  return { kind, circuit, number, title, symbols: [], wires: [], dots: [], texts: [], strokes: [] };
+}
+
 export interface PlacedSymbol {
   part: PartId;
   /** The device or component designation it belongs to, if it has one. */

@@ -2,7 +2,7 @@ import type { StartState } from "../../behaviour/start-state.js";
 import type { Box, Mm, Point } from "../../drawing/geometry.js";
 import type { PartId } from "../../drawing/marks.js";
 import type { FluidCircuit, FluidNodeId } from "../../machine/model.js";
-import type { CircuitSheet, PageArea, Place, PlacedText } from "../placement.js";
+import { type CircuitSheet, emptySheet, type PageArea, type Place, type PlacedText } from "../placement.js";
 import { boxAt, type Placed, textHeight } from "./block.js";
 import type { Composition, HeaderLine } from "./compose-sheet.js";
 import type { LedLines, Terminal } from "./lead-lines.js";
@@ -32,17 +32,7 @@ export function drawFluidSheet({ drawn, start, page, number, title, origin, comp
   places: [PartId, Place][];
 } {
   const { circuit, standsFor, nodeOf } = drawn;
-  const sheet: CircuitSheet = {
-    kind: "fluid",
-    circuit: circuit.id,
-    number,
-    title,
-    symbols: [],
-    wires: [],
-    dots: [],
-    texts: [],
-    strokes: [],
-  };
+  const sheet = emptySheet("fluid", circuit.id, number, title);
   const places: [PartId, Place][] = [];
   const placeOf = (box: Box): Place => ({ sheet: number, zone: page.zoneOf({ x: box.x + box.width / 2, y: box.y + box.height / 2 }), box });
   const resting: string[] = [];

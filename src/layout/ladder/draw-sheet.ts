@@ -1,7 +1,7 @@
 import type { Box, Mm, Point } from "../../drawing/geometry.js";
 import type { PartId } from "../../drawing/marks.js";
 import type { LadderCircuit, NodeId } from "../../machine/model.js";
-import type { CircuitSheet, Place, PlacedText } from "../placement.js";
+import { type CircuitSheet, emptySheet, type Place, type PlacedText } from "../placement.js";
 import type { Arrangement } from "./arrangement.js";
 import type { RungSheet } from "./break-sheets.js";
 import type { Link, Stop } from "./grid.js";
@@ -42,17 +42,7 @@ export interface DrawnLadderSheet {
 /** Sets everything of a sheet down in millimetres. */
 export function drawSheet(given: SheetGiven): DrawnLadderSheet {
   const { circuit, sheet, number, title, span, groups, arrangement, rails, origin, firstLine, links, zoneOf } = given;
-  const out: CircuitSheet = {
-    kind: "ladder",
-    circuit: circuit.id,
-    number,
-    title,
-    symbols: [],
-    wires: [],
-    dots: [],
-    texts: [],
-    strokes: [],
-  };
+  const out = emptySheet("ladder", circuit.id, number, title);
   const places: [PartId, Place][] = [];
   const pieces: Straight[] = [];
   const at = (along: Mm, across: Mm): Point => {
