@@ -4,6 +4,7 @@ import type { Direction } from "../../symbols/symbol.js";
 import { type Arrangement, extentOfAll, type SymbolOf } from "./arrangement.js";
 import type { Block, Placed } from "./block.js";
 import { type FluidGraph, isSink, throughPorts } from "./graph.js";
+import { type Drop, placeDrops } from "./tower.js";
 import { uprightBlock } from "./upright-block.js";
 
 /** Components that stand higher the more they are at the end of the flow. */
@@ -27,16 +28,22 @@ export async function placeByLayers(
   symbolOf: SymbolOf,
   slack: number,
 ): Promise<Arrangement> {
-  const blocks = new Map(group.map((component) => [component.id, uprightBlock(component, graph, symbolOf)]));
+  const whole = new Map(group.map((component) => [component.id, uprightBlock(component, graph, symbolOf)]));
+  const hung = hangSinks(group, whole, graph, symbolOf, slack);
+  const below = new Set([...hung.values()].flatMap((placed) => placed.map(({ block }) => block.component)));
+  const standing = group.filter((component) => !below.has(component));
+  const blocks = new Map(standing.map(({ id }) => [id, whole.get(id) as Block]));
   const [only] = blocks.values();
-  if (group.length === 1 && only) {
-    const alone: Placed[] = [{ block: only, at: { x: 0, y: 0 } }];
+  if (standing.length === 1 && only) {
+    const alone: Placed[] = [{ block: only, at: { x: 0, y: 0 } }, ...(hung.get(only.component.id) ?? [])];
     return { placed: alone, extent: extentOfAll(alone), ...(only.component.kind === "cylinder" ? { height: 0 } : {}) };
   }
+  /** A block with what hangs from it. */
+  const fullOf = (block: Block) => extentOfAll([{ block, at: { x: 0, y: 0 } }, ...(hung.get(block.component.id) ?? [])]);
   const margin = 1.5 + slack / 2;
-  const children: ElkNode[] = group.map((component) => {
+  const children: ElkNode[] = standing.map((component) => {
     const block = blocks.get(component.id) as Block;
-    const { full } = block;
+    const full = fullOf(block);
     return {
       id: component.id,
       width: full.right - full.left + 2 * margin,
@@ -51,8 +58,10 @@ export async function placeByLayers(
     };
   });
   const edges: ElkExtendedEdge[] = [];
-  const members = new Set(group);
-  const nodes = new Set(group.flatMap(({ ports }) => ports.flatMap(({ node }) => (node === undefined || headers.has(node) ? [] : [node]))));
+  const members = new Set(standing);
+  const nodes = new Set(
+    standing.flatMap(({ ports }) => ports.flatMap(({ node }) => (node === undefined || headers.has(node) ? [] : [node]))),
+  );
   for (const node of nodes) {
     const joints = graph.at(node).filter(({ component }) => members.has(component));
     const looking = (joint: (typeof joints)[number]) =>
@@ -99,8 +108,12 @@ export async function placeByLayers(
   });
   const placed: Placed[] = (laid.children ?? []).map(({ id, x = 0, y = 0 }) => {
     const block = blocks.get(id) as Block;
-    return { block, at: { x: Math.round(x + margin - block.full.left), y: Math.round(y + margin - block.full.top) } };
+    const full = fullOf(block);
+    return { block, at: { x: Math.round(x + margin - full.left), y: Math.round(y + margin - full.top) } };
   });
+  for (const { block, at } of [...placed]) {
+    for (const one of hung.get(block.component.id) ?? []) placed.push({ block: one.block, at: { x: one.at.x + at.x, y: one.at.y + at.y } });
+  }
   const valves = placed.filter(({ block }) => block.component.kind === "valve");
   const others = placed.filter(({ block }) => !isSink(block.component));
   const base = valves.length > 0 ? valves : others.length > 0 ? others : placed;
@@ -113,6 +126,31 @@ export async function placeByLayers(
     extent: extentOfAll(placed),
     ...(cylinders.length > 0 ? { height: Math.max(...cylinders.map(({ at }) => -at.y)) } : {}),
   };
+}
+
+/** Silencers, tanks and open exhausts that only one valve of the group leads to, below its ports; places are from the valve's origin. */
+function hangSinks(
+  group: readonly FluidComponent[],
+  blocks: ReadonlyMap<string, Block>,
+  graph: FluidGraph,
+  symbolOf: SymbolOf,
+  slack: number,
+): Map<string, Placed[]> {
+  const hung = new Map<string, Placed[]>();
+  for (const valve of group) {
+    const block = valve.kind === "valve" ? blocks.get(valve.id) : undefined;
+    if (!block) continue;
+    const drops = block.ports
+      .filter(({ direction, name }) => direction === "down" && graph.nodeOf(valve, name) !== undefined)
+      .map(({ name }): Drop => {
+        const others = graph.others(graph.nodeOf(valve, name), valve);
+        const sink = others.length === 1 ? others[0]?.component : undefined;
+        const own = sink && isSink(sink) && sink.ports.length === 1 && group.includes(sink) ? { sink } : {};
+        return { port: name, inline: [], beside: [], direct: others.length === 1, ...own };
+      });
+    if (drops.some(({ sink }) => sink)) hung.set(valve.id, placeDrops(drops, { block, at: { x: 0, y: 0 } }, symbolOf, slack));
+  }
+  return hung;
 }
 
 /** Stands the topmost cylinders of a group higher, so that they are level with those of other groups. */

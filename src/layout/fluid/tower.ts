@@ -27,7 +27,7 @@ interface Lane {
 }
 
 /** A way down from one of the valve's lower ports. */
-interface Drop {
+export interface Drop {
   port: string;
   inline: Inline[];
   beside: Entered[][];
@@ -430,7 +430,7 @@ function placeOver(
 }
 
 /** What hangs at the valve's lower ports: straight below its port where there is room, outward where neighbours need it. */
-function placeDrops(drops: readonly Drop[], valve: Placed, symbolOf: SymbolOf, slack: number): Placed[] {
+export function placeDrops(drops: readonly Drop[], valve: Placed, symbolOf: SymbolOf, slack: number): Placed[] {
   const ports = drops.map((drop) => ({ drop, port: portOf(valve.block, drop.port) })).sort((a, b) => a.port.x - b.port.x);
   const filled = ports.filter(({ drop }) => drop.sink || drop.inline.length > 0);
   const plain = ports.filter((one) => !filled.includes(one));

@@ -451,3 +451,32 @@ describe("unusual circuits", () => {
     });
   }
 });
+
+it("hangs open exhausts and silencers at the ports of pilot valves too", async () => {
+  const { circuit, sheets } = await layOutText(`fluid "Air" pneumatic {
+    air-supply S1 6 bar
+    cylinder C1 double-acting bore 40 mm rod 16 mm stroke 100 mm
+    valve V1 5/2 left pilot right pilot start right
+    valve V2 3/2 normally closed left pedal right spring
+    valve V3 3/2 normally closed left roller right spring
+    line S1 -- @P
+    line @P -- V1.1, V2.1, V3.1
+    pilot V2.2 -- V1.14
+    pilot V3.2 -- V1.12
+    line V1.4 -- C1.cap
+    line V1.2 -- C1.rod
+    exhaust V1.5, V1.3 -- silencer
+    exhaust V2.3, V3.3
+  }`);
+  const [sheet] = sheets as [CircuitSheet];
+  const sinks = circuit.components.filter(({ kind }) => kind === "silencer" || kind === "exhaust");
+  expect(sinks).toHaveLength(4);
+  for (const { id, ports } of sinks) {
+    const [joint] = circuit.nodes.find(({ id: node }) => node === ports[0]?.node)?.ports.filter(({ component }) => component !== id) ?? [];
+    const top = port(sheet, id, "in");
+    const lead = port(sheet, joint?.component ?? "", joint?.port ?? "");
+    expect(top.x).toBeCloseTo(lead.x);
+    expect(top.y - lead.y).toBeGreaterThanOrEqual(0);
+    expect(top.y - lead.y).toBeLessThanOrEqual(4);
+  }
+});
