@@ -113,10 +113,9 @@ function checkDate({ text, at }: Word, report: Report): boolean {
   return false;
 }
 
-/** Title-block data with a sensible default for everything the text leaves out. */
-export function readDrawingInfo(blocks: readonly DrawingBlock[], file: string, report: Report): DrawingInfo {
-  const stem = (file.split(/[\\/]/).pop() ?? "").replace(/\.sprung$/, "").replace(/^-$/, "");
-  const info: DrawingInfo = {
+/** What a drawing has that says nothing of itself. */
+export function emptyDrawingInfo(): DrawingInfo {
+  return {
     title: "",
     number: "",
     owner: "",
@@ -136,6 +135,12 @@ export function readDrawingInfo(blocks: readonly DrawingBlock[], file: string, r
     wireNumbers: "running",
     units: "metric",
   };
+}
+
+/** Title-block data with a sensible default for everything the text leaves out. */
+export function readDrawingInfo(blocks: readonly DrawingBlock[], file: string, report: Report): DrawingInfo {
+  const stem = (file.split(/[\\/]/).pop() ?? "").replace(/\.sprung$/, "").replace(/^-$/, "");
+  const info = emptyDrawingInfo();
   const [block, ...more] = blocks;
   for (const again of more) {
     report.error("drawing-twice", startOf(again.at, "drawing"), "The drawing's data is already given.", {

@@ -3,6 +3,7 @@ import type { DrawingSet, Mark, Segment } from "../drawing/marks.js";
 import { circle, movePath } from "../drawing/path.js";
 import { measureText, wrapText } from "../drawing/text.js";
 import { wrapName } from "../drawing/wrap-name.js";
+import { emptyDrawingInfo } from "../machine/drawing.js";
 import type { DrawingInfo } from "../machine/model.js";
 import { composedExamples } from "../symbols/examples.js";
 import { openSymbols } from "../symbols/library.js";
@@ -79,26 +80,7 @@ export function symbolChart(world: World): DrawingSet {
   };
 }
 
-const chart: DrawingInfo = {
-  title: "Symbols",
-  number: "SYMBOLS",
-  owner: "Spoolrung",
-  creator: "",
-  approvedBy: "",
-  department: "",
-  documentType: "Symbol chart",
-  status: "",
-  date: "",
-  language: "en",
-  revisions: [],
-  notes: [],
-  convention: "north-american",
-  paper: "A3",
-  template: "",
-  lineNumbers: "by-sheet",
-  wireNumbers: "running",
-  units: "metric",
-};
+const chart: DrawingInfo = { ...emptyDrawingInfo(), title: "Symbols", number: "SYMBOLS", owner: "Spoolrung", documentType: "Symbol chart" };
 
 const notes = [
   "Grid: one module, 2.5 mm electrical and 2 mm fluid. Green: ports.",
