@@ -1,4 +1,4 @@
-import type { ContactUse, LoadUse, Machine, NodeId, Rung, Supply } from "../machine/model.js";
+import type { ContactUse, LoadUse, Machine, NodeId, Rung, Supply, ThroughUse } from "../machine/model.js";
 import { laddersOf, usesOf } from "../machine/walk.js";
 
 /** Electrical facts that several rules ask for, each found once. */
@@ -6,6 +6,7 @@ export class Networks {
   readonly rungs: readonly Rung[];
   readonly contacts: ContactUse[] = [];
   readonly loads: LoadUse[] = [];
+  readonly throughs: ThroughUse[] = [];
   readonly rungById: ReadonlyMap<string, Rung>;
   /** Whether some rung could not be read whole: then what a wire leads to is not known for certain. */
   readonly gaps: boolean;
@@ -23,7 +24,8 @@ export class Networks {
     for (const { path } of this.rungs) {
       for (const use of usesOf(path)) {
         if (use.kind === "contact") this.contacts.push(use);
-        else this.loads.push(use);
+        else if (use.kind === "load") this.loads.push(use);
+        else this.throughs.push(use);
       }
     }
   }
@@ -42,7 +44,7 @@ export class Networks {
     return this.machine.potentials[node]?.rail ?? "";
   }
 
-  /** Nodes that contacts can join, were all of them closed, are in one group: its first node. */
+  /** Nodes that contacts can join, were all of them closed, and what current passes through, are in one group: its first node. */
   groupOf(node: NodeId): NodeId {
     this.joined ??= this.joinContacts();
     return this.joined[node] ?? node;
@@ -63,7 +65,9 @@ export class Networks {
 
   private joinContacts(): NodeId[] {
     const groups: NodeId[] = this.machine.potentials.map(({ id }) => id);
-    const at = this.contactsAt();
+    const at = new Map<NodeId, (ContactUse | ThroughUse)[]>(this.contactsAt());
+    for (const through of this.throughs)
+      for (const node of new Set([through.from, through.to])) at.set(node, [...(at.get(node) ?? []), through]);
     const seen = new Set<NodeId>();
     for (const { id } of this.machine.potentials) {
       if (seen.has(id)) continue;

@@ -15,7 +15,7 @@ export function pairsIn(path: SeriesPath): { first: string; second: string; at: 
   const pairs: { first: string; second: string; at: LoadUse["at"] }[] = [];
   let before: LoadUse | undefined;
   for (const part of path.items) {
-    if (part.kind === "contact" || part.kind === "point") continue;
+    if (part.kind !== "load" && part.kind !== "parallel") continue;
     const load = part.kind === "load" ? part : firstLoad(part);
     if (before && load) pairs.push({ first: before.device, second: load.device, at: load.at });
     before ??= load;

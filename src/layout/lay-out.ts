@@ -1,7 +1,7 @@
 import type { StartState } from "../behaviour/start-state.js";
 import type { PartId } from "../drawing/marks.js";
 import type { Diagnostic } from "../language/diagnostic.js";
-import type { ContactUse, Device, DrawingInfo, LoadUse, Machine } from "../machine/model.js";
+import type { Device, DeviceUse, DrawingInfo, Machine } from "../machine/model.js";
 import { symbolForDevice } from "../symbols/choose.js";
 import type { SymbolLibrary } from "../symbols/library.js";
 import { layOutLadder } from "./ladder/lay-out-ladder.js";
@@ -19,7 +19,7 @@ export async function layOut(
   pageFor: (drawing: DrawingInfo) => PageArea,
 ): Promise<Layout> {
   const page = pageFor(machine.drawing);
-  const symbolOf = (use: ContactUse | LoadUse) =>
+  const symbolOf = (use: DeviceUse) =>
     symbolForDevice(use, machine.devices.get(use.device) as Device, start, machine.drawing.convention, symbols);
   const sheets: CircuitSheet[] = [];
   const places = new Map<PartId, Place>();
@@ -32,7 +32,7 @@ export async function layOut(
       line = laid.nextLine;
       sheets.push(...laid.sheets);
       for (const [part, place] of laid.places) places.set(part, place);
-    } else {
+    } else if (circuit.kind === "fluid") {
       // Only a drawing with fluid sheets waits for their layout library.
       const { layOutFluid } = await import("./fluid/lay-out-fluid.js");
       const laid = await layOutFluid(circuit, machine, start, symbols, page, numbering);

@@ -160,7 +160,7 @@ class MachineBuilder {
       this.declareSupply(declaration);
       return;
     }
-    if (laterKinds.has(kind)) {
+    if (laterKinds.has(kind) && (fluid || !isDeviceKind(kind))) {
       this.report.error("not-yet-supported", keyword.at, `${capital(withArticle(kind))} is not yet supported.`);
       if (declaration.name && this.names.kindOf(declaration.name.text) === undefined) {
         this.names.claim(declaration.name, kind);
@@ -318,7 +318,7 @@ class MachineBuilder {
 
   /** A new sheet needs something before and behind it. */
   private checkSheetBreaks(circuit: Circuit): void {
-    const length = circuit.kind === "ladder" ? circuit.rungs.length : circuit.components.length;
+    const length = circuit.kind === "ladder" ? circuit.rungs.length : circuit.kind === "fluid" ? circuit.components.length : 0;
     circuit.sheetBreaks = circuit.sheetBreaks.filter(({ before }, index, all) => before < length && all[index + 1]?.before !== before);
   }
 }

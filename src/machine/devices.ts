@@ -1,9 +1,9 @@
 import type { SourceRange } from "../language/diagnostic.js";
 import { printQuantity } from "../language/print-quantity.js";
-import type { Quantity } from "../language/quantity.js";
+import type { Dimension, Quantity } from "../language/quantity.js";
 import type { Declaration, Item, Word } from "../language/tree.js";
 import type { Device, DeviceKind } from "./model.js";
-import { type PropertyTable, readerOf, readProperties } from "./reader.js";
+import { type ItemReader, type PropertyTable, readerOf, readProperties } from "./reader.js";
 import { didYouMean, listed, type Report } from "./report.js";
 
 /** A device with the names it mentions, which are looked up when everything is declared. */
@@ -125,6 +125,79 @@ const printed = ({ device }: DeviceDraft, quantity: Quantity) => {
   device.values.push(printQuantity(quantity));
 };
 
+const selectorWords: DeviceWords = {
+  ...common,
+  ...poles,
+  positions: ({ device }, read, word) => {
+    const positions: string[] = [];
+    for (let item = read.peek(); item?.kind === "word" || item?.kind === "number"; item = read.peek()) {
+      if (Object.hasOwn(selectorWords, item.text) && positions.length > 0) break;
+      read.next();
+      if (positions.includes(item.text)) {
+        read.report.error("position-twice", item.at, `${read.owner} already has a position "${item.text}".`);
+      } else positions.push(item.text);
+    }
+    if (positions.length < 2) read.missing(word, 'two or more positions, as in "positions hand off auto"');
+    device.selector = { positions, start: device.selector?.start ?? "" };
+  },
+  start: ({ device }, read, word) => {
+    const start = read.name(word, "the position drawn");
+    device.selector = { positions: device.selector?.positions ?? [], start: start?.text ?? "" };
+  },
+};
+
+/** Switches that a fluid value works: what they sense, and the values they switch at. */
+const sensing = (...dimensions: [Dimension, ...Dimension[]]): DeviceTable => ({
+  words: {
+    ...common,
+    ...poles,
+    on: (draft, read) => {
+      draft.on = read.reference();
+    },
+    rising: (draft, read, word) => {
+      draft.rising = read.positive(word, ...dimensions);
+    },
+    falling: (draft, read, word) => {
+      draft.falling = read.positive(word, ...dimensions);
+    },
+  },
+});
+
+const ratings: DeviceTable["bare"] = { power: printed, voltage: printed, current: printed, "apparent-power": printed };
+
+/** How many conductors pass through: `poles 3`, or main poles with auxiliary contacts `poles 3 1 no`. */
+const ways: DeviceWords = {
+  poles: (draft, read, word) => {
+    const number = read.count(word);
+    if (number !== undefined) draft.device.ways = number;
+  },
+};
+
+/** `primary 400 V`, `secondary 24 V DC`. */
+const conversion: DeviceWords = Object.fromEntries(
+  (["primary", "secondary"] as const).map((side) => [
+    side,
+    ({ device }: DeviceDraft, read: ItemReader, word: Word) => {
+      const voltage = read.positive(word, "voltage");
+      const current = read.take("AC", "DC") as "AC" | "DC" | undefined;
+      if (voltage) device.conversion = { ...device.conversion, [side]: { voltage, ...(current ? { current } : {}) } };
+    },
+  ]),
+);
+
+/** A controller's card: `8 points 24 V DC`. */
+const card: DeviceTable = {
+  words: common,
+  bare: { voltage: printed, current: printed },
+  values: ["points", "AC", "DC"],
+  other: ({ device }, item, read) => {
+    if (item.kind === "word" && (item.text === "AC" || item.text === "DC")) return true;
+    if (item.kind !== "number" || !read.take("points")) return false;
+    device.points = item.value;
+    return true;
+  },
+};
+
 /** How each kind's properties are read. */
 const tables: Record<DeviceKind, DeviceTable> = {
   relay: { words: { ...common, ...poles, ...coil } },
@@ -146,25 +219,20 @@ const tables: Record<DeviceKind, DeviceTable> = {
     },
   },
   "emergency-stop": { words: { ...common, ...poles, ...colour } },
-  "selector-switch": {
+  "selector-switch": { words: selectorWords },
+  "key-switch": { words: selectorWords },
+  "foot-switch": { words: { ...common, ...poles } },
+  "cable-pull": { words: { ...common, ...poles } },
+  "door-switch": { words: { ...common, ...poles } },
+  "latching-relay": { words: { ...common, ...poles, ...coil } },
+  counter: {
     words: {
       ...common,
       ...poles,
-      positions: ({ device }, read, word) => {
-        const positions: string[] = [];
-        for (let item = read.peek(); item?.kind === "word" || item?.kind === "number"; item = read.peek()) {
-          if (Object.hasOwn(selectorWords, item.text) && positions.length > 0) break;
-          read.next();
-          if (positions.includes(item.text)) {
-            read.report.error("position-twice", item.at, `${read.owner} already has a position "${item.text}".`);
-          } else positions.push(item.text);
-        }
-        if (positions.length < 2) read.missing(word, 'two or more positions, as in "positions hand off auto"');
-        device.selector = { positions, start: device.selector?.start ?? "" };
-      },
-      start: ({ device }, read, word) => {
-        const start = read.name(word, "the position drawn");
-        device.selector = { positions: device.selector?.positions ?? [], start: start?.text ?? "" };
+      ...coil,
+      preset: ({ device }, read, word) => {
+        device.preset = read.count(word);
+        if (device.preset !== undefined) device.values.push(String(device.preset));
       },
     },
   },
@@ -182,21 +250,11 @@ const tables: Record<DeviceKind, DeviceTable> = {
       },
     },
   },
-  "pressure-switch": {
-    words: {
-      ...common,
-      ...poles,
-      on: (draft, read) => {
-        draft.on = read.reference();
-      },
-      rising: (draft, read, word) => {
-        draft.rising = read.positive(word, "pressure");
-      },
-      falling: (draft, read, word) => {
-        draft.falling = read.positive(word, "pressure");
-      },
-    },
-  },
+  "pressure-switch": sensing("pressure"),
+  "vacuum-switch": sensing("pressure"),
+  "flow-switch": sensing("flow"),
+  "level-switch": sensing("length"),
+  "temperature-switch": sensing("temperature"),
   overload: {
     words: {
       ...common,
@@ -216,14 +274,30 @@ const tables: Record<DeviceKind, DeviceTable> = {
     words: { ...common, ...colour },
     bare: { power: printed, voltage: printed, current: printed },
     other: ({ device }, item) => {
-      if (item.kind !== "word" || !(colours as readonly string[]).includes(item.text)) return false;
+      if (item.kind !== "word") return false;
+      if (item.text === "push-to-test") device.lamp = { pushToTest: true };
+      if (item.text === "push-to-test") return true;
+      if (!(colours as readonly string[]).includes(item.text)) return false;
       device.colour = item.text;
       return true;
     },
-    values: colours,
-    later: ["push-to-test"],
+    values: [...colours, "push-to-test"],
   },
-  horn: { words: common, bare: { power: printed, voltage: printed, current: printed, "apparent-power": printed } },
+  horn: { words: common, bare: ratings },
+  bell: { words: common, bare: ratings },
+  heater: { words: common, bare: ratings },
+  fuse: { words: { ...common, ...ways }, bare: ratings },
+  "circuit-breaker": { words: { ...common, ...ways }, bare: ratings },
+  disconnect: { words: { ...common, ...ways }, bare: ratings },
+  transformer: { words: { ...common, ...conversion }, bare: ratings },
+  "power-supply": { words: { ...common, ...conversion }, bare: ratings },
+  rectifier: { words: { ...common, ...conversion }, bare: ratings },
+  "terminal-strip": { words: common },
+  plug: { words: common },
+  diode: { words: common, bare: ratings },
+  resistor: { words: common, bare: ratings },
+  "input-card": card,
+  "output-card": card,
   motor: {
     words: {
       ...common,
@@ -241,8 +315,6 @@ const tables: Record<DeviceKind, DeviceTable> = {
     },
   },
 };
-
-const selectorWords = tables["selector-switch"].words;
 
 function setButton(device: Device, button: Partial<NonNullable<Device["button"]>>): void {
   device.button = { action: "momentary", mushroom: false, ...device.button, ...button };
@@ -265,7 +337,7 @@ function delay({ device }: DeviceDraft, read: Parameters<DeviceWords[string]>[1]
 
 /** A device that has its name and kind and nothing else. */
 export function bareDevice(name: Word, kind: DeviceKind, text?: string): Device {
-  return { name: name.text, kind, text, at: name.at, values: [], contacts: [], loads: [] };
+  return { name: name.text, kind, text, at: name.at, values: [], contacts: [], loads: [], throughs: [] };
 }
 
 /** Reads one device declaration. */
@@ -281,7 +353,7 @@ export function readDevice(declaration: Declaration & { name: Word }, kind: Devi
   if (kind === "timer" && !delayWritten) {
     report.missing(declaration.at, declaration.name.at, `${device.name} needs its delay: "on-delay 2 s" or "off-delay 2 s".`);
   }
-  if (kind === "selector-switch") settleSelector(draft, declaration, report);
+  if (kind === "selector-switch" || kind === "key-switch") settleSelector(draft, declaration, report);
   const settings = [draft.rising, draft.falling].filter((setting) => setting !== undefined);
   if (settings.length > 0) device.values.unshift(settings.map(printQuantity).join(" / "));
   if (draft.rising && draft.falling && draft.falling.value >= draft.rising.value) {

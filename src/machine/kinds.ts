@@ -1,7 +1,10 @@
 import type { DeviceKind, FluidKind, Medium } from "./model.js";
 
-/** What a device of each kind can be in a rung. */
-export const deviceRoles: Record<DeviceKind, { contacts: boolean; load: boolean }> = {
+/** What a device of each kind can be in a rung. `coils`: the names of its coils where it has several. `through`: the current passes through it. */
+export const deviceRoles: Record<
+  DeviceKind,
+  { contacts: boolean; load: boolean; through?: boolean; coils?: readonly ["set" | "count", "reset"] }
+> = {
   relay: { contacts: true, load: true },
   contactor: { contacts: true, load: true },
   timer: { contacts: true, load: true },
@@ -16,6 +19,30 @@ export const deviceRoles: Record<DeviceKind, { contacts: boolean; load: boolean 
   "pilot-light": { contacts: false, load: true },
   horn: { contacts: false, load: true },
   motor: { contacts: false, load: false },
+  "latching-relay": { contacts: true, load: true, coils: ["set", "reset"] },
+  counter: { contacts: true, load: true, coils: ["count", "reset"] },
+  "key-switch": { contacts: true, load: false },
+  "foot-switch": { contacts: true, load: false },
+  "cable-pull": { contacts: true, load: false },
+  "door-switch": { contacts: true, load: false },
+  "vacuum-switch": { contacts: true, load: false },
+  "flow-switch": { contacts: true, load: false },
+  "level-switch": { contacts: true, load: false },
+  "temperature-switch": { contacts: true, load: false },
+  bell: { contacts: false, load: true },
+  heater: { contacts: false, load: true },
+  fuse: { contacts: false, load: false, through: true },
+  "circuit-breaker": { contacts: false, load: false, through: true },
+  disconnect: { contacts: false, load: false, through: true },
+  transformer: { contacts: false, load: false },
+  "power-supply": { contacts: false, load: false },
+  rectifier: { contacts: false, load: false },
+  "terminal-strip": { contacts: false, load: false, through: true },
+  plug: { contacts: false, load: false, through: true },
+  diode: { contacts: false, load: false, through: true },
+  resistor: { contacts: false, load: false, through: true },
+  "input-card": { contacts: false, load: true },
+  "output-card": { contacts: true, load: false },
 };
 
 /** The circuits each fluid component belongs in. */
@@ -43,29 +70,6 @@ export const fluidMedia: Record<FluidKind, readonly Medium[]> = {
 
 /** Words of the language for things this edition does not draw yet. */
 export const laterKinds: ReadonlySet<string> = new Set([
-  // electrical
-  "latching-relay",
-  "counter",
-  "key-switch",
-  "foot-switch",
-  "cable-pull",
-  "door-switch",
-  "vacuum-switch",
-  "flow-switch",
-  "level-switch",
-  "temperature-switch",
-  "bell",
-  "fuse",
-  "circuit-breaker",
-  "disconnect",
-  "transformer",
-  "power-supply",
-  "terminal-strip",
-  "plug",
-  "diode",
-  "resistor",
-  "input-card",
-  "output-card",
   // fluid
   "accumulator",
   "cooler",
@@ -85,8 +89,6 @@ export const laterKinds: ReadonlySet<string> = new Set([
   "flow-divider",
   "quick-coupling",
   "test-point",
-  // blocks
-  "power",
 ]);
 
 export function isDeviceKind(word: string): word is DeviceKind {

@@ -23,7 +23,7 @@ export interface Machine {
   sequences: SequenceBlock[];
 }
 
-export type Circuit = LadderCircuit | FluidCircuit;
+export type Circuit = LadderCircuit | FluidCircuit | PowerCircuit;
 
 export interface DrawingInfo {
   title: string;
@@ -51,22 +51,46 @@ export type PaperName = "A4" | "A3" | "A2" | "A1" | "A0" | "ANSI-A" | "ANSI-B" |
 
 // ---------------------------------------------------------------- electrical
 
-/** Device kinds that can stand in a rung today. A new kind is added here first; the compiler then finds every table that needs it. */
+/** Kinds of electrical device. A new kind is added here first; the compiler then finds every table that needs it. */
 export type DeviceKind =
   | "relay"
   | "contactor"
   | "timer"
+  | "latching-relay"
+  | "counter"
   | "push-button"
   | "emergency-stop"
   | "selector-switch"
+  | "key-switch"
+  | "foot-switch"
+  | "cable-pull"
+  | "door-switch"
   | "limit-switch"
   | "proximity-switch"
   | "pressure-switch"
+  | "vacuum-switch"
+  | "flow-switch"
+  | "level-switch"
+  | "temperature-switch"
   | "overload"
   | "solenoid"
   | "pilot-light"
   | "horn"
-  | "motor";
+  | "bell"
+  | "heater"
+  | "motor"
+  | "fuse"
+  | "circuit-breaker"
+  | "disconnect"
+  | "transformer"
+  | "power-supply"
+  | "rectifier"
+  | "terminal-strip"
+  | "plug"
+  | "diode"
+  | "resistor"
+  | "input-card"
+  | "output-card";
 
 export interface Device {
   name: string;
@@ -81,6 +105,8 @@ export interface Device {
   values: string[];
   /** Declared poles: normally open and normally closed. Absent: as many as are used. */
   poles?: { no: number; nc: number };
+  /** Fuses, breakers and disconnects: how many conductors pass through. Absent: as many as the circuit has. */
+  ways?: number;
   /** Timers. */
   delay?: { mode: "on-delay" | "off-delay"; time: Quantity };
   /** Coils: rated power, its inrush, and how long the armature takes. */
@@ -89,12 +115,20 @@ export interface Device {
   button?: { action: "momentary" | "maintained"; mushroom: boolean; lamp?: string };
   /** Proximity switches. */
   wires?: 2 | 3;
-  /** Selector switches: positions in order and the one drawn. */
+  /** Pilot lights. */
+  lamp?: { pushToTest: boolean };
+  /** Counters: the count at which the contacts change over. */
+  preset?: number;
+  /** Controller cards: how many points. */
+  points?: number;
+  /** Transformers, power supplies, rectifiers: what goes in and what comes out. */
+  conversion?: { primary?: Rating; secondary?: Rating };
+  /** Selector and key switches: positions in order and the one drawn. */
   selector?: { positions: string[]; start: string };
   colour?: string;
   /** Limit and proximity switches: where on the machine they are operated. */
   place?: SwitchPlace;
-  /** Pressure switches: the fluid point they sense, with its settings. */
+  /** Pressure, vacuum, flow, level and temperature switches: the fluid point they sense, if it is drawn, with the settings. */
   senses?: { component?: string; port?: string; point?: string; rising?: Quantity; falling?: Quantity };
   /** Overloads: the motor guarded. */
   guards?: string;
@@ -103,6 +137,14 @@ export interface Device {
   /** Uses in rungs, in drawing order. */
   contacts: ContactUse[];
   loads: LoadUse[];
+  /** Fuses, terminals, plugs and the like in rungs, in drawing order. */
+  throughs: ThroughUse[];
+}
+
+/** A voltage with its kind of current. */
+export interface Rating {
+  voltage: Quantity;
+  current?: "AC" | "DC";
 }
 
 /** A stretch of a cylinder's stroke in mm from retracted, in which a switch is operated. */
@@ -124,6 +166,8 @@ export interface Supply {
   /** The live rail (left or top) and the return rail (right or bottom). */
   rails: [string, string];
   fuse?: { name: string; rating: string };
+  /** The transformer or power supply whose secondary the rails are. */
+  from?: string;
   at: SourceRange;
 }
 
@@ -168,7 +212,10 @@ export interface ParallelPath {
   to: NodeId;
 }
 
-export type RungElement = ContactUse | LoadUse | PointUse;
+export type RungElement = DeviceUse | PointUse;
+
+/** What stands in a rung on behalf of a device and has two pins. */
+export type DeviceUse = ContactUse | LoadUse | ThroughUse;
 
 /** One contact of a device in a rung. `from` is its left node, `to` its right node. */
 export interface ContactUse {
@@ -178,8 +225,10 @@ export interface ContactUse {
   form: "NO" | "NC";
   /** A timer's delayed contact. */
   timed: boolean;
-  /** Selector switches: the position in which it is closed (NO) or open (NC). */
+  /** Selector and key switches: the position in which it is closed (NO) or open (NC). */
   position?: string;
+  /** Output cards: the point that drives the rung, `3` of `Q0.3`. */
+  point?: string;
   /** e.g. ["13", "14"]; empty strings for a device whose contacts carry no numbers. */
   terminals: Decided<[string, string]>;
   from: NodeId;
@@ -192,6 +241,24 @@ export interface LoadUse {
   kind: "load";
   id: PartId;
   device: string;
+  /** Which of its coils, for a device that has several: latching relays `set` and `reset`, counters `count` and `reset`. */
+  coil?: "set" | "reset" | "count";
+  /** Input cards: the point that is driven, `5` of `I0.5`. */
+  point?: string;
+  terminals: Decided<[string, string]>;
+  from: NodeId;
+  to: NodeId;
+  rung: PartId;
+  at: SourceRange;
+}
+
+/** Something the current passes through that neither opens by itself nor is driven: a fuse, a breaker, a terminal, a plug, a diode, a resistor. */
+export interface ThroughUse {
+  kind: "through";
+  id: PartId;
+  device: string;
+  /** Terminal strips and plugs: the terminal or pin, `4` of `X1:4`. Both sides are then one node. */
+  pin?: string;
   terminals: Decided<[string, string]>;
   from: NodeId;
   to: NodeId;
@@ -222,6 +289,15 @@ export interface Potential {
   points: string[];
   /** Wire number, as printed over the wire. Rails carry their own name. Running numbers are known here; by-line numbers are filled after layout. */
   number: Decided<string>;
+}
+
+/** Conductors drawn together: from the incoming feed over the busbars to motors and to the supplies of the ladders. */
+export interface PowerCircuit {
+  kind: "power";
+  id: PartId;
+  title: string;
+  sheetBreaks: { before: number; title?: string }[];
+  at: SourceRange;
 }
 
 // ---------------------------------------------------------------- fluid

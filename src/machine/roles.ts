@@ -79,7 +79,8 @@ export class Roles {
     if (first?.kind !== "reference") return;
     const kind = this.kindOf(first.name.text);
     // An unknown or unsuitable name, or part of one, has its own message.
-    if (kind === undefined || kind === "motor" || (first.part && deviceRoles[kind].load && kind !== "timer")) return;
+    if (kind === undefined || kind === "motor" || (first.part && deviceRoles[kind].load && kind !== "timer" && !deviceRoles[kind].coils))
+      return;
     const what =
       first.negated && deviceRoles[kind].load ? `/${first.name.text} is a contact` : `${first.name.text} is ${withArticle(kind)}`;
     this.report.error("not-a-load", first.at, `${what}, which cannot be driven: nothing behind "->" is a load.`, {
@@ -102,7 +103,11 @@ export class Roles {
 
   private mayBeDriven({ negated, name, part }: PathReference): boolean {
     const kind = this.kindOf(name.text);
-    return kind !== undefined && !negated && part === undefined && deviceRoles[kind].load;
+    if (kind === undefined || negated) return false;
+    const { load, coils } = deviceRoles[kind];
+    // `KL1.set` and `I0.5` are driven, `KL1` is a contact.
+    if (kind === "input-card") return true;
+    return coils ? part !== undefined && (coils as readonly string[]).includes(part.text) : load && part === undefined;
   }
 
   private onlyDriven(reference: PathReference): boolean {

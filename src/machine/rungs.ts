@@ -5,6 +5,7 @@ import { deviceRoles } from "./kinds.js";
 import type {
   ContactUse,
   Device,
+  DeviceUse,
   LadderCircuit,
   LoadUse,
   NodeId,
@@ -14,6 +15,7 @@ import type {
   RungEnd,
   SeriesPath,
   Supply,
+  ThroughUse,
 } from "./model.js";
 import type { Names } from "./names.js";
 import { NodeJoiner } from "./nodes.js";
@@ -167,10 +169,6 @@ export class RungBuilder {
   /** Brackets with one branch are no more than what stands in them. */
   private flatten(items: readonly PathItem[], work: RungWork, depth: number): PathItem[] {
     return items.flatMap((item): PathItem[] => {
-      if (item.kind === "reference" && this.isTerminal(item)) {
-        work.incomplete = true;
-        return [];
-      }
       if (item.kind !== "parallel" || item.branches.length !== 1) return [item];
       if (depth > deepest) return [item];
       return this.flatten((item.branches[0] as Series).items, work, depth + 1);
@@ -186,14 +184,6 @@ export class RungBuilder {
     return { kind: "parallel", branches, from, to };
   }
 
-  /** `X1:4`, a terminal on a strip: the wire goes straight through it. */
-  private isTerminal(reference: PathReference): boolean {
-    if (!reference.terminals || reference.terminals.text.includes("-") || this.devices.has(reference.name.text)) return false;
-    if (this.names.kindOf(reference.name.text) !== undefined && !this.names.isLost(reference.name.text)) return false;
-    this.report.error("not-yet-supported", reference.at, `Terminals in a rung are not yet supported.`);
-    return true;
-  }
-
   private readReference(reference: PathReference, from: NodeId, to: NodeId, work: RungWork): RungElement | undefined {
     const { name, part, negated, at } = reference;
     const device = this.devices.get(name.text);
@@ -207,9 +197,11 @@ export class RungBuilder {
       });
       return undefined;
     }
+    if (deviceRoles[device.kind].through) return this.readThrough(reference, device, from, to, work);
     const shared = { device: device.name, from, to, rung: work.id, at };
     if (work.roles.isLoad(reference)) {
       const load: LoadUse = { kind: "load", id: "", terminals: { value: ["", ""], by: "unallotted" }, ...shared };
+      if (!this.readLoadPart(load, device, reference)) return undefined;
       pin(load, reference, this.report);
       device.loads.push(load);
       return load;
@@ -232,8 +224,80 @@ export class RungBuilder {
     return contact;
   }
 
+  /** A fuse, a terminal, a diode: what current passes through. */
+  private readThrough(
+    { name, part, terminals, negated, at }: PathReference,
+    device: Device,
+    from: NodeId,
+    to: NodeId,
+    work: RungWork,
+  ): ThroughUse | undefined {
+    if (negated) {
+      this.report.error("no-contacts", at, `${name.text} is ${withArticle(device.kind)} and has no contacts.`);
+      return undefined;
+    }
+    if (part) {
+      this.report.error("unknown-part", part.at, `${name.text} is ${withArticle(device.kind)} and has no part ${part.text}.`);
+      return undefined;
+    }
+    const through: ThroughUse = {
+      kind: "through",
+      id: "",
+      device: device.name,
+      terminals: { value: ["", ""], by: "unallotted" },
+      from,
+      to,
+      rung: work.id,
+      at,
+    };
+    if (device.kind === "terminal-strip" || device.kind === "plug") {
+      if (!terminals) {
+        const what = device.kind === "plug" ? "pin" : "terminal";
+        this.report.error("terminals-missing", at, `Which ${what} of ${name.text}?`, { hint: `Write ${name.text}:1.` });
+        return undefined;
+      }
+      // The wire goes straight through it.
+      this.join(from, to, at);
+      through.pin = terminals.text;
+    } else pin(through, { name, terminals }, this.report);
+    device.throughs.push(through);
+    return through;
+  }
+
+  private readLoadPart(load: LoadUse, device: Device, { part, name, at }: PathReference): boolean {
+    if (device.kind !== "input-card") {
+      if (part) load.coil = part.text as NonNullable<LoadUse["coil"]>;
+      return true;
+    }
+    const point = this.readPoint(device, name, part, at);
+    if (point !== undefined) load.point = point;
+    return point !== undefined;
+  }
+
+  /** The point of a controller's card. */
+  private readPoint({ points }: Device, name: PathReference["name"], part: PathReference["part"], at: SourceRange): string | undefined {
+    if (!part) {
+      this.report.error("position-missing", at, `Which point of ${name.text}?`, { hint: `Write ${name.text}.0.` });
+      return undefined;
+    }
+    if (!/^\d+$/.test(part.text) || (points !== undefined && Number(part.text) >= points)) {
+      this.report.error(
+        "unknown-part",
+        part.at,
+        `${name.text} has no point ${part.text}${points === undefined ? "" : `: it has 0 to ${points - 1}`}.`,
+      );
+      return undefined;
+    }
+    return part.text;
+  }
+
   private readPart(contact: ContactUse, device: Device, { part, name, at }: PathReference): boolean {
-    if (device.kind === "selector-switch") {
+    if (device.kind === "output-card") {
+      const point = this.readPoint(device, name, part, at);
+      if (point !== undefined) contact.point = point;
+      return point !== undefined;
+    }
+    if (device.kind === "selector-switch" || device.kind === "key-switch") {
       const positions = device.selector?.positions ?? [];
       if (!part) {
         this.report.error("position-missing", at, `In which position of ${name.text}? It has ${listed(positions, "and")}.`, {
@@ -298,7 +362,7 @@ function pointId({ id, points }: RungWork, name: string): string {
 }
 
 /** Takes the terminals the author pinned: `CR1:23-24`. */
-function pin(use: ContactUse | LoadUse, { terminals, name }: PathReference, report: Report): void {
+function pin(use: DeviceUse, { terminals, name }: Pick<PathReference, "terminals" | "name">, report: Report): void {
   if (!terminals) return;
   const pair = /^([A-Za-z0-9]+)-([A-Za-z0-9]+)$/.exec(terminals.text);
   if (!pair || pair[1] === pair[2]) {

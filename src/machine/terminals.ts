@@ -1,5 +1,6 @@
-import type { ContactUse, Device, DeviceKind, LoadUse } from "./model.js";
+import type { ContactUse, Device, DeviceKind, DeviceUse } from "./model.js";
 import type { Report } from "./report.js";
+import { designationOf } from "./walk.js";
 
 /*
  * Terminal numbers after EN 50005 (EN 50013 for control switches): the last digit is the function, the digits before it the
@@ -21,6 +22,8 @@ const loadTerminals: Partial<Record<DeviceKind, [string, string]>> = {
   solenoid: ["A1", "A2"],
   "pilot-light": ["X1", "X2"],
 };
+
+const throughTerminals: Partial<Record<DeviceKind, [string, string]>> = { diode: ["A", "K"] };
 
 /** Places in the order they are given out. Overloads have place 9, and 0 for a second set. */
 function* places(kind: DeviceKind): Generator<number> {
@@ -62,6 +65,10 @@ export function allotTerminals(device: Device, report: Report): void {
   }
   for (const load of device.loads) {
     if (load.terminals.by !== "author") load.terminals = { value: [...(loadTerminals[device.kind] ?? ["", ""])], by: "load terminals" };
+  }
+  for (const through of device.throughs) {
+    if (through.terminals.by === "author" || through.pin !== undefined) continue;
+    through.terminals = { value: [...(throughTerminals[device.kind] ?? ["1", "2"])], by: "poles in reading order" };
   }
   giveIds(device);
 }
@@ -133,11 +140,13 @@ function suits({ form }: ContactUse, digits: readonly string[]): boolean {
 }
 
 /** `CR1:13-14`; a second use of the same terminals, which has its own message, is told apart. */
-function giveIds({ name, contacts, loads }: Device): void {
+function giveIds({ contacts, loads, throughs }: Device): void {
   const seen = new Map<string, number>();
-  for (const use of [...contacts, ...loads] as (ContactUse | LoadUse)[]) {
+  for (const use of [...contacts, ...loads, ...throughs] as DeviceUse[]) {
     const terminals = use.terminals.value.join("-");
-    const id = `${name}:${terminals === "-" ? use.kind : terminals}`;
+    const pin = use.kind === "through" ? use.pin : undefined;
+    const own = use.kind === "load" && use.coil !== undefined ? `${designationOf(use)}.${use.coil}` : designationOf(use);
+    const id = pin !== undefined ? own : `${own}:${terminals === "-" ? use.kind : terminals}`;
     const times = (seen.get(id) ?? 0) + 1;
     seen.set(id, times);
     use.id = times === 1 ? id : `${id}/${times}`;

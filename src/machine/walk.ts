@@ -1,4 +1,4 @@
-import type { ContactUse, FluidCircuit, LadderCircuit, LoadUse, Machine, ParallelPath, RungElement, SeriesPath } from "./model.js";
+import type { DeviceUse, FluidCircuit, LadderCircuit, Machine, ParallelPath, RungElement, SeriesPath } from "./model.js";
 
 export function laddersOf({ circuits }: Machine): LadderCircuit[] {
   return circuits.filter((circuit) => circuit.kind === "ladder");
@@ -21,7 +21,13 @@ export function* elementsOf(path: SeriesPath | ParallelPath): Generator<RungElem
   }
 }
 
-/** The contacts and loads of a path: what has length. */
-export function* usesOf(path: SeriesPath | ParallelPath): Generator<ContactUse | LoadUse> {
+/** The contacts, loads and things passed through of a path: what has length. */
+export function* usesOf(path: SeriesPath | ParallelPath): Generator<DeviceUse> {
   for (const element of elementsOf(path)) if (element.kind !== "point") yield element;
+}
+
+/** What a use is called on the sheet and in tables: `CR1`, `Q0.3`, `X1:4`. */
+export function designationOf(use: DeviceUse): string {
+  if (use.kind === "through") return use.pin === undefined ? use.device : `${use.device}:${use.pin}`;
+  return use.point === undefined ? use.device : `${use.device}.${use.point}`;
 }

@@ -1,5 +1,5 @@
 import type { StartState } from "../behaviour/start-state.js";
-import type { ContactUse, CylinderSpec, Device, DeviceKind, DrawingInfo, FluidComponent, FluidKind, LoadUse } from "../machine/model.js";
+import type { CylinderSpec, Device, DeviceKind, DeviceUse, DrawingInfo, FluidComponent, FluidKind } from "../machine/model.js";
 import { composeCylinder } from "./cylinder.js";
 import type { SymbolLibrary } from "./library.js";
 import type { Symbol } from "./symbol.js";
@@ -9,13 +9,13 @@ import { withTexts } from "./with-texts.js";
 /** What a contact or load looks like depends on its device, on the contact and on whether the machine holds it operated at the start. */
 interface Drawn {
   device: Device;
-  use: ContactUse | LoadUse;
+  use: DeviceUse;
   held: boolean;
 }
 
 /** The symbol of a contact or load in the state drawn. */
 export function symbolForDevice(
-  use: ContactUse | LoadUse,
+  use: DeviceUse,
   device: Device,
   start: StartState,
   convention: DrawingInfo["convention"],
@@ -28,7 +28,12 @@ export function symbolForDevice(
 }
 
 /** `no` or `nc`. */
-const form = (use: ContactUse | LoadUse): "no" | "nc" => (use.kind === "contact" && use.form === "NC" ? "nc" : "no");
+const form = (use: DeviceUse): "no" | "nc" => (use.kind === "contact" && use.form === "NC" ? "nc" : "no");
+
+const contact =
+  (name: string) =>
+  ({ use }: Drawn): string =>
+    `${name}-${form(use)}`;
 
 /** A contact of a relay, a coil otherwise. */
 const relay = ({ use }: Drawn): string => (use.kind === "load" ? "coil" : `contact-${form(use)}`);
@@ -48,7 +53,7 @@ const deviceSymbols: Record<DeviceKind, (drawn: Drawn) => string> = {
   timer: (drawn) => {
     const { device, use } = drawn;
     if (use.kind === "load") return device.delay?.mode === "off-delay" ? "coil-off-delay" : "coil-on-delay";
-    return use.timed ? `timed-${form(use)}-${device.delay?.mode === "off-delay" ? "off" : "on"}` : relay(drawn);
+    return use.kind === "contact" && use.timed ? `timed-${form(use)}-${device.delay?.mode === "off-delay" ? "off" : "on"}` : relay(drawn);
   },
   "push-button": ({ device, use }) => {
     const { action, mushroom } = device.button ?? { action: "momentary", mushroom: false };
@@ -71,6 +76,30 @@ const deviceSymbols: Record<DeviceKind, (drawn: Drawn) => string> = {
   "pilot-light": () => "pilot-light",
   horn: () => "horn",
   motor: () => "motor-3ph",
+  "latching-relay": relay,
+  counter: relay,
+  "key-switch": relay,
+  "foot-switch": contact("foot-switch"),
+  "cable-pull": contact("pull-switch"),
+  "door-switch": contact("limit"),
+  "vacuum-switch": contact("vacuum"),
+  "flow-switch": contact("flow"),
+  "level-switch": contact("level"),
+  "temperature-switch": contact("temperature"),
+  bell: () => "bell",
+  heater: () => "heater",
+  fuse: () => "fuse",
+  "circuit-breaker": () => "circuit-breaker-1p",
+  disconnect: () => "circuit-breaker-1p",
+  transformer: () => "transformer-control",
+  "power-supply": () => "transformer-control",
+  rectifier: () => "transformer-control",
+  "terminal-strip": () => "terminal",
+  plug: () => "plug",
+  diode: () => "diode",
+  resistor: () => "resistor",
+  "input-card": () => "plc-input",
+  "output-card": () => "plc-output",
 };
 
 /** What is written into a symbol; designations and terminals are the layout's. */

@@ -1,15 +1,7 @@
 import { parse } from "../../src/language/parse.js";
 import { buildMachine } from "../../src/machine/build.js";
-import type {
-  ContactUse,
-  Device,
-  FluidCircuit,
-  LadderCircuit,
-  LoadUse,
-  Machine,
-  ParallelPath,
-  SeriesPath,
-} from "../../src/machine/model.js";
+import type { Device, DeviceUse, FluidCircuit, LadderCircuit, Machine, ParallelPath, SeriesPath } from "../../src/machine/model.js";
+import { designationOf } from "../../src/machine/walk.js";
 
 /** The machine of a text, and the codes of what was found while reading it. */
 export function machineOf(text: string): { machine: Machine; codes: string[] } {
@@ -47,7 +39,8 @@ export function firstFluid({ circuits }: Machine): FluidCircuit {
 /** A path in the language's own writing, with the wire numbers between the devices: `L+ /PB2 1 (PB1 | CR1) 2 -> CR1 M`. */
 export function written(machine: Machine, path: SeriesPath): string {
   const number = (node: number) => machine.potentials[node]?.number.value ?? "?";
-  const name = (use: ContactUse | LoadUse) => `${use.kind === "load" ? "-> " : use.form === "NC" ? "/" : ""}${use.device}`;
+  const name = (use: DeviceUse) =>
+    `${use.kind === "load" ? "-> " : use.kind === "contact" && use.form === "NC" ? "/" : ""}${designationOf(use)}`;
   const inner = (series: SeriesPath): string =>
     series.items
       .map((item, index) => {

@@ -3,7 +3,7 @@ import { parse } from "../../src/language/parse.js";
 import { type LadderLayout, layOutLadder } from "../../src/layout/ladder/lay-out-ladder.js";
 import type { CircuitSheet, PageArea } from "../../src/layout/placement.js";
 import { buildMachine } from "../../src/machine/build.js";
-import type { ContactUse, Device, LadderCircuit, LoadUse, Machine, NodeId } from "../../src/machine/model.js";
+import type { Device, DeviceUse, LadderCircuit, Machine, NodeId } from "../../src/machine/model.js";
 import { nodeWorld } from "../../src/node-world.js";
 import { pageArea } from "../../src/sheets/page.js";
 import { symbolForDevice } from "../../src/symbols/choose.js";
@@ -42,7 +42,7 @@ export function ladderOf(text: string): LaidLadder {
   const circuit = machine.circuits.find(({ kind }) => kind === "ladder") as LadderCircuit;
   const page = pageArea(machine.drawing);
   const start = startOfCycle(machine);
-  const symbolOf = (use: ContactUse | LoadUse) =>
+  const symbolOf = (use: DeviceUse) =>
     symbolForDevice(use, machine.devices.get(use.device) as Device, start, machine.drawing.convention, library);
   const again = () => layOutLadder(circuit, machine, symbolOf, library, page, { sheet: 1, line: 1 });
   const laid = again();
@@ -70,7 +70,7 @@ export function faults({ sheets, page, circuit }: LaidLadder): string[] {
 }
 
 /** Contacts and loads of the ladder with the nodes on both sides. */
-export function partsOf(circuit: LadderCircuit): { id: string; kind: "contact" | "load"; from: NodeId; to: NodeId }[] {
+export function partsOf(circuit: LadderCircuit): { id: string; kind: "contact" | "load" | "through"; from: NodeId; to: NodeId }[] {
   const found: ReturnType<typeof partsOf> = [];
   const visit = (path: LadderCircuit["rungs"][number]["path"]) => {
     for (const item of path.items) {

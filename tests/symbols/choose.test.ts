@@ -25,6 +25,7 @@ const device = (kind: DeviceKind, more: Partial<Device> = {}): Device => ({
   values: [],
   contacts: [],
   loads: [],
+  throughs: [],
   ...more,
 });
 const contact = (form: "NO" | "NC", more: Partial<ContactUse> = {}): ContactUse => ({

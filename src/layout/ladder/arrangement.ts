@@ -1,5 +1,5 @@
 import type { Box, Mm, Point } from "../../drawing/geometry.js";
-import type { ContactUse, LoadUse } from "../../machine/model.js";
+import type { DeviceUse, LoadUse } from "../../machine/model.js";
 import type { Symbol, Turn } from "../../symbols/symbol.js";
 import type { PlacedText } from "../placement.js";
 
@@ -11,7 +11,7 @@ export interface Arrangement {
   /** A point of the sheet from its distance along the current and across it, both from the ladder's origin. */
   orient(along: Mm, across: Mm): Point;
   /** The symbol of a part with its texts about the middle of its line. `tight`: the texts are wrapped so as not to widen its column. */
-  dress(use: ContactUse | LoadUse, tight: boolean): Dressed;
+  dress(use: DeviceUse, tight: boolean): Dressed;
   /** Texts beside the return rail at the line of a load or at a rung's first line. */
   margin(entry: MarginEntry): Block;
   /** The number over a wire: how much room it takes along and above its line. */

@@ -1,4 +1,4 @@
-import type { ContactUse, LoadUse, NodeId, Rung } from "../../machine/model.js";
+import type { DeviceUse, NodeId, Rung } from "../../machine/model.js";
 
 /**
  * The ladder grid, before any millimetre. Columns run along the current, from the live rail to the return rail; lines
@@ -12,7 +12,7 @@ export const returnRail = 2_000_000;
 
 /** A contact or load in its place. */
 export interface Cell {
-  use: ContactUse | LoadUse;
+  use: DeviceUse;
   /** Counted from the rung's first line. */
   line: number;
   column: number;

@@ -1,6 +1,6 @@
 import type { Mm } from "../../drawing/geometry.js";
 import type { PartId } from "../../drawing/marks.js";
-import type { ContactUse, LadderCircuit, LoadUse, Machine, NodeId, Rung } from "../../machine/model.js";
+import type { DeviceUse, LadderCircuit, Machine, NodeId, Rung } from "../../machine/model.js";
 import type { SymbolLibrary } from "../../symbols/library.js";
 import type { Symbol } from "../../symbols/symbol.js";
 import type { CircuitSheet, PageArea, Place } from "../placement.js";
@@ -37,7 +37,7 @@ export interface LadderLayout {
 export function layOutLadder(
   circuit: LadderCircuit,
   machine: Machine,
-  symbolOf: (use: ContactUse | LoadUse) => Symbol,
+  symbolOf: (use: DeviceUse) => Symbol,
   symbols: SymbolLibrary,
   page: PageArea,
   numbering: Numbering,

@@ -1,7 +1,7 @@
 import type { Mm } from "../../drawing/geometry.js";
 import { measureText } from "../../drawing/text.js";
 import { wrapName, wrapNameAt, wrappedPitch } from "../../drawing/wrap-name.js";
-import type { ContactUse, Device, LoadUse, Machine } from "../../machine/model.js";
+import type { Device, DeviceUse, Machine } from "../../machine/model.js";
 import type { Symbol } from "../../symbols/symbol.js";
 import type { PlacedText, Reference, ReferenceTo } from "../placement.js";
 import type { Arrangement, Block, Dressed, MarginEntry } from "./arrangement.js";
@@ -22,7 +22,7 @@ export interface MarginWidths {
 
 export interface NorthAmericanGiven {
   machine: Machine;
-  symbolOf(use: ContactUse | LoadUse): Symbol;
+  symbolOf(use: DeviceUse): Symbol;
   margin: MarginWidths;
   /** 1 for the 2.5 mm module, less for a smaller one. */
   scale: number;
@@ -62,7 +62,7 @@ const widestEnding: Mm = 24;
 /** A name takes no more lines than this. */
 const mostLines = 3;
 
-function dress(use: ContactUse | LoadUse, machine: Machine, symbol: Symbol, scale: number, width: Mm): Dressed {
+function dress(use: DeviceUse, machine: Machine, symbol: Symbol, scale: number, width: Mm): Dressed {
   const device = machine.devices.get(use.device);
   const ports = symbol.ports;
   const left = ports.find((port) => port.direction === "left") ?? ports[0] ?? { x: -10, y: 0 };
@@ -139,7 +139,7 @@ function dress(use: ContactUse | LoadUse, machine: Machine, symbol: Symbol, scal
 const clearance: Mm = 0.8;
 
 /** A coil's designation stands in its circle if it has room there. */
-function insideWords(use: ContactUse | LoadUse, device: Device | undefined, scale: number): { words: string; height: Mm } | undefined {
+function insideWords(use: DeviceUse, device: Device | undefined, scale: number): { words: string; height: Mm } | undefined {
   if (use.kind !== "load" || !device) return undefined;
   if (device.kind !== "relay" && device.kind !== "contactor" && device.kind !== "timer") return undefined;
   const { usual, small } = textHeight;
@@ -151,7 +151,7 @@ function insideWords(use: ContactUse | LoadUse, device: Device | undefined, scal
  * The positions of a selector about its pointer: those at the sides wrapped about their height, the one between them over
  * the pointer and, where it is wide, over the others too.
  */
-function selectorLabels(use: ContactUse | LoadUse, device: Device | undefined, symbol: Symbol, width: Mm): PlacedText[] {
+function selectorLabels(use: DeviceUse, device: Device | undefined, symbol: Symbol, width: Mm): PlacedText[] {
   const positions = use.kind === "contact" ? device?.selector?.positions : undefined;
   if (!positions) return [];
   const height = textHeight.small;
@@ -191,7 +191,7 @@ interface UnderWords {
 }
 
 /** What stands under a symbol, from its line outward: words no wider than `width`, references no wider than `widest`. */
-function underWords(use: ContactUse | LoadUse, device: Device | undefined, width: Mm, widest: Mm): UnderWords[] {
+function underWords(use: DeviceUse, device: Device | undefined, width: Mm, widest: Mm): UnderWords[] {
   if (!device) return [];
   const { usual, small } = textHeight;
   const reference = (to: ReferenceTo, longest: string, height: Mm): UnderWords => ({
