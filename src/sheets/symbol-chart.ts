@@ -5,8 +5,9 @@ import { measureText, wrapText } from "../drawing/text.js";
 import { wrapName } from "../drawing/wrap-name.js";
 import { emptyDrawingInfo } from "../machine/drawing.js";
 import type { DrawingInfo } from "../machine/model.js";
-import { composedExamples } from "../symbols/examples.js";
+import { composedExamples, type ExampleFamily } from "../symbols/examples.js";
 import { openSymbols } from "../symbols/library.js";
+import { powerExamples } from "../symbols/power-examples.js";
 import type { Port, Symbol } from "../symbols/symbol.js";
 import type { World } from "../world.js";
 import { frameMarks } from "./frame.js";
@@ -106,11 +107,13 @@ function families(world: World): Family[] {
     ...order
       .filter((folder) => folders.has(folder))
       .map((folder) => ({ title: folderTitles[folder] ?? folder, entries: folders.get(folder) ?? [] })),
-    ...composedExamples().map(({ title, examples }) => ({
-      title,
-      entries: examples.map(({ name, symbol }) => ({ name, title: "", symbol, module: fluidModule })),
-    })),
+    ...powerExamples(library).map((family) => familyOf(family, electricalModule)),
+    ...composedExamples().map((family) => familyOf(family, fluidModule)),
   ];
+}
+
+function familyOf({ title, examples }: ExampleFamily, module: Mm): Family {
+  return { title, entries: examples.map(({ name, symbol }) => ({ name, title: "", symbol, module })) };
 }
 
 /** Sets the families one after another in rows of cells; a row that does not fit opens a new sheet. */

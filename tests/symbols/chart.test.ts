@@ -6,6 +6,7 @@ import { papers } from "../../src/sheets/paper.js";
 import { symbolChart } from "../../src/sheets/symbol-chart.js";
 import { composedExamples } from "../../src/symbols/examples.js";
 import { openSymbols } from "../../src/symbols/library.js";
+import { powerExamples } from "../../src/symbols/power-examples.js";
 import { assets } from "../support/assets.js";
 
 const set = symbolChart(assets);
@@ -19,7 +20,7 @@ describe("the symbol chart", () => {
       ...openSymbols(assets)
         .names()
         .map((name) => name.replace(/^[^/]+\//, "")),
-      ...composedExamples().flatMap(({ examples }) => examples.map(({ name }) => name)),
+      ...[...powerExamples(openSymbols(assets)), ...composedExamples()].flatMap(({ examples }) => examples.map(({ name }) => name)),
     ];
     expect([...named].sort()).toEqual([...wanted].sort());
   });
