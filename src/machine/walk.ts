@@ -1,4 +1,4 @@
-import type { DeviceUse, FluidCircuit, LadderCircuit, Machine, ParallelPath, RungElement, SeriesPath } from "./model.js";
+import type { DeviceUse, DrawingInfo, FluidCircuit, LadderCircuit, Machine, ParallelPath, RungElement, SeriesPath } from "./model.js";
 
 export function laddersOf({ circuits }: Machine): LadderCircuit[] {
   return circuits.filter((circuit) => circuit.kind === "ladder");
@@ -30,4 +30,9 @@ export function* usesOf(path: SeriesPath | ParallelPath): Generator<DeviceUse> {
 export function designationOf(use: DeviceUse): string {
   if (use.kind === "through") return use.pin === undefined ? use.device : `${use.device}:${use.pin}`;
   return use.point === undefined ? use.device : `${use.device}.${use.point}`;
+}
+
+/** An electrical designation as it is printed: the international convention puts a dash before it, the text never has one. */
+export function printedName(designation: string, convention: DrawingInfo["convention"]): string {
+  return convention === "international" ? `-${designation}` : designation;
 }

@@ -1,7 +1,7 @@
 import type { Mm } from "../../drawing/geometry.js";
-import type { Arrangement } from "./arrangement.js";
+import type { Arrangement, LinePitch } from "./arrangement.js";
 import type { MeasuredRung } from "./measure-rungs.js";
-import { type ColumnNeeds, type ColumnPitch, leastSpan, needsOfLoads, noNeeds, withNeeds } from "./set-columns.js";
+import { type ColumnNeeds, leastSpan, needsOfLoads, noNeeds, withNeeds } from "./set-columns.js";
 
 /** The rungs of one sheet with the distance of every line from the first line's room, across. */
 export interface RungSheet {
@@ -16,19 +16,12 @@ export interface RungSheet {
   groups: { from: number; needs: ColumnNeeds }[];
 }
 
-/** Least distance between lines, and the grid that distances keep to, mm. */
-export interface LinePitch {
-  least: Mm;
-  step: Mm;
-}
-
 /** What a sheet offers: across for its lines, along from rail to rail. */
 export interface SheetRoom {
   depth: Mm;
   /** Across on the first sheet, which may carry the supply's fuse. */
   first: Mm;
   span: Mm;
-  columns: ColumnPitch;
 }
 
 /**
@@ -41,7 +34,6 @@ export function breakSheets(
   rungs: readonly MeasuredRung[],
   breaks: readonly { before: number; title?: string }[],
   room: SheetRoom,
-  pitch: LinePitch,
   arrangement: Arrangement,
   linked: (rung: number) => boolean,
 ): RungSheet[] {
@@ -49,6 +41,7 @@ export function breakSheets(
   const asked = new Map(breaks.map((wanted) => [wanted.before, wanted]));
   let sheet: RungSheet | undefined;
   let below: Mm = 0;
+  const pitch = arrangement.lines;
   const open = (first: number, title: string | undefined) => {
     sheet = { first, rungs: [], depth: 0, groups: [{ from: 0, needs: noNeeds() }], ...(title === undefined ? {} : { title }) };
     sheets.push(sheet);
@@ -60,7 +53,7 @@ export function breakSheets(
     if (!sheet || (wanted && sheet.rungs.length > 0)) sheet = open(index, wanted?.title);
     else if (wanted?.title !== undefined) sheet.title = wanted.title;
     let placed = stack(rung, sheet.depth, below, pitch);
-    const wide = (needs: ColumnNeeds) => leastSpan(needs, room.columns) > room.span;
+    const wide = (needs: ColumnNeeds) => leastSpan(needs, arrangement.columns) > room.span;
     const group = () => (sheet as RungSheet).groups.at(-1) as RungSheet["groups"][number];
     let needs = withNeeds(group().needs, rung, arrangement);
     const apart = sheet.rungs.length > 0 && wide(needs);

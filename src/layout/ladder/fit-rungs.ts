@@ -1,29 +1,24 @@
 import type { Mm } from "../../drawing/geometry.js";
 import type { LadderCircuit, NodeId, Rung } from "../../machine/model.js";
 import type { Arrangement } from "./arrangement.js";
-import { type LinePitch, stack } from "./break-sheets.js";
+import { stack } from "./break-sheets.js";
 import { foldRungs, type RungLimits } from "./fold-rungs.js";
 import { boundaryOf, loadColumn, type RungGrid } from "./grid.js";
 import { type Joined, joinPoints } from "./join-points.js";
 import { type MeasuredRung, measureRungs } from "./measure-rungs.js";
-import { type ColumnPitch, leastSpan, needsOfLoads, noNeeds, withNeeds } from "./set-columns.js";
+import { leastSpan, needsOfLoads, noNeeds, withNeeds } from "./set-columns.js";
 
 /** Rungs of which none is wider or taller than a sheet. */
 export interface FittedRungs {
   joined: Joined;
   measured: MeasuredRung[];
   arrangement: Arrangement;
-  /** The symbols' module, 1 for 2.5 mm. */
-  scale: number;
   /** The author's sheet breaks, before the rungs as they are now. */
   breaks: { before: number; title?: string }[];
 }
 
 /** The smaller module of the series, 1.8 mm to 2.5 mm (ISO 81714-1, from memory). */
 const smallModule = 0.72;
-
-export const columnPitch = (scale: number): ColumnPitch => ({ usual: 30 * scale, widest: 38 * scale, gap: 8 * scale });
-export const linePitch = (scale: number): LinePitch => ({ least: scale === 1 ? 15 : 12.5, step: 1.25 });
 
 /** More than anybody draws; each round cuts what was still too large. */
 const rounds = 16;
@@ -45,6 +40,7 @@ export function fitRungs(
   const tight = new Set<number>();
   const limitsOf = (index: number): RungLimits =>
     limits.get(index) ?? { columns: Number.POSITIVE_INFINITY, lines: Number.POSITIVE_INFINITY };
+  const roomy = roomyColumns * arrange(1).columns.usual;
   let scale = 1;
   let triedSmall = false;
   let wideAtFull = 0;
@@ -62,19 +58,19 @@ export function fitRungs(
       (index) => limitsOf(origin[index] as number).columns,
     );
     const measured = measureRungs(joined, new Set(rails), arrangement, (index) => tight.has(origin[index] as number));
-    const fitted = { joined, measured, arrangement, scale, breaks };
+    const fitted = { joined, measured, arrangement, breaks };
     const next = new Map(limits);
     const wideRungs = new Set<number>();
     let wide = 0;
     let tall = 0;
     const loads = needsOfLoads(measured.reduce((needs, rung) => withNeeds(needs, rung, arrangement), noNeeds()));
-    const behind = leastSpan(loads, columnPitch(scale));
+    const behind = leastSpan(loads, arrangement.columns);
     measured.forEach((rung, index) => {
       const of = origin[index] as number;
       // What held for this round; several pieces of one rung must not lower its limit several times.
       const known = limitsOf(of);
       const lowered = next.get(of) ?? known;
-      const along = leastSpan(withNeeds(noNeeds(), rung, arrangement), columnPitch(scale));
+      const along = leastSpan(withNeeds(noNeeds(), rung, arrangement), arrangement.columns);
       if (along > offer.span) {
         wide++;
         wideRungs.add(of);
@@ -82,7 +78,7 @@ export function fitRungs(
         const share = Math.floor((columns * (offer.span - behind)) / Math.max(along - behind, 1));
         next.set(of, { ...lowered, columns: Math.max(1, Math.min(lowered.columns, known.columns - 1, Math.max(columns - 1, 1), share)) });
       }
-      const across = stack(rung, 0, 0, linePitch(scale)).depth;
+      const across = stack(rung, 0, 0, arrangement.lines).depth;
       if (across > offer.depth) {
         tall++;
         const { lines } = rung.grid;
@@ -99,14 +95,14 @@ export function fitRungs(
       for (const index of loose) tight.add(index);
       continue;
     }
-    if (!triedSmall && wide > 0 && (wide > measured.length * fewWide || offer.span < roomyColumns * columnPitch(1).usual)) {
+    if (!triedSmall && wide > 0 && (wide > measured.length * fewWide || offer.span < roomy)) {
       // Many wide rungs, or a narrow sheet: see what the smaller module does for them.
       triedSmall = true;
       wideAtFull = wide;
       scale = smallModule;
       continue;
     }
-    if (scale === smallModule && limits.size === 0 && wide >= wideAtFull && offer.span >= roomyColumns * columnPitch(1).usual) {
+    if (scale === smallModule && limits.size === 0 && wide >= wideAtFull && offer.span >= roomy) {
       // It helps nobody: cut on the usual module instead.
       scale = 1;
       continue;

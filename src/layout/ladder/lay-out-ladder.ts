@@ -1,18 +1,15 @@
-import type { Mm } from "../../drawing/geometry.js";
 import type { PartId } from "../../drawing/marks.js";
 import type { DeviceUse, LadderCircuit, Machine, NodeId, Rung } from "../../machine/model.js";
 import type { SymbolLibrary } from "../../symbols/library.js";
 import type { Symbol } from "../../symbols/symbol.js";
-import type { CircuitSheet, PageArea, Place } from "../placement.js";
+import { type CircuitSheet, emptySheet, type PageArea, type Place } from "../placement.js";
 import { breakSheets, type RungSheet } from "./break-sheets.js";
-import { drawSheet } from "./draw-sheet.js";
-import { columnPitch, fitRungs, linePitch } from "./fit-rungs.js";
+import { drawLadder } from "./draw-ladder.js";
+import { fitRungs } from "./fit-rungs.js";
 import type { Link } from "./grid.js";
-import { measureRailHead, nameRails } from "./name-rails.js";
-import { northAmerican } from "./north-american.js";
-import { scaleSymbol } from "./scale-symbol.js";
+import type { RailEnd } from "./plan.js";
+import { planNorthAmerican } from "./plan-north-american.js";
 import { leastSpan, setColumns } from "./set-columns.js";
-import { fuseBlock, fuseScale, fuseSymbol, setFuse } from "./supply-fuse.js";
 
 /** The numbers a ladder's first sheet and first line get. */
 export interface Numbering {
@@ -45,29 +42,17 @@ export function layOutLadder(
   const rails = railNodes(circuit, machine);
   const rungs = circuit.rungs.map((rung) => onRails(rung, rails));
   if (rungs.length === 0) return { sheets: [], places: [], nextLine: numbering.line };
-  const room = shareWidth(page.area.width);
-  const fuse =
-    circuit.supply.fuse && symbols.names().includes(fuseSymbol)
-      ? fuseBlock(circuit.supply.fuse, scaleSymbol(symbols.get(fuseSymbol), fuseScale))
-      : undefined;
-  const beside = { left: lineNumberRoom, span: room.span, right: page.area.width - lineNumberRoom - room.span };
-  const heads = { plain: measureRailHead(circuit, beside, "next"), first: measureRailHead(circuit, beside, fuse ? "fused" : "first") };
-  const firstHead = headRoom + heads.first.above + heads.first.below + (fuse?.length ?? 0);
-  const nextHead = headRoom + heads.plain.above;
-  const depth = page.area.height - nextHead - footRoom;
-  const offer = { ...room, depth: page.area.height - Math.max(firstHead, nextHead) - footRoom };
+  const plan = planNorthAmerican({ circuit, machine, symbolOf, symbols, room: page.area });
 
   // 1. Every part has a column and a line on the grid, shared points are joined or end in a reference, every text is
   //    measured, and no rung needs more than a sheet offers.
-  const { joined, measured, arrangement, scale, breaks } = fitRungs(circuit, rungs, rails, offer, (scale) =>
-    northAmerican({ machine, symbolOf, margin: room.margin, scale }),
-  );
+  const offer = { span: plan.span, depth: Math.min(plan.first, plan.next) };
+  const { joined, measured, arrangement, breaks } = fitRungs(circuit, rungs, rails, offer, plan.arrange);
   // 2. Every rung is whole on one sheet; line numbers are known.
   const broken = breakSheets(
     measured,
     breaks,
-    { depth, first: page.area.height - firstHead - footRoom, span: room.span, columns: columnPitch(scale) },
-    linePitch(scale),
+    { depth: plan.next, first: plan.first, span: plan.span },
     arrangement,
     linkedRungs(joined.links),
   );
@@ -76,69 +61,44 @@ export function layOutLadder(
   const places: [PartId, Place][] = [];
   const linksOf = shareLinks(joined.links, broken);
   const sheets = broken.map((sheet, index) => {
-    const number = numbering.sheet + index;
-    const span = Math.max(room.span, ...sheet.groups.map(({ needs }) => leastSpan(needs, columnPitch(scale))));
-    const groups = sheet.groups.map(({ from, needs }) => ({ from, columns: setColumns(needs, span, columnPitch(scale)) }));
-    const [head, heading] = index === 0 ? [firstHead, heads.first] : [nextHead, heads.plain];
-    const origin = { x: page.area.x + lineNumberRoom, y: page.area.y + head };
-    const railFrom = railHead + heading.above - head;
-    const railTo = sheet.depth + footRoom - railFoot;
-    const links = linksOf[index] ?? [];
-    const drawn = drawSheet({
-      circuit,
-      sheet,
-      number,
-      title: sheet.title ?? circuit.title,
+    const out = emptySheet("ladder", circuit.id, numbering.sheet + index, sheet.title ?? circuit.title);
+    const first = index === 0;
+    const span = Math.max(plan.span, ...sheet.groups.map(({ needs }) => leastSpan(needs, arrangement.columns)));
+    const corner = plan.origin(first);
+    const origin = { x: page.area.x + corner.x, y: page.area.y + corner.y };
+    const ends = plan.rails(first, sheet.depth);
+    places.push(
+      ...drawLadder(
+        {
+          circuit,
+          sheet,
+          span,
+          groups: sheet.groups.map(({ from, needs }) => ({ from, columns: setColumns(needs, span, arrangement.columns) })),
+          arrangement,
+          rails,
+          origin,
+          railFrom: ends.from,
+          railTo: ends.to,
+          firstLine: firstLines[index] as number,
+          links: linksOf[index] ?? [],
+          zoneOf: (point) => page.zoneOf(point),
+        },
+        out,
+      ),
+    );
+    plan.finish(out, {
+      first,
+      origin,
       span,
-      groups,
-      arrangement,
-      rails,
-      origin,
-      railFrom,
-      railTo,
-      firstLine: firstLines[index] as number,
-      links,
-      zoneOf: (point) => page.zoneOf(point),
-    });
-    const behindFuse =
-      fuse && index === 0 ? setFuse(drawn.sheet, fuse, { x: origin.x, y: origin.y + railFrom }, span) - origin.y : undefined;
-    nameRails(drawn.sheet, circuit, {
-      head: heading,
-      origin,
-      room: { ...beside, span: span, right: beside.right + beside.span - span },
-      from: railFrom,
-      to: railTo,
-      ...(behindFuse !== undefined ? { behindFuse } : {}),
-      ...(index > 0 ? { comesFrom: endOf(broken, firstLines, index - 1, numbering) } : {}),
+      rails: ends,
+      ...(first ? {} : { comesFrom: endOf(broken, firstLines, index - 1, numbering) }),
       ...(index < broken.length - 1 ? { goesTo: startOf(firstLines, index + 1, numbering) } : {}),
     });
-    places.push(...drawn.places);
-    return drawn.sheet;
+    return out;
   });
   const lines = broken.at(-1)?.rungs.reduce((sum, { lines }) => sum + lines.length, 0) ?? 0;
   return { sheets, places, nextLine: (firstLines.at(-1) ?? numbering.line) + lines };
 }
-
-/** Room for line numbers left of the live rail, mm. */
-const lineNumberRoom: Mm = 14;
-/** Over the first line: the rails' names, and the rails down to it. */
-const headRoom: Mm = 14;
-/** From the top of the sheet's room to where the rails begin. */
-const railHead: Mm = 5.5;
-const footRoom: Mm = 9;
-const railFoot: Mm = 1;
-
-/** The widest ladder from rail to rail that still reads well, mm. */
-const widestSpan: Mm = 310;
-
-/** Shares the width of a sheet between line numbers, rungs, references and function texts. */
-function shareWidth(width: Mm) {
-  const margin = { references: clamp(width * 0.065, 15, 26), words: clamp(width * 0.125, 24, 60) };
-  const span = Math.min(width - lineNumberRoom - margin.references - margin.words - 8, widestSpan);
-  return { margin, span };
-}
-
-const clamp = (value: number, least: number, most: number) => Math.min(Math.max(value, least), most);
 
 function railNodes(circuit: LadderCircuit, machine: Machine): [NodeId, NodeId] {
   return circuit.supply.rails.map((rail) => machine.potentials.find((potential) => potential.rail === rail)?.id ?? -1) as [NodeId, NodeId];
@@ -180,7 +140,11 @@ function numberLines(sheets: readonly RungSheet[], machine: Machine, numbering: 
   });
 }
 
-const startOf = (firstLines: readonly number[], index: number, numbering: Numbering) =>
-  `sheet ${numbering.sheet + index}, line ${firstLines[index]}`;
-const endOf = (sheets: readonly RungSheet[], firstLines: readonly number[], index: number, numbering: Numbering) =>
-  `sheet ${numbering.sheet + index}, line ${(firstLines[index] as number) + (sheets[index] as RungSheet).rungs.reduce((sum, { lines }) => sum + lines.length, 0) - 1}`;
+const startOf = (firstLines: readonly number[], index: number, numbering: Numbering): RailEnd => ({
+  sheet: numbering.sheet + index,
+  line: firstLines[index] as number,
+});
+const endOf = (sheets: readonly RungSheet[], firstLines: readonly number[], index: number, numbering: Numbering): RailEnd => ({
+  sheet: numbering.sheet + index,
+  line: (firstLines[index] as number) + (sheets[index] as RungSheet).rungs.reduce((sum, { lines }) => sum + lines.length, 0) - 1,
+});

@@ -4,7 +4,7 @@ import type { Arrangement, Block, Dressed } from "./arrangement.js";
 import { boundaryOf, type Cell, type RungGrid } from "./grid.js";
 import type { Ending, Joined } from "./join-points.js";
 
-/** A number over a wire. `beside`: an upright comes down onto the wire there, so the number stands behind it. */
+/** A number at a wire. `beside`: wire from another line comes to its beginning. */
 export interface NumberPlace {
   node: NodeId;
   line: number;
@@ -38,9 +38,6 @@ export interface LineRoom {
 /** Where an ending's arrow and text stand off the wire, mm. */
 export const endingSize = { lead: 3.5, head: 2.5, half: 1.25, gap: 0.9 } as const;
 
-/** Height of a wire number with its distances from the wire and from an upright it stands behind, mm. */
-export const numberRise = { gap: 1.1, height: 2.5, beside: 0.9 } as const;
-
 /**
  * Dresses every part, chooses where each wire carries its number, and says how much room every line needs.
  * @param tight whether the texts of a rung are to be wrapped as narrow as its symbols
@@ -57,10 +54,7 @@ export function measureRungs(
   const arrivals = groupBy(links, (link) => link.to.rung);
   return grids.map((grid, index) => {
     const dressed = new Map(grid.cells.map((cell) => [cell, arrangement.dress(cell.use, tight(index))]));
-    const lines = Array.from(
-      { length: grid.lines },
-      () => ({ above: numberRise.gap + numberRise.height + 0.4, below: 1, drop: 0 }) satisfies LineRoom as LineRoom,
-    );
+    const lines = Array.from({ length: grid.lines }, () => ({ ...arrangement.bareLine, drop: 0 }) satisfies LineRoom as LineRoom);
     const claim = (line: number, above: Mm, below: Mm) => {
       const room = lines[line];
       if (!room) return;
@@ -72,22 +66,24 @@ export function measureRungs(
     for (const { line, block } of margins) claim(line, block.above, block.below);
     const own = endingsOf.get(index) ?? [];
     for (const room of lines) room.drop = Math.max(room.below + 0.7, 3);
-    for (const { kind, line } of own) {
-      if (kind === "drop") claim(line, 0, (lines[line] as LineRoom).drop + endingSize.head + endingSize.gap + 2.5 * 1.3);
+    for (const { kind, line, point } of own) {
+      const { across } = arrangement.ending(kind, point);
+      if (kind === "drop") claim(line, 0, (lines[line] as LineRoom).drop + endingSize.head + endingSize.gap + across);
+      else claim(line, across, across);
     }
     const fromAbove = new Set((arrivals.get(index) ?? []).map(({ node, boundary }) => `${node} ${boundary}`));
     const numbers = placeNumbers(grid, rails, fromAbove, own);
+    for (const { node, line, beside } of numbers) claim(line, arrangement.wireNumber(node, beside)?.above ?? 0, 0);
     const leads = own.map((ending) => ({ ...ending, lead: leadOf(ending, numbers, arrangement) }));
     return { grid, dressed, numbers, margins, endings: leads, passes: [...(passes[index] ?? [])], lines };
   });
 }
 
-/** An arrow at the end of a line stands clear of a number over its wire. */
+/** An arrow at the end of a line stands clear of a number at its wire. */
 function leadOf({ kind, line, boundary }: Ending, numbers: readonly NumberPlace[], arrangement: Arrangement): Mm {
   const number = kind === "end" ? numbers.find((other) => other.line === line && other.boundary === boundary) : undefined;
   if (!number) return endingSize.lead;
-  const { room } = arrangement.wireNumber(number.node);
-  return Math.max(endingSize.lead, (number.beside ? room + numberRise.beside : room / 2) + 0.8);
+  return Math.max(endingSize.lead, (arrangement.wireNumber(number.node, number.beside)?.end ?? 0) + 0.8);
 }
 
 /** The number of each potential stands once in a rung: on the uppermost of its wires, as near to its source as it can. */

@@ -3,16 +3,14 @@ import { measureText } from "../../drawing/text.js";
 import { wrapName, wrapNameAt, wrappedPitch } from "../../drawing/wrap-name.js";
 import type { Device, DeviceUse, Machine } from "../../machine/model.js";
 import type { Symbol } from "../../symbols/symbol.js";
-import type { PlacedText, Reference, ReferenceTo } from "../placement.js";
+import type { PlacedText, ReferenceTo } from "../placement.js";
 import type { Arrangement, Block, Dressed, MarginEntry } from "./arrangement.js";
-import { numberRise } from "./measure-rungs.js";
+import { endingSize } from "./measure-rungs.js";
 import { reachInBand } from "./reach-in-band.js";
 import { scaleSymbol } from "./scale-symbol.js";
 import { around, hang, roomOf } from "./text-box.js";
+import { designationWords, mostLines, textHeight, underWords } from "./under-words.js";
 import { wrapOwnTexts } from "./wrap-own-texts.js";
-
-/** Heights of text on a ladder sheet, mm (ISO 3098 series). */
-export const textHeight = { usual: 2.5, small: 1.8 } as const;
 
 /** Widths beside the return rail, mm. */
 export interface MarginWidths {
@@ -32,24 +30,55 @@ export interface NorthAmericanGiven {
 export function northAmerican({ machine, symbolOf, margin, scale }: NorthAmericanGiven): Arrangement {
   const endingHeight = scale < 1 ? textHeight.small : textHeight.usual;
   const potentials = new Map(machine.potentials.map((potential) => [potential.id, potential]));
+  const endingRoom = (point: string) => Math.min(measureText(`${point} 8/8888`, endingHeight), widestEnding * scale);
   return {
     orient: (along, across) => ({ x: along, y: across }),
+    columns: { usual: 30 * scale, widest: 38 * scale, gap: 8 * scale },
+    lines: { least: scale === 1 ? 15 : 12.5, step: 1.25 },
+    bareLine: { above: numberRise.gap + numberRise.height + 0.4, below: 1 },
     dress: (use, tight) => {
       const selector = machine.devices.get(use.device)?.kind === "selector-switch";
       const width = Math.max((tight ? tightLabel : widestLabel) * scale, selector ? narrowestSelector : 0);
       return dress(use, machine, wrapOwnTexts(scaleSymbol(symbolOf(use), scale), width), scale, width);
     },
     margin: (entry) => marginBlock(entry, machine, margin),
-    wireNumber: (node) => {
+    wireNumber: (node, beside) => {
       const words = potentials.get(node)?.number.value ?? "";
       // Numbers by line are given once the lines are known.
       const longest = machine.drawing.wireNumbers === "by-line" ? "8888A" : words;
-      return { words, room: measureText(longest, textHeight.usual) };
+      const room = measureText(longest, numberRise.height);
+      if (room === 0) return undefined;
+      const { gap, height, beside: off } = numberRise;
+      const common = { words, height, above: gap + height + 0.4 };
+      return beside
+        ? { ...common, at: { x: off, y: -gap }, anchor: "start", before: 0, behind: room + 2 * off, end: room + off }
+        : { ...common, at: { x: 0, y: -gap }, anchor: "middle", before: room / 2 + 1, behind: room / 2 + 1, end: room / 2 };
     },
-    endingHeight,
-    endingRoom: (point) => Math.min(measureText(`${point} 8/8888`, endingHeight), widestEnding * scale),
+    ending: (kind, point) => {
+      const room = endingRoom(point);
+      const { gap } = endingSize;
+      const level = endingHeight / 2;
+      const common = { height: endingHeight, room } as const;
+      if (kind === "start") return { ...common, at: { x: -gap, y: level }, anchor: "end", along: room, across: 0 };
+      if (kind === "end") return { ...common, at: { x: gap, y: level }, anchor: "start", along: room, across: 0 };
+      return { ...common, at: { x: 0, y: gap + endingHeight }, anchor: "middle", along: room / 2, across: textHeight.usual * 1.3 };
+    },
+    broken: (end, point) => ({
+      height: textHeight.usual,
+      room: endingRoom(point),
+      at: { x: endingSize.half + 0.8, y: 0 },
+      anchor: "start",
+      along: 0,
+      across: 0,
+      // Above the words that say where the rails go on.
+      fromRailEnd: end === "foot" ? 4.5 : 0,
+    }),
+    lineNumber: { at: { x: -4, y: 1.25 }, anchor: "end", height: textHeight.usual },
   };
 }
+
+/** Distances of a wire number from the wire and from an upright it stands behind, and its height, mm. */
+const numberRise = { gap: 1.1, height: 2.5, beside: 0.9 } as const;
 
 /** No text makes a column wider than this, mm on the usual module. */
 const widestLabel: Mm = 43;
@@ -59,8 +88,6 @@ const tightLabel: Mm = 25;
 const narrowestSelector: Mm = 28;
 /** Room at an arrow: a longer name is shortened there, so that the place after it is kept. */
 const widestEnding: Mm = 24;
-/** A name takes no more lines than this. */
-const mostLines = 3;
 
 function dress(use: DeviceUse, machine: Machine, symbol: Symbol, scale: number, width: Mm): Dressed {
   const device = machine.devices.get(use.device);
@@ -89,7 +116,7 @@ function dress(use: DeviceUse, machine: Machine, symbol: Symbol, scale: number, 
   texts.push(...labels.map((text) => ({ ...text, at: { x: text.at.x + shift.x, y: text.at.y + shift.y } })));
   const highest = Math.min(top, ...labels.map((text) => roomOf(text).y + shift.y - clearance));
   if (!inside) {
-    const { lines, height } = wrapNameAt([textHeight.usual, textHeight.small], use.device, width, mostLines);
+    const { lines, height } = wrapNameAt([textHeight.usual, textHeight.small], designationWords(use, "north-american"), width, mostLines);
     lines.forEach((text, index) => {
       const y = highest - hang(lines.at(-1) as string, height) - (lines.length - 1 - index) * wrappedPitch(height);
       texts.push({ part: use.id, role: "designation", at: { x: 0, y }, anchor: "middle", height, text });
@@ -115,7 +142,12 @@ function dress(use: DeviceUse, machine: Machine, symbol: Symbol, scale: number, 
   });
 
   let baseline = bottom;
-  for (const { role, words, height } of underWords(use, device, Math.min(2 * reach + 4, width), width)) {
+  for (const { role, words, height } of underWords(
+    use,
+    device,
+    { words: Math.min(2 * reach + 4, width), references: width },
+    "north-american",
+  )) {
     baseline += height;
     texts.push({ part: use.id, role, at: { x: 0, y: baseline }, anchor: "middle", height, text: words });
     baseline += height * 0.45 + 0.3;
@@ -143,8 +175,9 @@ function insideWords(use: DeviceUse, device: Device | undefined, scale: number):
   if (use.kind !== "load" || !device) return undefined;
   if (device.kind !== "relay" && device.kind !== "contactor" && device.kind !== "timer") return undefined;
   const { usual, small } = textHeight;
-  const height = [usual, small].find((height) => measureText(use.device, height) <= 7.4 * scale - (height - small) / 2);
-  return height === undefined ? undefined : { words: use.device, height };
+  const words = designationWords(use, "north-american");
+  const height = [usual, small].find((height) => measureText(words, height) <= 7.4 * scale - (height - small) / 2);
+  return height === undefined ? undefined : { words, height };
 }
 
 /**
@@ -182,52 +215,6 @@ function selectorLabels(use: DeviceUse, device: Device | undefined, symbol: Symb
     set(lines, spot.x, Math.min(spot.y, below), spot.anchor);
   }
   return placed;
-}
-
-interface UnderWords {
-  role: PlacedText["role"];
-  words: string | Reference;
-  height: Mm;
-}
-
-/** What stands under a symbol, from its line outward: words no wider than `width`, references no wider than `widest`. */
-function underWords(use: DeviceUse, device: Device | undefined, width: Mm, widest: Mm): UnderWords[] {
-  if (!device) return [];
-  const { usual, small } = textHeight;
-  const reference = (to: ReferenceTo, longest: string, height: Mm): UnderWords => ({
-    role: "reference",
-    words: { ...to, room: Math.min(measureText(longest, height), widest) },
-    height,
-  });
-  const words = (text: string | undefined, role: "function" | "value" = "function"): UnderWords[] =>
-    wrapName(text ?? "", small, width, mostLines).map((line) => ({ role, words: line, height: small }));
-  if (use.kind === "load") {
-    if (device.kind !== "timer" || !device.delay) return [];
-    return words(`${device.delay.mode === "on-delay" ? "ON DELAY" : "OFF DELAY"} ${device.delay.time.text}`, "value");
-  }
-  const operator = device.place?.cylinder ?? device.senses?.component ?? device.senses?.point;
-  switch (device.kind) {
-    case "relay":
-    case "contactor":
-    case "timer":
-      return [reference({ to: "coil", device: device.name }, "(88888)", usual)];
-    case "limit-switch":
-    case "proximity-switch":
-      return [
-        ...words(device.text),
-        ...(operator ? [reference({ to: "switch-place", device: device.name }, `${operator} 88/H8`, small)] : []),
-      ];
-    case "pressure-switch": {
-      const settings = [device.senses?.rising?.text, device.senses?.falling?.text].filter((text) => text !== undefined).join(" / ");
-      return [
-        ...words(device.text),
-        ...words(settings, "value"),
-        ...(operator ? [reference({ to: "switch-place", device: device.name }, `${operator} 88/H8`, small)] : []),
-      ];
-    }
-    default:
-      return words(device.text);
-  }
 }
 
 /** Function texts and references right of the return rail, centred on the line; the origin is on the rail. */

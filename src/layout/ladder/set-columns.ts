@@ -1,5 +1,5 @@
 import type { Mm } from "../../drawing/geometry.js";
-import type { Arrangement } from "./arrangement.js";
+import type { Arrangement, ColumnPitch } from "./arrangement.js";
 import { boundaryOf, loadColumn, returnRail } from "./grid.js";
 import { endingSize, type MeasuredRung } from "./measure-rungs.js";
 
@@ -11,13 +11,6 @@ export interface Columns {
   middle(column: number): Mm;
   /** From rail to rail. */
   span: Mm;
-}
-
-/** Distances along, mm: the usual column, the widest it is stretched to, and the least gap between pins of neighbours. */
-export interface ColumnPitch {
-  usual: Mm;
-  widest: Mm;
-  gap: Mm;
 }
 
 /** What rungs ask of the columns they share: half widths of parts and of texts, room before and behind boundaries, and stretches from boundary to boundary. */
@@ -89,16 +82,16 @@ export function withNeeds(
   for (const boundary of passes) reach(boundary);
   for (const run of grid.runs) for (const stop of [run.from, run.to]) reach(boundaryOf(stop));
   for (const { node, boundary, beside } of numbers) {
-    const { room } = arrangement.wireNumber(node);
-    if (room === 0) continue;
-    widen(needs.behind, boundary, beside ? room + 1.8 : room / 2 + 1);
-    if (!beside) widen(needs.before, boundary, room / 2 + 1);
+    const number = arrangement.wireNumber(node, beside);
+    if (!number) continue;
+    widen(needs.behind, boundary, number.behind);
+    if (number.before > 0) widen(needs.before, boundary, number.before);
   }
   for (const { kind, boundary, point, last, lead } of endings) {
-    const room = arrangement.endingRoom(point);
-    const along = lead + endingSize.head + endingSize.gap + room + 1.5;
+    const text = arrangement.ending(kind, point);
+    const along = lead + endingSize.head + endingSize.gap + text.along + 1.5;
     if (kind === "start") widen(needs.spans, boundary - 1, along);
-    else if (kind === "drop") widen(needs.ends, boundary, room / 2 + beside);
+    else if (kind === "drop") widen(needs.ends, boundary, text.along + beside);
     else if (kind === "end" && last) widen(needs.ends, boundary, along);
     else if (kind === "end") {
       widen(needs.spans, boundary, along);

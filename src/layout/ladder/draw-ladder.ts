@@ -1,20 +1,18 @@
 import type { Box, Mm, Point } from "../../drawing/geometry.js";
 import type { PartId } from "../../drawing/marks.js";
 import type { LadderCircuit, NodeId } from "../../machine/model.js";
-import { type CircuitSheet, emptySheet, type Place, type PlacedText } from "../placement.js";
-import type { Arrangement } from "./arrangement.js";
+import type { CircuitSheet, Place, PlacedText } from "../placement.js";
+import type { Arrangement, EndingText } from "./arrangement.js";
 import type { RungSheet } from "./break-sheets.js";
 import type { Link, Stop } from "./grid.js";
 import { joinWires, type Straight } from "./join-wires.js";
-import { endingSize, numberRise } from "./measure-rungs.js";
+import { endingSize } from "./measure-rungs.js";
 import type { Columns } from "./set-columns.js";
 
-/** What a sheet is drawn from, once every column, line and number is known. */
-export interface SheetGiven {
+/** What a ladder is drawn from, once every column, line and number is known. */
+export interface LadderGiven {
   circuit: LadderCircuit;
   sheet: RungSheet;
-  number: number;
-  title: string;
   /** From rail to rail. */
   span: Mm;
   /** The columns that hold from one of the sheet's rungs on. */
@@ -34,15 +32,10 @@ export interface SheetGiven {
   zoneOf(point: Point): string;
 }
 
-export interface DrawnLadderSheet {
-  sheet: CircuitSheet;
-  places: [PartId, Place][];
-}
-
-/** Sets everything of a sheet down in millimetres. */
-export function drawSheet(given: SheetGiven): DrawnLadderSheet {
-  const { circuit, sheet, number, title, span, groups, arrangement, rails, origin, firstLine, links, zoneOf } = given;
-  const out = emptySheet("ladder", circuit.id, number, title);
+/** Sets a ladder down in millimetres on its sheet, and says where its parts stand. */
+export function drawLadder(given: LadderGiven, out: CircuitSheet): [PartId, Place][] {
+  const { circuit, sheet, span, groups, arrangement, rails, origin, firstLine, links, zoneOf } = given;
+  const { number } = out;
   const places: [PartId, Place][] = [];
   const pieces: Straight[] = [];
   const at = (along: Mm, across: Mm): Point => {
@@ -56,7 +49,7 @@ export function drawSheet(given: SheetGiven): DrawnLadderSheet {
   const across = (rung: number, line: number) => sheet.rungs[rung - sheet.first]?.lines[line];
 
   const columnsOf = (index: number) =>
-    (groups.findLast(({ from }) => from <= index) ?? (groups[0] as SheetGiven["groups"][number])).columns;
+    (groups.findLast(({ from }) => from <= index) ?? (groups[0] as LadderGiven["groups"][number])).columns;
 
   let line = firstLine;
   const lineOf = new Map<number, number>();
@@ -89,30 +82,32 @@ export function drawSheet(given: SheetGiven): DrawnLadderSheet {
       });
     }
     for (const wanted of numbers) {
-      const { words, room } = arrangement.wireNumber(wanted.node);
-      const anchor = wanted.beside ? "start" : "middle";
-      const by = at(
-        columns.boundary(wanted.boundary) + (wanted.beside ? numberRise.beside : 0),
-        (lines[wanted.line] as Mm) - numberRise.gap,
+      const found = arrangement.wireNumber(wanted.node, wanted.beside);
+      if (!found) continue;
+      const { words, height, at: by, anchor } = found;
+      text(
+        { part: wirePart(circuit, wanted.node), role: "wire-number", at: by, anchor, height, text: words },
+        at(columns.boundary(wanted.boundary), lines[wanted.line] as Mm),
       );
-      if (room > 0)
-        text(
-          { part: wirePart(circuit, wanted.node), role: "wire-number", at: { x: 0, y: 0 }, anchor, height: numberRise.height, text: words },
-          by,
-        );
     }
-    for (const { line: row, block } of margins) for (const words of block.texts) text(words, at(span, lines[row] as Mm));
+    for (const { line: row, block } of margins) {
+      const by = at(span, lines[row] as Mm);
+      for (const words of block.texts) text(words, by);
+      for (const stroke of block.strokes ?? []) {
+        const path = stroke.path.map(({ x, y }) => ({ x: tidy(x + by.x), y: tidy(y + by.y) }));
+        out.strokes.push({ ...stroke, path });
+      }
+    }
     for (const ending of endings) {
       const part = endingPart(rung.grid.rung.id, ending.point, ending.kind);
       const x = columns.boundary(ending.boundary);
       const y = lines[ending.line] as Mm;
-      const { head, half, gap } = endingSize;
+      const { head, half } = endingSize;
       const { lead } = ending;
       const drop = rung.lines[ending.line]?.drop ?? 0;
-      const room = arrangement.endingRoom(ending.point);
+      const { height, room, anchor, at: by } = arrangement.ending(ending.kind, ending.point);
       const reference = { to: "point", point: ending.point, from: part, way: ending.kind === "start" ? "in" : "out", room } as const;
-      const height = arrangement.endingHeight;
-      const words = { part, role: "reference", height, text: reference } as const;
+      const words = { part, role: "reference", height, text: reference, anchor, at: by } as const;
       if (ending.kind === "start") {
         arrow(part, [
           [x - lead - head, y - half],
@@ -121,7 +116,7 @@ export function drawSheet(given: SheetGiven): DrawnLadderSheet {
           [x - lead - head, y - half],
         ]);
         pieces.push({ node: ending.node, from: { along: x - lead, across: y }, to: { along: x, across: y } });
-        text({ ...words, at: { x: 0, y: height / 2 }, anchor: "end" }, at(x - lead - head - gap, y));
+        text(words, at(x - lead - head, y));
       } else if (ending.kind === "end") {
         arrow(part, [
           [x + lead, y],
@@ -131,7 +126,7 @@ export function drawSheet(given: SheetGiven): DrawnLadderSheet {
           [x + lead, y],
         ]);
         pieces.push({ node: ending.node, from: { along: x, across: y }, to: { along: x + lead, across: y } });
-        text({ ...words, at: { x: 0, y: height / 2 }, anchor: "start" }, at(x + lead + head + gap, y));
+        text(words, at(x + lead + head, y));
       } else {
         arrow(part, [
           [x, y + drop],
@@ -141,20 +136,16 @@ export function drawSheet(given: SheetGiven): DrawnLadderSheet {
           [x, y + drop],
         ]);
         pieces.push({ node: ending.node, from: { along: x, across: y }, to: { along: x, across: y + drop } });
-        text({ ...words, at: { x: 0, y: 0 }, anchor: "middle" }, at(x, y + drop + head + gap + height));
+        text(words, at(x, y + drop + head));
       }
       const mark = at(x, y);
       place(part, line + ending.line, { x: mark.x - 3, y: mark.y - 3, width: 6, height: 6 });
     }
-    const start = at(columns.boundary(grid.start), lines[0] as Mm);
-    place(grid.rung.id, line, {
-      x: start.x,
-      y: start.y - 4,
-      width: span - columns.boundary(grid.start),
-      height: (lines.at(-1) as Mm) - (lines[0] as Mm) + 8,
-    });
+    const first = at(columns.boundary(grid.start), (lines[0] as Mm) - 4);
+    const last = at(span, (lines.at(-1) as Mm) + 4);
+    place(grid.rung.id, line, { x: first.x, y: first.y, width: last.x - first.x, height: last.y - first.y });
     for (const y of lines) {
-      text({ role: "line-number", at: { x: -4, y: 1.25 }, anchor: "end", height: 2.5, text: String(line) }, at(0, y));
+      text({ role: "line-number", ...arrangement.lineNumber, text: String(line) }, at(0, y));
       line++;
     }
   }
@@ -168,35 +159,30 @@ export function drawSheet(given: SheetGiven): DrawnLadderSheet {
     if (from !== undefined && to !== undefined)
       pieces.push({ node: link.node, from: { along: x, across: from }, to: { along: x, across: to } });
     else if (from !== undefined) {
-      // Above the words that say where the rails go on.
-      const end = given.railTo - head - 4.5;
+      const point = pointOf(link, link.from.rung);
+      const { fromRailEnd, ...words } = arrangement.broken("foot", point);
+      const end = given.railTo - head - fromRailEnd;
       pieces.push({ node: link.node, from: { along: x, across: from }, to: { along: x, across: end } });
-      broken(
-        link,
-        "foot",
-        [
-          [x, end],
-          [x - half, end],
-          [x, end + head],
-          [x + half, end],
-          [x, end],
-        ],
-        at(x + half + 0.8, end + head),
-      );
+      const shape: [Mm, Mm][] = [
+        [x, end],
+        [x - half, end],
+        [x, end + head],
+        [x + half, end],
+        [x, end],
+      ];
+      broken(link, "foot", point, words, shape, at(x, end + head));
     } else if (to !== undefined) {
-      const end = given.railFrom + head;
+      const point = pointOf(link, link.to.rung);
+      const { fromRailEnd, ...words } = arrangement.broken("head", point);
+      const end = given.railFrom + head + fromRailEnd;
       pieces.push({ node: link.node, from: { along: x, across: end }, to: { along: x, across: to } });
-      broken(
-        link,
-        "head",
-        [
-          [x - half, end - head],
-          [x, end],
-          [x + half, end - head],
-          [x - half, end - head],
-        ],
-        at(x + half + 0.8, end),
-      );
+      const shape: [Mm, Mm][] = [
+        [x - half, end - head],
+        [x, end],
+        [x + half, end - head],
+        [x - half, end - head],
+      ];
+      broken(link, "head", point, words, shape, at(x, end));
     }
   }
   for (const [index, node] of rails.entries()) {
@@ -215,29 +201,26 @@ export function drawSheet(given: SheetGiven): DrawnLadderSheet {
     out.wires.push({ part: wirePart(circuit, node), node, role: "wire", points: points.map(({ x, y }) => at(x, y)), width: 0.25 });
   }
   for (const dot of joined.dots) out.dots.push({ part: wirePart(circuit, dot.node), at: at(dot.at.x, dot.at.y), diameter: 1.25 });
-  return { sheet: out, places };
+  return places;
 
   function arrow(part: PartId, points: [Mm, Mm][]) {
     out.strokes.push({ part, role: "continuation", path: points.map(([x, y]) => at(x, y)), width: 0.25 });
   }
 
+  function pointOf(link: Link, rung: number): string {
+    return sheet.rungs[rung - sheet.first]?.rung.grid.sites.find((site) => site.node === link.node)?.point ?? "";
+  }
+
   /** A link that goes on on another sheet: an arrow at the end of the rails. */
-  function broken(link: Link, end: "head" | "foot", points: [Mm, Mm][], by: Point) {
-    const rung = end === "foot" ? link.from.rung : link.to.rung;
-    const grid = sheet.rungs[rung - sheet.first]?.rung.grid;
-    const point = grid?.sites.find((site) => site.node === link.node)?.point ?? "";
-    const part = endingPart(grid?.rung.id ?? circuit.id, point, end);
-    arrow(part, points);
-    const reference = {
-      to: "point",
-      point,
-      from: part,
-      way: end === "head" ? "in" : "out",
-      room: arrangement.endingRoom(point),
-    } as const;
-    text({ part, role: "reference", at: { x: 0, y: 0 }, anchor: "start", height: 2.5, text: reference }, by);
-    const printed = (lineOf.get(rung) ?? firstLine) + (end === "foot" ? link.from.line : link.to.line);
-    place(part, printed, { x: by.x - 3, y: by.y - 3, width: 6, height: 6 });
+  function broken(link: Link, end: "head" | "foot", point: string, words: EndingText, shape: [Mm, Mm][], by: Point) {
+    const { height, room, anchor } = words;
+    const site = end === "foot" ? link.from : link.to;
+    const part = endingPart(sheet.rungs[site.rung - sheet.first]?.rung.grid.rung.id ?? circuit.id, point, end);
+    arrow(part, shape);
+    const reference = { to: "point", point, from: part, way: end === "head" ? "in" : "out", room } as const;
+    text({ part, role: "reference", at: words.at, anchor, height, text: reference }, by);
+    const stands = { x: words.at.x + by.x, y: words.at.y + by.y };
+    place(part, (lineOf.get(site.rung) ?? firstLine) + site.line, { x: stands.x - 3, y: stands.y - 3, width: 6, height: 6 });
   }
 }
 

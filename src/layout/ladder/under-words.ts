@@ -1,0 +1,78 @@
+import type { Mm } from "../../drawing/geometry.js";
+import { measureText } from "../../drawing/text.js";
+import { wrapName } from "../../drawing/wrap-name.js";
+import type { Device, DeviceUse, DrawingInfo } from "../../machine/model.js";
+import { designationOf, printedName } from "../../machine/walk.js";
+import type { PlacedText, Reference, ReferenceTo } from "../placement.js";
+
+/** Heights of text on a ladder sheet, mm (ISO 3098 series). */
+export const textHeight = { usual: 2.5, small: 1.8 } as const;
+
+/** A name takes no more lines than this. */
+export const mostLines = 3;
+
+/** A line of text about a symbol, not yet placed. */
+export interface SymbolWords {
+  role: PlacedText["role"];
+  words: string | Reference;
+  height: Mm;
+}
+
+type Convention = DrawingInfo["convention"];
+
+/** What a contact or load is called on a ladder sheet. */
+export function designationWords(use: DeviceUse, convention: Convention): string {
+  return printedName(designationOf(use), convention);
+}
+
+/** The longest that references get, for the room that is kept before they are worded. */
+const longest = {
+  "north-american": { coil: "(88888)", zone: "88/H8" },
+  international: { coil: "/88.88", zone: "/88.H8" },
+} as const;
+
+/**
+ * What stands under a symbol, or under its designation, from the top down: its function, its settings, where its coil or
+ * what works it is drawn.
+ * @param room words are no wider than `words`, references no wider than `references`, mm
+ */
+export function underWords(
+  use: DeviceUse,
+  device: Device | undefined,
+  room: { words: Mm; references: Mm },
+  convention: Convention,
+): SymbolWords[] {
+  if (!device) return [];
+  const { usual, small } = textHeight;
+  const reference = (to: ReferenceTo, widest: string, height: Mm): SymbolWords => ({
+    role: "reference",
+    words: { ...to, room: Math.min(measureText(widest, height), room.references) },
+    height,
+  });
+  const words = (text: string | undefined, role: "function" | "value" = "function"): SymbolWords[] =>
+    wrapName(text ?? "", small, room.words, mostLines).map((line) => ({ role, words: line, height: small }));
+  if (use.kind === "load") {
+    if (device.kind !== "timer" || !device.delay) return [];
+    const { mode, time } = device.delay;
+    // The international coil shows by its cell which delay it is.
+    const named = convention === "international" ? "" : mode === "on-delay" ? "ON DELAY " : "OFF DELAY ";
+    return words(`${named}${time.text}`, "value");
+  }
+  const operator = device.place?.cylinder ?? device.senses?.component ?? device.senses?.point;
+  const place = operator ? [reference({ to: "switch-place", device: device.name }, `${operator} ${longest[convention].zone}`, small)] : [];
+  switch (device.kind) {
+    case "relay":
+    case "contactor":
+    case "timer":
+      return [reference({ to: "coil", device: device.name }, longest[convention].coil, usual)];
+    case "limit-switch":
+    case "proximity-switch":
+      return [...words(device.text), ...place];
+    case "pressure-switch": {
+      const settings = [device.senses?.rising?.text, device.senses?.falling?.text].filter((text) => text !== undefined).join(" / ");
+      return [...words(device.text), ...words(settings, "value"), ...place];
+    }
+    default:
+      return words(device.text);
+  }
+}
