@@ -163,7 +163,8 @@ function rowsOf(entries: readonly Entry[], width: Mm): Row[] {
   let at = columns;
   for (const entry of entries) {
     const { box } = entry.symbol;
-    const wide = Math.min(columns, Math.max(leastColumns, Math.ceil((box.width + 2 * clear) / column)));
+    const needed = Math.max(box.width + 2 * clear, measureText(entry.name, smallHeight, true) + 2);
+    const wide = Math.min(columns, Math.max(leastColumns, Math.ceil(needed / column)));
     if (at + wide > columns) {
       rows.push({ height: 0, cells: [] });
       at = 0;

@@ -1,19 +1,21 @@
 import type { StartState } from "../behaviour/start-state.js";
 import type { CylinderSpec, Device, DeviceKind, DeviceUse, DrawingInfo, FluidComponent, FluidKind } from "../machine/model.js";
 import { composeCylinder } from "./cylinder.js";
+import { lampColourCode } from "./lamp-colours.js";
 import type { SymbolLibrary } from "./library.js";
+import { closedIn, selectorOf } from "./selector-states.js";
 import type { Symbol } from "./symbol.js";
 import { composeValve } from "./valve.js";
 import { withTexts } from "./with-texts.js";
 
-/** What a contact or load looks like depends on its device, on the contact and on whether the machine holds it operated at the start. */
+/** What something in a rung looks like depends on its device, on the use itself and on whether the machine holds it operated at the start. */
 interface Drawn {
   device: Device;
   use: DeviceUse;
   held: boolean;
 }
 
-/** The symbol of a contact or load in the state drawn. */
+/** The symbol of a contact, a load or something the current passes through, in the state drawn: its ports are `in` and `out`. */
 export function symbolForDevice(
   use: DeviceUse,
   device: Device,
@@ -23,7 +25,7 @@ export function symbolForDevice(
 ): Symbol {
   const drawn = { device, use, held: start.held.has(device.name) };
   const symbol = library.get(`${convention}/${deviceSymbols[device.kind](drawn)}`);
-  const texts = deviceTexts[device.kind]?.(drawn);
+  const texts = deviceTexts[device.kind]?.(drawn, convention);
   return texts ? withTexts(symbol, texts.words, texts.height) : symbol;
 }
 
@@ -38,101 +40,113 @@ const contact =
 /** A contact of a relay, a coil otherwise. */
 const relay = ({ use }: Drawn): string => (use.kind === "load" ? "coil" : `contact-${form(use)}`);
 
+/** A contactor's main contacts are known by their numbers of one digit (EN 50005, from memory) or by L and T. */
+const contactor = (drawn: Drawn): string => {
+  const { use } = drawn;
+  const main = use.kind === "contact" && use.form === "NO" && /^(\d|[1-5]?\/?L[1-3]|[2-6]?\/?T[1-3])$/.test(use.terminals.value[0]);
+  return main ? "contact-power" : relay(drawn);
+};
+
+/** Two coils, each in a rung of its own. */
+const coils =
+  (first: string, reset: string) =>
+  (drawn: Drawn): string => {
+    const { use } = drawn;
+    return use.kind === "load" ? (use.coil === "reset" ? reset : first) : relay(drawn);
+  };
+
 /** A switch that the machine may hold: its name and terminals stay those of its form, its arm shows the state. */
-const heldSwitch =
+const heldSwitch = (name: string, { use, held }: Drawn): string => {
+  const state = form(use) === "no" ? "no-held-closed" : "nc-held-open";
+  return `${name}-${held ? state : form(use)}`;
+};
+
+/** A switch turned by hand, drawn in the position it has at the start. */
+const selector =
   (name: string) =>
-  ({ use, held }: Drawn): string => {
-    const state = form(use) === "no" ? "no-held-closed" : "nc-held-open";
-    return `${name}-${held ? state : form(use)}`;
+  ({ device, use }: Drawn): string => {
+    const { positions, at } = selectorOf(device);
+    const state = closedIn(use, device)[at] ? "closed" : "open";
+    const count = positions.length;
+    return count === 2 || count === 3 ? `${name}-${count}-at-${at + 1}-${state}` : `${name}-many-${state}`;
   };
 
 /** Symbols of each kind, the same names in the folders of both conventions. */
 const deviceSymbols: Record<DeviceKind, (drawn: Drawn) => string> = {
   relay,
-  contactor: relay,
+  contactor,
   timer: (drawn) => {
     const { device, use } = drawn;
     if (use.kind === "load") return device.delay?.mode === "off-delay" ? "coil-off-delay" : "coil-on-delay";
     return use.kind === "contact" && use.timed ? `timed-${form(use)}-${device.delay?.mode === "off-delay" ? "off" : "on"}` : relay(drawn);
   },
+  "latching-relay": coils("coil-latch", "coil-unlatch"),
+  counter: coils("counter", "counter-reset"),
   "push-button": ({ device, use }) => {
-    const { action, mushroom } = device.button ?? { action: "momentary", mushroom: false };
+    const { action, mushroom, lamp } = device.button ?? { action: "momentary", mushroom: false };
     const style = mushroom ? "-mushroom" : action === "maintained" ? "-maintained" : "";
-    return `push-button${style}-${form(use)}`;
+    return `push-button${style}${lamp === undefined ? "" : "-illuminated"}-${form(use)}`;
   },
-  "emergency-stop": ({ use }) => `emergency-stop-${form(use)}`,
-  "selector-switch": (drawn) => {
-    const { positions, at } = selectorOf(drawn);
-    const state = closedIn(drawn)[at] ? "closed" : "open";
-    return positions.length === 2 || positions.length === 3
-      ? `selector-${positions.length}-at-${at + 1}-${state}`
-      : `selector-many-${state}`;
-  },
-  "limit-switch": heldSwitch("limit"),
-  "proximity-switch": heldSwitch("proximity"),
-  "pressure-switch": ({ use }) => `pressure-${form(use)}`,
-  overload: ({ use }) => `overload-${form(use)}`,
-  solenoid: () => "solenoid",
-  "pilot-light": () => "pilot-light",
-  horn: () => "horn",
-  motor: () => "motor-3ph",
-  "latching-relay": relay,
-  counter: relay,
-  "key-switch": relay,
+  "emergency-stop": contact("emergency-stop"),
+  "selector-switch": selector("selector"),
+  "key-switch": selector("key-switch"),
   "foot-switch": contact("foot-switch"),
   "cable-pull": contact("pull-switch"),
-  "door-switch": contact("limit"),
+  "door-switch": contact("door-switch"),
+  "limit-switch": (drawn) => heldSwitch("limit", drawn),
+  "proximity-switch": (drawn) => heldSwitch(drawn.device.wires === 3 ? "proximity-3-wire" : "proximity", drawn),
+  "pressure-switch": contact("pressure"),
   "vacuum-switch": contact("vacuum"),
   "flow-switch": contact("flow"),
   "level-switch": contact("level"),
   "temperature-switch": contact("temperature"),
+  overload: contact("overload"),
+  solenoid: () => "solenoid",
+  "pilot-light": ({ device }) => (device.lamp?.pushToTest ? "pilot-light-push-to-test" : "pilot-light"),
+  horn: () => "horn",
   bell: () => "bell",
   heater: () => "heater",
+  motor: () => "motor-3ph",
   fuse: () => "fuse",
   "circuit-breaker": () => "circuit-breaker-1p",
-  disconnect: () => "circuit-breaker-1p",
+  disconnect: () => "disconnect-1p",
   transformer: () => "transformer-control",
-  "power-supply": () => "transformer-control",
-  rectifier: () => "transformer-control",
+  "power-supply": () => "power-supply-dc",
+  rectifier: () => "rectifier",
   "terminal-strip": () => "terminal",
   plug: () => "plug",
-  diode: () => "diode",
+  // The current enters at the cathode where the terminals say so.
+  diode: ({ use }) => (use.terminals.value[0].startsWith("K") ? "diode-turned" : "diode"),
   resistor: () => "resistor",
   "input-card": () => "plc-input",
   "output-card": () => "plc-output",
 };
 
-/** What is written into a symbol; designations and terminals are the layout's. */
-const deviceTexts: Partial<Record<DeviceKind, (drawn: Drawn) => { words: Record<string, string>; height: number } | undefined>> = {
-  "pilot-light": ({ device }) => (device.colour ? { words: { letter: colourLetter(device.colour) }, height: 2.5 } : undefined),
-  "selector-switch": (drawn) => {
-    if (drawn.use.kind !== "contact") return undefined;
-    const states = closedIn(drawn);
-    const { positions } = selectorOf(drawn);
-    if (states.length > 3) return { words: { "state-1": positions.filter((_, index) => states[index]).join(", ") }, height: 1.8 };
-    // Target letters: X where the contact is closed, O where it is open.
-    return { words: Object.fromEntries(states.map((closed, index) => [`state-${index + 1}`, closed ? "X" : "O"])), height: 1.8 };
-  },
+interface OwnTexts {
+  words: Record<string, string>;
+  height: number;
+}
+
+/** The positions in which a contact is closed: target letters, X where it is closed and O where it is open. */
+const targets = ({ device, use }: Drawn): OwnTexts | undefined => {
+  if (use.kind !== "contact") return undefined;
+  const states = closedIn(use, device);
+  const { positions } = selectorOf(device);
+  if (states.length > 3) return { words: { "state-1": positions.filter((_, index) => states[index]).join(", ") }, height: 1.8 };
+  return { words: Object.fromEntries(states.map((closed, index) => [`state-${index + 1}`, closed ? "X" : "O"])), height: 1.8 };
 };
 
-/** Letters in pilot lights as the trade writes them in north-american drawings (common practice); C is clear. */
-function colourLetter(colour: string): string {
-  return colour.slice(0, 1).toUpperCase();
-}
-
-/** The positions of a selector and the index of the one drawn. */
-function selectorOf({ device }: Drawn): { positions: readonly string[]; at: number } {
-  const { positions, start } = device.selector ?? { positions: ["0", "1"], start: "0" };
-  return { positions, at: Math.max(0, positions.indexOf(start)) };
-}
-
-/** Whether this contact is closed, for each position of its selector. */
-function closedIn(drawn: Drawn): boolean[] {
-  const { use } = drawn;
-  const { positions } = selectorOf(drawn);
-  const normallyOpen = form(use) === "no";
-  return positions.map((position) => (use.kind === "contact" && position === use.position) === normallyOpen);
-}
+/** What is written into a symbol; designations and terminals are the layout's. */
+const deviceTexts: Partial<Record<DeviceKind, (drawn: Drawn, convention: DrawingInfo["convention"]) => OwnTexts | undefined>> = {
+  "pilot-light": ({ device }, convention) => {
+    if (!device.colour) return undefined;
+    const code = lampColourCode(device.colour, convention);
+    // In the circle where it is empty, beside it where it has its cross.
+    return { words: { letter: code, colour: code }, height: convention === "north-american" ? 2.5 : 1.8 };
+  },
+  "selector-switch": targets,
+  "key-switch": targets,
+};
 
 /** The symbol of a fluid component in the state drawn. */
 export function symbolForComponent(component: FluidComponent, start: StartState, library: SymbolLibrary): Symbol {

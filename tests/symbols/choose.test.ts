@@ -2,7 +2,7 @@ import { describe, expect, test } from "vitest";
 import type { StartState } from "../../src/behaviour/start-state.js";
 import { strokeOf } from "../../src/machine/cylinder.js";
 import { deviceRoles, fluidMedia } from "../../src/machine/kinds.js";
-import type { ContactUse, Device, DeviceKind, FluidComponent, FluidKind, LoadUse } from "../../src/machine/model.js";
+import type { ContactUse, Device, DeviceKind, FluidComponent, FluidKind, LoadUse, ThroughUse } from "../../src/machine/model.js";
 import { portsOf } from "../../src/machine/ports.js";
 import { symbolForComponent, symbolForDevice } from "../../src/symbols/choose.js";
 import { openSymbols } from "../../src/symbols/library.js";
@@ -51,21 +51,102 @@ const load: LoadUse = {
   rung: "r",
   at,
 };
+const through: ThroughUse = {
+  kind: "through",
+  id: "X1:1",
+  device: "X1",
+  terminals: { value: ["", ""], by: "none" },
+  from: 0,
+  to: 1,
+  rung: "r",
+  at,
+};
 const conventions = ["north-american", "international"] as const;
+const nameOf = ({ name }: Symbol) => name.replace(/^.*\//, "");
 
 describe.each(conventions)("%s", (convention) => {
   test.each(Object.keys(deviceRoles) as DeviceKind[])("%s has a symbol for all it can be in a rung", (kind) => {
     const uses = [
       ...(deviceRoles[kind].contacts ? [contact("NO"), contact("NC"), contact("NO", { timed: true })] : []),
       ...(deviceRoles[kind].load ? [load] : []),
+      ...(deviceRoles[kind].through ? [through] : []),
+      ...(deviceRoles[kind].coils ?? []).map((coil): LoadUse => ({ ...load, coil })),
     ];
     for (const held of [[], ["X1"]]) {
       for (const use of uses) {
         const symbol = symbolForDevice(use, device(kind), start(held), convention, library);
         expect(symbol.ports.map(({ name }) => name)).toEqual(["in", "out"]);
+        const [first, last] = symbol.ports as [Symbol["ports"][number], Symbol["ports"][number]];
+        // The current runs straight through: to the right, or down.
+        if (convention === "north-american") expect([first.direction, last.direction, first.y - last.y]).toEqual(["left", "right", 0]);
+        else expect([first.direction, last.direction, first.x - last.x, first.x]).toEqual(["up", "down", 0, 0]);
+        // Half the way to each side, so that it stands in the middle of its place.
+        expect(first.x + last.x + first.y + last.y).toBe(0);
       }
     }
     if (uses.length === 0) expect(symbolForDevice(load, device(kind), start(), convention, library).ports.length).toBeGreaterThan(0);
+  });
+
+  const chosen = (use: Parameters<typeof symbolForDevice>[0], kind: DeviceKind, more: Partial<Device> = {}, held: string[] = []) =>
+    symbolForDevice(use, device(kind, more), start(held), convention, library);
+  const words = (symbol: Symbol) => symbol.shapes.flatMap((shape) => (shape.kind === "text" ? [shape.text] : []));
+
+  test("two coils of one device are told apart by their letters", () => {
+    for (const kind of ["latching-relay", "counter"] as const) {
+      const [first, reset] = deviceRoles[kind].coils as ["set" | "count", "reset"];
+      const letters = [first, reset].map((coil) => words(chosen({ ...load, coil }, kind)));
+      expect(letters[0]).not.toEqual(letters[1]);
+      expect(letters.map((letter) => letter.length)).toEqual([1, 1]);
+    }
+    expect(nameOf(chosen(contact("NC"), "latching-relay"))).toBe("contact-nc");
+  });
+
+  test("a contactor's main contacts are not drawn as auxiliary ones", () => {
+    // EN 50005, from memory: main contacts have one digit, auxiliary ones two.
+    const numbered = (first: string, last: string, form: "NO" | "NC" = "NO") =>
+      nameOf(chosen(contact(form, { terminals: { value: [first, last], by: "none" } }), "contactor"));
+    expect([numbered("1", "2"), numbered("5/L3", "6/T3"), numbered("L1", "T1")]).toEqual(Array(3).fill("contact-power"));
+    expect([numbered("13", "14"), numbered("", ""), numbered("21", "22", "NC")]).toEqual(["contact-no", "contact-no", "contact-nc"]);
+  });
+
+  test("a diode points the way its terminals say", () => {
+    const diode = (...value: [string, string]) => chosen({ ...through, terminals: { value, by: "none" } }, "diode");
+    expect([nameOf(diode("A", "K")), nameOf(diode("K", "A")), nameOf(diode("", ""))]).toEqual(["diode", "diode-turned", "diode"]);
+    // The bar is at the cathode: at the far end of the symbol, or at the near one.
+    const along = convention === "north-american" ? "x" : "y";
+    const bar = (symbol: Symbol) =>
+      pieces(symbol.shapes).find((line) => line.length === 2 && line[0]?.[along] === line[1]?.[along])?.[0]?.[along] as number;
+    expect([Math.sign(bar(diode("A", "K"))), Math.sign(bar(diode("K", "A")))]).toEqual([1, -1]);
+  });
+
+  test("what is more than a plain button, lamp or sensor shows it", () => {
+    const button = (lamp?: string) =>
+      chosen(contact("NO"), "push-button", { button: { action: "momentary", mushroom: false, ...(lamp ? { lamp } : {}) } });
+    expect(button("LT1").shapes.length).toBeGreaterThan(button().shapes.length);
+    expect(nameOf(chosen(load, "pilot-light", { lamp: { pushToTest: true } }))).toBe("pilot-light-push-to-test");
+    expect(chosen(contact("NO"), "proximity-switch", { wires: 3 }).spots["third-rail"]).toBeDefined();
+    expect(chosen(contact("NO"), "proximity-switch", { wires: 2 }).spots["third-rail"]).toBeUndefined();
+    const guard = chosen(contact("NC"), "door-switch");
+    expect([nameOf(guard), nameOf(chosen(contact("NC"), "limit-switch"))]).toEqual(["door-switch-nc", "limit-nc"]);
+  });
+
+  test.each(["selector-switch", "key-switch"] as const)("a %s shows its position and where this contact is closed", (kind) => {
+    const turned = (form: "NO" | "NC", position: string, positions: string[], at: string) =>
+      chosen(contact(form, { position }), kind, { selector: { positions, start: at } });
+    for (const positions of [
+      ["0", "1"],
+      ["hand", "off", "auto"],
+    ]) {
+      positions.forEach((at, index) => {
+        for (const position of positions) {
+          const closed = position === at;
+          const name = `${kind === "key-switch" ? "key-switch" : "selector"}-${positions.length}-at-${index + 1}`;
+          expect(nameOf(turned("NO", position, positions, at))).toBe(`${name}-${closed ? "closed" : "open"}`);
+          expect(nameOf(turned("NC", position, positions, at))).toBe(`${name}-${closed ? "open" : "closed"}`);
+          expect(words(turned("NO", position, positions, at))).toEqual(positions.map((p) => (p === position ? "X" : "O")));
+        }
+      });
+    }
   });
 });
 
@@ -159,7 +240,21 @@ describe("north-american switches show whether they pass at the start", () => {
       symbolForDevice(load, device("pilot-light", { colour }), start(), "north-american", library).shapes.flatMap((shape) =>
         shape.kind === "text" ? [shape.text] : [],
       );
-    expect([letter("green"), letter("clear")]).toEqual([["G"], ["C"]]);
+    expect([letter("green"), letter("clear"), letter("amber"), letter("grey")]).toEqual([["G"], ["C"], ["A"], ["GY"]]);
+    // IEC 60757, from memory; it has no code for clear.
+    const code = (colour: string) =>
+      symbolForDevice(load, device("pilot-light", { colour }), start(), "international", library).shapes.flatMap((shape) =>
+        shape.kind === "text" ? [shape.text] : [],
+      );
+    expect(["red", "green", "yellow", "blue", "white", "orange", "clear"].map(code)).toEqual([
+      ["RD"],
+      ["GN"],
+      ["YE"],
+      ["BU"],
+      ["WH"],
+      ["OG"],
+      [],
+    ]);
   });
 });
 
