@@ -10,9 +10,12 @@ export const deviceUnused = rule<{ device: string }>({
     const needed = new Set<string>();
     for (const { guards, button } of machine.devices.values())
       for (const name of [guards, button?.lamp]) if (name !== undefined) needed.add(name);
+    for (const { from } of machine.supplies) if (from !== undefined) needed.add(from);
     for (const { drivenBy } of machine.components.values()) if (drivenBy !== undefined) needed.add(drivenBy);
     return [...machine.devices.values()]
-      .filter(({ name, kind, contacts }) => !deviceRoles[kind].load && contacts.length === 0 && !needed.has(name))
+      .filter(
+        ({ name, kind, contacts, throughs }) => !deviceRoles[kind].load && contacts.length + throughs.length === 0 && !needed.has(name),
+      )
       .map(({ name, at }) => ({ device: name, at }));
   },
 });

@@ -4,22 +4,30 @@ import { rule } from "./rule.js";
 /** An overload relay has one break and one make contact unless its declaration says otherwise (EN 50005: 95-96 and 97-98). */
 const overloadPoles = { no: 1, nc: 1 };
 
-export const polesExceeded = rule<{ device: string; has: number; form: ContactUse["form"] }>({
+type Form = ContactUse["form"] | "pole";
+
+const names: Record<Form, string> = { NO: "normally open contact", NC: "normally closed contact", pole: "pole" };
+
+export const polesExceeded = rule<{ device: string; has: number; used: number; form: Form }>({
   code: "poles-exceeded",
   severity: "error",
-  says: ({ device, has, form }) => {
-    const kind = form === "NO" ? "normally open" : "normally closed";
-    return has === 0 ? `${device} has no ${kind} contact.` : `${device} has no more than ${has} ${kind} contact${has === 1 ? "" : "s"}.`;
-  },
-  hint: () => 'Declare more with "poles", or use the contacts of a further relay.',
-  find: ({ machine }) => [...machine.devices.values()].flatMap((device) => (["NO", "NC"] as const).flatMap((form) => beyond(device, form))),
+  says: ({ device, has, used, form }) =>
+    has === 0
+      ? `${device} has no ${names[form]}.`
+      : `${device} has no more than ${has} ${names[form]}${has === 1 ? "" : "s"}; ${used} are used.`,
+  hint: ({ form }) =>
+    form === "pole" ? 'Declare more with "poles".' : 'Declare more with "poles", or use the contacts of a further relay.',
+  find: ({ machine }) =>
+    [...machine.devices.values()].flatMap((device) => (["NO", "NC", "pole"] as const).flatMap((form) => beyond(device, form))),
 });
 
-function beyond({ name, kind, poles = kind === "overload" ? overloadPoles : undefined, contacts, at }: Device, form: ContactUse["form"]) {
-  if (!poles) return [];
-  const has = form === "NO" ? poles.no : poles.nc;
-  return contacts
-    .filter((contact) => contact.form === form)
-    .slice(has)
-    .map((contact) => ({ device: name, has, form, at: contact.at, seeAlso: [{ message: `${name} is declared here.`, at }] }));
+/** Only the first use beyond what there is: the others follow from it. */
+function beyond(device: Device, form: Form) {
+  const { name, kind, poles = kind === "overload" ? overloadPoles : undefined, ways, contacts, throughs, at } = device;
+  const has = form === "pole" ? ways : form === "NO" ? poles?.no : poles?.nc;
+  if (has === undefined) return [];
+  const uses = form === "pole" ? throughs : contacts.filter((contact) => contact.form === form);
+  return uses
+    .slice(has, has + 1)
+    .map((use) => ({ device: name, has, used: uses.length, form, at: use.at, seeAlso: [{ message: `${name} is declared here.`, at }] }));
 }

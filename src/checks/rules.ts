@@ -17,6 +17,7 @@ import type { RunnableRule } from "./rule.js";
 import { sequencesNotRun } from "./sequences-not-run.js";
 import { shortAcrossRails } from "./short-across-rails.js";
 import { solenoidWithoutValve } from "./solenoid-without-valve.js";
+import { supplyUnlikeItsSource } from "./supply-unlike-its-source.js";
 import { switchOutsideStroke } from "./switch-outside-stroke.js";
 import { terminalOnTwoWires } from "./terminal-on-two-wires.js";
 import { twoLoadsInSeries } from "./two-loads-in-series.js";
@@ -33,6 +34,7 @@ export const rules: readonly RunnableRule[] = [
   deviceUnused,
   polesExceeded,
   terminalOnTwoWires,
+  supplyUnlikeItsSource,
   shortAcrossRails,
   deviceBridged,
   twoLoadsInSeries,

@@ -17,11 +17,12 @@ export type Dimension =
   | "force"
   | "angle"
   | "resistance"
-  | "filtration";
+  | "filtration"
+  | "share";
 
 /**
  * A number with its unit. `value` is in the dimension's own unit: mm, bar, s, V, A, W, VA, Hz, rpm, cm³/rev, l/min, l, °C,
- * kg, N, deg, Ω, µm. `text` is what the author wrote, single-spaced.
+ * kg, N, deg, Ω, µm, %. `text` is what the author wrote, single-spaced.
  */
 export interface Quantity {
   dimension: Dimension;

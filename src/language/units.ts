@@ -113,6 +113,7 @@ const unitRows: Record<Dimension, UnitRow[]> = {
     ["Mohm MΩ M\u2126", 1e6],
   ],
   filtration: [["um µm \u03bcm micron", 1]],
+  share: [["%", 1]],
 };
 
 const units = new Map<string, Unit>();

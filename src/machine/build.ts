@@ -2,11 +2,13 @@ import type { Diagnostic } from "../language/diagnostic.js";
 import type { Declaration, DrawingBlock, FluidBlock, LadderBlock, SequenceBlock, Tree, Word } from "../language/tree.js";
 import { type ComponentDraft, readComponent } from "./components.js";
 import { readCylinder } from "./cylinder.js";
-import { type DeviceDraft, readDevice } from "./devices.js";
+import type { DeviceDraft } from "./device-words.js";
+import { readDevice } from "./devices.js";
+import { turnDiodes } from "./diodes.js";
 import { readDrawingInfo } from "./drawing.js";
 import { type CircuitDraft, LineBuilder, wrongMedium } from "./fluid-lines.js";
-import { declarationWords, fluidMedia, isDeviceKind, isFluidKind, laterKinds } from "./kinds.js";
-import { linkDevices, linkDrives, linkPressureSwitches, linkSolenoids, linkSwitches, putSensor } from "./links.js";
+import { declarationWords, fluidMedia, isDeviceKind, isFluidKind, isSensorKind, laterKinds } from "./kinds.js";
+import { linkDevices, linkDrives, linkSensors, linkSolenoids, linkSwitches, putSensor } from "./links.js";
 import type {
   Circuit,
   Device,
@@ -21,9 +23,9 @@ import type {
 } from "./model.js";
 import { Names } from "./names.js";
 import { numberPotentials } from "./potentials.js";
-import { didYouMean, listed, Report, withArticle } from "./report.js";
+import { capital, didYouMean, listed, Report, withArticle } from "./report.js";
 import { RungBuilder } from "./rungs.js";
-import { readSupply, unsaidSupply } from "./supplies.js";
+import { linkSupplies, readSupply, type SupplyDraft, unsaidSupply } from "./supplies.js";
 import { allotTerminals } from "./terminals.js";
 import { readValve } from "./valve.js";
 
@@ -41,6 +43,7 @@ class MachineBuilder {
   private readonly names = new Names(this.report);
   private readonly info: DrawingInfo;
   private readonly supplies: Supply[] = [];
+  private readonly supplyDrafts: SupplyDraft[] = [];
   private readonly devices = new Map<string, Device>();
   private readonly deviceDrafts: DeviceDraft[] = [];
   private readonly components = new Map<string, ComponentDraft>();
@@ -60,11 +63,16 @@ class MachineBuilder {
     linkDevices(this.deviceDrafts, this.devices, this.components, this.names, this.report);
     for (const fluid of this.fluids) lines.finish(fluid);
     const components = this.namedComponents();
+    linkSupplies(this.supplyDrafts, this.devices, this.names, this.report);
     linkSwitches(this.deviceDrafts, components, this.names, this.report);
 
     const rungs = new RungBuilder(this.devices, this.names, this.report);
     const circuits = this.readCircuits(rungs);
     const potentials = numberPotentials(rungs.finish(), this.info.wireNumbers);
+    turnDiodes(
+      circuits.filter((circuit) => circuit.kind === "ladder"),
+      this.devices,
+    );
     for (const device of this.devices.values()) allotTerminals(device, this.report);
 
     const machine: Machine = {
@@ -209,10 +217,11 @@ class MachineBuilder {
       this.report.error("name-missing", keyword.at, 'A supply needs a name, as in "supply CTRL 24 V DC".');
       return;
     }
-    const { supply, fuse } = readSupply({ ...declaration, name }, this.report);
+    const draft = readSupply({ ...declaration, name }, this.report);
     if (!this.names.claim(name, "supply")) return;
-    this.supplies.push(supply);
-    if (fuse) this.names.claim(fuse, "fuse");
+    this.supplies.push(draft.supply);
+    this.supplyDrafts.push(draft);
+    if (draft.fuse) this.names.claim(draft.fuse, "fuse");
   }
 
   private declareDevice(declaration: Declaration & { name: Word }, kind: DeviceKind, fluid?: CircuitDraft): void {
@@ -228,7 +237,7 @@ class MachineBuilder {
     if (!this.names.claim(name, kind)) return;
     this.devices.set(name.text, draft.device);
     this.deviceDrafts.push(draft);
-    if (fluid && kind === "pressure-switch" && !draft.on) this.circuitOf.set(putSensor(draft.device, fluid, this.components), fluid);
+    if (fluid && isSensorKind(kind) && !draft.on) this.circuitOf.set(putSensor(draft.device, kind, fluid, this.components), fluid);
   }
 
   private declareComponent(declaration: Declaration & { name: Word }, kind: FluidKind, fluid?: CircuitDraft): void {
@@ -259,7 +268,7 @@ class MachineBuilder {
   private readLines(): LineBuilder {
     const lines = new LineBuilder(this.components, this.circuitOf, this.names, this.report);
     for (const fluid of this.fluids) lines.readLines(fluid);
-    linkPressureSwitches(this.deviceDrafts, this.fluids, this.components, lines, this.names, this.report);
+    linkSensors(this.deviceDrafts, this.fluids, this.components, lines, this.names, this.report);
     return lines;
   }
 
@@ -333,15 +342,34 @@ const usualNames: Partial<Record<DeviceKind | FluidKind, string>> = {
   "limit-switch": "LS1",
   "proximity-switch": "PRS1",
   "pressure-switch": "PS1",
+  "vacuum-switch": "VS1",
+  "flow-switch": "FLS1",
+  "level-switch": "FS1",
+  "temperature-switch": "TAS1",
+  "latching-relay": "KL1",
+  counter: "CTR1",
+  "key-switch": "KS1",
+  "foot-switch": "FTS1",
+  "cable-pull": "CP1",
+  "door-switch": "DS1",
   overload: "OL1",
   solenoid: "SOL1",
   "pilot-light": "LT1",
   horn: "AH1",
+  bell: "ABE1",
+  heater: "HTR1",
+  fuse: "FU1",
+  "circuit-breaker": "CB1",
+  disconnect: "DISC1",
+  transformer: "T1",
+  "power-supply": "PWS1",
+  rectifier: "REC1",
+  plug: "XP1",
+  diode: "D1",
+  resistor: "RES1",
+  "input-card": "I0",
+  "output-card": "Q0",
   motor: "M1",
   cylinder: "CYL1",
   valve: "V1",
 };
-
-function capital(text: string): string {
-  return `${text[0]?.toUpperCase() ?? ""}${text.slice(1)}`;
-}

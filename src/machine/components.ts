@@ -93,6 +93,10 @@ const tables: Record<Exclude<FluidKind, "cylinder" | "valve">, ComponentTable> =
   exhaust: { words: commonWords },
   gauge: { words: commonWords, bare: { pressure: printed } },
   "pressure-switch": { words: commonWords },
+  "vacuum-switch": { words: commonWords },
+  "flow-switch": { words: commonWords },
+  "level-switch": { words: commonWords },
+  "temperature-switch": { words: commonWords },
   "shut-off-valve": { words: commonWords },
 };
 

@@ -1,9 +1,12 @@
 import type { DeviceKind, FluidKind, Medium } from "./model.js";
 
-/** What a device of each kind can be in a rung. `coils`: the names of its coils where it has several. `through`: the current passes through it. */
+/**
+ * What a device of each kind can be in a rung. `coils`: the names of its coils where it has several. `through`: the current passes
+ * through it. `auxiliary`: it has contacts besides, written `Q1.aux`.
+ */
 export const deviceRoles: Record<
   DeviceKind,
-  { contacts: boolean; load: boolean; through?: boolean; coils?: readonly ["set" | "count", "reset"] }
+  { contacts: boolean; load: boolean; through?: boolean; auxiliary?: boolean; coils?: readonly ["set" | "count", "reset"] }
 > = {
   relay: { contacts: true, load: true },
   contactor: { contacts: true, load: true },
@@ -32,8 +35,8 @@ export const deviceRoles: Record<
   bell: { contacts: false, load: true },
   heater: { contacts: false, load: true },
   fuse: { contacts: false, load: false, through: true },
-  "circuit-breaker": { contacts: false, load: false, through: true },
-  disconnect: { contacts: false, load: false, through: true },
+  "circuit-breaker": { contacts: false, load: false, through: true, auxiliary: true },
+  disconnect: { contacts: false, load: false, through: true, auxiliary: true },
   transformer: { contacts: false, load: false },
   "power-supply": { contacts: false, load: false },
   rectifier: { contacts: false, load: false },
@@ -64,6 +67,10 @@ export const fluidMedia: Record<FluidKind, readonly Medium[]> = {
   silencer: ["pneumatic"],
   gauge: ["hydraulic", "pneumatic"],
   "pressure-switch": ["hydraulic", "pneumatic"],
+  "vacuum-switch": ["hydraulic", "pneumatic"],
+  "flow-switch": ["hydraulic", "pneumatic"],
+  "level-switch": ["hydraulic", "pneumatic"],
+  "temperature-switch": ["hydraulic", "pneumatic"],
   "shut-off-valve": ["hydraulic", "pneumatic"],
   exhaust: ["pneumatic"],
 };
@@ -90,6 +97,20 @@ export const laterKinds: ReadonlySet<string> = new Set([
   "quick-coupling",
   "test-point",
 ]);
+
+/** Switches that a fluid value works: in a fluid circuit they stand at the point they sense. */
+const sensorKinds = ["pressure-switch", "vacuum-switch", "flow-switch", "level-switch", "temperature-switch"] as const;
+
+export type SensorKind = (typeof sensorKinds)[number];
+
+export function isSensorKind(kind: string): kind is SensorKind {
+  return (sensorKinds as readonly string[]).includes(kind);
+}
+
+/** What only measures at the end of a line of its own. */
+export function isMeasuring(kind: string | undefined): boolean {
+  return kind === "gauge" || (kind !== undefined && isSensorKind(kind));
+}
 
 export function isDeviceKind(word: string): word is DeviceKind {
   return Object.hasOwn(deviceRoles, word);

@@ -3,9 +3,10 @@ import { printQuantity } from "../language/print-quantity.js";
 import type { ComponentDraft } from "./components.js";
 import { bareComponent, draftOf } from "./components.js";
 import { strokeOf } from "./cylinder.js";
-import type { DeviceDraft } from "./devices.js";
+import type { DeviceDraft } from "./device-words.js";
 import { bareDevice } from "./devices.js";
 import type { CircuitDraft, LineBuilder } from "./fluid-lines.js";
+import { isSensorKind, type SensorKind } from "./kinds.js";
 import type { Device, FluidComponent } from "./model.js";
 import type { Names } from "./names.js";
 import { didYouMean, listed, type Report, withArticle } from "./report.js";
@@ -107,8 +108,8 @@ function findCylinder(
   return undefined;
 }
 
-/** Puts pressure switches into the fluid circuit they sense, under their own designation. */
-export function linkPressureSwitches(
+/** Puts the switches that sense a fluid into the circuit they sense, under their own designation. */
+export function linkSensors(
   drafts: readonly DeviceDraft[],
   circuits: readonly CircuitDraft[],
   byName: Map<string, ComponentDraft>,
@@ -117,7 +118,8 @@ export function linkPressureSwitches(
   report: Report,
 ): void {
   for (const { device, on, rising, falling } of drafts) {
-    if (device.kind !== "pressure-switch") continue;
+    const { kind: sensorKind } = device;
+    if (!isSensorKind(sensorKind)) continue;
     device.senses = { rising, falling };
     const sensor = byName.get(device.name);
     if (!on) continue;
@@ -147,11 +149,11 @@ export function linkPressureSwitches(
         );
       }
       device.senses.point = on.name;
-      lines.tap(home, sensor ?? putSensor(device, home, byName), "P", { kind: "point", point: on.name, at: on.at });
+      lines.tap(home, sensor ?? putSensor(device, sensorKind, home, byName), "P", { kind: "point", point: on.name, at: on.at });
       continue;
     }
     if (on.kind !== "part" && on.kind !== "word") {
-      report.error("value-missing", on.at, '"on" is followed by the @point or the port whose pressure is sensed.');
+      report.error("value-missing", on.at, '"on" is followed by the @point or the port that is sensed.');
       continue;
     }
     const name = on.kind === "part" ? on.name : on.text;
@@ -161,7 +163,17 @@ export function linkPressureSwitches(
       if (names.isLost(name)) continue;
       const kind = names.kindOf(name);
       if (kind === undefined) names.unknown({ text: name, at: on.at });
-      else report.error("wrong-kind", on.at, `${name} is ${withArticle(kind)}; a pressure switch senses a fluid port or @point.`);
+      else report.error("wrong-kind", on.at, `${name} is ${withArticle(kind)}; ${withArticle(device.kind)} senses a fluid port or @point.`);
+      continue;
+    }
+    if (
+      target.component.kind === "tank" &&
+      on.kind === "word" &&
+      (device.kind === "level-switch" || device.kind === "temperature-switch")
+    ) {
+      // It stands in the tank and on no line, and is named beside it.
+      device.senses.component = name;
+      target.component.values.push(device.name);
       continue;
     }
     const ports = target.component.ports.map((port) => port.name);
@@ -176,14 +188,14 @@ export function linkPressureSwitches(
     } else {
       device.senses.component = name;
       device.senses.port = port;
-      lines.tap(home, sensor ?? putSensor(device, home, byName), "P", { kind: "port", draft: target, port, at: on.at });
+      lines.tap(home, sensor ?? putSensor(device, sensorKind, home, byName), "P", { kind: "port", draft: target, port, at: on.at });
     }
   }
 }
 
-/** The fluid side of a pressure switch. */
-export function putSensor(device: Device, home: CircuitDraft, byName: Map<string, ComponentDraft>): ComponentDraft {
-  const component = bareComponent(device.name, "pressure-switch", home.circuit.medium, device.at);
+/** The fluid side of a switch that senses a fluid. */
+export function putSensor(device: Device, kind: SensorKind, home: CircuitDraft, byName: Map<string, ComponentDraft>): ComponentDraft {
+  const component = bareComponent(device.name, kind, home.circuit.medium, device.at);
   component.name = device.name;
   component.text = device.text;
   component.values = [...device.values];

@@ -105,7 +105,7 @@ export interface Device {
   values: string[];
   /** Declared poles: normally open and normally closed. Absent: as many as are used. */
   poles?: { no: number; nc: number };
-  /** Fuses, breakers and disconnects: how many conductors pass through. Absent: as many as the circuit has. */
+  /** Contactors, fuses, breakers and disconnects: how many conductors pass through. Absent: as many as the circuit has. */
   ways?: number;
   /** Timers. */
   delay?: { mode: "on-delay" | "off-delay"; time: Quantity };
@@ -121,6 +121,8 @@ export interface Device {
   preset?: number;
   /** Controller cards: how many points. */
   points?: number;
+  /** What a load, a motor or a controller's card is made for. */
+  voltage?: Rating;
   /** Transformers, power supplies, rectifiers: what goes in and what comes out. */
   conversion?: { primary?: Rating; secondary?: Rating };
   /** Selector and key switches: positions in order and the one drawn. */
@@ -128,7 +130,11 @@ export interface Device {
   colour?: string;
   /** Limit and proximity switches: where on the machine they are operated. */
   place?: SwitchPlace;
-  /** Pressure, vacuum, flow, level and temperature switches: the fluid point they sense, if it is drawn, with the settings. */
+  /**
+   * Pressure, vacuum, flow, level and temperature switches: the fluid point they sense, if it is drawn, with the settings.
+   * `component` without `port` is the tank a level or temperature switch stands in. A vacuum may be written below nought or above
+   * it, and means the same: how far the pressure is below that of the air; `rising` is where it gets deeper.
+   */
   senses?: { component?: string; port?: string; point?: string; rising?: Quantity; falling?: Quantity };
   /** Overloads: the motor guarded. */
   guards?: string;
@@ -322,6 +328,10 @@ export type FluidKind =
   | "silencer"
   | "gauge"
   | "pressure-switch"
+  | "vacuum-switch"
+  | "flow-switch"
+  | "level-switch"
+  | "temperature-switch"
   | "shut-off-valve"
   | "exhaust";
 
@@ -369,7 +379,7 @@ export interface FluidComponent {
  * tank `T`; pump, compressor `S` (suction) `P`; air-supply `1`; service-unit, filter `in` `out`; cylinder `cap` `rod`;
  * hydraulic valve `P T A B X Y`; pneumatic valve `1 2 3 4 5 12 14`; 2/2 valves `P A` or `1 2`; relief-valve `P T`;
  * check-valve `in` `out` (free flow in → out); pilot-operated-check-valve `in` `out` `X`; throttle, shut-off-valve `in` `out`;
- * one-way-flow-control `in` `out` (free flow in → out); silencer, exhaust `in`; gauge, pressure-switch `P`.
+ * one-way-flow-control `in` `out` (free flow in → out); silencer, exhaust `in`; gauge and the switches that sense a fluid `P`.
  */
 export interface FluidPort {
   name: string;

@@ -19,6 +19,10 @@ const fixedPorts: Record<Exclude<FluidKind, "cylinder" | "valve">, readonly stri
   exhaust: ["in"],
   gauge: ["P"],
   "pressure-switch": ["P"],
+  "vacuum-switch": ["P"],
+  "flow-switch": ["P"],
+  "level-switch": ["P"],
+  "temperature-switch": ["P"],
 };
 
 export function portsOf(kind: Exclude<FluidKind, "cylinder" | "valve">): readonly string[] {

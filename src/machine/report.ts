@@ -47,3 +47,8 @@ export function listed(words: readonly string[], joiner: "or" | "and" = "or"): s
 export function withArticle(noun: string): string {
   return `${/^[aeiou]/.test(noun) ? "an" : "a"} ${noun}`;
 }
+
+/** The first letter large, for the beginning of a sentence. */
+export function capital(text: string): string {
+  return `${text[0]?.toUpperCase() ?? ""}${text.slice(1)}`;
+}

@@ -1,8 +1,7 @@
 import type { Parallel, PathItem, PathReference, Series } from "../language/tree.js";
 import { deviceRoles } from "./kinds.js";
 import type { DeviceKind } from "./model.js";
-import type { Report } from "./report.js";
-import { withArticle } from "./report.js";
+import { listed, type Report, withArticle } from "./report.js";
 
 /** Brackets within brackets beyond any real circuit; deeper ones are not read. */
 export const deepest = 100;
@@ -50,22 +49,31 @@ export class Roles {
     }
   }
 
-  private arrowMissing({ name }: PathReference): void {
+  private arrowMissing({ name, part }: PathReference): void {
     this.incomplete = true;
-    this.report.error(
-      "arrow-missing",
-      name.at,
-      `${name.text} is ${withArticle(this.kindOf(name.text) as string)}: "->" stands before what is driven.`,
-      {
-        hint: `Write -> ${name.text}.`,
-      },
-    );
+    const whole = part ? `${name.text}.${part.text}` : name.text;
+    const kind = this.kindOf(name.text) as DeviceKind;
+    const what = deviceRoles[kind].coils ? "a coil" : kind === "input-card" ? "an input" : withArticle(kind);
+    this.report.error("arrow-missing", name.at, `${whole} is ${what}: "->" stands before what is driven.`, { hint: `Write -> ${whole}.` });
+  }
+
+  /** `KL1` alone where a coil is due. */
+  private coilMissing({ name, part, negated }: PathReference): boolean {
+    const kind = this.kindOf(name.text);
+    const coils = kind && deviceRoles[kind].coils;
+    if (!coils || part || negated) return false;
+    this.incomplete = true;
+    this.report.error("coil-missing", name.at, `Which coil of ${name.text}? It has ${listed(coils, "and")}.`, {
+      hint: `Write ${name.text}.${coils[0]}.`,
+    });
+    return true;
   }
 
   private behindArrow(items: readonly PathItem[], depth: number, ownArrow: boolean): void {
     const found = items.findIndex((item) => this.canBeLoad(item, depth));
     const load = found >= 0 ? found : items.findIndex((item) => item.kind === "parallel" && this.holdsLoad(item, depth));
     if (load < 0 && ownArrow) this.nothingDriven(items);
+    else if (load < 0 && items.length === 1 && items[0]?.kind === "reference") this.coilMissing(items[0]);
     items.forEach((item, index) => {
       if (index !== load) this.asContact(item, "behind", depth);
       else if (item.kind === "reference") this.loads.add(item);
@@ -75,22 +83,39 @@ export class Roles {
 
   private nothingDriven(items: readonly PathItem[]): void {
     this.incomplete = true;
-    const first = items.find((item) => item.kind === "reference");
-    if (first?.kind !== "reference") return;
-    const kind = this.kindOf(first.name.text);
+    const first =
+      items.find((item) => item.kind === "reference" && !this.isThrough(item)) ?? items.find((item) => item.kind === "reference");
+    if (first?.kind !== "reference" || this.coilMissing(first)) return;
+    const { name, part, negated } = first;
+    const kind = this.kindOf(name.text);
     // An unknown or unsuitable name, or part of one, has its own message.
-    if (kind === undefined || kind === "motor" || (first.part && deviceRoles[kind].load && kind !== "timer" && !deviceRoles[kind].coils))
-      return;
-    const what =
-      first.negated && deviceRoles[kind].load ? `/${first.name.text} is a contact` : `${first.name.text} is ${withArticle(kind)}`;
+    if (kind === undefined || kind === "motor") return;
+    const { load, contacts } = deviceRoles[kind];
+    if (load && ((part && kind !== "timer") || (negated && !contacts))) return;
+    const what = negated && load ? `/${name.text} is a contact` : `${name.text} is ${withArticle(kind)}`;
     this.report.error("not-a-load", first.at, `${what}, which cannot be driven: nothing behind "->" is a load.`, {
-      hint: "A relay, contactor, timer, solenoid, pilot-light or horn is driven.",
+      hint:
+        kind === "output-card"
+          ? "A point of an output-card drives a rung; one of an input-card is driven."
+          : "A relay, contactor, timer, solenoid, pilot-light, horn or heater is driven.",
     });
   }
 
   private canBeLoad(item: PathItem, depth: number): boolean {
-    if (item.kind === "parallel") return depth < deepest && item.branches.every((branch) => this.branchHoldsLoad(branch, depth + 1));
-    return item.kind === "reference" && this.mayBeDriven(item);
+    if (item.kind !== "parallel") return item.kind === "reference" && this.mayBeDriven(item);
+    if (depth >= deepest) return false;
+    // What only quenches a load stands beside it and is none: `(SOL1 | D1)`.
+    const branches = item.branches.filter((branch) => !this.isQuenching(branch));
+    return branches.length > 0 && branches.every((branch) => this.branchHoldsLoad(branch, depth + 1));
+  }
+
+  private isQuenching({ items, arrow }: Series): boolean {
+    return arrow === undefined && items.length > 0 && items.every((item) => item.kind === "point" || this.isThrough(item));
+  }
+
+  private isThrough(item: PathItem): boolean {
+    const kind = item.kind === "reference" && !item.part ? this.kindOf(item.name.text) : undefined;
+    return kind !== undefined && deviceRoles[kind].through === true;
   }
 
   private holdsLoad(item: Parallel, depth: number): boolean {
@@ -112,6 +137,6 @@ export class Roles {
 
   private onlyDriven(reference: PathReference): boolean {
     const kind = this.kindOf(reference.name.text);
-    return kind !== undefined && this.mayBeDriven(reference) && !deviceRoles[kind].contacts;
+    return kind !== undefined && this.mayBeDriven(reference) && (!deviceRoles[kind].contacts || deviceRoles[kind].coils !== undefined);
   }
 }

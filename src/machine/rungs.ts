@@ -197,7 +197,8 @@ export class RungBuilder {
       });
       return undefined;
     }
-    if (deviceRoles[device.kind].through) return this.readThrough(reference, device, from, to, work);
+    const { through, auxiliary } = deviceRoles[device.kind];
+    if (through && !(auxiliary && part?.text === "aux")) return this.readThrough(reference, device, from, to, work);
     const shared = { device: device.name, from, to, rung: work.id, at };
     if (work.roles.isLoad(reference)) {
       const load: LoadUse = { kind: "load", id: "", terminals: { value: ["", ""], by: "unallotted" }, ...shared };
@@ -206,8 +207,14 @@ export class RungBuilder {
       device.loads.push(load);
       return load;
     }
-    if (!deviceRoles[device.kind].contacts) {
+    if (!deviceRoles[device.kind].contacts && !auxiliary) {
       this.report.error("no-contacts", at, `${name.text} is ${withArticle(device.kind)} and has no contacts.`);
+      return undefined;
+    }
+    if (device.kind === "output-card" && negated) {
+      this.report.error("no-contacts", at, `${name.text} has no normally closed contacts: an output closes when its program says so.`, {
+        hint: "Drive a relay and use its normally closed contact.",
+      });
       return undefined;
     }
     const contact: ContactUse = {
@@ -232,12 +239,22 @@ export class RungBuilder {
     to: NodeId,
     work: RungWork,
   ): ThroughUse | undefined {
+    const { auxiliary } = deviceRoles[device.kind];
+    const onStrip = device.kind === "terminal-strip" || device.kind === "plug";
+    const what = device.kind === "plug" ? "pin" : "terminal";
+    const hint = auxiliary
+      ? { hint: `Its auxiliary contacts are ${name.text}.aux and /${name.text}.aux.` }
+      : onStrip && part
+        ? { hint: `A ${what} stands behind a colon: ${name.text}:${part.text}.` }
+        : {};
+    const kind = withArticle(device.kind);
     if (negated) {
-      this.report.error("no-contacts", at, `${name.text} is ${withArticle(device.kind)} and has no contacts.`);
+      const why = auxiliary ? ": its poles are drawn as they carry current." : " and has no contacts.";
+      this.report.error("no-contacts", at, `${name.text} is ${kind}${why}`, hint);
       return undefined;
     }
     if (part) {
-      this.report.error("unknown-part", part.at, `${name.text} is ${withArticle(device.kind)} and has no part ${part.text}.`);
+      this.report.error("unknown-part", part.at, `${name.text} is ${kind} and has no part ${part.text}.`, hint);
       return undefined;
     }
     const through: ThroughUse = {
@@ -250,10 +267,16 @@ export class RungBuilder {
       rung: work.id,
       at,
     };
-    if (device.kind === "terminal-strip" || device.kind === "plug") {
+    if (onStrip) {
       if (!terminals) {
-        const what = device.kind === "plug" ? "pin" : "terminal";
         this.report.error("terminals-missing", at, `Which ${what} of ${name.text}?`, { hint: `Write ${name.text}:1.` });
+        return undefined;
+      }
+      if (/^\d+-\d+$/.test(terminals.text)) {
+        const [one, other] = terminals.text.split("-");
+        this.report.error("terminals-wrong", terminals.at, `${name.text}:${terminals.text} is no single ${what}.`, {
+          hint: `Write ${name.text}:${one} ${name.text}:${other}, one behind the other.`,
+        });
         return undefined;
       }
       // The wire goes straight through it.
@@ -280,12 +303,10 @@ export class RungBuilder {
       this.report.error("position-missing", at, `Which point of ${name.text}?`, { hint: `Write ${name.text}.0.` });
       return undefined;
     }
-    if (!/^\d+$/.test(part.text) || (points !== undefined && Number(part.text) >= points)) {
-      this.report.error(
-        "unknown-part",
-        part.at,
-        `${name.text} has no point ${part.text}${points === undefined ? "" : `: it has 0 to ${points - 1}`}.`,
-      );
+    const number = /^\d{1,3}$/.test(part.text) ? Number(part.text) : undefined;
+    if (number === undefined || (points !== undefined && number >= points)) {
+      const those = points === undefined ? "Points are numbers" : points === 1 ? "It has point 0 alone" : `It has 0 to ${points - 1}`;
+      this.report.error("unknown-part", part.at, `${name.text} has no point ${part.text}.`, { hint: `${those}.` });
       return undefined;
     }
     return part.text;
@@ -317,23 +338,42 @@ export class RungBuilder {
       contact.position = part.text;
       return true;
     }
-    if (!part || (device.kind === "timer" && part.text === "inst")) return true;
-    this.report.error(
-      "unknown-part",
-      part.at,
-      `${name.text} is ${withArticle(device.kind)} and has no part ${part.text}.`,
-      device.kind === "timer" ? { hint: `Its instantaneous contact is ${name.text}.inst.` } : {},
-    );
+    if (!part || (device.kind === "timer" && part.text === "inst") || deviceRoles[device.kind].auxiliary) return true;
+    const { coils } = deviceRoles[device.kind];
+    if (coils && (coils as readonly string[]).includes(part.text)) {
+      this.report.error("not-a-contact", at, `${name.text}.${part.text} is a coil, not a contact.`, {
+        hint: `Its contacts are ${name.text} and /${name.text}.`,
+      });
+    } else if (coils) {
+      const guess = didYouMean(part.text, coils);
+      const hint =
+        guess.hint ??
+        `Its coils are ${listed(
+          coils.map((coil) => `${name.text}.${coil}`),
+          "and",
+        )}.`;
+      this.report.error("unknown-part", part.at, `${name.text} is ${withArticle(device.kind)} and has no part ${part.text}.`, {
+        ...guess,
+        hint,
+      });
+    } else {
+      this.report.error(
+        "unknown-part",
+        part.at,
+        `${name.text} is ${withArticle(device.kind)} and has no part ${part.text}.`,
+        device.kind === "timer" ? { hint: `Its instantaneous contact is ${name.text}.inst.` } : {},
+      );
+    }
     return false;
   }
 
-  private unknownDevice({ name }: PathReference): void {
+  private unknownDevice({ name, terminals }: PathReference): void {
     if (this.names.isLost(name.text)) return;
     const kind = this.names.kindOf(name.text);
     if (kind === undefined) {
       const coil = /^\d*(SOL|Y|MB)/.test(name.text)
         ? `A solenoid is declared by its valve, as in "valve V1 5/2 left solenoid ${name.text} right spring".`
-        : `Declare it, as in "relay ${name.text}".`;
+        : `Declare it, as in "${terminals && !terminals.text.includes("-") ? "terminal-strip" : "relay"} ${name.text}".`;
       this.names.unknown(name, (other) => Object.hasOwn(deviceRoles, other), coil);
       return;
     }
@@ -364,12 +404,14 @@ function pointId({ id, points }: RungWork, name: string): string {
 /** Takes the terminals the author pinned: `CR1:23-24`. */
 function pin(use: DeviceUse, { terminals, name }: Pick<PathReference, "terminals" | "name">, report: Report): void {
   if (!terminals) return;
-  const pair = /^([A-Za-z0-9]+)-([A-Za-z0-9]+)$/.exec(terminals.text);
-  if (!pair || pair[1] === pair[2]) {
-    report.error("terminals-wrong", terminals.at, `A contact has two terminals, as in ${name.text}:13-14.`);
+  const written = /^([A-Za-z0-9]+)-([A-Za-z0-9]+)$/.exec(terminals.text);
+  if (!written || written[1] === written[2]) {
+    const what = use.kind === "through" ? "A pole" : use.kind === "load" ? "A coil" : "A contact";
+    const pair = use.kind === "through" ? "1-2" : use.kind === "load" ? "A1-A2" : "13-14";
+    report.error("terminals-wrong", terminals.at, `${what} has two terminals, as in ${name.text}:${pair}.`);
     return;
   }
-  use.terminals = { value: [pair[1] as string, pair[2] as string], by: "author", at: terminals.at };
+  use.terminals = { value: [written[1] as string, written[2] as string], by: "author", at: terminals.at };
 }
 
 function numberPath(path: SeriesPath | ParallelPath, number: (node: NodeId) => NodeId): void {

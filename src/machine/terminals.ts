@@ -1,11 +1,13 @@
-import type { ContactUse, Device, DeviceKind, DeviceUse } from "./model.js";
-import type { Report } from "./report.js";
-import { designationOf } from "./walk.js";
+import type { ContactUse, Device, DeviceKind, DeviceUse, LoadUse } from "./model.js";
+import { overloadPlaces, placeOf, polesOf } from "./poles.js";
+import { capital, type Report, withArticle } from "./report.js";
+import { coilOf, designationOf } from "./walk.js";
 
 /*
  * Terminal numbers after EN 50005 (EN 50013 for control switches): the last digit is the function, the digits before it the
- * place of the contact in the device. Contacts take places 1, 2, 3 … in the order in which the drawing uses them; a tenth
- * contact is 103-104. What the author pins keeps its place and the others go round it.
+ * place of the contact in the device. A device with declared poles has its contacts at the places of EN 50011; those of any other
+ * take places 1, 2, 3 … in the order in which the drawing uses them; a tenth contact is 103-104. What the author pins keeps its
+ * place and the others go round it.
  */
 
 /** Last digits by function: 1-2 opens, 3-4 closes; 5-6 and 7-8 are the same for contacts with a special function. */
@@ -19,58 +21,128 @@ const loadTerminals: Partial<Record<DeviceKind, [string, string]>> = {
   relay: ["A1", "A2"],
   contactor: ["A1", "A2"],
   timer: ["A1", "A2"],
+  counter: ["A1", "A2"],
+  "latching-relay": ["A1", "A2"],
   solenoid: ["A1", "A2"],
   "pilot-light": ["X1", "X2"],
 };
 
-const throughTerminals: Partial<Record<DeviceKind, [string, string]>> = { diode: ["A", "K"] };
+/** The second coil of a device that has two (EN 50005). */
+const secondCoil = ["B1", "B2"] as const;
 
-/** Places in the order they are given out. Overloads have place 9, and 0 for a second set. */
+/** What has one pair of ends and stands at one place. */
+const endTerminals: Partial<Record<DeviceKind, [string, string]>> = { diode: ["A", "K"], resistor: ["1", "2"] };
+
+/** Places in the order they are given out to contacts that are not declared. */
 function* places(kind: DeviceKind): Generator<number> {
-  if (kind === "overload") yield* [9, 0, 10];
-  for (let place = kind === "overload" ? 11 : 1; ; place++) yield place;
+  const first = kind === "overload" ? overloadPlaces : [];
+  yield* first;
+  for (let place = Math.max(0, ...first) + 1; ; place++) yield place;
 }
 
-function digitsOf(contact: ContactUse, kind: DeviceKind): readonly [string, string] {
-  return (contact.timed || kind === "overload" ? specialDigits : plainDigits)[contact.form];
+function digitsOf({ form, timed }: Pick<ContactUse, "form" | "timed">, kind: DeviceKind): readonly [string, string] {
+  return (timed || kind === "overload" ? specialDigits : plainDigits)[form];
 }
 
-interface Pinned {
-  place: number;
-  digits: [string, string];
+function terminalsAt(place: number, contact: Pick<ContactUse, "form" | "timed">, kind: DeviceKind): [string, string] {
+  const [a, b] = digitsOf(contact, kind);
+  return [`${place}${a}`, `${place}${b}`];
 }
 
-/** Place and function digits of terminals written by the rule: `23-24` is place 2, digits 3 and 4. */
-function placeOf([a, b]: readonly [string, string]): Pinned | undefined {
-  if (!/^\d{2,}$/.test(a) || !/^\d{2,}$/.test(b) || a.slice(0, -1) !== b.slice(0, -1)) return undefined;
-  return { place: Number(a.slice(0, -1)), digits: [a.slice(-1), b.slice(-1)] };
+/** A contact a device is declared to have and the drawing does not use. */
+export interface SparePole {
+  form: ContactUse["form"];
+  /** A timer's is taken to be delayed, as nothing says otherwise. */
+  timed: boolean;
+  terminals: [string, string];
 }
 
-/** Gives every contact and load of a device its terminals and its id. */
+/** The declared contacts that no rung uses, in the order of their places. A device without declared poles has none. */
+export function sparePoles(device: Device): SparePole[] {
+  const { kind } = device;
+  const timed = kind === "timer";
+  return polesOf(device)
+    .filter(({ use }) => !use)
+    .sort((a, b) => (kind === "overload" ? 0 : a.place - b.place))
+    .map(({ form, place }) => ({
+      form,
+      timed,
+      terminals: kind === "proximity-switch" ? [...sensorTerminals[form]] : terminalsAt(place, { form, timed }, kind),
+    }));
+}
+
+/** Gives every contact, load and pole of a device its terminals and its id. */
 export function allotTerminals(device: Device, report: Report): void {
-  const taken = checkPins(device, report);
-  const free = places(device.kind);
+  allotContacts(device, checkPins(device, report));
+  for (const load of device.loads) {
+    if (load.terminals.by !== "author") load.terminals = { value: loadPair(load, device.kind), by: "load terminals" };
+  }
+  allotThroughs(device, report);
+  giveIds(device);
+}
+
+/** `taken`: the places of what the author pinned. */
+function allotContacts(device: Device, taken: Set<number>): void {
+  const { kind } = device;
+  const poles = polesOf(device);
+  const declared = new Map(poles.flatMap(({ use, place }) => (use ? [[use, place] as const] : [])));
   // An overload's break and make contact share a place; anything else has one place a contact.
   const sharing = new Map<number, Set<ContactUse["form"]>>();
+  for (const { form, place } of poles) {
+    // What is used beyond the declared contacts stands behind them.
+    if (kind === "overload") sharing.set(place, (sharing.get(place) ?? new Set()).add(form));
+    else taken.add(place);
+  }
+  const free = places(kind);
   for (const contact of device.contacts) {
-    if (contact.terminals.by === "author") continue;
+    // The outputs of a controller's card are marked by their points.
+    if (contact.terminals.by === "author" || kind === "output-card") continue;
     // A sensor has each output once: used again, it is the same two terminals, which only a wire there can join.
-    if (device.kind === "proximity-switch") {
+    if (kind === "proximity-switch") {
       contact.terminals = { value: [...sensorTerminals[contact.form]], by: "sensor outputs" };
       continue;
     }
-    const place = device.kind === "overload" ? sharedPlace(contact, sharing, taken) : nextPlace(free, taken);
-    const [a, b] = digitsOf(contact, device.kind);
-    contact.terminals = { value: [`${place}${a}`, `${place}${b}`], by: "places in reading order" };
+    const pole = declared.get(contact);
+    const place = pole ?? (kind === "overload" ? sharedPlace(contact, sharing, taken) : nextPlace(free, taken));
+    contact.terminals = {
+      value: terminalsAt(place, contact, kind),
+      by: pole === undefined ? "places in reading order" : "declared poles in reading order",
+    };
   }
-  for (const load of device.loads) {
-    if (load.terminals.by !== "author") load.terminals = { value: [...(loadTerminals[device.kind] ?? ["", ""])], by: "load terminals" };
+}
+
+function loadPair({ coil }: LoadUse, kind: DeviceKind): [string, string] {
+  return [...(coil === "reset" ? secondCoil : (loadTerminals[kind] ?? (["", ""] as const)))];
+}
+
+/** Poles of fuses, breakers and disconnects are 1-2, 3-4, 5-6 … (EN 50005). */
+function allotThroughs({ name, kind, throughs }: Device, report: Report): void {
+  const pairOf = ({ value }: DeviceUse["terminals"]) => [...value].sort().join("-");
+  const ends = endTerminals[kind];
+  const taken = new Set(throughs.flatMap(({ terminals }) => (terminals.by === "author" ? [pairOf(terminals)] : [])));
+  const met = new Set<string>();
+  let pole = 1;
+  for (const through of throughs) {
+    if (through.pin !== undefined) continue;
+    // A diode that is turned has its ends already.
+    if (through.terminals.by === "unallotted" && ends) through.terminals = { value: [...ends], by: "its ends" };
+    else if (through.terminals.by === "unallotted") {
+      while (taken.has(pairOf(poleTerminals(pole)))) pole++;
+      through.terminals = poleTerminals(pole++);
+    }
+    const pair = pairOf(through.terminals);
+    if (met.has(pair)) {
+      const place = "at" in through.terminals ? through.terminals.at : through.at;
+      report.error("terminals-twice", place, `${name}:${through.terminals.value.join("-")} is already used.`, {
+        hint: ends ? `${capital(withArticle(kind))} stands at one place.` : "Each pole has terminals of its own.",
+      });
+    }
+    met.add(pair);
   }
-  for (const through of device.throughs) {
-    if (through.terminals.by === "author" || through.pin !== undefined) continue;
-    through.terminals = { value: [...(throughTerminals[device.kind] ?? ["1", "2"])], by: "poles in reading order" };
-  }
-  giveIds(device);
+}
+
+function poleTerminals(pole: number): DeviceUse["terminals"] {
+  return { value: [`${2 * pole - 1}`, `${2 * pole}`], by: "poles in reading order" };
 }
 
 function nextPlace(free: Generator<number>, taken: ReadonlySet<number>): number {
@@ -145,7 +217,7 @@ function giveIds({ contacts, loads, throughs }: Device): void {
   for (const use of [...contacts, ...loads, ...throughs] as DeviceUse[]) {
     const terminals = use.terminals.value.join("-");
     const pin = use.kind === "through" ? use.pin : undefined;
-    const own = use.kind === "load" && use.coil !== undefined ? `${designationOf(use)}.${use.coil}` : designationOf(use);
+    const own = use.kind === "load" ? coilOf(use) : designationOf(use);
     const id = pin !== undefined ? own : `${own}:${terminals === "-" ? use.kind : terminals}`;
     const times = (seen.get(id) ?? 0) + 1;
     seen.set(id, times);

@@ -1,4 +1,14 @@
-import type { DeviceUse, DrawingInfo, FluidCircuit, LadderCircuit, Machine, ParallelPath, RungElement, SeriesPath } from "./model.js";
+import type {
+  DeviceUse,
+  DrawingInfo,
+  FluidCircuit,
+  LadderCircuit,
+  LoadUse,
+  Machine,
+  ParallelPath,
+  RungElement,
+  SeriesPath,
+} from "./model.js";
 
 export function laddersOf({ circuits }: Machine): LadderCircuit[] {
   return circuits.filter((circuit) => circuit.kind === "ladder");
@@ -35,4 +45,9 @@ export function designationOf(use: DeviceUse): string {
 /** An electrical designation as it is printed: the international convention puts a dash before it, the text never has one. */
 export function printedName(designation: string, convention: DrawingInfo["convention"]): string {
   return convention === "international" ? `-${designation}` : designation;
+}
+
+/** What a load is called where its coils are told apart: `KL1.set`, else as `designationOf`. */
+export function coilOf(load: LoadUse): string {
+  return load.coil === undefined ? designationOf(load) : `${load.device}.${load.coil}`;
 }

@@ -195,6 +195,10 @@ const componentSymbols: Record<FluidKind, Choice> = {
   silencer: file("silencer"),
   gauge: file("gauge"),
   "pressure-switch": byMedium("pressure-switch"),
+  "vacuum-switch": byMedium("pressure-switch"),
+  "flow-switch": file("flow-switch"),
+  "level-switch": file("level-switch"),
+  "temperature-switch": file("temperature-switch"),
   "shut-off-valve": file("shut-off-valve"),
   exhaust: file("exhaust"),
 };

@@ -99,7 +99,7 @@ describe("what cannot be understood", () => {
     ["rung: S5 -> CR1", ["position-missing"]],
     ["rung: S5.full -> CR1", ["unknown-position"]],
     ["rung: /LT1 -> CR1", ["no-contacts"]],
-    ["rung: X1:4 PB1 -> CR1", ["not-yet-supported"]],
+    ["rung: X1:4 PB1 -> CR1", ["unknown-name"]],
     ["rung: CTRL -> CR1", ["wrong-kind"]],
     ["rung: CR1:13 -> CR2", ["terminals-wrong"]],
     ["rung: @a @b", []],

@@ -1,6 +1,7 @@
 import type { Box, Mm, Point } from "../../drawing/geometry.js";
 import type { Anchor, PartId } from "../../drawing/marks.js";
 import { measureText, wrapText } from "../../drawing/text.js";
+import { isSensorKind } from "../../machine/kinds.js";
 import type { FluidComponent } from "../../machine/model.js";
 import type { Direction, Symbol, Turn } from "../../symbols/symbol.js";
 import { turnSymbol } from "../../symbols/turn.js";
@@ -129,7 +130,7 @@ export function addWords(block: Block, side: Side, usesOf: (device: string) => n
   if (side === "none") return;
   const { kind, name } = block.component;
   const lines: { role: PlacedText["role"]; text: string | Reference }[] = wordsOf(block.component);
-  if (kind === "pressure-switch" && name !== undefined) {
+  if (isSensorKind(kind) && name !== undefined) {
     const rows = usesOf(name) > switchOneRow ? { rows: switchRows } : {};
     lines.push({ role: "reference", text: { to: "ladder-line", device: name, room: switchRoom, ...rows } });
   }

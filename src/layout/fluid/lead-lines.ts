@@ -1,4 +1,5 @@
 import type { Point } from "../../drawing/geometry.js";
+import { isMeasuring } from "../../machine/kinds.js";
 import type { FluidCircuit, FluidLine, FluidNodeId } from "../../machine/model.js";
 import type { Direction } from "../../symbols/symbol.js";
 import { forbidden, type Placed } from "./block.js";
@@ -233,7 +234,7 @@ function terminalsOf(placed: readonly Placed[], circuit: FluidCircuit): Map<Flui
           y: y + at.y,
           direction,
           style,
-          leaf: block.component.kind === "gauge" || block.component.kind === "pressure-switch",
+          leaf: isMeasuring(block.component.kind),
         },
       ]);
     }

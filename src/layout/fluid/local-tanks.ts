@@ -1,4 +1,5 @@
 import type { PartId } from "../../drawing/marks.js";
+import { isMeasuring } from "../../machine/kinds.js";
 import type { FluidCircuit, FluidComponent, FluidLine, FluidNode, FluidNodeId } from "../../machine/model.js";
 
 /** A circuit as it is drawn, with what its repeated tanks and their nodes stand for. */
@@ -69,7 +70,7 @@ function endsApart(node: FluidNode, tank: FluidComponent, byId: ReadonlyMap<Part
   const kindOf = ({ component }: End) => byId.get(component)?.kind;
   const isSuction = (end: End) => kindOf(end) === "pump" || leadsToPump(end, byId);
   const together = ends.filter((end) => kindOf(end) === "valve");
-  const measuring = ends.filter((end) => kindOf(end) === "gauge" || kindOf(end) === "pressure-switch");
+  const measuring = ends.filter((end) => isMeasuring(kindOf(end)));
   const rest = ends.filter((end) => !together.includes(end) && !measuring.includes(end));
   const groups = [
     ...rest.filter(isSuction).map((end) => [end]),
