@@ -3,10 +3,12 @@ import type { LadderCircuit, NodeId, Rung } from "../../machine/model.js";
 import type { Arrangement } from "./arrangement.js";
 import { stack } from "./break-sheets.js";
 import { foldRungs, type RungLimits } from "./fold-rungs.js";
-import { boundaryOf, loadColumn, type RungGrid } from "./grid.js";
+import { boundaryOf, loadColumn, type RungGrid, stride } from "./grid.js";
 import { type Joined, joinPoints } from "./join-points.js";
 import { type MeasuredRung, measureRungs } from "./measure-rungs.js";
+import { alongRails } from "./reverse-rung.js";
 import { leastSpan, needsOfLoads, noNeeds, withNeeds } from "./set-columns.js";
+import { joinWiresAgain, splitWires } from "./split-wires.js";
 
 /** Rungs of which none is wider or taller than a sheet. */
 export interface FittedRungs {
@@ -29,11 +31,14 @@ const rounds = 16;
  */
 export function fitRungs(
   circuit: LadderCircuit,
-  rungs: readonly Rung[],
+  written: readonly Rung[],
   rails: readonly NodeId[],
   offer: { span: Mm; depth: Mm },
   arrange: (scale: number) => Arrangement,
+  abroad: ReadonlySet<string> = new Set(),
 ): FittedRungs {
+  const split = splitWires(written, rails);
+  const rungs = split.rungs.map((rung) => alongRails(rung, split.rails));
   const taken = new Set(rungs.flatMap(pointsOf));
   const limits = new Map<number, RungLimits>();
   /** Rungs that were too wide: their texts are wrapped as narrow as they go before anything is cut. */
@@ -51,12 +56,13 @@ export function fitRungs(
       const at = origin.findIndex((index) => index >= before);
       return { before: at < 0 ? folded.length : at, ...(title === undefined ? {} : { title }) };
     });
-    const joined = joinPoints(
-      folded,
-      new Set(breaks.map(({ before }) => before)),
+    const points = {
+      barriers: new Set(breaks.map(({ before }) => before)),
       letters,
-      (index) => limitsOf(origin[index] as number).columns,
-    );
+      abroad,
+      columnsOf: (index: number) => limitsOf(origin[index] as number).columns,
+    };
+    const joined = joinWiresAgain(joinPoints(folded, points), split.nodeOf);
     const measured = measureRungs(joined, new Set(rails), arrangement, (index) => tight.has(origin[index] as number));
     const fitted = { joined, measured, arrangement, breaks };
     const next = new Map(limits);
@@ -116,13 +122,13 @@ const fewWide = 0.1;
 /** Fewer columns than this make a narrow sheet. */
 const roomyColumns = 6;
 
-/** How many columns before its loads a rung takes. */
+/** How many wide columns before its loads a rung takes. */
 function columnsOf(grid: RungGrid): number {
   const boundaries = [
     ...grid.cells.map(({ column }) => column + 1),
     ...grid.runs.flatMap(({ from, to }) => [boundaryOf(from), boundaryOf(to)]),
   ];
-  return Math.max(0, ...boundaries.filter((boundary) => boundary < loadColumn));
+  return Math.max(0, ...boundaries.filter((boundary) => boundary < loadColumn)) / stride;
 }
 
 function pointsOf(rung: Rung): string[] {

@@ -4,8 +4,15 @@ import type { DeviceUse, NodeId, Rung } from "../../machine/model.js";
  * The ladder grid, before any millimetre. Columns run along the current, from the live rail to the return rail; lines
  * follow each other across it. Column c lies between boundaries c and c + 1. Loads stand in `loadColumn`, what lies behind
  * them in the columns after it; how far along the sheet that is depends on the widest rung beside it.
+ *
+ * Before every wide column lie narrow ones for terminals and plug pins, so that contacts stay under each other however many
+ * terminals stand between them. A narrow column in which nothing stands takes no room.
  */
 export const loadColumn = 1_000_000;
+
+const narrowColumns = 3;
+/** From one wide column to the next. */
+export const stride = narrowColumns + 1;
 
 /** The boundary where the return rail runs. The live rail is boundary 0. */
 export const returnRail = 2_000_000;
@@ -71,6 +78,35 @@ export interface Link {
   boundary: number;
   from: { rung: number; line: number };
   to: { rung: number; line: number };
+}
+
+/** Whether a part takes a narrow column: a terminal or a plug pin. */
+export function isNarrow(use: DeviceUse): boolean {
+  return use.kind === "through" && use.pin !== undefined;
+}
+
+/** Where the columns that are counted like this one begin: at the live rail, or behind the loads. */
+const regionOf = (boundary: number) => (boundary > loadColumn ? loadColumn + 1 : 0);
+
+/** Whether a column is one of those for contacts and loads. */
+export function isWideColumn(column: number): boolean {
+  return column === loadColumn || (column - regionOf(column)) % stride === narrowColumns;
+}
+
+/** The next column free for a part behind a boundary. */
+export function columnAfter(boundary: number, use: DeviceUse): number {
+  return isNarrow(use) ? boundary : afterWide(boundary) - 1;
+}
+
+/** The boundary behind the next wide column. */
+export function afterWide(boundary: number): number {
+  const region = regionOf(boundary);
+  return region + (Math.floor((boundary - region) / stride) + 1) * stride;
+}
+
+/** Whether a boundary is one that every rung has: a rail, or the place behind a wide column. */
+export function isCommon(boundary: number): boolean {
+  return (boundary - regionOf(boundary)) % stride === 0;
 }
 
 /** The boundary a stop lies on. */

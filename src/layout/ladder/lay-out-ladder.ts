@@ -1,5 +1,5 @@
 import type { PartId } from "../../drawing/marks.js";
-import type { DeviceUse, LadderCircuit, Machine, NodeId, Rung } from "../../machine/model.js";
+import type { DeviceUse, LadderCircuit, Machine, NodeId } from "../../machine/model.js";
 import type { SymbolLibrary } from "../../symbols/library.js";
 import type { Symbol } from "../../symbols/symbol.js";
 import { type CircuitSheet, emptySheet, type PageArea, type Place } from "../placement.js";
@@ -40,7 +40,7 @@ export function layOutLadder(
   numbering: Numbering,
 ): LadderLayout {
   const rails = railNodes(circuit, machine);
-  const rungs = circuit.rungs.map((rung) => onRails(rung, rails));
+  const { rungs } = circuit;
   if (rungs.length === 0) return { sheets: [], places: [], nextLine: numbering.line };
   const plan = planNorthAmerican({ circuit, machine, symbolOf, symbols, room: page.area });
 
@@ -102,13 +102,6 @@ export function layOutLadder(
 
 function railNodes(circuit: LadderCircuit, machine: Machine): [NodeId, NodeId] {
   return circuit.supply.rails.map((rail) => machine.potentials.find((potential) => potential.rail === rail)?.id ?? -1) as [NodeId, NodeId];
-}
-
-/** A rung whose point is the rail itself begins or ends on the rail. */
-function onRails(rung: Rung, [live, back]: [NodeId, NodeId]): Rung {
-  const start: Rung["start"] = rung.start.node === live ? { kind: "rail", node: live } : rung.start;
-  const end: Rung["end"] = rung.end.node === back ? { kind: "rail", node: back } : rung.end;
-  return { ...rung, start, end };
 }
 
 /** The links that begin, end or both on each sheet. */

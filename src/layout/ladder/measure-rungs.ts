@@ -1,8 +1,9 @@
 import type { Mm } from "../../drawing/geometry.js";
 import type { LoadUse, NodeId } from "../../machine/model.js";
 import type { Arrangement, Block, Dressed } from "./arrangement.js";
-import { boundaryOf, type Cell, type RungGrid } from "./grid.js";
-import type { Ending, Joined } from "./join-points.js";
+import type { Ending } from "./find-endings.js";
+import { boundaryOf, type Cell, type Link, type RungGrid } from "./grid.js";
+import type { Joined } from "./join-points.js";
 
 /** A number at a wire. `beside`: wire from another line comes to its beginning. */
 export interface NumberPlace {
@@ -51,7 +52,7 @@ export function measureRungs(
   const endingsOf = groupBy(endings, (ending) => ending.rung);
   const passes = grids.map(() => new Set<number>());
   for (const { boundary, from, to } of links) for (let rung = from.rung; rung <= to.rung; rung++) passes[rung]?.add(boundary);
-  const arrivals = groupBy(links, (link) => link.to.rung);
+  const comings = uprightsAt(links);
   return grids.map((grid, index) => {
     const dressed = new Map(grid.cells.map((cell) => [cell, arrangement.dress(cell.use, tight(index))]));
     const lines = Array.from({ length: grid.lines }, () => ({ ...arrangement.bareLine, drop: 0 }) satisfies LineRoom as LineRoom);
@@ -71,12 +72,35 @@ export function measureRungs(
       if (kind === "drop") claim(line, 0, (lines[line] as LineRoom).drop + endingSize.head + endingSize.gap + across);
       else claim(line, across, across);
     }
-    const fromAbove = new Set((arrivals.get(index) ?? []).map(({ node, boundary }) => `${node} ${boundary}`));
-    const numbers = placeNumbers(grid, rails, fromAbove, own);
+    const numbers = placeNumbers(grid, rails, comings.get(index) ?? [], own);
     for (const { node, line, beside } of numbers) claim(line, arrangement.wireNumber(node, beside)?.above ?? 0, 0);
     const leads = own.map((ending) => ({ ...ending, lead: leadOf(ending, numbers, arrangement) }));
     return { grid, dressed, numbers, margins, endings: leads, passes: [...(passes[index] ?? [])], lines };
   });
+}
+
+/** Wire that comes down from above onto lines of a rung, or on its way to a later one crosses them. */
+interface Coming {
+  boundary: number;
+  from: number;
+  to: number;
+}
+
+function uprightsAt(links: readonly Link[]): Map<number, Coming[]> {
+  const found = new Map<number, Coming[]>();
+  for (const { boundary, from, to } of links) {
+    for (let rung = from.rung; rung <= to.rung; rung++) {
+      const coming = {
+        boundary,
+        from: rung === from.rung ? from.line + 1 : 0,
+        to: rung === to.rung ? to.line : Number.POSITIVE_INFINITY,
+      };
+      const list = found.get(rung);
+      if (list) list.push(coming);
+      else found.set(rung, [coming]);
+    }
+  }
+  return found;
 }
 
 /** An arrow at the end of a line stands clear of a number at its wire. */
@@ -90,7 +114,7 @@ function leadOf({ kind, line, boundary }: Ending, numbers: readonly NumberPlace[
 function placeNumbers(
   grid: RungGrid,
   rails: ReadonlySet<NodeId>,
-  fromAbove: ReadonlySet<string>,
+  comings: readonly Coming[],
   endings: readonly Ending[],
 ): NumberPlace[] {
   const best = new Map<NodeId, NumberPlace>();
@@ -100,7 +124,8 @@ function placeNumbers(
     const known = best.get(run.node);
     if (known && (known.line < run.line || (known.line === run.line && known.boundary <= boundary))) continue;
     const starts = endings.some((ending) => ending.kind === "start" && ending.node === run.node && ending.boundary === boundary);
-    best.set(run.node, { node: run.node, line: run.line, boundary, beside: starts || fromAbove.has(`${run.node} ${boundary}`) });
+    const meets = comings.some((up) => up.boundary === boundary && up.from <= run.line && run.line <= up.to);
+    best.set(run.node, { node: run.node, line: run.line, boundary, beside: starts || meets });
   }
   return [...best.values()].sort((a, b) => a.line - b.line || a.boundary - b.boundary);
 }

@@ -1,6 +1,6 @@
 import type { Mm } from "../../drawing/geometry.js";
 import type { Arrangement, ColumnPitch } from "./arrangement.js";
-import { boundaryOf, loadColumn, returnRail } from "./grid.js";
+import { afterWide, boundaryOf, isWideColumn, loadColumn, returnRail } from "./grid.js";
 import { endingSize, type MeasuredRung } from "./measure-rungs.js";
 
 /** The grid in millimetres along the current, from the live rail. */
@@ -94,8 +94,8 @@ export function withNeeds(
     else if (kind === "drop") widen(needs.ends, boundary, text.along + beside);
     else if (kind === "end" && last) widen(needs.ends, boundary, along);
     else if (kind === "end") {
-      widen(needs.spans, boundary, along);
-      reach(boundary + 1);
+      widen(needs.spans, afterWide(boundary) - 1, along);
+      reach(afterWide(boundary));
     }
   }
   return needs;
@@ -106,15 +106,28 @@ const beside: Mm = 1.2;
 
 /** The least widths of columns that meet the needs. */
 function leastColumns({ bodies, labels, before, behind, spans, contacts, returns }: ColumnNeeds, pitch: ColumnPitch) {
-  const roomBefore = (boundary: number) => Math.max(before.get(boundary) ?? 0, pitch.gap / 2);
-  const roomBehind = (boundary: number) => Math.max(behind.get(boundary) ?? 0, pitch.gap / 2);
+  // Narrow columns in which nothing stands have no width: the boundaries on both sides of them are one place.
+  const isEmpty = (column: number) => !isWideColumn(column) && !bodies.has(column) && !spans.has(column);
+  const first = (boundary: number) => {
+    while (boundary > 0 && isEmpty(boundary - 1)) boundary--;
+    return boundary;
+  };
+  const most = (map: Map<number, Mm>, boundary: number) => {
+    let place = first(boundary);
+    let room = map.get(place) ?? 0;
+    for (; isEmpty(place); place++) room = Math.max(room, map.get(place + 1) ?? 0);
+    return Math.max(room, pitch.gap / 2);
+  };
+  const roomBefore = (boundary: number) => most(before, boundary);
+  const roomBehind = (boundary: number) => most(behind, boundary);
   const half = (column: number) => {
     const body = bodies.get(column) ?? pitch.usual * 0.3;
     // Texts may reach into the gaps, up to the uprights that may run there.
     const overhang = Math.min(roomBehind(column), roomBefore(column + 1));
     return Math.max(body, (labels.get(column) ?? 0) + beside - overhang);
   };
-  const advance = (column: number) => Math.max(roomBehind(column) + 2 * half(column) + roomBefore(column + 1), spans.get(column) ?? 0);
+  const advance = (column: number) =>
+    isEmpty(column) ? 0 : Math.max(roomBehind(column) + 2 * half(column) + roomBefore(column + 1), spans.get(column) ?? 0);
   return {
     roomBefore,
     roomBehind,
@@ -148,12 +161,15 @@ export function setColumns(needs: ColumnNeeds, span: Mm, pitch: ColumnPitch): Co
   const behind = sum(loads);
   const length = Math.max(span, leastSpan(needs, pitch));
   // Even pitch first, then a share of what is left over.
-  const evened = contactColumns.map((width) => Math.max(width, pitch.usual));
+  const wide = contactColumns.filter((_, column) => isWideColumn(column)).length;
+  const evened = contactColumns.map((width, column) => (isWideColumn(column) ? Math.max(width, pitch.usual) : width));
   const fits = sum(evened) + between + behind <= length;
   const base = fits ? evened : contactColumns;
   const spare = length - sum(base) - between - behind;
-  const stretch = contactColumns.length > 0 && fits ? Math.min(spare / (contactColumns.length + 1), pitch.widest - pitch.usual) : 0;
-  const stretched = base.map((width) => (width >= pitch.widest ? width : Math.min(width + Math.max(0, stretch), pitch.widest)));
+  const stretch = wide > 0 && fits ? Math.min(spare / (wide + 1), pitch.widest - pitch.usual) : 0;
+  const stretched = base.map((width, column) =>
+    width >= pitch.widest || !isWideColumn(column) ? width : Math.min(width + Math.max(0, stretch), pitch.widest),
+  );
   const widths = reachOfEnds(needs, stretched) <= length ? stretched : contactColumns;
   const at: Mm[] = [0];
   for (const width of widths) at.push((at.at(-1) as Mm) + width);

@@ -1,0 +1,121 @@
+import type { NodeId } from "../../machine/model.js";
+import { boundaryOf, type Link, type PointSite, type RungGrid, returnRail } from "./grid.js";
+
+/** A place where a shared point breaks off, to go on elsewhere. */
+export interface Ending {
+  rung: number;
+  node: NodeId;
+  point: string;
+  line: number;
+  /** `start` and `end`: the arrow stands before or behind the rung on its line. `drop`: it hangs below a wire on `boundary`. */
+  kind: "start" | "end" | "drop";
+  boundary: number;
+  /** Nothing stands behind it on its line, so that its text may reach as far as the return rail. */
+  last?: boolean;
+}
+
+/** One connected part of a point's wire within a rung; joined by links, several become one. */
+interface Island {
+  sites: { rung: number; site: PointSite }[];
+  within?: Island;
+}
+
+/**
+ * An ending for every part of every point that is drawn in more than one part, and for every rung that starts or ends in the open.
+ * @param abroad points that are drawn in other circuits too
+ */
+export function findEndings(grids: readonly RungGrid[], links: readonly Link[], abroad: ReadonlySet<string>): Ending[] {
+  const byNode = new Map<NodeId, Island[]>();
+  const byPart = new Map<string, Island>();
+  const partsOfRung = new Map<string, Piece[][]>();
+  const islandAt = (rung: number, node: NodeId, line: number, boundary: number): Island => {
+    const parts = partsOfRung.get(`${rung} ${node}`) ?? partsOf(grids[rung] as RungGrid, node);
+    partsOfRung.set(`${rung} ${node}`, parts);
+    const part = parts.findIndex((pieces) => pieces.some((piece) => holds(piece, { line, boundary })));
+    const key = `${rung} ${node} ${part < 0 ? `at ${line} ${boundary}` : part}`;
+    let island = byPart.get(key);
+    if (!island) {
+      island = { sites: [] };
+      byPart.set(key, island);
+      const list = byNode.get(node);
+      if (list) list.push(island);
+      else byNode.set(node, [island]);
+    }
+    while (island.within) island = island.within;
+    return island;
+  };
+  grids.forEach((grid, rung) => {
+    for (const site of grid.sites) islandAt(rung, site.node, site.line, site.boundary).sites.push({ rung, site });
+  });
+  for (const { node, boundary, from, to } of links) {
+    const upper = islandAt(from.rung, node, from.line, boundary);
+    const lower = islandAt(to.rung, node, to.line, boundary);
+    if (upper === lower) continue;
+    upper.sites.push(...lower.sites);
+    lower.within = upper;
+  }
+  const islands = new Map([...byNode].map(([node, list]) => [node, list.filter(({ within, sites }) => !within && sites.length > 0)]));
+  const joined = new Set(links.flatMap(({ node, boundary, from, to }) => [from, to].map(({ rung }) => `${rung} ${node} ${boundary}`)));
+  const isOpen = (rung: number, { node, boundary, open, cut }: PointSite) =>
+    open !== undefined && (cut === true || !joined.has(`${rung} ${node} ${boundary}`));
+  const endings: Ending[] = [];
+  for (const [node, parts] of islands) {
+    for (const { sites } of parts) {
+      const open = sites.filter(({ rung, site }) => isOpen(rung, site));
+      for (const { rung, site } of open)
+        endings.push({ rung, node, point: site.point, line: site.line, kind: site.open as "start" | "end", boundary: site.boundary });
+      const elsewhere = parts.length > 1 || sites.some(({ site }) => abroad.has(site.point));
+      if (open.length > 0 || !elsewhere) continue;
+      // The lowest place, because no upright goes on down from there.
+      const lowest = sites.reduce((low, next) => (next.rung > low.rung ? next : low));
+      // A rail says itself where it goes on.
+      if (lowest.site.boundary === 0 || lowest.site.boundary === returnRail) continue;
+      const line = bottomOfPart(grids[lowest.rung] as RungGrid, node, lowest.site);
+      endings.push({ rung: lowest.rung, node, point: lowest.site.point, line, kind: "drop", boundary: lowest.site.boundary });
+    }
+  }
+  return endings.sort((a, b) => a.rung - b.rung || a.line - b.line || a.boundary - b.boundary);
+}
+
+interface Piece {
+  line: number;
+  toLine: number;
+  from: number;
+  to: number;
+}
+
+/** The connected parts in which a node is drawn within a rung. */
+function partsOf(grid: RungGrid, node: NodeId): Piece[][] {
+  const pieces: Piece[] = [
+    ...grid.runs
+      .filter((run) => run.node === node)
+      .map((run) => ({ line: run.line, toLine: run.line, from: boundaryOf(run.from), to: boundaryOf(run.to) })),
+    ...grid.uprights
+      .filter((up) => up.node === node)
+      .map((up) => ({ line: up.fromLine, toLine: up.toLine, from: up.boundary, to: up.boundary })),
+  ];
+  const parts: Piece[][] = [];
+  for (const piece of pieces) {
+    const touching = parts.filter((part) =>
+      part.some((other) => piece.line <= other.toLine && other.line <= piece.toLine && piece.from <= other.to && other.from <= piece.to),
+    );
+    for (const part of touching) parts.splice(parts.indexOf(part), 1);
+    parts.push([...touching.flat(), piece]);
+  }
+  return parts;
+}
+
+function holds(piece: Piece, at: { line: number; boundary: number }): boolean {
+  return piece.line <= at.line && at.line <= piece.toLine && piece.from <= at.boundary && at.boundary <= piece.to;
+}
+
+/** The lowest line that an upright through this site reaches. */
+function bottomOfPart(grid: RungGrid, node: NodeId, site: PointSite): number {
+  let line = site.line;
+  for (let before = -1; before !== line; ) {
+    before = line;
+    for (const up of grid.uprights)
+      if (up.node === node && up.boundary === site.boundary && up.fromLine <= line) line = Math.max(line, up.toLine);
+  }
+  return line;
+}
