@@ -1,9 +1,11 @@
 import { startOfCycle } from "../../src/behaviour/start-of-cycle.js";
+import type { Point } from "../../src/drawing/geometry.js";
 import { parse } from "../../src/language/parse.js";
 import { type LadderLayout, layOutLadder } from "../../src/layout/ladder/lay-out-ladder.js";
 import type { CircuitSheet, PageArea } from "../../src/layout/placement.js";
 import { buildMachine } from "../../src/machine/build.js";
 import type { Device, DeviceUse, LadderCircuit, Machine, NodeId } from "../../src/machine/model.js";
+import { usesOf } from "../../src/machine/walk.js";
 import { nodeWorld } from "../../src/node-world.js";
 import { pageArea } from "../../src/sheets/page.js";
 import { symbolForDevice } from "../../src/symbols/choose.js";
@@ -13,6 +15,7 @@ import {
   looseEnds,
   netlistOf,
   outside,
+  portsOf,
   slantedWires,
   symbolOverlaps,
   textOverlaps,
@@ -49,8 +52,12 @@ export function ladderOf(text: string): LaidLadder {
   return { machine, circuit, sheets: laid.sheets, places: new Map(laid.places), page, again };
 }
 
-/** Everything a careful reader would mark on the sheets, as sentences. */
-export function faults({ sheets, page, circuit }: LaidLadder): string[] {
+/**
+ * Everything a careful reader would mark on the sheets, as sentences.
+ * @param crossed how many plain crossings bridges may make
+ */
+export function faults({ sheets, page, circuit }: LaidLadder, crossed = 0): string[] {
+  const plain = sheets.flatMap(crossings).filter((fault) => / cross at /.test(fault));
   return [
     ...sheets.flatMap((sheet) =>
       [
@@ -59,7 +66,7 @@ export function faults({ sheets, page, circuit }: LaidLadder): string[] {
         ...wiresThroughSymbols(sheet),
         ...symbolOverlaps(sheet),
         ...looseEnds(sheet),
-        ...crossings(sheet),
+        ...crossings(sheet).filter((fault) => plain.length > crossed || !plain.includes(fault)),
         ...slantedWires(sheet),
         ...outside(sheet, page.area),
       ].map((fault) => `sheet ${sheet.number}: ${fault}`),
@@ -69,17 +76,26 @@ export function faults({ sheets, page, circuit }: LaidLadder): string[] {
   ];
 }
 
-/** Contacts and loads of the ladder with the nodes on both sides. */
-export function partsOf(circuit: LadderCircuit): { id: string; kind: "contact" | "load" | "through"; from: NodeId; to: NodeId }[] {
-  const found: ReturnType<typeof partsOf> = [];
-  const visit = (path: LadderCircuit["rungs"][number]["path"]) => {
-    for (const item of path.items) {
-      if (item.kind === "parallel") item.branches.forEach(visit);
-      else if (item.kind !== "point") found.push(item);
-    }
-  };
-  for (const rung of circuit.rungs) visit(rung.path);
-  return found;
+interface Part {
+  id: string;
+  from: NodeId;
+  to: NodeId;
+  terminals: readonly [string, string];
+  /** A terminal or a pin of a plug. */
+  pin: string | undefined;
+}
+
+/** What stands in the rungs of the ladder, with the nodes on both sides. */
+export function partsOf(circuit: LadderCircuit): Part[] {
+  return circuit.rungs.flatMap(({ path }) =>
+    [...usesOf(path)].map((use) => ({
+      id: use.id,
+      from: use.from,
+      to: use.to,
+      terminals: use.terminals.value,
+      pin: use.kind === "through" ? use.pin : undefined,
+    })),
+  );
 }
 
 /** Parts that are not drawn exactly once. */
@@ -93,31 +109,54 @@ function misplacedParts(circuit: LadderCircuit, sheets: readonly CircuitSheet[])
   ];
 }
 
-/** Where the wires, read back by geometry alone, join other pins than the machine does. Parts joined by references count as joined. */
+/**
+ * Where the wires, read back by geometry alone, join other pins than the machine does. Which side of a part is which is told
+ * by the terminal numbers printed there, and where it has none either way round will do. Both sides of a terminal are one
+ * node. Parts joined by references count as joined.
+ */
 function wrongNets(circuit: LadderCircuit, sheets: readonly CircuitSheet[]): string[] {
-  const nodeOfPin = new Map<string, NodeId>();
-  const ports = new Map<string, [string, string]>();
-  for (const sheet of sheets) {
-    for (const { part, symbol } of sheet.symbols) {
-      const left = symbol.ports.find(({ direction }) => direction === "left");
-      const right = symbol.ports.find(({ direction }) => direction === "right");
-      if (left && right) ports.set(part, [left.name, right.name]);
-    }
-  }
-  for (const { id, from, to } of partsOf(circuit)) {
-    const [left, right] = ports.get(id) ?? ["?", "?"];
-    nodeOfPin.set(`${id}.${left}`, from);
-    nodeOfPin.set(`${id}.${right}`, to);
-  }
   const found: string[] = [];
   const fuse = circuit.supply.fuse?.name;
+  const parts = new Map(partsOf(circuit).map((part) => [part.id, part]));
   const islands = new Map<NodeId, { referred: boolean; ports: string[] }[]>();
   for (const sheet of sheets) {
     const referring = sheet.strokes.filter(({ role }) => role === "continuation").map(({ path }) => path);
-    for (const group of netlistOf(sheet)) {
-      group.ports = group.ports.filter((pin) => pin !== `${fuse}.in` && pin !== `${fuse}.out`);
-      const nodes = [...new Set(group.ports.map((pin) => nodeOfPin.get(pin)).concat(group.nodes))];
-      if (nodes.length > 1) found.push(`sheet ${sheet.number}: nodes ${nodes.join(", ")} are wired together (${group.ports.join(" ")})`);
+    const groups = netlistOf(sheet);
+    const nodeOfPin = new Map<string, NodeId>();
+    for (const placed of sheet.symbols) {
+      const part = parts.get(placed.part);
+      if (!part) continue;
+      const { from, to, terminals } = part;
+      const [one, other] = portsOf(placed);
+      if (!one || !other) continue;
+      const printed = [one, other].map(({ at }) => terminalAt(sheet, placed.part, at, one.at, other.at));
+      if (terminals[0] !== "" && (printed[0] === undefined || printed[0] === printed[1] || !terminals.includes(printed[0])))
+        found.push(`${placed.part} has ${printed.join(" and ")} printed at its pins`);
+      const drawnAt = (name: string) => groups.find(({ ports }) => ports.includes(`${placed.part}.${name}`))?.nodes[0];
+      const turned = terminals[0] !== "" ? printed[0] === terminals[1] : drawnAt(one.name) === to && from !== to;
+      nodeOfPin.set(`${placed.part}.${one.name}`, turned ? to : from);
+      nodeOfPin.set(`${placed.part}.${other.name}`, turned ? from : to);
+    }
+    // A terminal joins what is wired to both its sides.
+    const passed = new Map<string, string>();
+    for (const { id, pin } of parts.values()) if (pin !== undefined) passed.set(`${id}.in`, `${id}.out`);
+    const joined = groups.slice();
+    for (const [one, other] of passed) {
+      const a = joined.findIndex(({ ports }) => ports.includes(one));
+      const b = joined.findIndex(({ ports }) => ports.includes(other));
+      if (a < 0 || b < 0 || a === b) continue;
+      const [first, second] = [joined[a], joined[b]] as [(typeof groups)[number], (typeof groups)[number]];
+      joined[a] = {
+        nodes: [...new Set([...first.nodes, ...second.nodes])],
+        ports: [...first.ports, ...second.ports],
+        wires: [...first.wires, ...second.wires],
+      };
+      joined.splice(b, 1);
+    }
+    for (const group of joined) {
+      const ports = group.ports.filter((pin) => pin !== `${fuse}.in` && pin !== `${fuse}.out`);
+      const nodes = [...new Set(ports.map((pin) => nodeOfPin.get(pin)).concat(group.nodes))];
+      if (nodes.length > 1) found.push(`sheet ${sheet.number}: nodes ${nodes.join(", ")} are wired together (${ports.join(" ")})`);
       const [node] = nodes;
       if (node === undefined) continue;
       const referred = group.wires.some(
@@ -125,7 +164,7 @@ function wrongNets(circuit: LadderCircuit, sheets: readonly CircuitSheet[]): str
           role === "rail" ||
           points.some((point) => referring.some((path) => path.some(({ x, y }) => Math.hypot(x - point.x, y - point.y) < 0.02))),
       );
-      islands.set(node, [...(islands.get(node) ?? []), { referred, ports: group.ports }]);
+      islands.set(node, [...(islands.get(node) ?? []), { referred, ports }]);
     }
   }
   for (const [node, parts] of islands) {
@@ -134,4 +173,13 @@ function wrongNets(circuit: LadderCircuit, sheets: readonly CircuitSheet[]): str
       if (!referred) found.push(`node ${node} is drawn in ${parts.length} parts, and ${ports.join(" ")} does not say where it goes on`);
   }
   return found;
+}
+
+/** The terminal number of a part printed nearer to this pin than to its other one. */
+function terminalAt(sheet: CircuitSheet, part: string, at: Point, ...pins: Point[]): string | undefined {
+  const away = (point: Point, text: Point) => Math.hypot(point.x - text.x, point.y - text.y);
+  const found = sheet.texts.find(
+    (text) => text.role === "terminal" && text.part === part && pins.every((pin) => away(at, text.at) <= away(pin, text.at)),
+  );
+  return typeof found?.text === "string" ? found.text : undefined;
 }

@@ -39,7 +39,11 @@ export function findBridges(rungs: readonly Rung[], letters: ReadonlySet<string>
 }
 
 /** Whether a bridge must be read from its end to be drawn from left to right between the uprights it can join. */
-export function runsBack({ rung, nodes: [first, second] }: Bridge, boundaryOf: (node: NodeId) => number | undefined, free: number): boolean {
+export function runsBack(
+  { rung, nodes: [first, second] }: Bridge,
+  boundaryOf: (node: NodeId) => number | undefined,
+  free: number,
+): boolean {
   const [one, other] = [boundaryOf(first), boundaryOf(second)];
   if (other === undefined) return false;
   return one !== undefined ? one > other : reachOf(rung).end(rung.path.items, free) > other;

@@ -55,16 +55,20 @@ export function findEndings(grids: readonly RungGrid[], links: readonly Link[], 
     lower.within = upper;
   }
   const islands = new Map([...byNode].map(([node, list]) => [node, list.filter(({ within, sites }) => !within && sites.length > 0)]));
-  const joined = new Set(links.flatMap(({ node, boundary, from, to }) => [from, to].map(({ rung }) => `${rung} ${node} ${boundary}`)));
-  const isOpen = (rung: number, { node, boundary, open, cut }: PointSite) =>
-    open !== undefined && (cut === true || !joined.has(`${rung} ${node} ${boundary}`));
+  const arrives = new Set(links.map(({ node, boundary, to }) => `${to.rung} ${node} ${boundary}`));
+  const leaves = new Set(links.map(({ node, boundary, from }) => `${from.rung} ${node} ${boundary}`));
+  const isJoined = (rung: number, { node, boundary }: PointSite) =>
+    arrives.has(`${rung} ${node} ${boundary}`) || leaves.has(`${rung} ${node} ${boundary}`);
   const endings: Ending[] = [];
   for (const [node, parts] of islands) {
     for (const { sites } of parts) {
-      const open = sites.filter(({ rung, site }) => isOpen(rung, site));
+      const elsewhere = parts.length > 1 || sites.some(({ site }) => abroad.has(site.point));
+      // Wire that only goes on down from where a rung begins comes from elsewhere, if it is drawn there at all.
+      const comes = ({ rung, site }: (typeof sites)[number]) =>
+        elsewhere && site.open === "start" && !arrives.has(`${rung} ${node} ${site.boundary}`);
+      const open = sites.filter((place) => place.site.open && (place.site.cut || !isJoined(place.rung, place.site) || comes(place)));
       for (const { rung, site } of open)
         endings.push({ rung, node, point: site.point, line: site.line, kind: site.open as "start" | "end", boundary: site.boundary });
-      const elsewhere = parts.length > 1 || sites.some(({ site }) => abroad.has(site.point));
       if (open.length > 0 || !elsewhere) continue;
       // The lowest place, because no upright goes on down from there.
       const lowest = sites.reduce((low, next) => (next.rung > low.rung ? next : low));

@@ -28,6 +28,7 @@ const rounds = 16;
 /**
  * Places and measures the rungs. Where many are wider than the sheet the symbols take the smaller module; a rung that is
  * still too wide, or taller than a sheet, is cut and goes on with a letter.
+ * @param abroad points that are drawn in other circuits too
  */
 export function fitRungs(
   circuit: LadderCircuit,
@@ -35,7 +36,7 @@ export function fitRungs(
   rails: readonly NodeId[],
   offer: { span: Mm; depth: Mm },
   arrange: (scale: number) => Arrangement,
-  abroad: ReadonlySet<string> = new Set(),
+  abroad: ReadonlySet<string>,
 ): FittedRungs {
   const split = splitWires(written, rails);
   const rungs = split.rungs.map((rung) => alongRails(rung, split.rails));
@@ -131,7 +132,8 @@ function columnsOf(grid: RungGrid): number {
   return Math.max(0, ...boundaries.filter((boundary) => boundary < loadColumn)) / stride;
 }
 
-function pointsOf(rung: Rung): string[] {
+/** The points that a rung names. */
+export function pointsOf(rung: Rung): string[] {
   const inside = (path: Rung["path"]): string[] =>
     path.items.flatMap((item) => (item.kind === "point" ? [item.point] : item.kind === "parallel" ? item.branches.flatMap(inside) : []));
   return [...[rung.start, rung.end].flatMap((end) => (end.kind === "point" ? [end.point] : [])), ...inside(rung.path)];

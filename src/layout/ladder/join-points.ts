@@ -148,4 +148,3 @@ function lastUses(rungs: readonly Rung[], letters: ReadonlySet<string>): Map<Nod
   });
   return last;
 }
-

@@ -1,14 +1,16 @@
 import type { PartId } from "../../drawing/marks.js";
 import type { DeviceUse, LadderCircuit, Machine, NodeId } from "../../machine/model.js";
+import { laddersOf } from "../../machine/walk.js";
 import type { SymbolLibrary } from "../../symbols/library.js";
 import type { Symbol } from "../../symbols/symbol.js";
 import { type CircuitSheet, emptySheet, type PageArea, type Place } from "../placement.js";
 import { breakSheets, type RungSheet } from "./break-sheets.js";
 import { drawLadder } from "./draw-ladder.js";
-import { fitRungs } from "./fit-rungs.js";
+import { fitRungs, pointsOf } from "./fit-rungs.js";
 import type { Link } from "./grid.js";
 import type { RailEnd } from "./plan.js";
 import { planNorthAmerican } from "./plan-north-american.js";
+import { prepareSymbol } from "./prepare-symbol.js";
 import { leastSpan, setColumns } from "./set-columns.js";
 
 /** The numbers a ladder's first sheet and first line get. */
@@ -42,12 +44,13 @@ export function layOutLadder(
   const rails = railNodes(circuit, machine);
   const { rungs } = circuit;
   if (rungs.length === 0) return { sheets: [], places: [], nextLine: numbering.line };
-  const plan = planNorthAmerican({ circuit, machine, symbolOf, symbols, room: page.area });
+  const prepared = (use: DeviceUse) => prepareSymbol(symbolOf(use), use, machine.devices.get(use.device));
+  const plan = planNorthAmerican({ circuit, machine, symbolOf: prepared, symbols, room: page.area });
 
   // 1. Every part has a column and a line on the grid, shared points are joined or end in a reference, every text is
   //    measured, and no rung needs more than a sheet offers.
   const offer = { span: plan.span, depth: Math.min(plan.first, plan.next) };
-  const { joined, measured, arrangement, breaks } = fitRungs(circuit, rungs, rails, offer, plan.arrange);
+  const { joined, measured, arrangement, breaks } = fitRungs(circuit, rungs, rails, offer, plan.arrange, pointsElsewhere(circuit, machine));
   // 2. Every rung is whole on one sheet; line numbers are known.
   const broken = breakSheets(
     measured,
@@ -102,6 +105,15 @@ export function layOutLadder(
 
 function railNodes(circuit: LadderCircuit, machine: Machine): [NodeId, NodeId] {
   return circuit.supply.rails.map((rail) => machine.potentials.find((potential) => potential.rail === rail)?.id ?? -1) as [NodeId, NodeId];
+}
+
+/** The points that other ladders use. */
+function pointsElsewhere(circuit: LadderCircuit, machine: Machine): Set<string> {
+  return new Set(
+    laddersOf(machine)
+      .filter((other) => other !== circuit)
+      .flatMap(({ rungs }) => rungs.flatMap(pointsOf)),
+  );
 }
 
 /** The links that begin, end or both on each sheet. */

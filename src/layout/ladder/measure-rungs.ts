@@ -20,8 +20,8 @@ export interface MeasuredRung {
   numbers: NumberPlace[];
   margins: { line: number; block: Block }[];
   endings: MeasuredEnding[];
-  /** Boundaries on which wire comes to it or goes past it from other rungs. */
-  passes: number[];
+  /** Boundaries on which wire comes to it or goes past it from other rungs, with the point it leads from. */
+  passes: ReadonlyMap<number, string>;
   /** Room each line needs before and behind it, across. */
   lines: LineRoom[];
 }
@@ -50,8 +50,11 @@ export function measureRungs(
   tight: (rung: number) => boolean,
 ): MeasuredRung[] {
   const endingsOf = groupBy(endings, (ending) => ending.rung);
-  const passes = grids.map(() => new Set<number>());
-  for (const { boundary, from, to } of links) for (let rung = from.rung; rung <= to.rung; rung++) passes[rung]?.add(boundary);
+  const passes = grids.map(() => new Map<number, string>());
+  for (const { node, boundary, from, to } of links) {
+    const point = grids[from.rung]?.sites.find((site) => site.node === node)?.point ?? "";
+    for (let rung = from.rung; rung <= to.rung; rung++) passes[rung]?.set(boundary, point);
+  }
   const comings = uprightsAt(links);
   return grids.map((grid, index) => {
     const dressed = new Map(grid.cells.map((cell) => [cell, arrangement.dress(cell.use, tight(index))]));
@@ -75,7 +78,7 @@ export function measureRungs(
     const numbers = placeNumbers(grid, rails, comings.get(index) ?? [], own);
     for (const { node, line, beside } of numbers) claim(line, arrangement.wireNumber(node, beside)?.above ?? 0, 0);
     const leads = own.map((ending) => ({ ...ending, lead: leadOf(ending, numbers, arrangement) }));
-    return { grid, dressed, numbers, margins, endings: leads, passes: [...(passes[index] ?? [])], lines };
+    return { grid, dressed, numbers, margins, endings: leads, passes: passes[index] ?? new Map(), lines };
   });
 }
 
@@ -111,12 +114,7 @@ function leadOf({ kind, line, boundary }: Ending, numbers: readonly NumberPlace[
 }
 
 /** The number of each potential stands once in a rung: on the uppermost of its wires, as near to its source as it can. */
-function placeNumbers(
-  grid: RungGrid,
-  rails: ReadonlySet<NodeId>,
-  comings: readonly Coming[],
-  endings: readonly Ending[],
-): NumberPlace[] {
+function placeNumbers(grid: RungGrid, rails: ReadonlySet<NodeId>, comings: readonly Coming[], endings: readonly Ending[]): NumberPlace[] {
   const best = new Map<NodeId, NumberPlace>();
   for (const run of grid.runs) {
     if (rails.has(run.node)) continue;

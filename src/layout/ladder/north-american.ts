@@ -68,7 +68,7 @@ export function northAmerican({ machine, symbolOf, margin, scale }: NorthAmerica
       room: endingRoom(point),
       at: { x: endingSize.half + 0.8, y: 0 },
       anchor: "start",
-      along: 0,
+      along: endingSize.half + 0.8 + endingRoom(point),
       across: 0,
       // Above the words that say where the rails go on.
       fromRailEnd: end === "foot" ? 4.5 : 0,

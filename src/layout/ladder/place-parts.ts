@@ -45,7 +45,13 @@ export function placeRung(rung: Rung, ends: RungEnds): RungGrid {
   return grid;
 
   /** Places a path from boundary to boundary and says how many lines it took. */
-  function placeSeries(series: SeriesPath, line: number, from: number, to: number, where: "main" | "beside loads" | "among contacts"): number {
+  function placeSeries(
+    series: SeriesPath,
+    line: number,
+    from: number,
+    to: number,
+    where: "main" | "beside loads" | "among contacts",
+  ): number {
     const at = where === "among contacts" ? -1 : placeOfLoad(series, where === "beside loads");
     if (at < 0) return follow(series.items, series.from, series.to, line, { boundary: from }, from, to);
     const head = series.items.slice(0, at);
@@ -233,8 +239,6 @@ export function placeOfLoad(series: SeriesPath, beside: boolean): number {
   const load = lastLoad(series);
   if (load >= 0 || !beside) return load;
   return series.items.findLastIndex((item) =>
-    item.kind === "parallel"
-      ? item.branches.every((branch) => placeOfLoad(branch, true) >= 0)
-      : item.kind === "through" && !isNarrow(item),
+    item.kind === "parallel" ? item.branches.every((branch) => placeOfLoad(branch, true) >= 0) : item.kind === "through" && !isNarrow(item),
   );
 }

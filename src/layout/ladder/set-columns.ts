@@ -79,7 +79,11 @@ export function withNeeds(
     widen(needs.labels, cell.column, label);
     reach(cell.column + 1);
   }
-  for (const boundary of passes) reach(boundary);
+  for (const [boundary, point] of passes) {
+    reach(boundary);
+    // Should a sheet end here, the wire's reference stands beside it.
+    if (boundary < loadColumn) widen(needs.ends, boundary, arrangement.broken("foot", point).along + beside);
+  }
   for (const run of grid.runs) for (const stop of [run.from, run.to]) reach(boundaryOf(stop));
   for (const { node, boundary, beside } of numbers) {
     const number = arrangement.wireNumber(node, beside);
