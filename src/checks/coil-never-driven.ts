@@ -11,8 +11,8 @@ export const coilNeverDriven = rule<{ device: string }>({
     networks.gaps
       ? []
       : [...machine.devices.values()]
-          .filter(
-            ({ kind, loads, contacts }) => deviceRoles[kind].load && kind !== "solenoid" && loads.length === 0 && contacts.length === 0,
-          )
+          .filter(({ kind, loads, contacts }) => deviceRoles[kind].load && kind !== "solenoid" && loads.length + contacts.length === 0)
+          // A lamp or a heater may stand in a power circuit alone; a contactor there still needs its coil driven.
+          .filter(({ kind, mains }) => kind === "contactor" || mains.length === 0)
           .map(({ name, at }) => ({ device: name, at })),
 });

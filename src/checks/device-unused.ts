@@ -4,7 +4,7 @@ import { rule } from "./rule.js";
 export const deviceUnused = rule<{ device: string }>({
   code: "device-unused",
   severity: "note",
-  says: ({ device }) => `${device} is declared, but no rung uses it.`,
+  says: ({ device }) => `${device} is declared, but no circuit uses it.`,
   find: ({ machine, networks }) => {
     if (networks.gaps || networks.rungs.length === 0) return [];
     const needed = new Set<string>();
@@ -14,7 +14,8 @@ export const deviceUnused = rule<{ device: string }>({
     for (const { drivenBy } of machine.components.values()) if (drivenBy !== undefined) needed.add(drivenBy);
     return [...machine.devices.values()]
       .filter(
-        ({ name, kind, contacts, throughs }) => !deviceRoles[kind].load && contacts.length + throughs.length === 0 && !needed.has(name),
+        ({ name, kind, contacts, throughs, mains }) =>
+          !deviceRoles[kind].load && contacts.length + throughs.length + mains.length === 0 && !needed.has(name),
       )
       .map(({ name, at }) => ({ device: name, at }));
   },

@@ -5,8 +5,10 @@ import { nearest } from "./nearest.js";
 import type { SourceText } from "./source-text.js";
 import type { Problem } from "./token.js";
 import type {
+  BranchStatement,
   Declaration,
   DrawingBlock,
+  FeedStatement,
   FluidBlock,
   Item,
   LadderBlock,
@@ -16,12 +18,12 @@ import type {
   PathItem,
   PathReference,
   PlugStatement,
+  PowerBlock,
   Rung,
   SequenceBlock,
   Series,
   SheetBreak,
   Statement,
-  UnsupportedBlock,
   Word,
 } from "./tree.js";
 import { parseNumber, parseQuantity } from "./units.js";
@@ -103,15 +105,18 @@ class Conversion {
       case "Sequence":
         this.keep(this.sequence(node));
         break;
-      case "Unsupported":
-        this.keep(this.unsupported(node));
+      case "Power":
+        this.power(node);
         break;
       case "Declaration":
         this.keep(this.declaration(node));
         break;
       case "SheetBreak":
       case "Rung":
-        this.misplaced(node, node.keyword, "belongs between the rungs of a ladder or the statements of a fluid circuit");
+        this.misplaced(node, node.keyword, "belongs between the rungs of a ladder or the statements of another circuit");
+        break;
+      case "PowerLine":
+        this.misplaced(node, node.keyword, "belongs inside a power circuit", 'Put it within power "…" 400 V AC 3 phase { … }.');
         break;
       case "Line":
       case "Plug":
@@ -180,7 +185,28 @@ class Conversion {
         if (declaration) block.statements.push(declaration);
       } else if (statement.$type === "Line" || statement.$type === "Plug")
         this.misplaced(statement, statement.keyword, "belongs inside a fluid circuit");
+      else if (statement.$type === "PowerLine") this.misplaced(statement, statement.keyword, "belongs inside a power circuit");
       else this.lift(statement, "ladder");
+    }
+  }
+
+  private power(node: Syntax.Power): void {
+    const { title, rest } = this.head(node, node.head);
+    const block: PowerBlock = { kind: "power", ...(title && { title }), items: rest, statements: [], ...this.located(node) };
+    this.statements.push(block);
+    this.expectBlock(node);
+    for (const statement of node.statements) {
+      if (statement.$type === "PowerLine")
+        block.statements.push(statement.keyword === "feed" ? this.feed(statement) : this.branch(statement));
+      else if (statement.$type === "SheetBreak") block.statements.push(this.sheetBreak(statement));
+      else if (statement.$type === "Declaration") {
+        const declaration = this.declaration(statement);
+        if (declaration) block.statements.push(declaration);
+      } else if (statement.$type === "Rung")
+        this.misplaced(statement, "rung", "belongs inside a ladder", 'A line of a power circuit is a "branch".');
+      else if (statement.$type === "Line" || statement.$type === "Plug")
+        this.misplaced(statement, statement.keyword, "belongs inside a fluid circuit");
+      else this.lift(statement, "power");
     }
   }
 
@@ -200,12 +226,13 @@ class Conversion {
         const declaration = this.declaration(statement);
         if (declaration) block.statements.push(declaration);
       } else if (statement.$type === "Rung") this.misplaced(statement, "rung", "belongs inside a ladder");
+      else if (statement.$type === "PowerLine") this.misplaced(statement, statement.keyword, "belongs inside a power circuit");
       else this.lift(statement, "fluid");
     }
   }
 
   /** Without its braces a circuit is empty, and what was meant for it stands beside it. */
-  private expectBlock(node: Syntax.Ladder | Syntax.Fluid): void {
+  private expectBlock(node: Syntax.Ladder | Syntax.Power | Syntax.Fluid): void {
     const { start, end } = this.extent(node);
     if (
       node.statements.length > 0 ||
@@ -215,7 +242,7 @@ class Conversion {
         .includes("{")
     )
       return;
-    const what = node.keyword === "ladder" ? "rungs" : "components and lines";
+    const what = { ladder: "rungs", power: "branches", fluid: "components and lines" }[node.keyword];
     this.report(
       "block-missing",
       { start, end: start + node.keyword.length },
@@ -226,7 +253,7 @@ class Conversion {
 
   /** A block that stands in another: it is understood as if it stood behind it. */
   private lift(
-    node: Syntax.Drawing | Syntax.Include | Syntax.Ladder | Syntax.Fluid | Syntax.Sequence | Syntax.Unsupported,
+    node: Syntax.Drawing | Syntax.Include | Syntax.Ladder | Syntax.Power | Syntax.Fluid | Syntax.Sequence,
     within: string,
   ): void {
     this.misplaced(node, node.keyword, `cannot stand inside "${within}"`, `Put it outside the braces of "${within}".`);
@@ -242,11 +269,6 @@ class Conversion {
       if (items.length > 0) steps.push({ at: this.range(step), items });
     }
     return { kind: node.keyword, ...(title && { title }), steps, ...this.located(node) };
-  }
-
-  private unsupported(node: Syntax.Unsupported): UnsupportedBlock {
-    const extent = this.extent(node);
-    return { kind: "unsupported", keyword: this.keyword(extent.start, node.keyword), ...this.located(node) };
   }
 
   private sheetBreak(node: Syntax.SheetBreak): SheetBreak {
@@ -383,6 +405,114 @@ class Conversion {
     };
   }
 
+  // ------------------------------------------------------------ power circuits
+
+  private feed(node: Syntax.PowerLine): FeedStatement {
+    const { conductors, path } = this.powerLine(node);
+    const arrow = path.findIndex((item) => item.$type === "Arrow");
+    const before = arrow < 0 ? path : path.slice(0, arrow);
+    const behind = arrow < 0 ? [] : path.slice(arrow + 1);
+    if (arrow >= 0 && behind.length === 0)
+      this.report(
+        "load-missing",
+        this.extent(path[arrow] as Syntax.Arrow),
+        'Nothing stands behind this "->".',
+        "Name what taps the busbars, as in -> Q1, T1.",
+      );
+    const taps: PathReference[] = [];
+    let due = true;
+    for (const item of behind) {
+      if (item.$type === "Comma") {
+        if (due) this.report("end-missing", this.extent(item), 'A name is missing before ",".');
+        due = true;
+      } else if (item.$type === "Reference") {
+        if (!due)
+          this.report(
+            "comma-missing",
+            this.extent(item),
+            'A "," is missing before this name.',
+            "What taps the busbars is listed with commas; what stands behind it belongs in its branch.",
+          );
+        taps.push(this.reference(item));
+        due = false;
+      } else this.strayInPower(item);
+    }
+    const last = behind.at(-1);
+    if (last?.$type === "Comma") this.report("end-missing", this.extent(last), 'A name is missing behind ",".');
+    return { kind: "feed", conductors, path: this.powerSeries(before, this.extent(node).end), taps, ...this.located(node) };
+  }
+
+  private branch(node: Syntax.PowerLine): BranchStatement {
+    const title = node.title && this.text(node.title);
+    const { conductors, path } = this.powerLine(node);
+    return {
+      kind: "branch",
+      ...(title && { title }),
+      conductors,
+      path: this.powerSeries(path, this.extent(node).end),
+      ...this.located(node),
+    };
+  }
+
+  /** What stands before the colon of a feed or a branch, and what behind it. */
+  private powerLine(node: Syntax.PowerLine): { conductors: Word[]; path: Syntax.PowerItem[] } {
+    const colon = node.items.findIndex((item) => item.$type === "Colon");
+    const bare = colon < 0 && node.keyword === "feed" && node.items.every((item) => item.$type === "Reference");
+    if (colon < 0 && !bare) {
+      const { start } = this.extent(node);
+      const end = node.title ? this.extent(node.title).end : start + node.keyword.length;
+      this.report(
+        "colon-missing",
+        { start: end - 1, end },
+        `A ":" is missing before the path of this ${node.keyword}.`,
+        'Write it as in branch "Pump": FU1 KM1 OL1 -> M1.',
+      );
+      return { conductors: [], path: node.items };
+    }
+    const conductors: Word[] = [];
+    for (const item of bare ? node.items : node.items.slice(0, colon)) {
+      if (item.$type === "Reference" && !item.negated) conductors.push({ text: item.name, at: this.range(item) });
+      else
+        this.report(
+          "unexpected-symbol",
+          this.extent(item),
+          `Only conductors stand before the colon of a ${node.keyword}.`,
+          "Write them as in L1 L2 L3 PE.",
+        );
+    }
+    return { conductors, path: bare ? [] : node.items.slice(colon + 1) };
+  }
+
+  private powerSeries(items: readonly Syntax.PowerItem[], place: number): Series {
+    const path = items.filter((item): item is Syntax.PathItem => {
+      if (item.$type !== "Comma" && item.$type !== "Colon") return true;
+      this.strayInPower(item);
+      return false;
+    });
+    return this.series(path, place);
+  }
+
+  private strayInPower(node: Syntax.PowerItem): void {
+    if (node.$type === "Stray") this.strayInPath(node);
+    else if (node.$type === "Arrow")
+      this.report(
+        "arrow-twice",
+        this.extent(node),
+        'A second "->" stands in the same line.',
+        "What is driven stands at the end of a branch.",
+      );
+    else {
+      const { start, end } = this.extent(node);
+      const written = this.source.text.slice(start, end);
+      this.report(
+        "unexpected-symbol",
+        { start, end },
+        `"${written}" has no place here.`,
+        written === "," ? "Things in series stand side by side." : undefined,
+      );
+    }
+  }
+
   // ------------------------------------------------------------ fluid lines
 
   private line(node: Syntax.Line): LineStatement {
@@ -449,6 +579,7 @@ class Conversion {
       first?.kind === "word" &&
       node.$type !== "Include" &&
       node.$type !== "Fluid" &&
+      node.$type !== "Power" &&
       !(node.$type === "Ladder" && first.text === "supply")
     ) {
       this.report("text-not-quoted", this.extentOfRange(first.at), `${what} stands in quotation marks.`, `Write "${first.text}".`);

@@ -1,4 +1,4 @@
-import { isKeyword, lineKeywords, topKeywords } from "./keywords.js";
+import { isKeyword, lineKeywords, powerKeywords, topKeywords } from "./keywords.js";
 import { nearest } from "./nearest.js";
 import { matchEnd, type Shape, skipBalanced, unclosedBraces } from "./scan.js";
 import type { Problem, Token, Tokens } from "./token.js";
@@ -10,7 +10,7 @@ export const deepestNesting = 64;
  * What the braces around the current place hold. `through` braces were not due: their contents are read as if the braces were
  * not there.
  */
-type BlockKind = "file" | "circuit" | "fluid" | "drawing" | "sequence" | "items";
+type BlockKind = "file" | "circuit" | "power" | "fluid" | "drawing" | "sequence" | "items";
 
 interface Block {
   kind: BlockKind;
@@ -36,8 +36,8 @@ interface StatementState {
   first: number;
   indent: number;
   /** What its braces would hold; absent if it takes none. */
-  takes?: BlockKind | "skipped";
-  /** Rungs: whether the colon has been. */
+  takes?: BlockKind;
+  /** Rungs, feeds and branches: whether the colon has been. */
   colon: boolean;
   /** Lines: whether an end is due, and the sign it is due behind; `done` once the words behind the ends begin. */
   due: boolean;
@@ -186,7 +186,7 @@ class Lexing {
    */
   private mustHaveEnded(block: Block, column: number): boolean {
     const line = this.text.slice(this.at, this.at + 200);
-    if (block.kind === "items" && /^(?:rung[ \t]*[":]|sheet[ \t]*")/.test(line)) return true;
+    if (block.kind === "items" && /^(?:(?:rung|branch)[ \t]*[":]|sheet[ \t]*")/.test(line)) return true;
     const outdented = block.contentIndent !== undefined && block.contentIndent > block.indent && column <= block.indent;
     const opensBlock = /^(?:(?:drawing|include|ladder|fluid|cycle|trial|power)[ \t]*"|supply[ \t]+[\w-]+[ \t]+\d)/.test(line);
     if (opensBlock && (outdented || block.kind === "items")) return true;
@@ -196,7 +196,7 @@ class Lexing {
   /** Whether the line at this offset can only be a new statement. */
   private opensStatement(at: number, kind: StatementKind): boolean {
     const line = this.text.slice(at, at + 200);
-    if (/^(?:rung[ \t]*[":]|(?:drawing|include|ladder|fluid|cycle|trial|power|sheet)[ \t]*")/.test(line)) return true;
+    if (/^(?:(?:rung|branch)[ \t]*[":]|(?:drawing|include|ladder|fluid|cycle|trial|power|sheet)[ \t]*")/.test(line)) return true;
     if (kind === "ends" && /^(?:line|pilot|drain|exhaust|plug)[ \t]+[\w@]/.test(line)) return true;
     return (kind === "ends" || kind === "path") && /^[a-z][a-z-]*[ \t]+[\w-]+[ \t]*"/.test(line);
   }
@@ -254,14 +254,16 @@ class Lexing {
     if (isKeyword(word)) return word === "plug" && holder !== "fluid" ? undefined : word;
     // A declaration has a name behind its kind: a text or a colon there tells a misspelt keyword, and so does `--` behind one more word.
     const rest = this.text.slice(end, end + 200);
-    if (/^[ \t]*:(?:[ \t]|$)/m.test(rest)) return nearest(word, ["rung"]);
-    if (/^[ \t]*"/.test(rest)) return nearest(word, [...topKeywords, "sheet", "rung"]);
+    const lines = holder === "power" ? powerKeywords : ["rung"];
+    if (/^[ \t]*:(?:[ \t]|$)/m.test(rest)) return nearest(word, lines);
+    if (/^[ \t]*"/.test(rest)) return nearest(word, [...topKeywords, "sheet", ...lines]);
+    if (holder === "power" && /^[ \t]+[^"#{}\r\n]*:(?:[ \t]|$)/m.test(rest)) return nearest(word, lines);
     if (/^[ \t]+@?[\w.]+[ \t]*--/.test(rest)) return nearest(word, lineKeywords);
     return undefined;
   }
 
   private prepare(statement: StatementState, keyword: string): void {
-    if (keyword === "rung") statement.kind = "path";
+    if (keyword === "rung" || powerKeywords.includes(keyword)) statement.kind = "path";
     else if (keyword === "plug" || lineKeywords.includes(keyword)) {
       statement.kind = "ends";
       statement.due = true;
@@ -270,7 +272,7 @@ class Lexing {
     else if (keyword === "ladder") statement.takes = "circuit";
     else if (keyword === "fluid") statement.takes = "fluid";
     else if (keyword === "cycle" || keyword === "trial") statement.takes = "sequence";
-    else if (keyword === "power") statement.takes = "skipped";
+    else if (keyword === "power") statement.takes = "power";
   }
 
   /** Something that can begin no statement: reported and left out with what follows it in the line. */
@@ -314,17 +316,6 @@ class Lexing {
     const statement = this.statement;
     const open = this.at;
     if (this.tooDeep(open)) return;
-    if (statement?.takes === "skipped") {
-      const { end, closed } = skipBalanced(this.text, open, (line) => this.missingBraces > 0 && this.opensStatement(line, "items"));
-      if (!closed) {
-        this.missingBraces--;
-        this.reportBlockOpen(statement.keyword, open, statement.keywordStart);
-      }
-      this.emit("SKIPPED", open, end);
-      this.at = end;
-      this.endStatement();
-      return;
-    }
     this.at++;
     if (statement?.takes && statement.brackets.length === 0) {
       if (statement.kind === "ends" && statement.due) this.reportEndMissing(statement, this.tokens[this.tokens.length - 1] as Token);
@@ -464,7 +455,8 @@ class Lexing {
   private readPath(statement: StatementState): void {
     const start = this.at;
     const isFirst = this.tokens.length === statement.first + 1;
-    if (!statement.colon && isFirst && this.char !== '"') this.readBareTitle();
+    const power = powerKeywords.includes(statement.keyword);
+    if (!power && !statement.colon && isFirst && this.char !== '"') this.readBareTitle();
     if (this.at !== start) return;
     const two = this.text.slice(start, start + 2);
     if (this.char === "(") this.openBracket(statement);
@@ -476,12 +468,16 @@ class Lexing {
       this.emit("->", start, start + 2);
       this.at += 2;
     } else if (this.char === "/") this.readSlash();
-    else if (this.char === ":" && !statement.colon && this.atColon(statement)) {
+    else if (this.char === ":" && !statement.colon && (power || this.atColon(statement))) {
       statement.colon = true;
       this.emit(":", start, start + 1);
       this.at++;
+    } else if (this.char === "," && power && statement.brackets.length === 0) {
+      this.emit(",", start, start + 1);
+      this.at++;
     } else if (this.char === '"') this.readText();
     else if (this.char === "@") this.readPoint();
+    else if (power && !statement.colon && this.match("name") > 0) this.readConductor();
     else if (this.match("name") > 0) this.readWord("name");
     else if (!this.readUnknown()) this.readSymbol();
   }
@@ -642,6 +638,15 @@ class Lexing {
     this.at = end;
   }
 
+  /** A conductor before the colon of a feed or a branch: what is glued to it is the colon, not terminals. */
+  private readConductor(): void {
+    const start = this.at;
+    const end = this.match("name");
+    const sign = this.match("strokeSign", end);
+    this.at = Math.max(end, sign);
+    this.emit("WORD", start, this.at);
+  }
+
   private readPoint(): void {
     const start = this.at;
     const end = this.match("point");
@@ -721,7 +726,7 @@ class Lexing {
 }
 
 /** How a statement may begin. */
-const firstWords: Partial<Record<BlockKind, string>> = { fluid: '"line" or "valve V1"', circuit: '"rung:"' };
+const firstWords: Partial<Record<BlockKind, string>> = { fluid: '"line" or "valve V1"', circuit: '"rung:"', power: '"feed" or "branch"' };
 
 const signHints: [string, string][] = [
   [";", "A statement ends with its line."],

@@ -36,14 +36,7 @@ export type Item =
   | ({ kind: "quantity"; quantity: Quantity; text: string } & Located)
   | ({ kind: "symbol"; text: string } & Located);
 
-export type Statement =
-  | DrawingBlock
-  | Declaration
-  | LadderBlock
-  | FluidBlock
-  | SequenceBlock
-  /** A block this edition reads past: `power`. The machine builder rejects it as not yet supported. */
-  | UnsupportedBlock;
+export type Statement = DrawingBlock | Declaration | LadderBlock | PowerBlock | FluidBlock | SequenceBlock;
 
 export interface DrawingBlock extends Located {
   kind: "drawing";
@@ -118,6 +111,30 @@ export interface PathPoint extends Located {
   name: string;
 }
 
+export interface PowerBlock extends Located {
+  kind: "power";
+  title?: Word;
+  /** Behind the title: `400 V AC 3 phase 50 Hz`, uninterpreted. */
+  items: Item[];
+  statements: (FeedStatement | BranchStatement | SheetBreak | Declaration)[];
+}
+
+/** `feed L1 L2 L3 PE: QS1 -> Q1, T1`: what the current passes on its way to the busbars, and what taps them. */
+export interface FeedStatement extends Located {
+  kind: "feed";
+  conductors: Word[];
+  path: Series;
+  taps: PathReference[];
+}
+
+/** `branch "Pump" L1 L2 L3: FU2 KM1 OL1 -> M1`; no conductors are written where it has those of the busbars. */
+export interface BranchStatement extends Located {
+  kind: "branch";
+  title?: Word;
+  conductors: Word[];
+  path: Series;
+}
+
 export interface FluidBlock extends Located {
   kind: "fluid";
   title?: Word;
@@ -151,9 +168,4 @@ export interface SequenceBlock extends Located {
   kind: "cycle" | "trial";
   title?: Word;
   steps: { at: SourceRange; items: Item[] }[];
-}
-
-export interface UnsupportedBlock extends Located {
-  kind: "unsupported";
-  keyword: Word;
 }

@@ -23,6 +23,7 @@ import type {
 } from "./model.js";
 import { Names } from "./names.js";
 import { numberPotentials } from "./potentials.js";
+import { PowerBuilder } from "./power.js";
 import { capital, didYouMean, listed, Report, withArticle } from "./report.js";
 import { RungBuilder } from "./rungs.js";
 import { linkSupplies, readSupply, type SupplyDraft, unsaidSupply } from "./supplies.js";
@@ -67,8 +68,12 @@ class MachineBuilder {
     linkSwitches(this.deviceDrafts, components, this.names, this.report);
 
     const rungs = new RungBuilder(this.devices, this.names, this.report);
-    const circuits = this.readCircuits(rungs);
-    const potentials = numberPotentials(rungs.finish(), this.info.wireNumbers);
+    const power = new PowerBuilder(this.devices, this.supplies, rungs, this.info.convention, this.names, this.report);
+    const circuits = this.readCircuits(rungs, power);
+    power.finish();
+    const named = rungs.finish((number) => power.numberNodes(number));
+    power.nameConductors(named);
+    const potentials = numberPotentials(named, this.info.wireNumbers);
     turnDiodes(
       circuits.filter((circuit) => circuit.kind === "ladder"),
       this.devices,
@@ -96,6 +101,7 @@ class MachineBuilder {
           this.declare(statement);
           break;
         case "ladder":
+        case "power":
           for (const inner of statement.statements) if (inner.kind === "declaration") this.declare(inner);
           break;
         case "fluid":
@@ -104,9 +110,6 @@ class MachineBuilder {
         case "cycle":
         case "trial":
           this.sequences.push(statement);
-          break;
-        case "unsupported":
-          this.report.error("not-yet-supported", statement.keyword.at, `"${statement.keyword.text}" is not yet supported.`);
           break;
         case "drawing":
           break;
@@ -281,11 +284,12 @@ class MachineBuilder {
   }
 
   /** Circuits in the order written. */
-  private readCircuits(rungs: RungBuilder): Circuit[] {
+  private readCircuits(rungs: RungBuilder, power: PowerBuilder): Circuit[] {
     const circuits: Circuit[] = [];
-    let [ladders, fluids] = [0, 0];
+    let [ladders, powers, fluids] = [0, 0, 0];
     for (const statement of this.tree.statements) {
       if (statement.kind === "ladder") circuits.push(this.readLadder(rungs, statement, `ladder${++ladders}`));
+      else if (statement.kind === "power") circuits.push(power.readPower(statement, `power${++powers}`));
       else if (statement.kind === "fluid") circuits.push((this.fluids[fluids++] as CircuitDraft).circuit);
     }
     for (const circuit of circuits) this.checkSheetBreaks(circuit);
@@ -327,7 +331,8 @@ class MachineBuilder {
 
   /** A new sheet needs something before and behind it. */
   private checkSheetBreaks(circuit: Circuit): void {
-    const length = circuit.kind === "ladder" ? circuit.rungs.length : circuit.kind === "fluid" ? circuit.components.length : 0;
+    const length =
+      circuit.kind === "ladder" ? circuit.rungs.length : circuit.kind === "fluid" ? circuit.components.length : circuit.branches.length;
     circuit.sheetBreaks = circuit.sheetBreaks.filter(({ before }, index, all) => before < length && all[index + 1]?.before !== before);
   }
 }

@@ -156,7 +156,7 @@ const tables: Record<DeviceKind, DeviceTable> = {
 
 /** A device that has its name and kind and nothing else. */
 export function bareDevice(name: Word, kind: DeviceKind, text?: string): Device {
-  return { name: name.text, kind, text, at: name.at, values: [], contacts: [], loads: [], throughs: [] };
+  return { name: name.text, kind, text, at: name.at, values: [], contacts: [], loads: [], throughs: [], mains: [] };
 }
 
 /** Reads one device declaration. */

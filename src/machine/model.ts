@@ -145,6 +145,8 @@ export interface Device {
   loads: LoadUse[];
   /** Fuses, terminals, plugs and the like in rungs, in drawing order. */
   throughs: ThroughUse[];
+  /** Uses in power circuits, in drawing order: main contacts of a contactor, poles of a breaker, leads of a motor. */
+  mains: MainUse[];
 }
 
 /** A voltage with its kind of current. */
@@ -174,6 +176,8 @@ export interface Supply {
   fuse?: { name: string; rating: string };
   /** The transformer or power supply whose secondary the rails are. */
   from?: string;
+  /** The branch of a power circuit that ends in the rails. */
+  branch?: PartId;
   at: SourceRange;
 }
 
@@ -293,7 +297,7 @@ export interface Potential {
   rail?: string;
   /** Points that name it. */
   points: string[];
-  /** Wire number, as printed over the wire. Rails carry their own name. Running numbers are known here; by-line numbers are filled after layout. */
+  /** Wire number, as printed over the wire. Rails and the conductors of a feed carry their own name, conductors behind a device the name of theirs. Running numbers are known here; by-line numbers are filled after layout. */
   number: Decided<string>;
 }
 
@@ -302,8 +306,103 @@ export interface PowerCircuit {
   kind: "power";
   id: PartId;
   title: string;
+  voltage?: Quantity;
+  current: "AC" | "DC";
+  frequency?: Quantity;
+  /** What comes in and becomes the busbars. */
+  feed: PowerFeed;
+  branches: PowerBranch[];
+  /** Branches before which the author asked for a new sheet, with its title. */
   sheetBreaks: { before: number; title?: string }[];
   at: SourceRange;
+}
+
+export interface PowerFeed {
+  id: PartId;
+  /** As they come in: phases, neutral, protective conductor. */
+  conductors: Conductor[];
+  path: (MainUse | PowerParallel | PowerPoint)[];
+  /** Behind the path: the busbars. */
+  bus: Conductor[];
+  at: SourceRange;
+}
+
+/** One wire of those that run together. */
+export interface Conductor {
+  /** Which it is among them: `L1`, `N`, `PE`; behind a transformer or a power supply `X1`, `L+`. */
+  phase: string;
+  node: NodeId;
+}
+
+/** Elements one after another over several conductors, from where it is tapped to what it feeds. */
+export interface PowerBranch {
+  id: PartId;
+  title?: string;
+  /** The busbars, a point of an earlier branch, or the star point of a motor. */
+  start: { kind: "bus" } | { kind: "point"; point: string } | { kind: "star" };
+  conductors: Conductor[];
+  path: (MainUse | PowerParallel | PowerPoint)[];
+  end: PowerEnd;
+  /** Something in it could not be understood and has its diagnostic. */
+  incomplete?: boolean;
+  at: SourceRange;
+}
+
+export type PowerEnd =
+  /** Its last element is what it feeds: a motor, a heater, a transformer whose secondary nobody takes further. */
+  | { kind: "load" }
+  /** The second ends of a motor's windings. */
+  | { kind: "second"; device: string; conductors: Conductor[] }
+  /** The rails of a ladder's supply. */
+  | { kind: "supply"; supply: string; conductors: Conductor[] }
+  /** A point from which other branches go on, or nothing at all. */
+  | { kind: "open"; conductors: Conductor[] };
+
+/** Two or more ways side by side between the same conductors: a reversing pair, a bypass. */
+export interface PowerParallel {
+  kind: "power-parallel";
+  ways: (MainUse | PowerPoint)[][];
+  /** Conductors before and behind. */
+  from: Conductor[];
+  to: Conductor[];
+}
+
+/** A `@point` on all conductors of a branch; it has no length. */
+export interface PowerPoint {
+  kind: "power-point";
+  id: PartId;
+  point: string;
+  conductors: Conductor[];
+  at: SourceRange;
+}
+
+/**
+ * What stands in a power circuit on behalf of a device. Where the current passes through, `ins` and `outs` pair up pole by pole;
+ * a transformer, a power supply or a rectifier gives other conductors than it takes; a load has no `outs`.
+ */
+export interface MainUse {
+  kind: "main";
+  id: PartId;
+  device: string;
+  role: "through" | "conversion" | "load";
+  ins: MainPin[];
+  outs: MainPin[];
+  /** Motors: the second ends of the windings, which branches that end in `NAME.2` lead to. Only on the first use of a motor. */
+  second?: MainPin[];
+  /** Motors and heaters: the node of the protective conductor at the frame. */
+  frame?: NodeId;
+  /** The first and the last phase change places behind it. */
+  crossed?: boolean;
+  /** The kind of current that reaches it. */
+  current: "AC" | "DC";
+  branch: PartId;
+  at: SourceRange;
+}
+
+export interface MainPin {
+  terminal: string;
+  phase: string;
+  node: NodeId;
 }
 
 // ---------------------------------------------------------------- fluid

@@ -52,8 +52,16 @@ export class RungBuilder {
     return ladder;
   }
 
-  /** Gives every node its final number in reading order, rails first, and returns what names each. */
-  finish(): { rail?: string; points: string[] }[] {
+  /** A node of its own, for what is drawn outside rungs. */
+  addNode(): NodeId {
+    return this.nodes.add();
+  }
+
+  /**
+   * Gives every node its final number in reading order, rails first, and returns what names each.
+   * @param others numbers the nodes of what is drawn outside rungs
+   */
+  finish(others: (number: (node: NodeId) => NodeId) => void = () => {}): { rail?: string; points: string[] }[] {
     const final = new Map<NodeId, NodeId>();
     const named: { rail?: string; points: string[] }[] = [];
     const number = (node: NodeId): NodeId => {
@@ -71,11 +79,13 @@ export class RungBuilder {
         rung.end.node = number(rung.end.node);
       }
     }
+    others(number);
     for (const [point, node] of this.points) named[number(node)]?.points.push(point);
     return named;
   }
 
-  private rail(name: string): NodeId {
+  /** The node of a rail or of a conductor of that name: one name, one potential. */
+  rail(name: string): NodeId {
     const known = this.rails.get(name);
     if (known !== undefined) return known;
     const node = this.nodes.add();
@@ -92,7 +102,7 @@ export class RungBuilder {
     return node;
   }
 
-  private join(a: NodeId, b: NodeId, at: SourceRange): void {
+  join(a: NodeId, b: NodeId, at: SourceRange): void {
     const [one, other] = [this.railOf.get(this.nodes.find(a)), this.railOf.get(this.nodes.find(b))];
     if (one !== undefined && other !== undefined && one !== other) {
       this.report.error("rails-joined", at, `This wire joins the rails ${one} and ${other}.`);
@@ -192,8 +202,8 @@ export class RungBuilder {
       return undefined;
     }
     if (device.kind === "motor") {
-      this.report.error("not-yet-supported", at, `${name.text} is a motor; power circuits are not yet supported.`, {
-        hint: "Drive its contactor in the rung.",
+      this.report.error("wrong-kind", at, `${name.text} is a motor, which cannot stand in a rung.`, {
+        hint: "Drive its contactor in the rung, and feed the motor in a power circuit.",
       });
       return undefined;
     }

@@ -122,10 +122,51 @@ test("rungs outside a ladder make one of their own", () => {
   ]);
 });
 
-test("a power circuit is read past whole, whatever is in it", () => {
-  const statements = statementsOf(`${example("power")}power "Two" { a ( "}" # }\n { b } }\nrelay CR1\n`);
-  expect(statements.map((it) => it.kind)).toEqual(["unsupported", "unsupported", "declaration"]);
-  expect(statements.slice(0, 2).map((it) => at(it.at))).toEqual(["1:1-4:2", "5:1-6:9"]);
+test("a power circuit has its feed and its branches", () => {
+  const power = only("power", statementsOf(example("power")));
+  expect([power.title?.text, ...power.items.map(showItem)]).toEqual([
+    "Main",
+    "quantity 400 V",
+    "word AC",
+    "number 3",
+    "word phase",
+    "quantity 50 Hz",
+  ]);
+  const lines = power.statements.map((it) => {
+    if (it.kind !== "feed" && it.kind !== "branch") return it.kind;
+    const words = [it.kind, ...(it.kind === "branch" ? [`"${it.title?.text}"`] : []), ...it.conductors.map(({ text }) => text)];
+    const taps = it.kind === "feed" ? ` -> ${it.taps.map(({ name }) => name.text).join(", ")}` : "";
+    return `${words.join(" ")}: ${showPath(it.path)}${taps}`;
+  });
+  expect(lines).toEqual(["feed L1 L2 L3 PE: QS1 -> Q1, T1", 'branch "Pump": FU2 KM1 OL1 -> M1']);
+});
+
+test("branches take points, brackets, a motor's second leads and conductors of their own", () => {
+  const text = `power "Mill" {
+  feed L1 N
+  branch "Hoist": Q2 (KM2 | KM3 crossed) OL2 -> M2
+  branch "Mill": FU3 @mill
+  branch "Delta": @mill KM5 -> M3.2
+  branch "Star": star KM6 -> M3.2
+  branch "Control" L1 N: F5 X1:1-2 T1 -> CTRL
+  sheet "Rest"
+  motor M1
+}
+`;
+  const power = only("power", statementsOf(text));
+  const shown = power.statements.map((it) =>
+    it.kind === "branch" || it.kind === "feed" ? `${it.conductors.map((word) => word.text).join(" ")}: ${showPath(it.path)}` : it.kind,
+  );
+  expect(shown).toEqual([
+    "L1 N: ",
+    ": Q2 (KM2 | KM3 crossed) OL2 -> M2",
+    ": FU3 @mill",
+    ": @mill KM5 -> M3.2",
+    ": star KM6 -> M3.2",
+    "L1 N: F5 X1:1-2 T1 -> CTRL",
+    "sheet-break",
+    "declaration",
+  ]);
 });
 
 test("trials are kept step by step", () => {

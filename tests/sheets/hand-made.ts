@@ -48,7 +48,7 @@ export function handMade(change: Partial<DrawingInfo> = {}): { machine: Machine;
   const devices = new Map<string, Device>();
   const places = new Map<string, Place>();
   const device = (name: string, kind: DeviceKind, text: string, more: Partial<Device> = {}): Device => {
-    const made: Device = { name, kind, text, at, values: [], contacts: [], loads: [], throughs: [], ...more };
+    const made: Device = { name, kind, text, at, values: [], contacts: [], loads: [], throughs: [], mains: [], ...more };
     devices.set(name, made);
     return made;
   };

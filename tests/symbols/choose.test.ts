@@ -26,6 +26,7 @@ const device = (kind: DeviceKind, more: Partial<Device> = {}): Device => ({
   contacts: [],
   loads: [],
   throughs: [],
+  mains: [],
   ...more,
 });
 const contact = (form: "NO" | "NC", more: Partial<ContactUse> = {}): ContactUse => ({

@@ -16,7 +16,6 @@ export const SprungTerminals = {
     PORT: /\.[A-Za-z0-9_]+(-[A-Za-z0-9_]+)*/,
     PINS: /:[A-Za-z0-9_]+(-[A-Za-z0-9_]+)*/,
     SYMBOL: /[^ \t\r\n]/,
-    SKIPPED: /\{[^}]*\}/,
     SPACE: /[ \t]+/,
     COMMENT: /#[^\r\n]*/,
 };
@@ -31,10 +30,12 @@ export type SprungKeywordNames =
     | "->"
     | "/"
     | ":"
+    | "branch"
     | "cycle"
     | "drain"
     | "drawing"
     | "exhaust"
+    | "feed"
     | "fluid"
     | "include"
     | "ladder"
@@ -52,7 +53,7 @@ export type SprungKeywordNames =
 export type SprungTokenNames = SprungTerminalNames | SprungKeywordNames;
 
 export interface Arrow extends langium.AstNode {
-    readonly $container: Parallel | Rung;
+    readonly $container: Parallel | PowerLine | Rung;
     readonly $type: 'Arrow';
     sign: '->';
 }
@@ -82,7 +83,7 @@ export function isBar(item: unknown): item is Bar {
 }
 
 export interface BareNumber extends langium.AstNode {
-    readonly $container: Declaration | Drawing | Field | Fluid | Include | Ladder | Line | Plug | Sequence | SheetBreak | Step | Unsupported;
+    readonly $container: Declaration | Drawing | Field | Fluid | Include | Ladder | Line | Plug | Power | Sequence | SheetBreak | Step;
     readonly $type: 'BareNumber';
     text: string;
 }
@@ -96,8 +97,38 @@ export function isBareNumber(item: unknown): item is BareNumber {
     return reflection.isInstance(item, BareNumber.$type);
 }
 
+export interface Colon extends langium.AstNode {
+    readonly $container: PowerLine;
+    readonly $type: 'Colon';
+    sign: ':';
+}
+
+export const Colon = {
+    $type: 'Colon',
+    sign: 'sign'
+} as const;
+
+export function isColon(item: unknown): item is Colon {
+    return reflection.isInstance(item, Colon.$type);
+}
+
+export interface Comma extends langium.AstNode {
+    readonly $container: PowerLine;
+    readonly $type: 'Comma';
+    sign: ',';
+}
+
+export const Comma = {
+    $type: 'Comma',
+    sign: 'sign'
+} as const;
+
+export function isComma(item: unknown): item is Comma {
+    return reflection.isInstance(item, Comma.$type);
+}
+
 export interface Declaration extends langium.AstNode {
-    readonly $container: Document | Fluid | Ladder;
+    readonly $container: Document | Fluid | Ladder | Power;
     readonly $type: 'Declaration';
     block: Array<Item>;
     items: Array<Item>;
@@ -128,7 +159,7 @@ export function isDocument(item: unknown): item is Document {
 }
 
 export interface Drawing extends langium.AstNode {
-    readonly $container: Document | Fluid | Ladder;
+    readonly $container: Document | Fluid | Ladder | Power;
     readonly $type: 'Drawing';
     fields: Array<Field>;
     head: Array<Item>;
@@ -162,7 +193,7 @@ export function isField(item: unknown): item is Field {
 }
 
 export interface Fluid extends langium.AstNode {
-    readonly $container: Document | Fluid | Ladder;
+    readonly $container: Document | Fluid | Ladder | Power;
     readonly $type: 'Fluid';
     head: Array<Item>;
     keyword: 'fluid';
@@ -181,7 +212,7 @@ export function isFluid(item: unknown): item is Fluid {
 }
 
 export interface Include extends langium.AstNode {
-    readonly $container: Document | Fluid | Ladder;
+    readonly $container: Document | Fluid | Ladder | Power;
     readonly $type: 'Include';
     head: Array<Item>;
     keyword: 'include';
@@ -208,7 +239,7 @@ export function isItem(item: unknown): item is Item {
 }
 
 export interface Ladder extends langium.AstNode {
-    readonly $container: Document | Fluid | Ladder;
+    readonly $container: Document | Fluid | Ladder | Power;
     readonly $type: 'Ladder';
     head: Array<Item>;
     keyword: 'ladder';
@@ -227,7 +258,7 @@ export function isLadder(item: unknown): item is Ladder {
 }
 
 export interface Line extends langium.AstNode {
-    readonly $container: Document | Fluid | Ladder;
+    readonly $container: Document | Fluid | Ladder | Power;
     readonly $type: 'Line';
     groups: Array<LineGroup>;
     items: Array<Item>;
@@ -271,7 +302,7 @@ export function isLineGroup(item: unknown): item is LineGroup {
 }
 
 export interface Name extends langium.AstNode {
-    readonly $container: Declaration | Drawing | Field | Fluid | Include | Ladder | Line | LineGroup | Plug | Sequence | SheetBreak | Step | Unsupported;
+    readonly $container: Declaration | Drawing | Field | Fluid | Include | Ladder | Line | LineGroup | Plug | Power | Sequence | SheetBreak | Step;
     readonly $type: 'Name';
     name: string;
     pins?: string;
@@ -290,7 +321,7 @@ export function isName(item: unknown): item is Name {
 }
 
 export interface Parallel extends langium.AstNode {
-    readonly $container: Parallel | Rung;
+    readonly $container: Parallel | PowerLine | Rung;
     readonly $type: 'Parallel';
     inside: Array<Bar | PathItem>;
 }
@@ -315,7 +346,7 @@ export function isPathItem(item: unknown): item is PathItem {
 }
 
 export interface Plug extends langium.AstNode {
-    readonly $container: Document | Fluid | Ladder;
+    readonly $container: Document | Fluid | Ladder | Power;
     readonly $type: 'Plug';
     ends: Array<LineEnd>;
     items: Array<Item>;
@@ -334,7 +365,7 @@ export function isPlug(item: unknown): item is Plug {
 }
 
 export interface Point extends langium.AstNode {
-    readonly $container: Declaration | Drawing | Field | Fluid | Include | Ladder | Line | LineGroup | Parallel | Plug | Rung | Sequence | SheetBreak | Step | Unsupported;
+    readonly $container: Declaration | Drawing | Field | Fluid | Include | Ladder | Line | LineGroup | Parallel | Plug | Power | PowerLine | Rung | Sequence | SheetBreak | Step;
     readonly $type: 'Point';
     name: string;
 }
@@ -348,8 +379,56 @@ export function isPoint(item: unknown): item is Point {
     return reflection.isInstance(item, Point.$type);
 }
 
+export interface Power extends langium.AstNode {
+    readonly $container: Document | Fluid | Ladder | Power;
+    readonly $type: 'Power';
+    head: Array<Item>;
+    keyword: 'power';
+    statements: Array<Statement>;
+}
+
+export const Power = {
+    $type: 'Power',
+    head: 'head',
+    keyword: 'keyword',
+    statements: 'statements'
+} as const;
+
+export function isPower(item: unknown): item is Power {
+    return reflection.isInstance(item, Power.$type);
+}
+
+export type PowerItem = Colon | Comma | PathItem;
+
+export const PowerItem = {
+    $type: 'PowerItem'
+} as const;
+
+export function isPowerItem(item: unknown): item is PowerItem {
+    return reflection.isInstance(item, PowerItem.$type);
+}
+
+export interface PowerLine extends langium.AstNode {
+    readonly $container: Document | Fluid | Ladder | Power;
+    readonly $type: 'PowerLine';
+    items: Array<PowerItem>;
+    keyword: 'branch' | 'feed';
+    title?: Text;
+}
+
+export const PowerLine = {
+    $type: 'PowerLine',
+    items: 'items',
+    keyword: 'keyword',
+    title: 'title'
+} as const;
+
+export function isPowerLine(item: unknown): item is PowerLine {
+    return reflection.isInstance(item, PowerLine.$type);
+}
+
 export interface Quantity extends langium.AstNode {
-    readonly $container: Declaration | Drawing | Field | Fluid | Include | Ladder | Line | Plug | Sequence | SheetBreak | Step | Unsupported;
+    readonly $container: Declaration | Drawing | Field | Fluid | Include | Ladder | Line | Plug | Power | Sequence | SheetBreak | Step;
     readonly $type: 'Quantity';
     text: string;
 }
@@ -364,7 +443,7 @@ export function isQuantity(item: unknown): item is Quantity {
 }
 
 export interface Reference extends langium.AstNode {
-    readonly $container: Parallel | Rung;
+    readonly $container: Parallel | PowerLine | Rung;
     readonly $type: 'Reference';
     name: string;
     negated: boolean;
@@ -385,7 +464,7 @@ export function isReference(item: unknown): item is Reference {
 }
 
 export interface Rung extends langium.AstNode {
-    readonly $container: Document | Fluid | Ladder;
+    readonly $container: Document | Fluid | Ladder | Power;
     readonly $type: 'Rung';
     colon?: ':';
     keyword: 'rung';
@@ -406,7 +485,7 @@ export function isRung(item: unknown): item is Rung {
 }
 
 export interface Sequence extends langium.AstNode {
-    readonly $container: Document | Fluid | Ladder;
+    readonly $container: Document | Fluid | Ladder | Power;
     readonly $type: 'Sequence';
     head: Array<Item>;
     keyword: 'cycle' | 'trial';
@@ -425,7 +504,7 @@ export function isSequence(item: unknown): item is Sequence {
 }
 
 export interface SheetBreak extends langium.AstNode {
-    readonly $container: Document | Fluid | Ladder;
+    readonly $container: Document | Fluid | Ladder | Power;
     readonly $type: 'SheetBreak';
     head: Array<Item>;
     keyword: 'sheet';
@@ -442,7 +521,7 @@ export function isSheetBreak(item: unknown): item is SheetBreak {
 }
 
 export interface Sign extends langium.AstNode {
-    readonly $container: Declaration | Drawing | Field | Fluid | Include | Ladder | Line | Plug | Sequence | SheetBreak | Step | Unsupported;
+    readonly $container: Declaration | Drawing | Field | Fluid | Include | Ladder | Line | Plug | Power | Sequence | SheetBreak | Step;
     readonly $type: 'Sign';
     text: string;
 }
@@ -456,7 +535,7 @@ export function isSign(item: unknown): item is Sign {
     return reflection.isInstance(item, Sign.$type);
 }
 
-export type Statement = Declaration | Drawing | Fluid | Include | Ladder | Line | Plug | Rung | Sequence | SheetBreak | Unsupported;
+export type Statement = Declaration | Drawing | Fluid | Include | Ladder | Line | Plug | Power | PowerLine | Rung | Sequence | SheetBreak;
 
 export const Statement = {
     $type: 'Statement'
@@ -482,7 +561,7 @@ export function isStep(item: unknown): item is Step {
 }
 
 export interface Stray extends langium.AstNode {
-    readonly $container: Parallel | Rung;
+    readonly $container: Parallel | PowerLine | Rung;
     readonly $type: 'Stray';
     text: string;
 }
@@ -497,7 +576,7 @@ export function isStray(item: unknown): item is Stray {
 }
 
 export interface Text extends langium.AstNode {
-    readonly $container: Declaration | Drawing | Field | Fluid | Include | Ladder | Line | Plug | Rung | Sequence | SheetBreak | Step | Unsupported;
+    readonly $container: Declaration | Drawing | Field | Fluid | Include | Ladder | Line | Plug | Power | PowerLine | Rung | Sequence | SheetBreak | Step;
     readonly $type: 'Text';
     text: string;
 }
@@ -511,29 +590,12 @@ export function isText(item: unknown): item is Text {
     return reflection.isInstance(item, Text.$type);
 }
 
-export interface Unsupported extends langium.AstNode {
-    readonly $container: Document | Fluid | Ladder;
-    readonly $type: 'Unsupported';
-    block?: string;
-    head: Array<Item>;
-    keyword: 'power';
-}
-
-export const Unsupported = {
-    $type: 'Unsupported',
-    block: 'block',
-    head: 'head',
-    keyword: 'keyword'
-} as const;
-
-export function isUnsupported(item: unknown): item is Unsupported {
-    return reflection.isInstance(item, Unsupported.$type);
-}
-
 export type SprungAstType = {
     Arrow: Arrow
     Bar: Bar
     BareNumber: BareNumber
+    Colon: Colon
+    Comma: Comma
     Declaration: Declaration
     Document: Document
     Drawing: Drawing
@@ -550,6 +612,9 @@ export type SprungAstType = {
     PathItem: PathItem
     Plug: Plug
     Point: Point
+    Power: Power
+    PowerItem: PowerItem
+    PowerLine: PowerLine
     Quantity: Quantity
     Reference: Reference
     Rung: Rung
@@ -560,7 +625,6 @@ export type SprungAstType = {
     Step: Step
     Stray: Stray
     Text: Text
-    Unsupported: Unsupported
 }
 
 export class SprungAstReflection extends langium.AbstractAstReflection {
@@ -591,6 +655,24 @@ export class SprungAstReflection extends langium.AbstractAstReflection {
                 }
             },
             superTypes: [Item.$type]
+        },
+        Colon: {
+            name: Colon.$type,
+            properties: {
+                sign: {
+                    name: Colon.sign
+                }
+            },
+            superTypes: [PowerItem.$type]
+        },
+        Comma: {
+            name: Comma.$type,
+            properties: {
+                sign: {
+                    name: Comma.sign
+                }
+            },
+            superTypes: [PowerItem.$type]
         },
         Declaration: {
             name: Declaration.$type,
@@ -758,7 +840,7 @@ export class SprungAstReflection extends langium.AbstractAstReflection {
             name: PathItem.$type,
             properties: {
             },
-            superTypes: []
+            superTypes: [PowerItem.$type]
         },
         Plug: {
             name: Plug.$type,
@@ -785,6 +867,45 @@ export class SprungAstReflection extends langium.AbstractAstReflection {
                 }
             },
             superTypes: [Item.$type, LineEnd.$type, PathItem.$type]
+        },
+        Power: {
+            name: Power.$type,
+            properties: {
+                head: {
+                    name: Power.head,
+                    defaultValue: []
+                },
+                keyword: {
+                    name: Power.keyword
+                },
+                statements: {
+                    name: Power.statements,
+                    defaultValue: []
+                }
+            },
+            superTypes: [Statement.$type]
+        },
+        PowerItem: {
+            name: PowerItem.$type,
+            properties: {
+            },
+            superTypes: []
+        },
+        PowerLine: {
+            name: PowerLine.$type,
+            properties: {
+                items: {
+                    name: PowerLine.items,
+                    defaultValue: []
+                },
+                keyword: {
+                    name: PowerLine.keyword
+                },
+                title: {
+                    name: PowerLine.title
+                }
+            },
+            superTypes: [Statement.$type]
         },
         Quantity: {
             name: Quantity.$type,
@@ -905,22 +1026,6 @@ export class SprungAstReflection extends langium.AbstractAstReflection {
                 }
             },
             superTypes: [Item.$type]
-        },
-        Unsupported: {
-            name: Unsupported.$type,
-            properties: {
-                block: {
-                    name: Unsupported.block
-                },
-                head: {
-                    name: Unsupported.head,
-                    defaultValue: []
-                },
-                keyword: {
-                    name: Unsupported.keyword
-                }
-            },
-            superTypes: [Statement.$type]
         }
     } as const satisfies langium.AstMetaData
 }
