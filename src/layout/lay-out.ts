@@ -39,6 +39,13 @@ export async function layOut(
       sheets.push(...laid.sheets);
       diagnostics.push(...laid.diagnostics);
       for (const [part, place] of laid.places) places.set(part, place);
+    } else {
+      diagnostics.push({
+        code: "not-yet-supported",
+        severity: "error",
+        message: "Power circuits are checked, but not yet drawn.",
+        at: circuit.at,
+      });
     }
   }
   return { sheets, places, diagnostics };

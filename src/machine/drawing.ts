@@ -36,10 +36,8 @@ const fields: Record<string, FieldReader> = {
   },
   paper: choice("paper", papers),
   convention: (info, field, report) => {
-    const before = info.convention;
     choice("convention", ["north-american", "international"])(info, field, report);
     if (info.convention === "international") {
-      info.convention = before;
       report.error("not-yet-supported", (field.items[0] ?? field.name).at, `The international convention is not yet supported.`);
     }
   },

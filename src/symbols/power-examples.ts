@@ -31,5 +31,5 @@ export function powerExamples(library: SymbolLibrary): ExampleFamily[] {
 
 function deviceOf(kind: DeviceKind): Device {
   const at = { file: "", line: 1, column: 1, endLine: 1, endColumn: 1, from: 0, to: 0 };
-  return { name: "", kind, at, values: [], contacts: [], loads: [], throughs: [] };
+  return { name: "", kind, at, values: [], contacts: [], loads: [], throughs: [], mains: [] };
 }

@@ -8,7 +8,7 @@ import { pieces, touch } from "./geometry.js";
 
 const library = openSymbols(assets);
 const at = { file: "test", line: 1, column: 1, endLine: 1, endColumn: 1, from: 0, to: 0 };
-const device = (kind: DeviceKind): Device => ({ name: "Q1", kind, at, values: [], contacts: [], loads: [], throughs: [] });
+const device = (kind: DeviceKind): Device => ({ name: "Q1", kind, at, values: [], contacts: [], loads: [], throughs: [], mains: [] });
 const conventions = ["north-american", "international"] as const;
 const flows = ["down", "right"] as const;
 const symbol = (kind: DeviceKind, convention: (typeof conventions)[number], use: Partial<PowerUse>) => {
