@@ -40,6 +40,12 @@ const contact =
 /** A contact of a relay, a coil otherwise. */
 const relay = ({ use }: Drawn): string => (use.kind === "load" ? "coil" : `contact-${form(use)}`);
 
+/** An auxiliary contact, or the device itself where the current passes through it. */
+const passed =
+  (name: string) =>
+  ({ use }: Drawn): string =>
+    use.kind === "contact" ? `contact-${form(use)}` : name;
+
 /** A contactor's main contacts are known by their numbers of one digit (EN 50005, from memory) or by L and T. */
 const contactor = (drawn: Drawn): string => {
   const { use } = drawn;
@@ -108,8 +114,8 @@ const deviceSymbols: Record<DeviceKind, (drawn: Drawn) => string> = {
   heater: () => "heater",
   motor: () => "motor-3ph",
   fuse: () => "fuse",
-  "circuit-breaker": () => "circuit-breaker-1p",
-  disconnect: () => "disconnect-1p",
+  "circuit-breaker": passed("circuit-breaker-1p"),
+  disconnect: passed("disconnect-1p"),
   transformer: () => "transformer-control",
   "power-supply": () => "power-supply-dc",
   rectifier: () => "rectifier",
@@ -127,12 +133,10 @@ interface OwnTexts {
   height: number;
 }
 
-/** The positions in which a contact is closed: target letters, X where it is closed and O where it is open. */
+/** Target letters for each position, X where this contact is closed and O where it is open; for many positions there is no room in the symbol. */
 const targets = ({ device, use }: Drawn): OwnTexts | undefined => {
-  if (use.kind !== "contact") return undefined;
   const states = closedIn(use, device);
-  const { positions } = selectorOf(device);
-  if (states.length > 3) return { words: { "state-1": positions.filter((_, index) => states[index]).join(", ") }, height: 1.8 };
+  if (use.kind !== "contact" || states.length > 3) return undefined;
   return { words: Object.fromEntries(states.map((closed, index) => [`state-${index + 1}`, closed ? "X" : "O"])), height: 1.8 };
 };
 

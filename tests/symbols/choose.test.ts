@@ -68,7 +68,7 @@ const nameOf = ({ name }: Symbol) => name.replace(/^.*\//, "");
 describe.each(conventions)("%s", (convention) => {
   test.each(Object.keys(deviceRoles) as DeviceKind[])("%s has a symbol for all it can be in a rung", (kind) => {
     const uses = [
-      ...(deviceRoles[kind].contacts ? [contact("NO"), contact("NC"), contact("NO", { timed: true })] : []),
+      ...(deviceRoles[kind].contacts || deviceRoles[kind].auxiliary ? [contact("NO"), contact("NC"), contact("NO", { timed: true })] : []),
       ...(deviceRoles[kind].load ? [load] : []),
       ...(deviceRoles[kind].through ? [through] : []),
       ...(deviceRoles[kind].coils ?? []).map((coil): LoadUse => ({ ...load, coil })),
@@ -108,6 +108,11 @@ describe.each(conventions)("%s", (convention) => {
       nameOf(chosen(contact(form, { terminals: { value: [first, last], by: "none" } }), "contactor"));
     expect([numbered("1", "2"), numbered("5/L3", "6/T3"), numbered("L1", "T1")]).toEqual(Array(3).fill("contact-power"));
     expect([numbered("13", "14"), numbered("", ""), numbered("21", "22", "NC")]).toEqual(["contact-no", "contact-no", "contact-nc"]);
+  });
+
+  test("an auxiliary contact of a breaker is a contact, the breaker itself is not", () => {
+    for (const kind of ["circuit-breaker", "disconnect"] as const)
+      expect([nameOf(chosen(contact("NC"), kind)), nameOf(chosen(through, kind))]).toEqual(["contact-nc", `${kind}-1p`]);
   });
 
   test("a diode points the way its terminals say", () => {
@@ -232,7 +237,7 @@ describe("north-american switches show whether they pass at the start", () => {
       }
     }
     const many = selector("NO", "1", "3", ["0", "1", "2", "3"]);
-    expect([many.name, letters(many)]).toEqual(["north-american/selector-many-open", ["3"]]);
+    expect([many.name, letters(many)]).toEqual(["north-american/selector-many-open", []]);
     expect(selector("NO", "auto", "auto", ["hand", "auto"]).name).toBe("north-american/selector-2-at-2-closed");
   });
 

@@ -8,6 +8,7 @@ import { breakSheets, type RungSheet } from "./break-sheets.js";
 import { drawLadder } from "./draw-ladder.js";
 import { fitRungs, pointsOf } from "./fit-rungs.js";
 import type { Link } from "./grid.js";
+import { nameThirdLead } from "./name-third-lead.js";
 import type { RailEnd } from "./plan.js";
 import { planNorthAmerican } from "./plan-north-american.js";
 import { prepareSymbol } from "./prepare-symbol.js";
@@ -44,7 +45,8 @@ export function layOutLadder(
   const rails = railNodes(circuit, machine);
   const { rungs } = circuit;
   if (rungs.length === 0) return { sheets: [], places: [], nextLine: numbering.line };
-  const prepared = (use: DeviceUse) => prepareSymbol(symbolOf(use), use, machine.devices.get(use.device));
+  const prepared = (use: DeviceUse) =>
+    nameThirdLead(prepareSymbol(symbolOf(use), use), machine.devices.get(use.device), circuit.supply.rails);
   const plan = planNorthAmerican({ circuit, machine, symbolOf: prepared, symbols, room: page.area });
 
   // 1. Every part has a column and a line on the grid, shared points are joined or end in a reference, every text is

@@ -5,6 +5,7 @@ import type { Device, DeviceUse, Machine } from "../../machine/model.js";
 import type { Symbol } from "../../symbols/symbol.js";
 import type { PlacedText, ReferenceTo } from "../placement.js";
 import type { Arrangement, Block, Dressed, MarginEntry } from "./arrangement.js";
+import { chartPositions } from "./chart-positions.js";
 import { endingSize } from "./measure-rungs.js";
 import { reachInBand } from "./reach-in-band.js";
 import { scaleSymbol } from "./scale-symbol.js";
@@ -37,7 +38,7 @@ export function northAmerican({ machine, symbolOf, margin, scale }: NorthAmerica
     lines: { least: scale === 1 ? 15 : 12.5, step: 1.25 },
     bareLine: { above: numberRise.gap + numberRise.height + 0.4, below: 1 },
     dress: (use, tight) => {
-      const selector = machine.devices.get(use.device)?.kind === "selector-switch";
+      const selector = machine.devices.get(use.device)?.selector !== undefined;
       const width = Math.max((tight ? tightLabel : widestLabel) * scale, selector ? narrowestSelector : 0);
       return dress(use, machine, wrapOwnTexts(scaleSymbol(symbolOf(use), scale), width), scale, width);
     },
@@ -142,6 +143,11 @@ function dress(use: DeviceUse, machine: Machine, symbol: Symbol, scale: number, 
   });
 
   let baseline = bottom;
+  const chart = chartPositions(use, device, width);
+  if (chart) {
+    texts.push(...chart.texts.map((text) => ({ ...text, at: { x: text.at.x - chart.width / 2, y: text.at.y + baseline } })));
+    baseline += chart.height + textHeight.small * 0.45 + 0.3;
+  }
   for (const { role, words, height } of underWords(
     use,
     device,
@@ -170,14 +176,28 @@ function dress(use: DeviceUse, machine: Machine, symbol: Symbol, scale: number, 
 /** Between a symbol and a text over or under it. */
 const clearance: Mm = 0.8;
 
-/** A coil's designation stands in its circle if it has room there. */
+/** A designation stands in a coil's circle or a controller's box if it has room there. */
 function insideWords(use: DeviceUse, device: Device | undefined, scale: number): { words: string; height: Mm } | undefined {
-  if (use.kind !== "load" || !device) return undefined;
-  if (device.kind !== "relay" && device.kind !== "contactor" && device.kind !== "timer") return undefined;
+  const room = device ? roomInside(use, device) : 0;
   const { usual, small } = textHeight;
   const words = designationWords(use, "north-american");
-  const height = [usual, small].find((height) => measureText(words, height) <= 7.4 * scale - (height - small) / 2);
+  const height = [usual, small].find((height) => measureText(words, height) <= room * scale - (height - small) / 2);
   return height === undefined ? undefined : { words, height };
+}
+
+/** Width for a designation of the least height within the symbol, mm on the usual module; 0 where others letters stand there. */
+function roomInside(use: DeviceUse, device: Device): Mm {
+  switch (device.kind) {
+    case "relay":
+    case "contactor":
+    case "timer":
+      return use.kind === "load" ? 7.4 : 0;
+    case "input-card":
+    case "output-card":
+      return 13.5;
+    default:
+      return 0;
+  }
 }
 
 /**

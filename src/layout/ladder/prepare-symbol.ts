@@ -1,19 +1,13 @@
 import type { Mm, Point } from "../../drawing/geometry.js";
 import type { Segment } from "../../drawing/marks.js";
-import type { Device, DeviceUse } from "../../machine/model.js";
+import type { DeviceUse } from "../../machine/model.js";
 import { extentOf } from "../../symbols/extent.js";
 import type { Shape, Symbol } from "../../symbols/symbol.js";
-import { turnSymbol } from "../../symbols/turn.js";
 import { isNarrow } from "./grid.js";
 
-/**
- * The symbol as it stands in its line: a terminal with short leads, for its column is narrow, and a diode whose first
- * terminal is the cathode turned round. A contact is drawn the same from either side; only its terminals change places.
- */
-export function prepareSymbol(symbol: Symbol, use: DeviceUse, device: Device | undefined): Symbol {
-  if (isNarrow(use)) return shortenLeads(symbol, shortLead);
-  if (device?.kind === "diode" && use.terminals.value[0] === "K") return turnSymbol(symbol, { quarter: 2 });
-  return symbol;
+/** The symbol as it stands in its line: a terminal with short leads, for its column is narrow. */
+export function prepareSymbol(symbol: Symbol, use: DeviceUse): Symbol {
+  return isNarrow(use) ? shortenLeads(symbol, shortLead) : symbol;
 }
 
 /** From the middle of a terminal to its ports, mm: one module. */

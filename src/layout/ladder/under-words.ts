@@ -1,7 +1,8 @@
 import type { Mm } from "../../drawing/geometry.js";
 import { measureText } from "../../drawing/text.js";
 import { wrapName } from "../../drawing/wrap-name.js";
-import type { Device, DeviceUse, DrawingInfo } from "../../machine/model.js";
+import { deviceRoles } from "../../machine/kinds.js";
+import type { Device, DeviceUse, DrawingInfo, LoadUse } from "../../machine/model.js";
 import { designationOf, printedName } from "../../machine/walk.js";
 import type { PlacedText, Reference, ReferenceTo } from "../placement.js";
 
@@ -51,28 +52,48 @@ export function underWords(
   });
   const words = (text: string | undefined, role: "function" | "value" = "function"): SymbolWords[] =>
     wrapName(text ?? "", small, room.words, mostLines).map((line) => ({ role, words: line, height: small }));
-  if (use.kind === "load") {
-    if (device.kind !== "timer" || !device.delay) return [];
-    const { mode, time } = device.delay;
-    // The international coil shows by its cell which delay it is.
-    const named = convention === "international" ? "" : mode === "on-delay" ? "ON DELAY " : "OFF DELAY ";
-    return words(`${named}${time.text}`, "value");
-  }
+  if (use.kind === "load") return words(loadWords(use, device, convention), "value");
+  if (use.kind === "through") return [...words(device.text), ...words(device.values.join(" "), "value")];
   const operator = device.place?.cylinder ?? device.senses?.component ?? device.senses?.point;
   const place = operator ? [reference({ to: "switch-place", device: device.name }, `${operator} ${longest[convention].zone}`, small)] : [];
+  if (deviceRoles[device.kind].load) return [reference({ to: "coil", device: device.name }, longest[convention].coil, usual)];
   switch (device.kind) {
-    case "relay":
-    case "contactor":
-    case "timer":
-      return [reference({ to: "coil", device: device.name }, longest[convention].coil, usual)];
     case "limit-switch":
     case "proximity-switch":
       return [...words(device.text), ...place];
-    case "pressure-switch": {
+    case "pressure-switch":
+    case "vacuum-switch":
+    case "flow-switch":
+    case "level-switch":
+    case "temperature-switch": {
       const settings = [device.senses?.rising?.text, device.senses?.falling?.text].filter((text) => text !== undefined).join(" / ");
       return [...words(device.text), ...words(settings, "value"), ...place];
     }
     default:
       return words(device.text);
+  }
+}
+
+/** What a load says of itself beside its name: its delay, its count, which of its coils it is, its rating. */
+function loadWords(use: LoadUse, device: Device, convention: Convention): string {
+  // The international coils show by their cells what they are.
+  const named = convention === "north-american";
+  switch (device.kind) {
+    case "timer":
+      if (!device.delay) return "";
+      return `${named ? (device.delay.mode === "on-delay" ? "ON DELAY " : "OFF DELAY ") : ""}${device.delay.time.text}`;
+    case "counter":
+      if (use.coil === "reset") return named ? "RESET" : "";
+      return `${named ? "COUNT " : ""}${device.preset ?? ""}`.trim();
+    case "latching-relay":
+      return named ? (use.coil === "reset" ? "UNLATCH" : "LATCH") : "";
+    case "pilot-light":
+      return [device.lamp?.pushToTest && named ? "PUSH TO TEST" : "", ...device.values].filter((word) => word !== "").join(" ");
+    case "horn":
+    case "bell":
+    case "heater":
+      return device.values.join(" ");
+    default:
+      return "";
   }
 }
