@@ -6,7 +6,7 @@ import { readDrawing } from "./language/read-drawing.js";
 import { layOut } from "./layout/lay-out.js";
 import type { Layout } from "./layout/placement.js";
 import { buildMachine } from "./machine/build.js";
-import type { Machine } from "./machine/model.js";
+import type { DrawingInfo, Machine } from "./machine/model.js";
 import { crossReference } from "./schedules/cross-reference.js";
 import type { CrossReferenceRow } from "./schedules/rows.js";
 import { numberWires } from "./schedules/wire-numbers.js";
@@ -32,6 +32,9 @@ export interface Compiled extends Examined {
   set?: DrawingSet;
 }
 
+/** What the caller decides instead of the drawing's text. */
+export type Overrides = Partial<Pick<DrawingInfo, "convention">>;
+
 /** Called as each phase begins, with what it does in a word or two, for showing progress. */
 export type Told = (phase: string) => void;
 
@@ -39,13 +42,15 @@ export type Told = (phase: string) => void;
  * Reads and checks a drawing without laying it out.
  * @param path the drawing's file, as the user wrote it
  */
-export async function examine(path: string, world: World, told: Told = () => {}): Promise<Examined> {
+export async function examine(path: string, world: World, told: Told = () => {}, overrides: Overrides = {}): Promise<Examined> {
   // 1. Text → syntax tree, with the included files in their places. The tree always exists.
   told("reading");
   const { tree, sources, diagnostics: readFindings } = await readDrawing(path, world);
 
   // 2. Syntax tree → machine: every name resolved, every unit converted.
-  const { machine, diagnostics: buildFindings } = buildMachine(tree);
+  const built = buildMachine(tree);
+  const { diagnostics: buildFindings } = built;
+  const machine = { ...built.machine, drawing: { ...built.machine.drawing, ...overrides } };
 
   // 3. Machine → its state at the start of the cycle, which is the state drawn.
   const start = startOfCycle(machine);
@@ -61,9 +66,9 @@ export async function examine(path: string, world: World, told: Told = () => {})
  * the diagnostics. The set goes to `writeSvg` and `writePdf`.
  * @param path the drawing's file, as the user wrote it
  */
-export async function compile(path: string, world: World, told: Told = () => {}): Promise<Compiled> {
+export async function compile(path: string, world: World, told: Told = () => {}, overrides: Overrides = {}): Promise<Compiled> {
   // 1 – 4. Text → machine, checked. An error ends it here.
-  const examined = await examine(path, world, told);
+  const examined = await examine(path, world, told, overrides);
   if (examined.diagnostics.some(({ severity }) => severity === "error")) return examined;
   const { machine } = examined;
 

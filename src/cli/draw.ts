@@ -1,6 +1,8 @@
 import { type Compiled, compile } from "../compile.js";
+import type { DrawingInfo } from "../machine/model.js";
 import { fileStem, sheetFileName } from "../output/file-name.js";
 import { useColor } from "./color.js";
+import { overridesOf } from "./convention.js";
 import type { Desk, OutputFile } from "./desk.js";
 import { ExitCode } from "./exit-code.js";
 import { exitCodeFor, worldFor } from "./input.js";
@@ -12,6 +14,7 @@ export interface DrawOptions {
   out: string;
   svg?: boolean;
   pdf?: boolean;
+  convention?: DrawingInfo["convention"];
   quiet?: boolean;
   color?: boolean;
 }
@@ -25,7 +28,7 @@ export async function draw(files: readonly string[], options: DrawOptions, desk:
   const progress = openProgress(desk, quiet);
   const compiled: (Compiled & { file: string })[] = [];
   for (const file of files) {
-    compiled.push({ file, ...(await compile(file, world, (phase) => progress.tell(`${file}: ${phase}`))) });
+    compiled.push({ file, ...(await compile(file, world, (phase) => progress.tell(`${file}: ${phase}`), overridesOf(options))) });
   }
   progress.clear();
   desk.err(wordFindings(compiled, useColor(desk, "err", options.color), quiet ? "error" : "warning"));

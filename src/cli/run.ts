@@ -1,5 +1,6 @@
 import { Command, CommanderError, InvalidArgumentError } from "commander";
 import type { CheckOptions } from "./check.js";
+import { readConvention } from "./convention.js";
 import type { Desk } from "./desk.js";
 import type { DrawOptions } from "./draw.js";
 import { ExitCode } from "./exit-code.js";
@@ -47,6 +48,7 @@ export async function run(args: readonly string[], desk: Desk): Promise<ExitCode
       .option("-o, --out <dir>", "folder to write to; made if missing", folderName, "drawings")
       .option("--svg", "write SVG only, unless --pdf is given too")
       .option("--pdf", "write PDF only, unless --svg is given too")
+      .option(...conventionOption)
       .option("-q, --quiet", "print errors only"),
   ).action(async (files: string[], _, made: Command) => {
     const { draw } = await import("./draw.js");
@@ -74,7 +76,8 @@ export async function run(args: readonly string[], desk: Desk): Promise<ExitCode
     )
       .argument("<file>", "drawing to read; - is standard input")
       .option("--csv", "print CSV, one line a contact")
-      .option("--json", "print a JSON array, one entry a coil"),
+      .option("--json", "print a JSON array, one entry a coil")
+      .option(...conventionOption),
   ).action(async (file: string, _, made: Command) => {
     const options = made.optsWithGlobals<XrefOptions>();
     if (options.csv && options.json) made.error("error: choose one of --csv and --json");
@@ -100,6 +103,8 @@ export async function run(args: readonly string[], desk: Desk): Promise<ExitCode
     return error.exitCode === 0 ? ExitCode.Fine : ExitCode.Misuse;
   }
 }
+
+const conventionOption = ["--convention <name>", "north-american or international, whatever the drawing says", readConvention] as const;
 
 const generalHelp = `
 Examples:

@@ -3,7 +3,7 @@ import { fitText, measureText, printable } from "./text.js";
 
 /**
  * Breaks a name behind its hyphens, underscores and slashes and at its spaces into lines no wider than `width` mm, and within a word
- * only where a word alone is wider. What does not go into `most` lines is shortened with `…` in the last of them.
+ * only where a word alone is wider. A hyphen it begins with stays with what follows. What does not go into `most` lines is shortened with `…` in the last of them.
  * @param height height of the capitals, mm
  */
 export function wrapName(name: string, height: Mm, width: Mm, most: number, bold = false): string[] {
@@ -12,7 +12,7 @@ export function wrapName(name: string, height: Mm, width: Mm, most: number, bold
   const wide = (text: string) => measureText(text.trimEnd(), height, bold) > width + tolerance;
   const lines: string[] = [];
   let line = "";
-  for (let piece of drawn.match(/[^\s\-_/]*(?:[\s\-_/]+|$)/g) ?? []) {
+  for (let piece of drawn.match(/(?:^-)?[^\s\-_/]*(?:[\s\-_/]+|$)/g) ?? []) {
     if (!wide(line + piece)) {
       line += piece;
       continue;

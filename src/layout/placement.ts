@@ -98,6 +98,8 @@ export type ReferenceTo =
   | { to: "coil"; device: string }
   /** At a coil: the lines of its contacts, normally closed ones underlined. */
   | { to: "contacts"; device: string }
+  /** In the table under a coil: where one of its contacts is, `/2.4`. */
+  | { to: "contact-place"; device: string; contact: PartId }
   /** At a switch contact: the cylinder or fluid point that operates it and where that is drawn, `CLAMP 1/B4`. */
   | { to: "switch-place"; device: string }
   /** At a solenoid on a rung: its valve and where it is drawn, `V1 1/C3`. */

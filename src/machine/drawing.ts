@@ -5,6 +5,8 @@ import { didYouMean, listed, type Report } from "./report.js";
 
 const papers: readonly PaperName[] = ["A4", "A3", "A2", "A1", "A0", "ANSI-A", "ANSI-B", "ANSI-C", "ANSI-D", "ANSI-E"];
 
+export const conventions: readonly DrawingInfo["convention"][] = ["north-american", "international"];
+
 type FieldReader = (info: DrawingInfo, field: DrawingField, report: Report) => void;
 
 /** The fields of a drawing block, most of them the data of an ISO 7200 title block. */
@@ -35,12 +37,7 @@ const fields: Record<string, FieldReader> = {
     if (note) info.notes.push(note.text);
   },
   paper: choice("paper", papers),
-  convention: (info, field, report) => {
-    choice("convention", ["north-american", "international"])(info, field, report);
-    if (info.convention === "international") {
-      report.error("not-yet-supported", (field.items[0] ?? field.name).at, `The international convention is not yet supported.`);
-    }
-  },
+  convention: choice("convention", conventions),
   "line-numbers": choice("lineNumbers", ["by-sheet", "running"]),
   "wire-numbers": choice("wireNumbers", ["by-line", "running"]),
   units: choice("units", ["metric", "inch"]),

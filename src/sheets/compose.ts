@@ -13,6 +13,7 @@ import { frameMarks } from "./frame.js";
 import { outlineOf } from "./outline.js";
 import { type Page, pageOf, zoneOf } from "./page.js";
 import { papers } from "./paper.js";
+import { nameOf } from "./place-words.js";
 import { setTables, type Table } from "./table.js";
 import { readTemplate, templateNames } from "./template.js";
 import { notesHeld, stripMarks } from "./title-block.js";
@@ -46,7 +47,7 @@ export function composeSheets(machine: Machine, layout: Layout, rows: readonly C
   if (elsewhere) tables.unshift(noteTable(drawing.notes));
   for (const marks of setTables(tables, columnsOf(page.area))) {
     const title = elsewhere && contents.length === layout.sheets.length ? "Notes, cross-reference" : "Cross-reference";
-    contents.push({ number: next++, title, marks, notes: tableNotes });
+    contents.push({ number: next++, title, marks, notes: tableNotes(drawing.convention) });
   }
   if (contents.length === 0) contents.push({ number: 1, title: "", marks: [], notes: circuitNotes });
   contents.sort((a, b) => a.number - b.number);
@@ -129,20 +130,21 @@ function anchorsOf(layout: Layout, contents: Content[]): Map<PartId, { sheet: nu
 function partNames({ machine }: Appearances, layout: Layout): Map<PartId, { device?: string; title?: string }> {
   const parts = new Map<PartId, { device?: string; title?: string }>();
   for (const sheet of layout.sheets) {
-    for (const { part, device } of sheet.symbols) if (device !== undefined) parts.set(part, { device, title: device });
+    for (const { part, device } of sheet.symbols) if (device !== undefined) parts.set(part, { device, title: nameOf(device, machine) });
     for (const { part, text } of sheet.texts) {
       if (part !== undefined && typeof text !== "string" && text.to === "ladder-line")
-        parts.set(part, { device: text.device, title: text.device });
+        parts.set(part, { device: text.device, title: nameOf(text.device, machine) });
     }
   }
   const title = (...words: (string | undefined)[]) => words.filter((word) => word !== undefined && word !== "").join(" – ");
   for (const component of machine.components.values())
-    parts.set(component.id, { device: component.name, title: title(component.name, component.text) });
+    parts.set(component.id, { device: component.name, title: title(component.name && nameOf(component.name, machine), component.text) });
   for (const device of machine.devices.values()) {
+    const name = nameOf(device.name, machine);
     for (const contact of device.contacts) {
-      parts.set(contact.id, { device: device.name, title: title([device.name, terminalsOf(contact)].join(" ").trim(), device.text) });
+      parts.set(contact.id, { device: device.name, title: title([name, terminalsOf(contact)].join(" ").trim(), device.text) });
     }
-    for (const load of device.loads) parts.set(load.id, { device: device.name, title: title(device.name, device.text) });
+    for (const load of device.loads) parts.set(load.id, { device: device.name, title: title(name, device.text) });
   }
   return parts;
 }

@@ -1,14 +1,18 @@
 import type { Device, DrawingInfo } from "../machine/model.js";
 import type { ContactReference, CrossReferenceRow } from "../schedules/rows.js";
 import { type Appearances, operatorOf } from "./appearances.js";
+import { linePlace, nameOf, zonePlace } from "./place-words.js";
 import type { Piece } from "./references.js";
 import type { Cell, Table } from "./table.js";
 
 /** What stands below the tables to explain their entries. */
-export const tableNotes = [
-  "Each contact: its terminals, then sheet/line. NO is normally open, NC normally closed.",
-  "Not a certification. Isolate and verify before work.",
-];
+export function tableNotes(convention: DrawingInfo["convention"]): string[] {
+  const place = convention === "international" ? "/sheet.path" : "sheet/line";
+  return [
+    `Each contact: its terminals, then ${place}. NO is normally open, NC normally closed.`,
+    "Not a certification. Isolate and verify before work.",
+  ];
+}
 
 /**
  * The cross-reference as tables: every coil and other load with its contacts and its valve, then every switch with what
@@ -34,13 +38,15 @@ function withoutEmptyColumns(table: Table): Table {
 }
 
 function coilTable(rows: readonly CrossReferenceRow[], appearances: Appearances): Table {
+  const { machine } = appearances;
+  const { convention } = machine.drawing;
   return {
     title: "Coils and other loads",
     columns: [
       { title: "Coil", share: 20 },
       { title: "Kind", share: 23 },
       { title: "Function", share: 62 },
-      { title: "Line", share: 18 },
+      { title: convention === "international" ? "Path" : "Line", share: 18 },
       { title: "NO contacts", share: 62 },
       { title: "NC contacts", share: 62 },
       { title: "Valve", share: 27 },
@@ -48,10 +54,10 @@ function coilTable(rows: readonly CrossReferenceRow[], appearances: Appearances)
     rows: rows.map((row) => {
       const home = appearances.loadOf(row.coil)?.part;
       return [
-        { text: row.coil, to: home, bold: true },
+        { text: nameOf(row.coil, machine), to: home, bold: true },
         { text: kindName(row.kind) },
         { text: row.text },
-        { entries: [{ text: `${row.sheet}/${row.line}`, to: home }] },
+        { entries: [{ text: linePlace(row.sheet, row.line, convention), to: home }] },
         contacts(row, "NO", appearances),
         contacts(row, "NC", appearances),
         valve(row, appearances),
@@ -72,7 +78,7 @@ function switchTable(rows: readonly CrossReferenceRow[], appearances: Appearance
       { title: "NC contacts", share: 62 },
     ],
     rows: rows.map((row) => [
-      { text: row.coil, to: appearances.contactsOf(row.coil)[0]?.part, bold: true },
+      { text: nameOf(row.coil, appearances.machine), to: appearances.contactsOf(row.coil)[0]?.part, bold: true },
       { text: kindName(row.kind) },
       { text: row.text },
       operatedBy(row, appearances),
@@ -88,26 +94,29 @@ function contacts(row: CrossReferenceRow, type: ContactReference["type"], appear
     .map((contact): Piece => {
       const to = appearances.contactOf(row.coil, contact);
       const terminals = [contact.terminals, contact.timed ? "timed" : ""].filter((part) => part !== "").join(" ");
-      return { text: `${terminals}${terminals === "" ? "" : "  "}${contact.sheet}/${contact.line}`, ...(to === undefined ? {} : { to }) };
+      const place = linePlace(contact.sheet, contact.line, appearances.machine.drawing.convention);
+      return { text: `${terminals}${terminals === "" ? "" : "  "}${place}`, ...(to === undefined ? {} : { to }) };
     });
   return { entries };
 }
 
 function valve(row: CrossReferenceRow, appearances: Appearances): Cell {
   if (!row.valve) return { text: "" };
-  const { name, sheet, zone } = row.valve;
+  const { name } = row.valve;
+  const where = zonePlace(row.valve, appearances.machine.drawing.convention);
   const to = appearances.fluidSideOf(row.coil)?.part;
-  return { text: `${name} ${sheet}${zone === "" ? "" : `/${zone}`}`, ...(to === undefined ? {} : { to }) };
+  return { text: `${name} ${where}`, ...(to === undefined ? {} : { to }) };
 }
 
 function operatedBy(row: CrossReferenceRow, appearances: Appearances): Cell {
-  const device = appearances.machine.devices.get(row.coil);
+  const { machine } = appearances;
+  const device = machine.devices.get(row.coil);
   const operator = device ? operatorOf(device) : undefined;
   if (!device || operator === undefined) return { text: "" };
   const found = appearances.fluidSideOf(row.coil);
-  const where = found ? `${found.place.sheet}${found.place.zone === "" ? "" : `/${found.place.zone}`}` : "";
-  const stretch = device.place ? placeName(device.place, appearances.machine.drawing.units) : "";
-  const text = [operator, stretch, where].filter((part) => part !== "").join(" ");
+  const where = found ? zonePlace(found.place, machine.drawing.convention) : "";
+  const stretch = device.place ? placeName(device.place, machine.drawing.units) : "";
+  const text = [nameOf(operator, machine), stretch, where].filter((part) => part !== "").join(" ");
   return { text, ...(found ? { to: found.part } : {}) };
 }
 

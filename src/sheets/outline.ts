@@ -2,6 +2,7 @@ import type { DrawingSet } from "../drawing/marks.js";
 import type { Appearances } from "./appearances.js";
 import { terminalsOf } from "./appearances.js";
 import { naturalOrder } from "./natural-order.js";
+import { lineWord, nameOf } from "./place-words.js";
 
 /** Devices and fluid components with where they are drawn, for a reader who looks for one of them. */
 export function outlineOf(appearances: Appearances): DrawingSet["outline"] {
@@ -20,7 +21,7 @@ export function outlineOf(appearances: Appearances): DrawingSet["outline"] {
       title: [
         `${contact.form} ${terminalsOf(contact)}`.trim(),
         `sheet ${place.sheet}`,
-        place.line === undefined ? "" : `line ${place.line}`,
+        place.line === undefined ? "" : `${lineWord(machine.drawing.convention)} ${place.line}`,
       ]
         .filter((word) => word !== "")
         .join(", "),
@@ -33,6 +34,6 @@ export function outlineOf(appearances: Appearances): DrawingSet["outline"] {
         part: fluid.part,
       });
     }
-    return [{ device: name, title, home, uses }];
+    return [{ device: nameOf(name, machine), title, home, uses }];
   });
 }

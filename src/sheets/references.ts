@@ -4,6 +4,7 @@ import type { Mark, PartId } from "../drawing/marks.js";
 import { fitText, measureText } from "../drawing/text.js";
 import { type CircuitSheet, type Place, type PlacedText, type Reference, rowPitch } from "../layout/placement.js";
 import { type Appearance, type Appearances, operatorOf, type PointEnd } from "./appearances.js";
+import { linePlace, nameOf, zonePlace } from "./place-words.js";
 
 /** A reference put into words: texts in a row, each of which may lead somewhere. */
 export interface Wording {
@@ -56,16 +57,18 @@ function wordingsOf(reference: Reference, sheet: CircuitSheet, appearances: Appe
       return bracketed(appearances.loadOf(reference.device), sheet, appearances);
     case "switch-place": {
       const device = appearances.machine.devices.get(reference.device);
-      return named(device ? operatorOf(device) : undefined, appearances.fluidSideOf(reference.device));
+      return named(device ? operatorOf(device) : undefined, appearances.fluidSideOf(reference.device), appearances);
     }
     case "valve": {
       const name = appearances.machine.devices.get(reference.device)?.valve?.name;
       const valve = name === undefined ? undefined : appearances.component(name);
       // The words name the valve, the link leads to the coil's own end of it.
-      return named(name, valve && { ...valve, part: appearances.fluidSideOf(reference.device)?.part ?? valve.part });
+      return named(name, valve && { ...valve, part: appearances.fluidSideOf(reference.device)?.part ?? valve.part }, appearances);
     }
     case "ladder-line":
       return ladderLines(reference.device, sheet, appearances);
+    case "contact-place":
+      return contactPlace(reference, sheet, appearances);
     case "point":
       return elsewhere(reference, sheet, appearances);
     case "contacts":
@@ -75,14 +78,24 @@ function wordingsOf(reference: Reference, sheet: CircuitSheet, appearances: Appe
 
 function bracketed(found: Appearance | undefined, sheet: CircuitSheet, appearances: Appearances): Wording[] {
   if (!found) return [];
-  return [{ pieces: [{ text: `(${lineName(found.place, sheet, appearances)})`, to: found.part }] }];
+  const [open, close] = brackets(appearances);
+  return [{ pieces: [{ text: `${open}${lineName(found.place, sheet, appearances)}${close}`, to: found.part }] }];
+}
+
+/** North-american practice sets a line that is spoken of in brackets; international places begin with a slash and need none. */
+const brackets = ({ machine }: Appearances): [string, string] => (machine.drawing.convention === "international" ? ["", ""] : ["(", ")"]);
+
+function contactPlace({ device, contact }: Reference & { to: "contact-place" }, sheet: CircuitSheet, appearances: Appearances): Wording[] {
+  const found = appearances.contactsOf(device).find(({ part }) => part === contact);
+  return found ? [{ pieces: [{ text: lineName(found.place, sheet, appearances), to: found.part }] }] : [];
 }
 
 /** `CLAMP 1/B4`, and where there is no room for the name only the place. */
-function named(name: string | undefined, found: Appearance | undefined): Wording[] {
-  if (!found) return name === undefined ? [] : [{ pieces: [{ text: name }] }];
-  const where = zoneName(found.place);
-  return [...(name === undefined ? [] : [`${name} ${where}`]), where].map((text) => ({ pieces: [{ text, to: found.part }] }));
+function named(name: string | undefined, found: Appearance | undefined, { machine }: Appearances): Wording[] {
+  const printed = name === undefined ? undefined : nameOf(name, machine);
+  if (!found) return printed === undefined ? [] : [{ pieces: [{ text: printed }] }];
+  const where = zonePlace(found.place, machine.drawing.convention);
+  return [...(printed === undefined ? [] : [`${printed} ${where}`]), where].map((text) => ({ pieces: [{ text, to: found.part }] }));
 }
 
 /** `(204)`; for a switch with several contacts `(203, 207)`, as many as there is room for. */
@@ -90,19 +103,20 @@ function ladderLines(device: string, sheet: CircuitSheet, appearances: Appearanc
   const load = appearances.loadOf(device);
   if (load) return bracketed(load, sheet, appearances);
   const contacts = appearances.contactsOf(device);
+  const [open, close] = brackets(appearances);
   const wordings: Wording[] = [];
   for (let shown = contacts.length; shown > 0; shown--) {
-    const end = shown < contacts.length ? ", …)" : ")";
+    const end = shown < contacts.length ? `, …${close}` : close;
     const pieces = contacts.slice(0, shown).map(({ part, place }, index): Piece => {
       const line = lineName(place, sheet, appearances);
-      return { text: `${index === 0 ? "(" : ""}${line}${index === shown - 1 ? end : ", "}`, to: part };
+      return { text: `${index === 0 ? open : ""}${line}${index === shown - 1 ? end : ", "}`, to: part };
     });
     wordings.push({ pieces });
   }
   const [first] = contacts;
   if (first && contacts.length > 1) {
     const line = lineName(first.place, sheet, appearances);
-    for (const text of [`(${line}…)`, `(${line})`]) wordings.push({ pieces: [{ text, to: first.part }] });
+    for (const text of [`${open}${line}…${close}`, `${open}${line}${close}`]) wordings.push({ pieces: [{ text, to: first.part }] });
   }
   return wordings;
 }
@@ -119,8 +133,9 @@ function ladderLineRows(
 ): Piece[][] | undefined {
   if (appearances.loadOf(device)) return undefined;
   const contacts = appearances.contactsOf(device).map(({ part, place }) => ({ text: lineName(place, sheet, appearances), to: part }));
+  const [open, close] = brackets(appearances);
   const inBrackets = (pieces: Piece[], end: string) =>
-    pieces.map((piece, i) => ({ ...piece, text: `${i === 0 ? "(" : ""}${piece.text}${i === pieces.length - 1 ? `${end})` : ", "}` }));
+    pieces.map((piece, i) => ({ ...piece, text: `${i === 0 ? open : ""}${piece.text}${i === pieces.length - 1 ? end + close : ", "}` }));
   const wide = (pieces: Piece[], end = "") => measureText(plain({ pieces: inBrackets(pieces, end) }), height) > room;
   const rows: Piece[][] = [];
   for (const contact of contacts) {
@@ -145,8 +160,7 @@ function elsewhere(reference: Reference & { to: "point" }, sheet: CircuitSheet, 
   const wordings: Wording[] = [];
   for (let shown = ordered.length; shown > 0; shown--) {
     const pieces = ordered.slice(0, shown).map(({ from, place }, index): Piece => {
-      const within = place.line === undefined ? place.zone : String(place.line);
-      const where = place.sheet === sheet.number ? within : within === "" ? String(place.sheet) : `${place.sheet}/${within}`;
+      const where = pointPlace(place, sheet, appearances);
       return { text: `${index === 0 ? `${reference.point} ` : ", "}${where}`, to: from };
     });
     wordings.push({ pieces });
@@ -159,8 +173,10 @@ function elsewhere(reference: Reference & { to: "point" }, sheet: CircuitSheet, 
  * the set. Both where it is not known which of them the end is.
  */
 function neighbouringEnds(reference: Reference & { to: "point" }, sheet: CircuitSheet, appearances: Appearances): PointEnd[] {
+  const leftToRight = sheet.kind === "ladder" && appearances.machine.drawing.convention === "international";
+  const within = ({ place: { box } }: PointEnd) => (leftToRight ? box.x : box.y);
   const ends = [...appearances.pointEnds(sheet.kind, reference.point)].sort(
-    (a, b) => a.place.sheet - b.place.sheet || a.place.box.y - b.place.box.y,
+    (a, b) => a.place.sheet - b.place.sheet || (a.place.line ?? 0) - (b.place.line ?? 0) || within(a) - within(b),
   );
   const own = ends.findIndex((end) => isOwn(end, reference, sheet));
   if (own < 0) return [];
@@ -176,17 +192,19 @@ function isOwn({ from, place }: PointEnd, reference: Reference & { to: "point" }
   return from === reference.from && place.sheet === sheet.number;
 }
 
-/** `1/B4`; only the sheet where the zone is not known. */
-function zoneName({ sheet, zone }: Place): string {
-  return zone === "" ? String(sheet) : `${sheet}/${zone}`;
+/** Where a point goes on: north-american sheets leave out a sheet that is their own. */
+function pointPlace(place: Place, sheet: CircuitSheet, { machine: { drawing } }: Appearances): string {
+  const { line, zone } = place;
+  if (place.sheet === sheet.number && drawing.convention === "north-american") return line === undefined ? zone : String(line);
+  return line === undefined ? zonePlace(place, drawing.convention) : linePlace(place.sheet, line, drawing.convention);
 }
 
 /** A ladder line as another place speaks of it. Lines numbered by sheet name their sheet themselves; running ones need it said when it is another. */
 function lineName(place: Place, from: CircuitSheet, { machine }: Appearances): string {
-  const line = place.line === undefined ? zoneName(place) : String(place.line);
-  if (place.line === undefined) return line;
-  if (machine.drawing.convention === "international") return `/${place.sheet}.${line}`;
-  return machine.drawing.lineNumbers === "running" && place.sheet !== from.number ? `${place.sheet}/${line}` : line;
+  const { convention, lineNumbers } = machine.drawing;
+  if (place.line === undefined) return zonePlace(place, convention);
+  const sheetSaid = convention === "international" || (lineNumbers === "running" && place.sheet !== from.number);
+  return sheetSaid ? linePlace(place.sheet, place.line, convention) : String(place.line);
 }
 
 /** The lines of a coil's contacts, normally closed ones underlined. */

@@ -163,11 +163,11 @@ describe("the head of the rails", () => {
   });
 });
 
-describe("long names", () => {
+describe.each(["north-american", "international"] as const)("long names, %s", (convention) => {
   test("stay on the sheet and clear of everything, whatever they are", () => {
     fc.assert(
       fc.property(machine, (given) => {
-        expect(faults(ladderOf(textOf(given)))).toEqual([]);
+        expect(faults(ladderOf(textOf(given), convention))).toEqual([]);
       }),
       { numRuns: 60 },
     );

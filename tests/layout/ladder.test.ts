@@ -235,7 +235,9 @@ const columnsOf = (text: string): number => {
   return read(0).width;
 };
 
-describe("random rungs", () => {
+const conventions = ["north-american", "international"] as const;
+
+describe.each(conventions)("random rungs, %s", (convention) => {
   const rungs = fc.array(
     path.filter((text) => columnsOf(text) <= 5),
     { minLength: 1, maxLength: 12 },
@@ -246,7 +248,10 @@ describe("random rungs", () => {
       fc.property(rungs, (paths) => {
         const lamps = paths.map((_, i) => `pilot-light LT${i} "Lamp number ${i}" green`).join("\n");
         const text = paths.map((p, i) => `rung "Rung ${i}": ${p} -> LT${i}`).join("\n");
-        const laid = ladderOf(`supply CTRL 24 V DC { rails L+ M }\n${declared}\n${lamps}\nladder "Control" supply CTRL {\n${text}\n}\n`);
+        const laid = ladderOf(
+          `supply CTRL 24 V DC { rails L+ M }\n${declared}\n${lamps}\nladder "Control" supply CTRL {\n${text}\n}\n`,
+          convention,
+        );
         expect(faults(laid)).toEqual([]);
       }),
       { numRuns: 40 },
@@ -267,7 +272,10 @@ describe("random rungs", () => {
         const text = list
           .map(({ start, head, point, tail, end }, i) => `rung: ${start}${head} ${point} ${tail} ${end === "load" ? `-> LT${i}` : end}`)
           .join("\n");
-        const laid = ladderOf(`supply CTRL 24 V DC { rails L+ M }\n${declared}\n${lamps}\nladder "Control" supply CTRL {\n${text}\n}\n`);
+        const laid = ladderOf(
+          `supply CTRL 24 V DC { rails L+ M }\n${declared}\n${lamps}\nladder "Control" supply CTRL {\n${text}\n}\n`,
+          convention,
+        );
         const bridges = list.filter(({ start, end }) => start !== "" && end !== "load").length;
         expect(faults(laid, bridges)).toEqual([]);
       }),
@@ -276,10 +284,11 @@ describe("random rungs", () => {
   });
 });
 
-describe("rungs larger than a sheet", () => {
+describe.each(conventions)("rungs larger than a sheet, %s", (convention) => {
   const contacts = (count: number) => Array.from({ length: count }, (_, i) => `LS${i + 1}`);
   const large = (rung: string, paper: string) =>
-    ladderOf(`drawing "Large" { paper ${paper} }
+    ladderOf(
+      `drawing "Large" { paper ${paper} }
       supply CTRL 24 V DC { rails L+ M  fuse FU1 4 A }
       relay CR1 "Everything in place"
       pilot-light LT1 green
@@ -290,7 +299,9 @@ describe("rungs larger than a sheet", () => {
       ladder "Control" supply CTRL {
         ${rung}
         rung: LS1 -> LT1
-      }`);
+      }`,
+      convention,
+    );
 
   test.each(["A4", "A3", "ANSI-A"])("go on with letters when they are too long for %s", (paper) => {
     const laid = large(`rung "Chain": ${contacts(23).join(" ")} -> CR1`, paper);
@@ -318,7 +329,8 @@ describe("rungs larger than a sheet", () => {
     "are drawn whole or cut without a fault on %s: many in series, beside each other, and as loads",
     (paper) => {
       const lamps = Array.from({ length: 12 }, (_, i) => `LP${i}`);
-      const laid = ladderOf(`drawing "Large" { paper ${paper} }
+      const laid = ladderOf(
+        `drawing "Large" { paper ${paper} }
       ${contacts(20)
         .map((name) => `limit-switch ${name} "Gate closed"`)
         .join("\n")}
@@ -329,7 +341,9 @@ describe("rungs larger than a sheet", () => {
         rung "Series": ${contacts(16).join(" ")} -> CR1
         rung "Beside": LS20 (${contacts(20).join(" | ")}) -> CR2
         rung "Loads": LS20 -> (${lamps.join(" | ")})
-      }`);
+      }`,
+        convention,
+      );
       expect(faults(laid)).toEqual([]);
     },
   );

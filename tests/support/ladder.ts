@@ -35,13 +35,14 @@ export interface LaidLadder {
 
 const library = openSymbols(nodeWorld);
 
-/** Lays the first ladder of a text out, from the text to millimetres. */
-export function ladderOf(text: string): LaidLadder {
+/** Lays the first ladder of a text out, from the text to millimetres, in the text's own convention unless another is given. */
+export function ladderOf(text: string, convention?: Machine["drawing"]["convention"]): LaidLadder {
   const { tree, diagnostics } = parse(text, "test.sprung");
   const built = buildMachine(tree);
   const errors = [...diagnostics, ...built.diagnostics].filter(({ severity }) => severity === "error");
   if (errors.length > 0) throw new Error(errors.map(({ message, at }) => `${at.line}: ${message}`).join("\n"));
   const { machine } = built;
+  if (convention) machine.drawing.convention = convention;
   const circuit = machine.circuits.find(({ kind }) => kind === "ladder") as LadderCircuit;
   const page = pageArea(machine.drawing);
   const start = startOfCycle(machine);

@@ -18,7 +18,7 @@ export type BlockStroke = CircuitSheet["strokes"][number];
 
 /** A component with the texts that stand by it, in modules about an origin that is set on the grid. */
 export interface Block {
-  component: FluidComponent;
+  component: DrawnComponent;
   symbol: Symbol;
   turn: Turn;
   /** Where the symbol's own origin lies, so that its ports are on whole modules. */
@@ -68,7 +68,7 @@ export function chooseTurn(symbol: Symbol, wanted: Readonly<Record<string, Direc
 }
 
 /** A symbol set on the grid without texts. */
-export function bareBlock(component: FluidComponent, symbol: Symbol, turn: Turn): Block {
+export function bareBlock(component: DrawnComponent, symbol: Symbol, turn: Turn): Block {
   const turned = turnSymbol(symbol, turn);
   const [first] = turned.ports;
   const offset = first ? { x: toGrid(first.x / module), y: toGrid(first.y / module) } : { x: 0, y: 0 };
@@ -92,10 +92,18 @@ function round(value: number): number {
   return whole === 0 ? 0 : whole;
 }
 
+/** A component with the way electrical names at it are printed, where that is not as they are. */
+export type DrawnComponent = FluidComponent & { printed?: (name: string) => string };
+
+/** A designation at a component as it is printed: its own, that of a solenoid or of a switch. */
+export function printedOn(component: DrawnComponent, name: string): string {
+  return component.printed?.(name) ?? name;
+}
+
 /** What is written beside a component: designation, function text, values. */
-export function wordsOf(component: FluidComponent, width: Mm = 30): { role: PlacedText["role"]; text: string }[] {
+export function wordsOf(component: DrawnComponent, width: Mm = 30): { role: PlacedText["role"]; text: string }[] {
   const words: { role: PlacedText["role"]; text: string }[] = [];
-  if (component.name !== undefined) words.push({ role: "designation", text: component.name });
+  if (component.name !== undefined) words.push({ role: "designation", text: printedOn(component, component.name) });
   if (component.text !== undefined)
     for (const text of wrapText(component.text, textHeight, width, 2)) words.push({ role: "function", text });
   for (const text of joinedValues(component.values, width)) words.push({ role: "value", text });

@@ -4,7 +4,7 @@ import type { CylinderSpec, FluidComponent } from "../../machine/model.js";
 import type { Symbol } from "../../symbols/symbol.js";
 import { rowPitch } from "../placement.js";
 import type { SymbolOf } from "./arrangement.js";
-import { addText, type Block, bareBlock, pitch, smallHeight, textExtent, textHeight, titleHeight } from "./block.js";
+import { addText, type Block, bareBlock, pitch, printedOn, smallHeight, textExtent, textHeight, titleHeight } from "./block.js";
 import { module, union } from "./modules.js";
 
 /** Room for the ladder lines of a switch under its designation. */
@@ -74,7 +74,9 @@ function addCams(block: Block, spec: CylinderSpec, usesOf: SymbolOf["usesOf"]): 
     ],
     width: 0.25,
   });
-  const widths = switches.map(({ device }) => Math.max(measureText(device, textHeight), referenceRoom) / module);
+  const widths = switches.map(
+    ({ device }) => Math.max(measureText(printedOn(block.component, device), textHeight), referenceRoom) / module,
+  );
   const wanted = ends.map((end) => (end.written === "retracted" ? from : end.written === "extended" ? to : (end.from + end.to) / 2));
   const least = 10.4 + block.offset.x;
   const labels = spread(wanted, widths, least);
@@ -126,7 +128,7 @@ function addCams(block: Block, spec: CylinderSpec, usesOf: SymbolOf["usesOf"]): 
     addText(block, {
       part,
       role: "designation",
-      text: end.device,
+      text: printedOn(block.component, end.device),
       height: textHeight,
       anchor: "middle",
       at: { x: label, y: referenceTop - 1.4 },

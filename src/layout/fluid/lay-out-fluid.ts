@@ -3,10 +3,12 @@ import type { Box, Point } from "../../drawing/geometry.js";
 import type { PartId } from "../../drawing/marks.js";
 import type { Diagnostic } from "../../language/diagnostic.js";
 import type { FluidCircuit, FluidComponent, Machine } from "../../machine/model.js";
+import { printedName } from "../../machine/walk.js";
 import { symbolForComponent } from "../../symbols/choose.js";
 import type { SymbolLibrary } from "../../symbols/library.js";
 import type { CircuitSheet, PageArea, Place } from "../placement.js";
 import type { Arrangement } from "./arrangement.js";
+import type { DrawnComponent } from "./block.js";
 import type { Composition } from "./compose-sheet.js";
 import { type Division, divide } from "./divide.js";
 import { drawFluidSheet } from "./draw-sheet.js";
@@ -29,6 +31,12 @@ export interface FluidLayout {
 /** How often a sheet is set out anew with more room where a line found no way. */
 const attempts = 4;
 
+/** The circuit with its components told how the electrical names at them are printed. */
+function withPrintedNames(circuit: FluidCircuit, { devices, drawing }: Machine): FluidCircuit {
+  const printed = (name: string) => (devices.has(name) ? printedName(name, drawing.convention) : name);
+  return { ...circuit, components: circuit.components.map((component): DrawnComponent => ({ ...component, printed })) };
+}
+
 /**
  * Lays a fluid circuit out on as many sheets as it needs: energy flows upward from the power unit at the bottom left to the
  * actuators along the top, in the order of declaration.
@@ -45,7 +53,7 @@ export async function layOutFluid(
   numbering: { sheet: number },
 ): Promise<FluidLayout> {
   if (circuit.components.length === 0) return { sheets: [], places: [], diagnostics: [] };
-  const drawn = repeatTanks(circuit);
+  const drawn = repeatTanks(withPrintedNames(circuit, machine));
   const graph = new FluidGraph(drawn.circuit);
   const known = new Map<FluidComponent, ReturnType<typeof symbolForComponent>>();
   const symbolOf = Object.assign(

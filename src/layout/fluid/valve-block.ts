@@ -2,7 +2,7 @@ import type { Mm } from "../../drawing/geometry.js";
 import type { FluidComponent, ValveActuator } from "../../machine/model.js";
 import type { Symbol, Turn } from "../../symbols/symbol.js";
 import { turnSymbol } from "../../symbols/turn.js";
-import { addText, type Block, bareBlock, pitch, smallHeight, textHeight, wordsOf } from "./block.js";
+import { addText, type Block, bareBlock, pitch, printedOn, smallHeight, textHeight, wordsOf } from "./block.js";
 import { extentOf, module, moved } from "./modules.js";
 
 /** Room for a solenoid's ladder line. */
@@ -56,7 +56,7 @@ function addEnd(block: Block, turned: Symbol, side: "left" | "right", actuators:
     const outward = side === "left" ? -0.4 : 0.4;
     const up = { x: over.x / module + offset.x + outward, y: over.y / module + offset.y - index * pitch };
     const down = { x: under.x / module + offset.x + outward, y: under.y / module + offset.y + index * pitch };
-    addText(block, { part, role: "designation", text: coil, height: textHeight, anchor: over.anchor, at: up });
+    addText(block, { part, role: "designation", text: printedOn(component, coil), height: textHeight, anchor: over.anchor, at: up });
     addText(block, {
       part,
       role: "reference",

@@ -10,6 +10,7 @@ import { fitRungs, pointsOf } from "./fit-rungs.js";
 import type { Link } from "./grid.js";
 import { nameThirdLead } from "./name-third-lead.js";
 import type { RailEnd } from "./plan.js";
+import { planInternational } from "./plan-international.js";
 import { planNorthAmerican } from "./plan-north-american.js";
 import { prepareSymbol } from "./prepare-symbol.js";
 import { leastSpan, setColumns } from "./set-columns.js";
@@ -47,7 +48,13 @@ export function layOutLadder(
   if (rungs.length === 0) return { sheets: [], places: [], nextLine: numbering.line };
   const prepared = (use: DeviceUse) =>
     nameThirdLead(prepareSymbol(symbolOf(use), use), machine.devices.get(use.device), circuit.supply.rails);
-  const plan = planNorthAmerican({ circuit, machine, symbolOf: prepared, symbols, room: page.area });
+  const plan = (machine.drawing.convention === "international" ? planInternational : planNorthAmerican)({
+    circuit,
+    machine,
+    symbolOf: prepared,
+    symbols,
+    room: page.area,
+  });
 
   // 1. Every part has a column and a line on the grid, shared points are joined or end in a reference, every text is
   //    measured, and no rung needs more than a sheet offers.
@@ -140,8 +147,10 @@ function linkedRungs(links: readonly Link[]): (rung: number) => boolean {
 /** The number of the first line of each sheet. */
 function numberLines(sheets: readonly RungSheet[], machine: Machine, numbering: Numbering): number[] {
   let running = numbering.line;
+  // A rung's number says its sheet too, a path's is written behind that of its sheet.
+  const bySheet = (sheet: number) => (machine.drawing.convention === "international" ? 1 : sheet * 100 + 1);
   return sheets.map((sheet, index) => {
-    const first = machine.drawing.lineNumbers === "running" ? running : (numbering.sheet + index) * 100 + 1;
+    const first = machine.drawing.lineNumbers === "running" ? running : bySheet(numbering.sheet + index);
     running += sheet.rungs.reduce((sum, { lines }) => sum + lines.length, 0);
     return first;
   });

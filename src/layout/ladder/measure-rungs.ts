@@ -32,7 +32,7 @@ export type MeasuredEnding = Ending & { lead: Mm };
 export interface LineRoom {
   above: Mm;
   below: Mm;
-  /** How far down an arrow hangs to be clear of what stands under the line. */
+  /** How far behind the line an arrow hangs, across, to be clear of what stands there. */
   drop: Mm;
 }
 
@@ -66,10 +66,11 @@ export function measureRungs(
       room.below = Math.max(room.below, below);
     };
     for (const [cell, { above, below }] of dressed) claim(cell.line, above, below);
+    const own = endingsOf.get(index) ?? [];
+    // What stands outside the return rail is in no arrow's way.
+    for (const room of lines) room.drop = Math.max(room.below + 0.7, 3);
     const margins = marginsOf(grid, arrangement);
     for (const { line, block } of margins) claim(line, block.above, block.below);
-    const own = endingsOf.get(index) ?? [];
-    for (const room of lines) room.drop = Math.max(room.below + 0.7, 3);
     for (const { kind, line, point } of own) {
       const { across } = arrangement.ending(kind, point);
       if (kind === "drop") claim(line, 0, (lines[line] as LineRoom).drop + endingSize.head + endingSize.gap + across);

@@ -81,6 +81,11 @@ function voltsOf({ supply: { voltage, current } }: LadderCircuit): string {
   return voltage ? `${voltage.text}${/[AD]C/.test(voltage.text) ? "" : ` ${current}`}` : current;
 }
 
+/** The supply with its voltage, `CTRL  24 V DC`. */
+export function supplyWords(circuit: LadderCircuit): string {
+  return `${circuit.supply.name}  ${voltsOf(circuit)}`;
+}
+
 export interface RailNaming {
   head: RailHead;
   /** Where the live rail crosses the first line's room. */
@@ -125,7 +130,7 @@ export function nameRails(sheet: CircuitSheet, circuit: LadderCircuit, naming: R
   const inset = head.noteRow > 0 ? 0 : Math.max(...over, inwardReach(head.back, room.right)) + apart;
   if (naming.comesFrom === undefined) {
     const volts = voltsOf(circuit);
-    const named = `${circuit.supply.name}  ${volts}`;
+    const named = supplyWords(circuit);
     const free = span - 2 * inset;
     say(span / 2, foot, "middle", noteHeight, "note", measureText(named, noteHeight) <= free ? named : fitText(volts, noteHeight, free));
   } else {

@@ -3,14 +3,14 @@ import { measureRailHead, nameRails } from "./name-rails.js";
 import { northAmerican } from "./north-american.js";
 import type { Plan, PlanGiven, RailEnd } from "./plan.js";
 import { scaleSymbol } from "./scale-symbol.js";
-import { fuseBlock, fuseScale, fuseSymbol, setFuse } from "./supply-fuse.js";
+import { fuseBlock, setFuse } from "./supply-fuse.js";
 
 /** Upright rails with line numbers on their left, references and function texts on their right. */
 export function planNorthAmerican({ circuit, machine, symbolOf, symbols, room: { width, height } }: PlanGiven): Plan {
   const { margin, span } = shareWidth(width);
   const fuse =
     circuit.supply.fuse && symbols.names().includes(fuseSymbol)
-      ? fuseBlock(circuit.supply.fuse, scaleSymbol(symbols.get(fuseSymbol), fuseScale))
+      ? fuseBlock(circuit.supply.fuse, scaleSymbol(symbols.get(fuseSymbol), fuseScale), "north-american")
       : undefined;
   const beside = { left: lineNumberRoom, span, right: width - lineNumberRoom - span };
   const plain = measureRailHead(circuit, beside, "next");
@@ -29,7 +29,7 @@ export function planNorthAmerican({ circuit, machine, symbolOf, symbols, room: {
       return { from: railHead + heading.above - head, to: depth + footRoom - railFoot };
     },
     finish: (sheet, { first, origin, span, rails: { from, to }, comesFrom, goesTo }) => {
-      const behindFuse = fuse && first ? setFuse(sheet, fuse, { x: origin.x, y: origin.y + from }, span) - origin.y : undefined;
+      const behindFuse = fuse && first ? setFuse(sheet, fuse, { x: origin.x, y: origin.y + from }, span, "upright") - origin.y : undefined;
       nameRails(sheet, circuit, {
         head: headOf(first).heading,
         origin,
@@ -43,6 +43,10 @@ export function planNorthAmerican({ circuit, machine, symbolOf, symbols, room: {
     },
   };
 }
+
+const fuseSymbol = "north-american/fuse";
+/** A fuse in a rail is drawn on the smaller module, because its leads are the rail. */
+const fuseScale = 0.72;
 
 /** Room for line numbers left of the live rail, mm. */
 const lineNumberRoom: Mm = 14;

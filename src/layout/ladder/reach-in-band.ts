@@ -1,18 +1,33 @@
+import { textBox } from "../../drawing/extent.js";
 import type { Mm, Point } from "../../drawing/geometry.js";
 import type { Segment } from "../../drawing/marks.js";
 import { arcCurves } from "../../drawing/path.js";
 import type { Symbol } from "../../symbols/symbol.js";
 
-/** How far to either side a symbol, moved by `shift`, reaches between two heights, mm. Texts beside it stay beyond that. */
-export function reachInBand(symbol: Symbol, shift: Point, top: Mm, bottom: Mm): Mm {
+/** How far to one side or the other a symbol, moved by `shift`, reaches between two heights, mm. Texts beside it stay beyond that. */
+export function reachInBand(symbol: Symbol, shift: Point, top: Mm, bottom: Mm, side: "left" | "either" = "either"): Mm {
   let reach: Mm = 0;
   for (const shape of symbol.shapes) {
-    if (shape.kind === "text") continue;
+    if (shape.kind === "text") {
+      if (side === "either") continue;
+      const { x, y, height } = textBox({ ...shape, at: { x: shape.at.x, y: shape.at.y + shape.height / 2 } });
+      if (y + shift.y <= bottom && y + height + shift.y >= top) reach = Math.max(reach, -x - shift.x);
+      continue;
+    }
     for (const { x, y } of pointsAlong(shape.path)) {
-      if (y + shift.y >= top && y + shift.y <= bottom) reach = Math.max(reach, Math.abs(x + shift.x));
+      if (y + shift.y >= top && y + shift.y <= bottom) reach = Math.max(reach, side === "left" ? -x - shift.x : Math.abs(x + shift.x));
     }
   }
   return reach;
+}
+
+/** The highest and lowest place where a symbol, moved by `shift`, reaches farther right than `x`, mm; its middle if nowhere. */
+export function heightBeyond(symbol: Symbol, shift: Point, x: Mm): { top: Mm; bottom: Mm } {
+  const there = symbol.shapes
+    .flatMap((shape) => (shape.kind === "text" ? [] : pointsAlong(shape.path)))
+    .filter((point) => point.x + shift.x > x)
+    .map(({ y }) => y + shift.y);
+  return { top: Math.min(0, ...there), bottom: Math.max(0, ...there) };
 }
 
 /** Fine enough that no line passes a 2 mm band between two of its points. */
