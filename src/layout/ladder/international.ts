@@ -7,6 +7,7 @@ import { extentOf } from "../../symbols/extent.js";
 import type { Shape, Symbol } from "../../symbols/symbol.js";
 import type { PlacedText } from "../placement.js";
 import type { Arrangement, Dressed } from "./arrangement.js";
+import { chartPositions } from "./chart-positions.js";
 import { footBlock } from "./foot-block.js";
 import { endingSize } from "./measure-rungs.js";
 import { heightBeyond, reachInBand } from "./reach-in-band.js";
@@ -124,7 +125,9 @@ function dress(use: DeviceUse, device: Device | undefined, symbol: Symbol, width
   texts.push(...labels.texts.map((text) => ({ ...text, at: { x: text.at.x + shift.x, y: text.at.y + shift.y } })));
 
   const nameRise = name.height + (names.length - 1) * wrappedPitch(name.height);
-  const underRise = under.reduce((sum, { height }) => sum + lineGap + height, 0);
+  const chart = chartPositions(use, device, width);
+  const chartRise = chart ? chart.height + lineGap : 0;
+  const underRise = chartRise + under.reduce((sum, { height }) => sum + lineGap + height, 0);
   const beyond = left(-name.height / 2, name.height / 2) > bareReach;
   // Beyond an actuator the name stands level with it and the rest below; at a bare symbol all of it stands about its middle.
   const top = beyond ? name.height / 2 - nameRise : -(nameRise + underRise) / 2;
@@ -136,6 +139,11 @@ function dress(use: DeviceUse, device: Device | undefined, symbol: Symbol, width
   for (const [index, words] of names.entries()) {
     baseline += index === 0 ? words.height : wrappedPitch(words.height);
     set(words, edges[0] as Mm, baseline);
+  }
+  if (chart) {
+    const corner = { x: (edges[1] as Mm) - chart.width, y: baseline + lineGap };
+    texts.push(...chart.texts.map((text) => ({ ...text, at: { x: text.at.x + corner.x, y: text.at.y + corner.y } })));
+    baseline += chartRise;
   }
   for (const words of under) {
     baseline += lineGap + words.height;
