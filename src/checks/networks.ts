@@ -1,5 +1,9 @@
+import { type Wiring, wiringOf } from "../behaviour/conduction.js";
 import type { ContactUse, LoadUse, Machine, NodeId, Rung, Supply, ThroughUse } from "../machine/model.js";
 import { laddersOf, usesOf } from "../machine/walk.js";
+import { findQuenching, type Quenching } from "./quenching.js";
+import { States } from "./states.js";
+import { Ways } from "./ways.js";
 
 /** Electrical facts that several rules ask for, each found once. */
 export class Networks {
@@ -12,7 +16,14 @@ export class Networks {
   readonly gaps: boolean;
   readonly supplies: readonly Supply[];
   private readonly railNodes = new Map<string, NodeId>();
+  /** What current can do in it. */
+  readonly wiring: Wiring;
+  /** The ways to each load. */
+  readonly ways: Ways;
+  /** Which states devices can be in together. */
+  readonly states: States;
   private joined: NodeId[] | undefined;
+  private quenching: ReadonlyMap<ThroughUse, Quenching> | undefined;
 
   constructor(private readonly machine: Machine) {
     const ladders = laddersOf(machine);
@@ -28,6 +39,9 @@ export class Networks {
         else this.throughs.push(use);
       }
     }
+    this.wiring = wiringOf(machine);
+    this.ways = new Ways(machine, this.wiring);
+    this.states = new States(machine, this.ways);
   }
 
   /** The nodes of all live rails, or of all return rails. */
@@ -40,34 +54,32 @@ export class Networks {
     return nodes;
   }
 
+  railNode(rail: string): NodeId | undefined {
+    return this.railNodes.get(rail);
+  }
+
   railName(node: NodeId): string {
     return this.machine.potentials[node]?.rail ?? "";
   }
 
-  /** Nodes that contacts can join, were all of them closed, and what current passes through, are in one group: its first node. */
+  /**
+   * Nodes that contacts can join, were all of them closed, and what current passes through, are in one group: its first node. A
+   * diode or a resistor across a load joins nothing.
+   */
   groupOf(node: NodeId): NodeId {
     this.joined ??= this.joinContacts();
     return this.joined[node] ?? node;
   }
 
-  /** The contacts at each node. */
-  contactsAt(): Map<NodeId, ContactUse[]> {
-    const at = new Map<NodeId, ContactUse[]>();
-    for (const contact of this.contacts) {
-      for (const node of new Set([contact.from, contact.to])) {
-        const there = at.get(node);
-        if (there) there.push(contact);
-        else at.set(node, [contact]);
-      }
-    }
-    return at;
+  /** The load that a diode or a resistor stands across, to quench it. */
+  quenchedBy(use: ContactUse | ThroughUse): Quenching | undefined {
+    if (use.kind === "contact") return undefined;
+    this.quenching ??= findQuenching(this.machine, this.rungs);
+    return this.quenching.get(use);
   }
 
   private joinContacts(): NodeId[] {
     const groups: NodeId[] = this.machine.potentials.map(({ id }) => id);
-    const at = new Map<NodeId, (ContactUse | ThroughUse)[]>(this.contactsAt());
-    for (const through of this.throughs)
-      for (const node of new Set([through.from, through.to])) at.set(node, [...(at.get(node) ?? []), through]);
     const seen = new Set<NodeId>();
     for (const { id } of this.machine.potentials) {
       if (seen.has(id)) continue;
@@ -75,9 +87,9 @@ export class Networks {
       const queue = [id];
       for (let here = queue.pop(); here !== undefined; here = queue.pop()) {
         groups[here] = id;
-        for (const { from, to } of at.get(here) ?? []) {
-          const beyond = from === here ? to : from;
-          if (seen.has(beyond)) continue;
+        for (const { use } of this.wiring.at.get(here) ?? []) {
+          const beyond = use.from === here ? use.to : use.from;
+          if (seen.has(beyond) || this.quenchedBy(use)) continue;
           seen.add(beyond);
           queue.push(beyond);
         }

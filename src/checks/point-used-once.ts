@@ -1,12 +1,13 @@
 import type { SourceRange } from "../language/diagnostic.js";
+import type { Machine } from "../machine/model.js";
 import { elementsOf, laddersOf, wholeFluidsOf } from "../machine/walk.js";
-import { rule, type Subject } from "./rule.js";
+import { rule } from "./rule.js";
 
 export const pointUsedOnce = rule<{ point: string }>({
   code: "point-used-once",
   severity: "warning",
   says: ({ point }) => `@${point} is named only here: nothing else is joined to it.`,
-  find: (subject) => [...electrical(subject), ...fluid(subject)],
+  find: ({ machine }) => [...lonePoints(machine), ...fluid(machine)],
 });
 
 interface Use {
@@ -14,7 +15,8 @@ interface Use {
   at: SourceRange;
 }
 
-function electrical({ machine }: Subject): Use[] {
+/** Points of ladders that are named once, where they are. */
+export function lonePoints(machine: Machine): Use[] {
   const uses: Use[] = [];
   for (const { rungs } of laddersOf(machine)) {
     for (const { start, end, path } of rungs) {
@@ -26,7 +28,7 @@ function electrical({ machine }: Subject): Use[] {
   return loneOf(uses);
 }
 
-function fluid({ machine }: Subject): Use[] {
+function fluid(machine: Machine): Use[] {
   return wholeFluidsOf(machine).flatMap(({ lines }) => {
     const uses: Use[] = [];
     for (const line of lines) {

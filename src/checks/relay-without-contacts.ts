@@ -1,6 +1,9 @@
+import type { DeviceKind } from "../machine/model.js";
 import { rule } from "./rule.js";
 
-/** A contactor may do its work with its main contacts alone. */
+/** What does nothing but by its contacts. A contactor may do its work with its main contacts alone. */
+const contactsAlone: ReadonlySet<DeviceKind> = new Set<DeviceKind>(["relay", "timer", "latching-relay", "counter"]);
+
 export const relayWithoutContacts = rule<{ device: string }>({
   code: "relay-without-contacts",
   severity: "note",
@@ -9,6 +12,6 @@ export const relayWithoutContacts = rule<{ device: string }>({
     networks.gaps
       ? []
       : [...machine.devices.values()]
-          .filter(({ kind, loads, contacts }) => (kind === "relay" || kind === "timer") && loads.length > 0 && contacts.length === 0)
+          .filter(({ kind, loads, contacts }) => contactsAlone.has(kind) && loads.length > 0 && contacts.length === 0)
           .map(({ name, loads: [load], at }) => ({ device: name, at: load?.at ?? at })),
 });

@@ -1,12 +1,23 @@
 import { coilDrivenTwice } from "./coil-driven-twice.js";
+import { coilDropsItselfOut } from "./coil-drops-itself-out.js";
 import { coilNeverDriven } from "./coil-never-driven.js";
+import { coilWaitsForItself } from "./coil-waits-for-itself.js";
+import { contactLeadsNowhere } from "./contact-leads-nowhere.js";
+import { contactNeverConducts } from "./contact-never-conducts.js";
 import { contactOnReturnSide } from "./contact-on-return-side.js";
 import { contactWithoutCoil } from "./contact-without-coil.js";
+import { contactWithoutEffect } from "./contact-without-effect.js";
 import { cylinderMovesAtStart } from "./cylinder-moves-at-start.js";
 import { deviceBridged } from "./device-bridged.js";
 import { deviceUnused } from "./device-unused.js";
+import { diodeAcrossAcLoad, diodeTurnedRound } from "./diode-beside-load.js";
+import { emergencyStopBypassed } from "./emergency-stop-bypassed.js";
 import { emergencyStopNormallyOpen } from "./emergency-stop-normally-open.js";
+import { fuseOnReturnSide } from "./fuse-on-return-side.js";
+import { holdWithoutStop } from "./hold-without-stop.js";
 import { loadNotFed } from "./load-not-fed.js";
+import { opposedCoilsNotInterlocked } from "./opposed-coils-not-interlocked.js";
+import { overloadOpensNothing } from "./overload-opens-nothing.js";
 import { pointUsedOnce } from "./point-used-once.js";
 import { polesExceeded } from "./poles-exceeded.js";
 import { portOpen } from "./port-open.js";
@@ -37,14 +48,27 @@ export const rules: readonly RunnableRule[] = [
   supplyUnlikeItsSource,
   shortAcrossRails,
   deviceBridged,
+  contactNeverConducts,
+  contactWithoutEffect,
+  contactLeadsNowhere,
+  coilWaitsForItself,
+  coilDropsItselfOut,
   twoLoadsInSeries,
   loadNotFed,
   contactOnReturnSide,
-  emergencyStopNormallyOpen,
+  fuseOnReturnSide,
+  diodeAcrossAcLoad,
+  diodeTurnedRound,
+  overloadOpensNothing,
   pointUsedOnce,
+  // electrical, hints on safety
+  emergencyStopNormallyOpen,
+  emergencyStopBypassed,
+  holdWithoutStop,
   // across
   solenoidWithoutValve,
   valveCoilNeverDriven,
+  opposedCoilsNotInterlocked,
   switchOutsideStroke,
   // fluid
   portOpen,
