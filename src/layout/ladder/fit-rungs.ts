@@ -2,10 +2,11 @@ import type { Mm } from "../../drawing/geometry.js";
 import type { LadderCircuit, NodeId, Rung } from "../../machine/model.js";
 import type { Arrangement } from "./arrangement.js";
 import { stack } from "./break-sheets.js";
-import { foldRungs, type RungLimits } from "./fold-rungs.js";
+import { foldRungs, noLimits, type RungLimits } from "./fold-rungs.js";
 import { boundaryOf, loadColumn, type RungGrid, stride } from "./grid.js";
 import { type Joined, joinPoints } from "./join-points.js";
 import { type MeasuredRung, measureRungs } from "./measure-rungs.js";
+import { returnWidth } from "./place-parts.js";
 import { alongRails } from "./reverse-rung.js";
 import { leastSpan, needsOfLoads, noNeeds, withNeeds } from "./set-columns.js";
 import { joinWiresAgain, splitWires } from "./split-wires.js";
@@ -44,8 +45,7 @@ export function fitRungs(
   const limits = new Map<number, RungLimits>();
   /** Rungs that were too wide: their texts are wrapped as narrow as they go before anything is cut. */
   const tight = new Set<number>();
-  const limitsOf = (index: number): RungLimits =>
-    limits.get(index) ?? { columns: Number.POSITIVE_INFINITY, lines: Number.POSITIVE_INFINITY };
+  const limitsOf = (index: number): RungLimits => limits.get(index) ?? noLimits;
   const roomy = roomyColumns * arrange(1).columns.usual;
   let scale = 1;
   let triedSmall = false;
@@ -70,20 +70,17 @@ export function fitRungs(
     const wideRungs = new Set<number>();
     let wide = 0;
     let tall = 0;
-    const loads = needsOfLoads(measured.reduce((needs, rung) => withNeeds(needs, rung, arrangement), noNeeds()));
-    const behind = leastSpan(loads, arrangement.columns);
     measured.forEach((rung, index) => {
       const of = origin[index] as number;
       // What held for this round; several pieces of one rung must not lower its limit several times.
       const known = limitsOf(of);
       const lowered = next.get(of) ?? known;
-      const along = leastSpan(withNeeds(noNeeds(), rung, arrangement), arrangement.columns);
+      const needs = withNeeds(noNeeds(), rung, arrangement);
+      const along = leastSpan(needs, arrangement.columns);
       if (along > offer.span) {
         wide++;
         wideRungs.add(of);
-        const columns = columnsOf(rung.grid);
-        const share = Math.floor((columns * (offer.span - behind)) / Math.max(along - behind, 1));
-        next.set(of, { ...lowered, columns: Math.max(1, Math.min(lowered.columns, known.columns - 1, Math.max(columns - 1, 1), share)) });
+        next.set(of, narrower(rung, known, lowered, leastSpan(needsOfLoads(needs), arrangement.columns), along, offer.span));
       }
       const across = stack(rung, 0, 0, arrangement.lines).depth;
       if (across > offer.depth) {
@@ -117,6 +114,26 @@ export function fitRungs(
     for (const [index, limit] of next) limits.set(index, limit);
   }
 }
+
+/**
+ * What a rung that is too wide may take from now on: less behind its loads where these and what lies behind them take most
+ * of the sheet, else less before them.
+ * @param behind what its loads and all behind them take along
+ */
+function narrower({ grid }: MeasuredRung, known: RungLimits, lowered: RungLimits, behind: Mm, along: Mm, span: Mm): RungLimits {
+  const returns = returnWidth(grid.rung.path);
+  const most = span * behindShare;
+  if (returns > 0 && known.returns > 1 && (behind > most || known.columns === 1)) {
+    const share = Math.floor((returns * most) / behind);
+    return { ...lowered, returns: Math.max(1, Math.min(lowered.returns, known.returns - 1, Math.max(returns - 1, 1), share)) };
+  }
+  const columns = columnsOf(grid);
+  const share = Math.floor((columns * (span - behind)) / Math.max(along - behind, 1));
+  return { ...lowered, columns: Math.max(1, Math.min(lowered.columns, known.columns - 1, Math.max(columns - 1, 1), share)) };
+}
+
+/** The share of a sheet's width that loads and what lies behind them may take in a rung that is too wide. */
+const behindShare = 0.55;
 
 /** The share of wide rungs for whose sake the whole ladder is not drawn smaller. */
 const fewWide = 0.1;

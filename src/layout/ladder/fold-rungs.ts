@@ -1,11 +1,18 @@
 import type { NodeId, ParallelPath, PointUse, Rung, RungElement, SeriesPath } from "../../machine/model.js";
-import { bearsLoad, contactWidth, type Gap, heightOf, type Item, widthOfItem } from "./place-parts.js";
+import { contactWidth, type Gap, heightOf, type Item, lastLoad, placeOfLoad, returnWidth, widthOfItem } from "./place-parts.js";
 
-/** What one rung may take on a sheet: columns before its loads, and lines. */
+/** What one rung may take on a sheet: columns before its loads, columns behind them, and lines. */
 export interface RungLimits {
   columns: number;
+  returns: number;
   lines: number;
 }
+
+export const noLimits: RungLimits = {
+  columns: Number.POSITIVE_INFINITY,
+  returns: Number.POSITIVE_INFINITY,
+  lines: Number.POSITIVE_INFINITY,
+};
 
 export interface Folded {
   rungs: Rung[];
@@ -28,142 +35,239 @@ export function foldRungs(rungs: readonly Rung[], limitsOf: (index: number) => R
     return letter;
   };
   rungs.forEach((rung, index) => {
-    const limits = limitsOf(index);
+    const cutter = new Cutter(rung, limitsOf(index), letters);
     const queue = [rung];
-    let piece = 0;
     for (let next = queue.shift(); next; next = queue.shift()) {
-      const more: Rung[] = [];
-      const whole = cutTall(cutWide(next));
-      folded.rungs.push(whole);
+      folded.rungs.push(cutter.cut(next));
       folded.origin.push(index);
-      queue.unshift(...more);
-
-      /** Cuts a rung at its widest that fits; the rest goes on as a rung of its own. */
-      function cutWide(given: Rung): Rung {
-        let whole = given;
-        // What begins with an arrow gives a column to it; an arrow at the end stands where the load would.
-        const room = Math.max(limits.columns - (whole.start.kind === "rail" ? 0 : 1), 1);
-        if (contactWidth(whole.path) <= room) return whole;
-        let kept = 0;
-        for (let width = 0; kept < whole.path.items.length; kept++) {
-          let item = whole.path.items[kept] as Item;
-          if (isLoad(item) && kept > 0) break;
-          if (item.kind === "parallel" && headWidth(item) > room && (kept === 0 || room - width >= 2)) {
-            // It fits on no line as it is: what stands in its long branches goes to lines of their own.
-            const at = kept;
-            const narrowed = narrow(item, Math.max(room - width, 2));
-            const items = whole.path.items.map((other, index) => (index === at ? narrowed : other));
-            whole = { ...whole, path: { ...whole.path, items } };
-            item = narrowed;
-          }
-          if (isLoad(item)) break;
-          // One part at least, or a bracket narrowed to two arrows, so that every cut gets on.
-          if (kept > 0 && width + headWidth(item) > room) break;
-          width += headWidth(item);
-        }
-        const { items } = whole.path;
-        if (kept === 0 || contactWidth(whole.path) <= room) return whole;
-        while (kept < items.length && items[kept]?.kind === "point") kept++;
-        const rest = items.slice(kept);
-        const node = rest[0]?.from ?? whole.path.to;
-        if (rest.length === 0) return whole;
-        const letter = letters();
-        more.unshift({
-          ...continued(whole, letter, node),
-          end: whole.end,
-          path: { kind: "series", items: rest, from: node, to: whole.path.to },
-        });
-        return {
-          ...whole,
-          end: { kind: "point", point: letter, node, at: whole.at },
-          path: { kind: "series", items: items.slice(0, kept), from: whole.path.from, to: node },
-        };
-      }
-
-      function narrow(parallel: ParallelPath, room: number): ParallelPath {
-        return {
-          ...parallel,
-          branches: parallel.branches.map((branch) => {
-            if (contactWidth(branch) <= room) return branch;
-            const load = branch.items.findIndex((item) => isLoad(item));
-            const head = load < 0 ? branch.items : branch.items.slice(0, load);
-            const tail = load < 0 ? [] : branch.items.slice(load);
-            const long = head.filter((item) => item.kind !== "point");
-            if (long.length === 0) {
-              const inner = tail[0];
-              return inner?.kind === "parallel" ? { ...branch, items: [...head, narrow(inner, room), ...tail.slice(1)] } : branch;
-            }
-            const from = branch.from;
-            const to = tail[0]?.from ?? branch.to;
-            const [out, back] = [letters(), letters()];
-            more.push({
-              ...continued(next as Rung, out, from),
-              end: { kind: "point", point: back, node: to, at: (next as Rung).at },
-              path: { kind: "series", items: head, from, to },
-            });
-            const gap: Gap = { kind: "gap", points: [out, back], from, to, rung: (next as Rung).id };
-            return { ...branch, items: [gap as unknown as RungElement, ...tail] };
-          }),
-        };
-      }
-
-      /** Takes branches that have no room below the others to lines of their own. */
-      function cutTall(whole: Rung): Rung {
-        if (heightOf(whole.path) <= limits.lines) return whole;
-        return { ...whole, path: lower(whole.path, whole, limits.lines) };
-      }
-
-      function lower(path: SeriesPath, whole: Rung, lines: number): SeriesPath {
-        return {
-          ...path,
-          items: path.items.flatMap((item): SeriesPath["items"] => {
-            if (item.kind !== "parallel" || heightOf({ ...path, items: [item] }) <= lines) return [item];
-            let used = 0;
-            let kept = 0;
-            while (kept < item.branches.length && used + heightOf(item.branches[kept] as SeriesPath) <= lines)
-              used += heightOf(item.branches[kept++] as SeriesPath);
-            const own = kept > 0 ? item.branches.slice(0, kept) : [lower(item.branches[0] as SeriesPath, whole, lines)];
-            const rest = item.branches.slice(own.length);
-            if (rest.length === 0) return [{ ...item, branches: own }];
-            const fromRail = whole.start.kind === "rail" && whole.start.node === item.from;
-            const toRail = whole.end.kind === "rail" && whole.end.node === item.to;
-            const [out, back] = [fromRail ? "" : letters(), toRail ? "" : letters()];
-            const beside: SeriesPath =
-              rest.length === 1
-                ? (rest[0] as SeriesPath)
-                : { kind: "series", items: [{ ...item, branches: rest }], from: item.from, to: item.to };
-            more.push({
-              ...continued(whole, out, item.from),
-              ...(fromRail ? { start: whole.start } : {}),
-              end: toRail ? whole.end : { kind: "point", point: back, node: item.to, at: whole.at },
-              path: beside,
-            });
-            const point = (name: string, node: NodeId): PointUse[] =>
-              name === ""
-                ? []
-                : [{ kind: "point", id: `${whole.id}/${name}`, point: name, from: node, to: node, rung: whole.id, at: whole.at }];
-            return [...point(out, item.from), { ...item, branches: own }, ...point(back, item.to)];
-          }),
-        };
-      }
-
-      function continued(whole: Rung, letter: string, node: NodeId): Omit<Rung, "end" | "path"> {
-        piece++;
-        return { id: `${rung.id}/part${piece + 1}`, start: { kind: "point", point: letter, node, at: whole.at }, at: whole.at };
-      }
+      queue.unshift(...cutter.more.splice(0));
     }
   });
   return folded;
 }
 
-/** How many columns an item takes before the load column. */
-function headWidth(item: Item): number {
-  return isLoad(item)
-    ? contactWidth({ kind: "series", items: [item] as SeriesPath["items"], from: item.from, to: item.to })
-    : widthOfItem(item);
+type Items = SeriesPath["items"];
+
+/** Cuts one of the author's rungs and the pieces it falls into. */
+class Cutter {
+  /** What goes on on lines of its own behind the piece that was cut last. */
+  readonly more: Rung[] = [];
+  private pieces = 1;
+
+  constructor(
+    private readonly rung: Rung,
+    private readonly limits: RungLimits,
+    private readonly letters: () => string,
+  ) {}
+
+  cut(piece: Rung): Rung {
+    return this.cutTall(this.cutWide(this.cutBehind(piece)));
+  }
+
+  /** Cuts a rung behind its loads where what lies there is too long; the rest goes on from the live side of a rung of its own. */
+  private cutBehind(whole: Rung): Rung {
+    const room = this.limits.returns;
+    const at = lastLoad(whole.path);
+    if (at < 0 || returnWidth(whole.path) <= room) return whole;
+    const load = whole.path.items[at] as Item;
+    const own = load.kind === "parallel" ? this.narrowBehind(load, whole, room) : [load as RungElement];
+    const { items } = whole.path;
+    const after = items.slice(at + 1);
+    const inside = Math.max(0, ...own.map((item) => returnWidth(seriesOf([item as Item]))));
+    const kept = this.fitting(after, room - inside);
+    const head = [...items.slice(0, at), ...own, ...after.slice(0, kept)];
+    return this.goOn(whole, head, after.slice(kept));
+  }
+
+  /** How many items stand in so many columns, with an arrow behind them if they are not all. */
+  private fitting(items: Items, room: number): number {
+    const long = items.reduce((sum, item) => sum + widthOfItem(item), 0);
+    if (long <= room) return items.length;
+    let kept = 0;
+    for (let width = 0; kept < items.length; kept++) {
+      width += widthOfItem(items[kept] as Item);
+      if (width > room - 1) break;
+    }
+    while (kept < items.length && items[kept]?.kind === "point") kept++;
+    return kept;
+  }
+
+  /** Cuts a rung at its widest that fits; the rest goes on as a rung of its own. */
+  private cutWide(given: Rung): Rung {
+    let whole = given;
+    // What begins with an arrow gives a column to it; an arrow at the end stands where the load would.
+    const room = Math.max(this.limits.columns - (whole.start.kind === "rail" ? 0 : 1), 1);
+    if (contactWidth(whole.path) <= room) return whole;
+    let kept = 0;
+    for (let width = 0; kept < whole.path.items.length; kept++) {
+      let item = whole.path.items[kept] as Item;
+      if (isLoad(item) && width >= 1) break;
+      if (item.kind === "parallel" && headWidth(item) > room && (width < 1 || room - width >= arrowsOfGap)) {
+        // It fits on no line as it is: what stands in its long branches goes to lines of their own.
+        const narrowed = this.narrow(item, whole, Math.max(room - width, 1));
+        whole = withItems(whole, [...whole.path.items.slice(0, kept), ...narrowed, ...whole.path.items.slice(kept + 1)]);
+        kept += narrowed.findIndex(({ kind }) => kind === "parallel");
+        item = whole.path.items[kept] as Item;
+      }
+      if (isLoad(item)) break;
+      // One part at least, or a bracket narrowed to two arrows, so that every cut gets on.
+      if (width > 0 && width + headWidth(item) > room) break;
+      width += headWidth(item);
+    }
+    if (kept === 0 || contactWidth(whole.path) <= room) return whole;
+    const { items } = whole.path;
+    while (kept < items.length && items[kept]?.kind === "point") kept++;
+    if (items.slice(0, kept).every(({ kind }) => kind === "point")) return whole;
+    return this.goOn(whole, items.slice(0, kept), items.slice(kept));
+  }
+
+  /** Ends a rung in an arrow behind `head`; the rest begins on lines of its own. */
+  private goOn(whole: Rung, head: Items, rest: Items): Rung {
+    const node = rest[0]?.from;
+    if (node === undefined) return withItems(whole, head);
+    const letter = this.letters();
+    this.more.unshift({ ...this.continued(whole, letter, node), end: whole.end, path: seriesOf(rest, node, whole.path.to) });
+    return {
+      ...whole,
+      end: { kind: "point", point: letter, node, at: whole.at },
+      path: seriesOf(head, whole.path.from, node),
+    };
+  }
+
+  /** Makes a bracket fit before the loads: branches with loads go to lines of their own, of others what stands in them. */
+  private narrow(parallel: ParallelPath, whole: Rung, room: number): Items {
+    const tooWide = (branch: SeriesPath) => isLoaded(branch) && contactWidth(branch, true) > room;
+    const branches = this.keptOf(parallel, tooWide, (branch) => contactWidth(branch, true));
+    const narrowed = branches.map((branch) => {
+      if (contactWidth(branch, isLoad(parallel)) <= room) return branch;
+      const at = placeOfLoad(branch, isLoad(parallel));
+      const head = at < 0 ? branch.items : branch.items.slice(0, at);
+      const tail = at < 0 ? [] : branch.items.slice(at);
+      const long = head.reduce((sum, item) => sum + widthOfItem(item), 0);
+      // Two arrows are no shorter than two contacts.
+      const own = long > arrowsOfGap && !head.some(isGap) ? [this.elsewhere(whole, head, branch.from, tail[0]?.from ?? branch.to)] : head;
+      const [inner, ...after] = tail;
+      if (inner?.kind !== "parallel") return { ...branch, items: [...own, ...tail] };
+      const left = Math.max(room - Math.min(long, arrowsOfGap), 1);
+      return { ...branch, items: [...own, ...this.narrow(inner, whole, left), ...after] };
+    });
+    return this.besides(parallel, narrowed, whole, without(parallel.branches, branches));
+  }
+
+  /** Makes a bracket of loads fit behind them: branches go to lines of their own, of one that stays what lies behind its load. */
+  private narrowBehind(parallel: ParallelPath, whole: Rung, room: number): Items {
+    const branches = this.keptOf(parallel, (branch) => returnWidth(branch) > room, returnWidth);
+    const narrowed = branches.map((branch) => {
+      const at = lastLoad(branch);
+      if (at < 0 || returnWidth(branch) <= room) return branch;
+      const load = branch.items[at] as Items[number];
+      const own = load.kind === "parallel" ? this.narrowBehind(load, whole, room) : [load];
+      const tail = branch.items.slice(at + 1);
+      const long = tail.reduce((sum, item) => sum + widthOfItem(item), 0);
+      const after = long > arrowsOfGap && !tail.some(isGap) ? [this.elsewhere(whole, tail, tail[0]?.from ?? branch.to, branch.to)] : tail;
+      return { ...branch, items: [...branch.items.slice(0, at), ...own, ...after] };
+    });
+    return this.besides(parallel, narrowed, whole, without(parallel.branches, branches));
+  }
+
+  /** The branches of a bracket that fit where they are; if none does, the smallest. */
+  private keptOf(parallel: ParallelPath, tooWide: (branch: SeriesPath) => boolean, size: (branch: SeriesPath) => number): SeriesPath[] {
+    const kept = parallel.branches.filter((branch) => !tooWide(branch));
+    return kept.some(isLoaded) || !parallel.branches.some(isLoaded)
+      ? kept
+      : parallel.branches.filter((branch) => kept.includes(branch) || branch === smallest(parallel.branches.filter(isLoaded), size));
+  }
+
+  /** Takes a stretch to lines of its own and leaves two arrows in its place. */
+  private elsewhere(whole: Rung, items: Items, from: NodeId, to: NodeId): RungElement {
+    const [out, back] = [this.letters(), this.letters()];
+    this.more.push({
+      ...this.continued(whole, out, from),
+      end: { kind: "point", point: back, node: to, at: whole.at },
+      path: seriesOf(items, from, to),
+    });
+    const gap: Gap = { kind: "gap", points: [out, back], from, to, rung: whole.id };
+    return gap as unknown as RungElement;
+  }
+
+  /** Takes branches that have no room below the others to lines of their own. */
+  private cutTall(whole: Rung): Rung {
+    if (heightOf(whole.path) <= this.limits.lines) return whole;
+    return { ...whole, path: this.lower(whole.path, whole, this.limits.lines) };
+  }
+
+  private lower(path: SeriesPath, whole: Rung, lines: number): SeriesPath {
+    return {
+      ...path,
+      items: path.items.flatMap((item): Items => {
+        if (item.kind !== "parallel" || heightOf({ ...path, items: [item] }) <= lines) return [item];
+        let used = 0;
+        let kept = 0;
+        while (kept < item.branches.length && used + heightOf(item.branches[kept] as SeriesPath) <= lines)
+          used += heightOf(item.branches[kept++] as SeriesPath);
+        const own = kept > 0 ? item.branches.slice(0, kept) : [this.lower(item.branches[0] as SeriesPath, whole, lines)];
+        return this.besides(item, own, whole, item.branches.slice(own.length));
+      }),
+    };
+  }
+
+  /** A bracket with the branches that stay in it, and the points from and to which the others are drawn on lines of their own. */
+  private besides(parallel: ParallelPath, own: SeriesPath[], whole: Rung, rest: readonly SeriesPath[]): Items {
+    const item = { ...parallel, branches: own };
+    const [one] = rest;
+    if (!one) return [item];
+    const { from, to } = parallel;
+    const fromRail = whole.start.kind === "rail" && whole.start.node === from;
+    const toRail = whole.end.kind === "rail" && whole.end.node === to;
+    const [out, back] = [fromRail ? "" : this.letters(), toRail ? "" : this.letters()];
+    this.more.push({
+      ...this.continued(whole, out, from),
+      ...(fromRail ? { start: whole.start } : {}),
+      end: toRail ? whole.end : { kind: "point", point: back, node: to, at: whole.at },
+      path: rest.length === 1 ? one : seriesOf([{ ...parallel, branches: [...rest] }], from, to),
+    });
+    const point = (name: string, node: NodeId): PointUse[] =>
+      name === "" ? [] : [{ kind: "point", id: `${whole.id}/${name}`, point: name, from: node, to: node, rung: whole.id, at: whole.at }];
+    return [...point(out, from), item, ...point(back, to)];
+  }
+
+  private continued(whole: Rung, letter: string, node: NodeId): Omit<Rung, "end" | "path"> {
+    this.pieces++;
+    return {
+      id: `${this.rung.id}/part${this.pieces}`,
+      start: { kind: "point", point: letter, node, at: whole.at },
+      at: whole.at,
+    };
+  }
 }
 
-const isLoad = (item: Item) => item.kind === "load" || (item.kind === "parallel" && item.branches.some(bearsLoad));
+/** Columns that the two arrows of a gap take. */
+const arrowsOfGap = 2;
+
+function withItems(rung: Rung, items: Items): Rung {
+  return { ...rung, path: { ...rung.path, items } };
+}
+
+function seriesOf(items: readonly Item[], from = (items[0] as Item).from, to = (items.at(-1) as Item).to): SeriesPath {
+  return { kind: "series", items: items as Items, from, to };
+}
+
+function without(branches: readonly SeriesPath[], kept: readonly SeriesPath[]): SeriesPath[] {
+  return branches.filter((branch) => !kept.includes(branch));
+}
+
+function smallest(branches: readonly SeriesPath[], size: (branch: SeriesPath) => number): SeriesPath | undefined {
+  return branches.reduce<SeriesPath | undefined>((least, branch) => (least && size(least) <= size(branch) ? least : branch), undefined);
+}
+
+/** How many columns an item takes before the load column. */
+function headWidth(item: Item): number {
+  return isLoad(item) ? contactWidth(seriesOf([item])) : widthOfItem(item);
+}
+
+const isGap = (item: Item) => item.kind === "gap";
+const isLoaded = (path: SeriesPath) => lastLoad(path) >= 0;
+const isLoad = (item: Item) => lastLoad(seriesOf([item])) >= 0;
 
 /** A, B … Z, A2, B2 …, without names that are in use. */
 function lettersExcept(taken: ReadonlySet<string>): () => string {

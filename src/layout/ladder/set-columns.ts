@@ -85,6 +85,7 @@ export function withNeeds(
     if (boundary < loadColumn) widen(needs.ends, boundary, arrangement.broken("foot", point).along + beside);
   }
   for (const run of grid.runs) for (const stop of [run.from, run.to]) reach(boundaryOf(stop));
+  for (const { boundary } of [...grid.uprights, ...grid.sites]) reach(boundary);
   for (const { node, boundary, beside } of numbers) {
     const number = arrangement.wireNumber(node, beside);
     if (!number) continue;
