@@ -27,11 +27,12 @@ export const contactWithoutEffect = rule<{ contacts: string[]; beside: string[];
 
 function covered(networks: Networks) {
   const matters = new Set<Passage>();
+  const seen = new Set<object>();
   const spare: { way: Way; by: Way }[] = [];
   for (const load of networks.loads) {
     const ways = networks.ways.to(load);
     if (!ways || ways.length > mostCompared) {
-      for (const passage of networks.ways.towards(load)) matters.add(passage);
+      for (const passage of networks.ways.towards(load, seen)) matters.add(passage);
       continue;
     }
     ways.forEach((way, index) => {

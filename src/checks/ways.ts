@@ -15,6 +15,8 @@ export interface Way {
 const mostSteps = 20_000;
 /** Ways to one load that are told apart. */
 const mostWays = 128;
+/** Links tried to count the ways through one part of the network. */
+const mostStepsInPart = 2_000;
 /** Contacts and joints one behind the other on one way. */
 const longestWay = 500;
 
@@ -47,6 +49,10 @@ export class Ways {
   to(load: LoadUse): Way[] | undefined {
     if (this.known.has(load)) return this.known.get(load);
     const found: Way[] = [];
+    if (this.tooMany(load)) {
+      this.known.set(load, undefined);
+      return undefined;
+    }
     const note = (way: Way) => {
       found.push(way);
       return found.length > mostWays;
@@ -97,16 +103,13 @@ export class Ways {
     return found;
   }
 
-  /** Everything that a way to a load might lead through, known or not. */
-  *towards(load: LoadUse): Generator<Passage> {
-    for (const { live, back } of this.wiring.feeds) {
-      for (const rail of [live, back]) {
-        const side = this.side(rail);
-        for (const node of [load.from, load.to])
-          if (side.reaches(node))
-            for (const { block } of side.chainTo(node)) for (const { use } of [...block.links.values()].flat()) yield use;
-      }
-    }
+  /**
+   * Everything that a way to a load might lead through, known or not.
+   * @param seen parts already gone through for other loads, which are left out
+   */
+  *towards(load: LoadUse, seen: Set<object>): Generator<Passage> {
+    for (const { live, back } of this.wiring.feeds)
+      for (const rail of [live, back]) for (const node of [load.from, load.to]) yield* this.side(rail).towards(node, seen);
   }
 
   /** Parts of the network that begin and end on one wire, so that no way leads through them. */
@@ -118,6 +121,16 @@ export class Ways {
   /** Which way current runs from the live rail: alternating current runs both ways, which matters only to diodes. */
   private halfWaves({ current }: Supply): readonly ("out" | "in")[] {
     return this.directed && current === "AC" ? ["out", "in"] : ["out"];
+  }
+
+  /** Whether the ways to a load are more than are told apart, contradictions among them not looked at. */
+  private tooMany({ from, to }: LoadUse): boolean {
+    return this.wiring.feeds.some(({ live, back }) => {
+      const [source, sink] = [this.side(live), this.side(back)];
+      return [[from, to] as const, [to, from] as const].some(
+        ([a, b]) => source.reaches(a) && sink.reaches(b) && source.countTo(a) * sink.countTo(b) > mostWays,
+      );
+    });
   }
 
   private fresh(): Conditions {
@@ -160,6 +173,10 @@ type End = "done" | "stopped" | "gave up";
 interface Block {
   links: Map<NodeId, Link[]>;
   root: NodeId;
+  /** How many ways lead to each of its potentials from its root, where that was counted. */
+  counts: Map<NodeId, number>;
+  /** Whether counting was given up once. */
+  intricate: boolean;
 }
 
 /** From the rail outward: each part that a way to some potential goes through, from where to where. */
@@ -191,6 +208,28 @@ class Side {
       here = block.root;
     }
     return chain.reverse();
+  }
+
+  /** How many ways lead to a potential; anything beyond `mostWays` is as good as endless. */
+  countTo(node: NodeId): number {
+    let count = 1;
+    for (let here = node; here !== this.rail && count <= mostWays; ) {
+      const block = this.blockOf.get(here) as Block;
+      count *= countThrough(block, here);
+      here = block.root;
+    }
+    return count;
+  }
+
+  *towards(node: NodeId, seen: Set<object>): Generator<Passage> {
+    if (!this.reaches(node)) return;
+    for (let here = node; here !== this.rail; ) {
+      const block = this.blockOf.get(here) as Block;
+      if (seen.has(block)) return;
+      seen.add(block);
+      for (const links of block.links.values()) for (const { use } of links) yield use;
+      here = block.root;
+    }
   }
 
   /** Parts from which nothing leads on. A single contact that leads nowhere is a loose end, which is another matter. */
@@ -248,7 +287,7 @@ class Side {
   }
 
   private close(root: NodeId, links: readonly { link: Link }[]): void {
-    const block: Block = { links: new Map(), root };
+    const block: Block = { links: new Map(), root, counts: new Map(), intricate: false };
     for (const { link } of links) {
       for (const node of [link.use.from, link.use.to]) {
         gather(block.links, node, link);
@@ -257,6 +296,33 @@ class Side {
     }
     this.blocks.push(block);
   }
+}
+
+/** The ways through a part from its root to one of its potentials, as far as they are worth counting. */
+function countThrough(block: Block, goal: NodeId): number {
+  const known = block.counts.get(goal);
+  if (known !== undefined) return known;
+  if (block.intricate) return Number.POSITIVE_INFINITY;
+  let [count, steps] = [0, 0];
+  const touched = new Set<NodeId>();
+  const visit = (here: NodeId): void => {
+    if (here === goal) {
+      count++;
+      return;
+    }
+    touched.add(here);
+    for (const { use } of block.links.get(here) ?? []) {
+      if (count > mostWays || ++steps > mostStepsInPart || touched.size > longestWay) break;
+      const beyond = use.from === here ? use.to : use.from;
+      if (!touched.has(beyond)) visit(beyond);
+    }
+    touched.delete(here);
+  };
+  visit(block.root);
+  if (steps > mostStepsInPart) block.intricate = true;
+  if (block.intricate || count > mostWays) count = Number.POSITIVE_INFINITY;
+  block.counts.set(goal, count);
+  return count;
 }
 
 /** One bounded search for ways. */
