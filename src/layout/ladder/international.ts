@@ -129,12 +129,16 @@ function dress(use: DeviceUse, device: Device | undefined, symbol: Symbol, width
   const chartRise = chart ? chart.height + lineGap : 0;
   const underRise = chartRise + under.reduce((sum, { height }) => sum + lineGap + height, 0);
   const beyond = left(-name.height / 2, name.height / 2) > bareReach;
-  // Beyond an actuator the name stands level with it and the rest below; at a bare symbol all of it stands about its middle.
-  const top = beyond ? name.height / 2 - nameRise : -(nameRise + underRise) / 2;
+  // Beyond an actuator the name stands level with it and the rest below, as long as that does not lengthen the path; at a bare
+  // symbol all of it stands about its middle.
+  const level = name.height / 2 - nameRise;
+  const overhang = Math.max(0, level + nameRise + underRise - reach - 1);
+  const middled = -(nameRise + underRise) / 2;
+  const top = beyond ? Math.max(level - overhang, Math.min(level, middled)) : middled;
   const nameEdge = -left(top, top + nameRise) - (beyond ? 1.6 : 1) * clearance;
   const underTop = top + nameRise + lineGap;
   const underEdge = -left(underTop, underTop + underRise) - clearance;
-  const edges = beyond ? [nameEdge, underEdge] : [Math.min(nameEdge, underEdge), Math.min(nameEdge, underEdge)];
+  const edges = beyond && overhang === 0 ? [nameEdge, underEdge] : [Math.min(nameEdge, underEdge), Math.min(nameEdge, underEdge)];
   let baseline = top;
   for (const [index, words] of names.entries()) {
     baseline += index === 0 ? words.height : wrappedPitch(words.height);

@@ -8,6 +8,7 @@ import { brokenRoom, international, pathNumberRise } from "./international.js";
 import { supplyWords } from "./name-rails.js";
 import type { FinishedLadder, Plan, PlanGiven } from "./plan.js";
 import { fuseBlock, setFuse } from "./supply-fuse.js";
+import { textHeight } from "./under-words.js";
 
 /**
  * Level rails, the live one on top. Over the paths stand their numbers, below the lower rail the contacts of each coil and what
@@ -18,7 +19,7 @@ export function planInternational({ circuit, machine, symbolOf, symbols, room: {
   const { margin } = international({ ...given, scale: 1 });
   const foot = Math.max(
     // The lower rail's name, and where it comes from, stand level with it and below.
-    nameHeight / 2 + 2 * wrappedPitch(nameHeight) + noteHeight + 2,
+    nameHeight / 2 + 2 * wrappedPitch(noteHeight) + noteHeight + nameHeight * 0.3 + besideGap,
     ...circuit.rungs.flatMap(({ title, path }) => {
       const titled = title ? { title } : {};
       const loads = [...usesOf(path)].flatMap((use) => (use.kind === "load" ? [use] : []));
@@ -32,6 +33,11 @@ export function planInternational({ circuit, machine, symbolOf, symbols, room: {
   const widest = Math.max(...circuit.supply.rails.map((rail) => measureText(rail, nameHeight)));
   const left = Math.min(Math.max(widest, measureText("/88.88", noteHeight) + 1, brokenRoom - besideGap) + besideGap, mostBeside);
   const right = brokenRoom;
+  const live = wrapRail(circuit.supply.rails[0], left - besideGap);
+  const headRoom = Math.max(
+    pathNumberRise + textHeight.usual + 0.5,
+    (live.lines.length - 1) * wrappedPitch(live.height) + live.height / 2 + besideGap + noteHeight,
+  );
   const fuseRoom = fuse ? Math.max(fuse.length + 2 * fuseLead, fuse.width + 1) : 0;
   const headOf = (first: boolean) => railLead + (first ? fuseRoom : 0);
   const across = (first: boolean) => width - left - headOf(first) - railFoot - right;
@@ -58,25 +64,30 @@ export function planInternational({ circuit, machine, symbolOf, symbols, room: {
     const from = origin.x + rails.from - besideGap;
     const to = origin.x + rails.to + besideGap;
     circuit.supply.rails.forEach((rail, index) => {
-      const y = origin.y + (index === 0 ? 0 : span);
-      let below = y + nameHeight / 2;
-      if (index === 0 && behindFuse !== undefined) {
-        const free = sheet.texts;
-        const room = Math.min(
-          origin.x + rails.to - behindFuse,
-          ...free.flatMap(({ role, at }) =>
-            role === "line-number" ? [] : at.y > y - pathNumberRise && at.y < y ? [at.x - behindFuse] : [],
-          ),
+      const upper = index === 0;
+      const y = origin.y + (upper ? 0 : span);
+      // Away from the paths: the upper rail's name grows upward from the rail, the lower one's downward.
+      const away = upper ? -1 : 1;
+      let outermost = y + nameHeight / 2;
+      if (upper && behindFuse !== undefined) {
+        say(
+          { x: behindFuse + 1, y: y - overRail },
+          "start",
+          nameHeight,
+          "rail",
+          fitText(rail, nameHeight, origin.x + rails.to - behindFuse - 1),
         );
-        say({ x: behindFuse + 1, y: y - overRail }, "start", nameHeight, "rail", fitText(rail, nameHeight, room));
       } else {
-        const { lines, height } = wrapNameAt([nameHeight, noteHeight], rail, left - besideGap, 3);
+        const { lines, height } = wrapRail(rail, left - besideGap);
+        const nearest = y + (lines.length > 1 ? noteHeight : height) / 2;
         lines.forEach((line, row) => {
-          below = y + nameHeight / 2 + row * wrappedPitch(height);
-          say({ x: from, y: below }, "end", height, "rail", line);
+          outermost = nearest + away * (upper ? lines.length - 1 - row : row) * wrappedPitch(height);
+          say({ x: from, y: outermost }, "end", height, "rail", line);
         });
+        if (upper) outermost = nearest - (lines.length - 1) * wrappedPitch(height) - height;
       }
-      if (comesFrom) say({ x: from, y: below + noteHeight + 1.4 }, "end", noteHeight, "note", placeOf(comesFrom, sheet));
+      const beside = outermost + (upper ? -besideGap : noteHeight + nameHeight * 0.3 + 0.5);
+      if (comesFrom) say({ x: from, y: beside }, "end", noteHeight, "note", placeOf(comesFrom, sheet));
       if (goesTo) say({ x: to, y: y + noteHeight / 2 }, "start", noteHeight, "note", placeOf(goesTo, sheet));
     });
     if (!first) return;
@@ -87,16 +98,20 @@ export function planInternational({ circuit, machine, symbolOf, symbols, room: {
   }
 }
 
+/** The name of a rail beside its end: large in one line, small in up to three where it is long. */
+function wrapRail(rail: string, width: Mm): { lines: string[]; height: Mm } {
+  if (measureText(rail, nameHeight) <= width) return { lines: [rail], height: nameHeight };
+  return wrapNameAt([noteHeight, leastHeight], rail, width, 3);
+}
+
 const fuseSymbol = "international/fuse";
 
-/** Over the upper rail: the path numbers, and what the rail is called under them, mm. */
-const headRoom: Mm = pathNumberRise + 3;
 /** From the beginning of the rails to the room of the first path, and from the last path to their end, mm. */
 const railLead: Mm = 2;
 const railFoot: Mm = 3;
 /** Rail before and behind the supply's fuse, mm. */
 const fuseLead: Mm = 2.5;
-const [nameHeight, noteHeight]: [Mm, Mm] = [3.5, 2.5];
+const [nameHeight, noteHeight, leastHeight]: [Mm, Mm, Mm] = [3.5, 2.5, 1.8];
 /** From the end of a rail to what stands beside it, and from a rail to what stands over it, mm. */
 const besideGap: Mm = 1.2;
 const overRail: Mm = 1.5;
