@@ -2,6 +2,7 @@ import type { Mm, Point } from "../../drawing/geometry.js";
 import { measureText } from "../../drawing/text.js";
 import { wrapName } from "../../drawing/wrap-name.js";
 import type { ContactUse, Device, Machine } from "../../machine/model.js";
+import { sparePoles } from "../../machine/terminals.js";
 import type { PlacedText } from "../placement.js";
 import type { Block, MarginEntry } from "./arrangement.js";
 import { around, roomOf } from "./text-box.js";
@@ -37,7 +38,7 @@ export function footBlock({ title, load }: MarginEntry, machine: Machine, deepes
       text: { to: "valve", device: device.name, room },
     });
     bottom += usual * 0.3 + blockGap;
-  } else if (load && device && device.loads[0]?.id === load.id && device.contacts.length > 0) {
+  } else if (load && device && device.loads[0]?.id === load.id && device.contacts.length + sparePoles(device).length > 0) {
     const table = contactTable(device, bottom, deepest - bottom - wordsRise - blockGap);
     texts.push(...table.texts.map((text) => ({ ...part, ...text })));
     strokes.push(...table.strokes.map((path) => ({ ...part, role: "table", path, width: 0.18 })));
@@ -84,23 +85,20 @@ const rowPitch: Mm = 2.9;
 const headHeight: Mm = 4.6;
 const pad: Mm = 0.8;
 
-/** The contacts of a coil: those that make on the left, those that break on the right, each with its terminals and its place. */
+/** The contacts of a coil: those that make on the left, those that break on the right, each with its terminals and its place; spare ones have a dash. */
 function contactTable(device: Device, top: Mm, deepest: Mm): ContactTable {
   const texts: ContactTable["texts"] = [];
   const strokes: ContactTable["strokes"] = [];
+  const spare = sparePoles(device).map(({ form, terminals }) => ({ form, terminals, id: undefined }));
+  const used = device.contacts.map(({ form, terminals, id }) => ({ form, terminals: terminals.value, id }));
   const columns = (["NO", "NC"] as const)
-    .map((form) => ({
-      form,
-      contacts: device.contacts.filter((contact) => contact.form === form),
-      declared: device.poles?.[form === "NO" ? "no" : "nc"] ?? 0,
-    }))
-    .map((column) => ({ ...column, rows: Math.max(column.contacts.length, column.declared) }))
-    .filter(({ rows }) => rows > 0)
+    .map((form) => ({ form, contacts: [...used, ...spare].filter((contact) => contact.form === form).sort(byTerminal) }))
+    .filter(({ contacts }) => contacts.length > 0)
     .map((column) => {
-      const terminals = Math.max(measureText("–", height), ...column.contacts.map((contact) => measureText(terminalsOf(contact), height)));
+      const terminals = Math.max(...column.contacts.map((contact) => measureText(written(contact), height)));
       return { ...column, terminals, width: pad + terminals + gap + placeRoom + pad };
     });
-  const wanted = Math.max(...columns.map(({ rows }) => rows));
+  const wanted = Math.max(...columns.map(({ contacts }) => contacts.length));
   const fits = Math.max(1, Math.floor((deepest - headHeight) / rowPitch));
   const shown = Math.min(wanted, fits);
   const tall = headHeight + shown * rowPitch + 0.4;
@@ -110,23 +108,24 @@ function contactTable(device: Device, top: Mm, deepest: Mm): ContactTable {
     { x, y: top + headHeight },
     { x: x + total, y: top + headHeight },
   ]);
-  for (const [index, { form, contacts, rows, terminals, width }] of columns.entries()) {
+  for (const [index, { form, contacts, terminals, width }] of columns.entries()) {
     if (index > 0)
       strokes.push([
         { x, y: top },
         { x, y: top + tall },
       ]);
     strokes.push(...contactSign(form, { x: x + width / 2, y: top + headHeight / 2 }));
-    for (let row = 0; row < Math.min(rows, shown); row++) {
+    for (const [row, contact] of contacts.slice(0, shown).entries()) {
       const y = top + headHeight + (row + 1) * rowPitch - 0.4;
       const say = (at: Mm, text: PlacedText["text"]) => texts.push({ role: "margin", at: { x: at, y }, anchor: "start", height, text });
-      const contact = contacts[row];
-      if (row === shown - 1 && rows > shown) say(x + pad, "…");
-      else if (!contact) say(x + pad, "–");
-      else {
-        say(x + pad, terminalsOf(contact));
-        say(x + pad + terminals + gap, { to: "contact-place", device: device.name, contact: contact.id, room: placeRoom });
+      if (row === shown - 1 && contacts.length > shown) {
+        say(x + pad, "…");
+        continue;
       }
+      say(x + pad, written(contact));
+      const place = x + pad + terminals + gap;
+      if (contact.id === undefined) say(place, "–");
+      else say(place, { to: "contact-place", device: device.name, contact: contact.id, room: placeRoom });
     }
     x += width;
   }
@@ -145,7 +144,17 @@ function contactSign(form: ContactUse["form"], { x, y }: Point): Point[][] {
   return [lower, upper];
 }
 
-const terminalsOf = ({ terminals }: ContactUse): string => {
-  const printed = terminals.value.join("-");
+interface TableContact {
+  terminals: readonly [string, string];
+}
+
+/** A contact's terminals as they are written, `13-14`; empty when it has none. */
+function written({ terminals }: TableContact): string {
+  const printed = terminals.join("-");
   return printed === "-" ? "" : printed;
-};
+}
+
+/** In the order in which they sit in the device, as far as their numbers say. */
+function byTerminal({ terminals: [a] }: TableContact, { terminals: [b] }: TableContact): number {
+  return /^\d+$/.test(a) && /^\d+$/.test(b) ? Number(a) - Number(b) : 0;
+}
