@@ -23,6 +23,7 @@ import { polesExceeded } from "./poles-exceeded.js";
 import { portOpen } from "./port-open.js";
 import { pressureNeverReached } from "./pressure-never-reached.js";
 import { pumpWithoutRelief } from "./pump-without-relief.js";
+import { railOfTwoSupplies } from "./rail-of-two-supplies.js";
 import { relayWithoutContacts } from "./relay-without-contacts.js";
 import type { RunnableRule } from "./rule.js";
 import { sequencesNotRun } from "./sequences-not-run.js";
@@ -46,6 +47,7 @@ export const rules: readonly RunnableRule[] = [
   polesExceeded,
   terminalOnTwoWires,
   supplyUnlikeItsSource,
+  railOfTwoSupplies,
   shortAcrossRails,
   deviceBridged,
   contactNeverConducts,

@@ -1,9 +1,11 @@
-import { Command, CommanderError, InvalidArgumentError } from "commander";
+import { Argument, Command, CommanderError, InvalidArgumentError } from "commander";
+import { type ListName, listNames } from "../schedules/list-names.js";
 import type { CheckOptions } from "./check.js";
 import { readConvention } from "./convention.js";
 import type { Desk } from "./desk.js";
 import type { DrawOptions } from "./draw.js";
 import { ExitCode } from "./exit-code.js";
+import type { ListOptions } from "./list.js";
 import type { SymbolsOptions } from "./symbols.js";
 import type { XrefOptions } from "./xref.js";
 
@@ -83,6 +85,23 @@ export async function run(args: readonly string[], desk: Desk): Promise<ExitCode
     if (options.csv && options.json) made.error("error: choose one of --csv and --json");
     const { xref: print } = await import("./xref.js");
     ended = await print(file, options, desk);
+  });
+
+  withColor(
+    command(
+      "list",
+      "Print a list made from a drawing: its devices, its wires from pin to pin, the terminals of its strips and plugs, or the contacts of each device with the spare ones.",
+      "  $ spoolrung list press.sprung devices\n  $ spoolrung list press.sprung wires --csv > wires.csv",
+    )
+      .argument("<file>", "drawing to read; - is standard input")
+      .addArgument(new Argument("<list>", "which list").choices(listNames))
+      .option("--csv", "print CSV, one line a device, wire, terminal or contact")
+      .option("--json", "print a JSON array"),
+  ).action(async (file: string, name: ListName, _, made: Command) => {
+    const options = made.optsWithGlobals<ListOptions>();
+    if (options.csv && options.json) made.error("error: choose one of --csv and --json");
+    const { list } = await import("./list.js");
+    ended = await list(file, name, options, desk);
   });
 
   withColor(

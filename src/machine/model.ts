@@ -178,6 +178,8 @@ export interface Supply {
   from?: string;
   /** The branch of a power circuit that ends in the rails. */
   branch?: PartId;
+  /** It stays live with the machine's disconnect open (IEC 60204-1, excepted circuits). */
+  excepted?: true;
   at: SourceRange;
 }
 

@@ -35,6 +35,9 @@ const table: PropertyTable<SupplyDraft> = {
     from: (draft, read, word) => {
       draft.from = read.name(word, "the transformer or power supply the rails come from, as in: from G1");
     },
+    excepted: ({ supply }) => {
+      supply.excepted = true;
+    },
     fuse: (draft, read, word) => {
       draft.fuse = read.name(word, "the fuse and its rating, as in: fuse FU1 4 A");
       const rating = draft.fuse && read.positive(word, "current");

@@ -10,7 +10,7 @@ import type {
   SeriesPath,
 } from "./model.js";
 
-export function laddersOf({ circuits }: Machine): LadderCircuit[] {
+export function laddersOf({ circuits }: Pick<Machine, "circuits">): LadderCircuit[] {
   return circuits.filter((circuit) => circuit.kind === "ladder");
 }
 

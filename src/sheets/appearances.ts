@@ -2,6 +2,7 @@ import type { Box, Point } from "../drawing/geometry.js";
 import type { PartId } from "../drawing/marks.js";
 import type { Layout, Place } from "../layout/placement.js";
 import type { ContactUse, Device, Machine } from "../machine/model.js";
+import { coilOf } from "../machine/walk.js";
 import type { ContactReference, CrossReferenceRow } from "../schedules/rows.js";
 
 /** Something drawn, and where. */
@@ -21,8 +22,8 @@ export interface Appearances {
   machine: Machine;
   layout: Layout;
   rows: ReadonlyMap<string, CrossReferenceRow>;
-  /** A device's coil, lamp or other load. */
-  loadOf(device: string): Appearance | undefined;
+  /** A device's coil, lamp or other load; of several the first, or the one named: `KL1.reset`, `I0.5`. */
+  loadOf(name: string): Appearance | undefined;
   /** A device's contacts in drawing order. */
   contactsOf(device: string): (Appearance & { contact: ContactUse })[];
   /** On a fluid sheet: a solenoid at its valve, a switch at the cam that works it or the line that it senses. */
@@ -69,6 +70,12 @@ export function findAppearances(
     const device = machine.devices.get(name);
     return marked.get(name) ?? onValve(device, at) ?? component(name) ?? component(device ? (operatorOf(device) ?? "") : "");
   };
+  const coils = new Map<string, PartId>();
+  for (const { name, loads } of machine.devices.values()) {
+    for (const load of [...loads].reverse()) coils.set(coilOf(load), load.id);
+    const [first] = loads;
+    if (first) coils.set(name, first.id);
+  }
   const uses = new Map<PartId, { device: string; use: "contact" | "load" }>();
   for (const device of machine.devices.values()) {
     for (const { id } of device.contacts) uses.set(id, { device: device.name, use: "contact" });
@@ -77,8 +84,8 @@ export function findAppearances(
   return {
     machine,
     layout,
-    rows: new Map(rows.map((row) => [row.coil, row])),
-    loadOf: (device) => at(machine.devices.get(device)?.loads[0]?.id),
+    rows: new Map(rows.map((row) => [row.device ?? row.coil, row])),
+    loadOf: (name) => at(coils.get(name)),
     contactsOf,
     fluidSideOf,
     component,

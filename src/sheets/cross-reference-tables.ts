@@ -1,5 +1,6 @@
 import type { Device, DrawingInfo } from "../machine/model.js";
-import type { ContactReference, CrossReferenceRow } from "../schedules/rows.js";
+import { printedName } from "../machine/walk.js";
+import type { ContactReference, CrossReferenceRow, SpareContact } from "../schedules/rows.js";
 import { type Appearances, operatorOf } from "./appearances.js";
 import { linePlace, nameOf, zonePlace } from "./place-words.js";
 import type { Piece } from "./references.js";
@@ -54,7 +55,7 @@ function coilTable(rows: readonly CrossReferenceRow[], appearances: Appearances)
     rows: rows.map((row) => {
       const home = appearances.loadOf(row.coil)?.part;
       return [
-        { text: nameOf(row.coil, machine), to: home, bold: true },
+        { text: rowName(row, appearances), to: home, bold: true },
         { text: kindName(row.kind) },
         { text: row.text },
         { entries: [{ text: linePlace(row.sheet, row.line, convention), to: home }] },
@@ -78,7 +79,7 @@ function switchTable(rows: readonly CrossReferenceRow[], appearances: Appearance
       { title: "NC contacts", share: 62 },
     ],
     rows: rows.map((row) => [
-      { text: nameOf(row.coil, appearances.machine), to: appearances.contactsOf(row.coil)[0]?.part, bold: true },
+      { text: rowName(row, appearances), to: appearances.contactsOf(row.device ?? row.coil)[0]?.part, bold: true },
       { text: kindName(row.kind) },
       { text: row.text },
       operatedBy(row, appearances),
@@ -88,16 +89,29 @@ function switchTable(rows: readonly CrossReferenceRow[], appearances: Appearance
   };
 }
 
+/** A row's designation as printed. */
+function rowName({ coil, device }: CrossReferenceRow, { machine }: Appearances): string {
+  return device === undefined ? nameOf(coil, machine) : printedName(coil, machine.drawing.convention);
+}
+
 function contacts(row: CrossReferenceRow, type: ContactReference["type"], appearances: Appearances): Cell {
   const entries = row.contacts
     .filter((contact) => contact.type === type)
     .map((contact): Piece => {
-      const to = appearances.contactOf(row.coil, contact);
-      const terminals = [contact.terminals, contact.timed ? "timed" : ""].filter((part) => part !== "").join(" ");
+      const to = appearances.contactOf(row.device ?? row.coil, contact);
+      const terminals = terminalsOf(contact);
       const place = linePlace(contact.sheet, contact.line, appearances.machine.drawing.convention);
       return { text: `${terminals}${terminals === "" ? "" : "  "}${place}`, ...(to === undefined ? {} : { to }) };
     });
-  return { entries };
+  const spare = (row.spare ?? [])
+    .filter((contact) => contact.type === type)
+    .map((contact): Piece => ({ text: `${terminalsOf(contact)}  spare` }));
+  return { entries: [...entries, ...spare] };
+}
+
+/** `17-18 timed` */
+function terminalsOf({ terminals, timed }: SpareContact): string {
+  return [terminals, timed ? "timed" : ""].filter((part) => part !== "").join(" ");
 }
 
 function valve(row: CrossReferenceRow, appearances: Appearances): Cell {
@@ -110,7 +124,7 @@ function valve(row: CrossReferenceRow, appearances: Appearances): Cell {
 
 function operatedBy(row: CrossReferenceRow, appearances: Appearances): Cell {
   const { machine } = appearances;
-  const device = machine.devices.get(row.coil);
+  const device = machine.devices.get(row.device ?? row.coil);
   const operator = device ? operatorOf(device) : undefined;
   if (!device || operator === undefined) return { text: "" };
   const found = appearances.fluidSideOf(row.coil);

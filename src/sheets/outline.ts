@@ -1,7 +1,7 @@
 import type { DrawingSet } from "../drawing/marks.js";
+import { naturalOrder } from "../machine/natural-order.js";
 import type { Appearances } from "./appearances.js";
 import { terminalsOf } from "./appearances.js";
-import { naturalOrder } from "./natural-order.js";
 import { lineWord, nameOf } from "./place-words.js";
 
 /** Devices and fluid components with where they are drawn, for a reader who looks for one of them. */
