@@ -95,8 +95,9 @@ export async function run(args: readonly string[], desk: Desk): Promise<ExitCode
     )
       .argument("<file>", "drawing to read; - is standard input")
       .addArgument(new Argument("<list>", "which list").choices(listNames))
-      .option("--csv", "print CSV, one line a device, wire, terminal or contact")
-      .option("--json", "print a JSON array"),
+      .option("--csv", "print CSV, one line a device, connection, terminal or contact")
+      .option("--json", "print a JSON array")
+      .option(...conventionOption),
   ).action(async (file: string, name: ListName, _, made: Command) => {
     const options = made.optsWithGlobals<ListOptions>();
     if (options.csv && options.json) made.error("error: choose one of --csv and --json");

@@ -3,6 +3,7 @@ import type { Machine } from "../machine/model.js";
 import { contactList } from "./contact-list.js";
 import { deviceList } from "./device-list.js";
 import type { ListName } from "./list-names.js";
+import { linePlace, zonePlace } from "./place-words.js";
 import { type DrawnAt, printedPoles } from "./rows.js";
 import { terminalList } from "./terminal-list.js";
 import { wireList } from "./wire-list.js";
@@ -31,7 +32,7 @@ export const listMakers: Record<ListName, (machine: Machine, layout: Layout) => 
         orderCode,
         location,
         ratings.join(", "),
-        places(drawn),
+        places(drawn, machine),
       ]),
       shared: 0,
       data: rows,
@@ -62,7 +63,7 @@ export const listMakers: Record<ListName, (machine: Machine, layout: Layout) => 
         wire,
         before.join(", "),
         after.join(", "),
-        places(drawn),
+        places(drawn, machine),
       ]),
       shared: 1,
       data: rows,
@@ -86,12 +87,9 @@ export const listMakers: Record<ListName, (machine: Machine, layout: Layout) => 
   },
 };
 
-/** `1/101, 3/C5` */
-function places(drawn: readonly DrawnAt[]): string {
+/** `1/101, 3/C5`, and `/1.2, /3.C5` in the international convention. */
+function places(drawn: readonly DrawnAt[], { drawing: { convention } }: Machine): string {
   return drawn
-    .map(({ sheet, line, zone }) => {
-      const within = line ?? zone;
-      return within === undefined || within === "" ? `${sheet}` : `${sheet}/${within}`;
-    })
+    .map(({ sheet, line, zone = "" }) => (line === undefined ? zonePlace({ sheet, zone }, convention) : linePlace(sheet, line, convention)))
     .join(", ");
 }

@@ -1,8 +1,8 @@
 import type { Device, DrawingInfo } from "../machine/model.js";
 import { printedName } from "../machine/walk.js";
+import { linePlace, nameOf, zonePlace } from "../schedules/place-words.js";
 import type { ContactReference, CrossReferenceRow, SpareContact } from "../schedules/rows.js";
 import { type Appearances, operatorOf } from "./appearances.js";
-import { linePlace, nameOf, zonePlace } from "./place-words.js";
 import type { Piece } from "./references.js";
 import type { Cell, Table } from "./table.js";
 

@@ -1,8 +1,8 @@
 import type { DrawingSet } from "../drawing/marks.js";
 import { naturalOrder } from "../machine/natural-order.js";
+import { lineWord, nameOf } from "../schedules/place-words.js";
 import type { Appearances } from "./appearances.js";
 import { terminalsOf } from "./appearances.js";
-import { lineWord, nameOf } from "./place-words.js";
 
 /** Devices and fluid components with where they are drawn, for a reader who looks for one of them. */
 export function outlineOf(appearances: Appearances): DrawingSet["outline"] {

@@ -3,8 +3,8 @@ import type { Box, Mm } from "../drawing/geometry.js";
 import type { Mark, PartId } from "../drawing/marks.js";
 import { fitText, measureText } from "../drawing/text.js";
 import { type CircuitSheet, type Place, type PlacedText, type Reference, rowPitch } from "../layout/placement.js";
+import { linePlace, nameOf, zonePlace } from "../schedules/place-words.js";
 import { type Appearance, type Appearances, operatorOf, type PointEnd } from "./appearances.js";
-import { linePlace, nameOf, zonePlace } from "./place-words.js";
 
 /** A reference put into words: texts in a row, each of which may lead somewhere. */
 export interface Wording {

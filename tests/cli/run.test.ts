@@ -28,10 +28,10 @@ describe("help and misuse", () => {
     const { code, out, err } = await cli(["--help"]);
     expect(code).toBe(0);
     expect(err).toBe("");
-    for (const word of ["draw", "check", "xref", "symbols", "Exit codes", "NO_COLOR", "Examples"]) expect(out).toContain(word);
+    for (const word of ["draw", "check", "xref", "list", "symbols", "Exit codes", "NO_COLOR", "Examples"]) expect(out).toContain(word);
   });
 
-  test.each(["draw", "check", "xref", "symbols"])("%s --help tells its options with examples", async (command) => {
+  test.each(["draw", "check", "xref", "list", "symbols"])("%s --help tells its options with examples", async (command) => {
     const { code, out } = await cli([command, "--help"]);
     expect(code).toBe(0);
     expect(out).toContain(`$ spoolrung ${command}`);
@@ -52,6 +52,9 @@ describe("help and misuse", () => {
     [["draw", "tray.sprung", "--out", ""], /folder/],
     [["xref", "tray.sprung", "tray.sprung"], /too many arguments/],
     [["xref", "tray.sprung", "--csv", "--json"], /choose one/],
+    [["list", "tray.sprung", "wires", "--csv", "--json"], /choose one/],
+    [["list", "tray.sprung"], /missing required argument 'list'/],
+    [["list", "tray.sprung", "hoses"], /Allowed choices are devices, wires, terminals, contacts/],
   ])("%j is misuse", async (args, message) => {
     const { code, out, err, written } = await cli(args);
     expect(code).toBe(2);
@@ -226,6 +229,57 @@ describe("xref", () => {
 
   test("prints nothing but errors for a faulty drawing", async () => {
     const { code, out, err } = await cli(["xref", "a.sprung", "--json"], { "a.sprung": small("A-1", "  rung: PB9 -> LT1\n") });
+    expect(code).toBe(1);
+    expect(out).toBe("");
+    expect(err).toMatch(/PB9/);
+  });
+});
+
+describe("list", () => {
+  test("prints a table in which what repeats is left out", async () => {
+    const { code, out } = await cli(["list", "tray.sprung", "wires"]);
+    expect(code).toBe(0);
+    const [head = "", ...lines] = out.trimEnd().split("\n");
+    expect(head).toMatch(/^Wire +Colour +Name +From +To$/);
+    expect(lines[0]).toMatch(/^L\+ +blue +L\+ +FU1:2 +PB2:11$/);
+    expect(lines.slice(1, 3).join("\n")).toMatch(/^M +blue +M +CR1:A2 +LT1:X2\n +LT1:X2 +CR2:A2$/);
+  });
+
+  test("--csv repeats it, one line a connection", async () => {
+    const { out } = await cli(["list", "tray.sprung", "wires", "--csv"]);
+    const lines = out.split("\r\n");
+    expect(lines[0]).toBe("wire,colour,name,from,to");
+    expect(lines[3]).toBe("M,blue,M,LT1:X2,CR2:A2");
+    expect(lines.at(-1)).toBe("");
+  });
+
+  test.each([
+    ["devices", ["designation", "kind", "text", "orderCode", "location", "ratings", "drawn"]],
+    ["wires", ["number", "colour", "name", "pins", "connections"]],
+    ["contacts", ["device", "kind", "text", "used", "spare"]],
+  ])("--json gives the %s with the same keys in the same order", async (name, keys) => {
+    const { code, out } = await cli(["list", "tray.sprung", name, "--json"]);
+    expect(code).toBe(0);
+    const rows = JSON.parse(out) as object[];
+    expect(rows.length).toBeGreaterThan(3);
+    for (const row of rows) expect(Object.keys(row)).toEqual(keys);
+  });
+
+  test("a drawing without strips has no terminals, and says so with the heads alone", async () => {
+    const { code, out } = await cli(["list", "tray.sprung", "terminals"]);
+    expect(code).toBe(0);
+    expect(out).toMatch(/^Strip +Terminal +Wire +Before +After +Drawn\n$/);
+    expect((await cli(["list", "tray.sprung", "terminals", "--json"])).out).toBe("[]\n");
+  });
+
+  test("speaks of places as the convention does", async () => {
+    const { out } = await cli(["list", "tray.sprung", "devices", "--csv", "--convention", "international"]);
+    expect(out).toMatch(/^CR1,relay,.*,"\/2\.\d+, \/2\.\d+/m);
+    expect((await cli(["list", "tray.sprung", "contacts", "--convention", "international"])).out).toMatch(/^Device .* Sheet +Path\n/);
+  });
+
+  test("prints nothing but errors for a faulty drawing", async () => {
+    const { code, out, err } = await cli(["list", "a.sprung", "devices"], { "a.sprung": small("A-1", "  rung: PB9 -> LT1\n") });
     expect(code).toBe(1);
     expect(out).toBe("");
     expect(err).toMatch(/PB9/);

@@ -1,4 +1,5 @@
 import { describe, expect, test } from "vitest";
+import { laddersOf } from "../../src/machine/walk.js";
 import { firstLadder, ladder, soundMachine, written } from "./machine-of.js";
 
 function numbered(rungs: string, rails: string, drawing = ""): string[] {
@@ -26,6 +27,62 @@ describe("running wire numbers", () => {
 
   test("named rails leave the numbers to begin at 1", () => {
     expect(numbered("rung: PB1 -> CR1\nrung: CR1 -> LT1", "L+ M")).toEqual(["L+ PB1 1 -> CR1 M", "L+ CR1 2 -> LT1 M"]);
+  });
+
+  // Common practice: a number belongs to the potential; it stays across terminals, plugs and splices and changes at every device.
+  test("a terminal or plug leaves the number, a fuse, a diode or a resistor changes it", () => {
+    const path = "PB1 X1:1 XP1:2 FU2 X1:3 D1 R1 -> CR1";
+    expect(numbered(`rung: ${path}`, "L+ M", "terminal-strip X1\nplug XP1\nfuse FU2 1 A\ndiode D1\nresistor R1 47 ohm\n")).toEqual([
+      "L+ PB1 1 X1:1 1 XP1:2 1 FU2 2 X1:3 2 D1 3 R1 4 -> CR1 M",
+    ]);
+  });
+
+  test("a terminal at a rail is on the rail, and one in two rungs is one wire only where both are on one potential", () => {
+    const [first, second] = numbered("rung: X1:1 PB1 @a -> CR1\nrung: @a X1:2 PB2 X1:9 -> LT1", "L+ M", "terminal-strip X1\n");
+    expect([first, second]).toEqual(["L+ X1:1 L+ PB1 @a 1 -> CR1 M", "1 X1:2 1 PB2 2 X1:9 2 -> LT1 M"]);
+  });
+
+  test("two ladders on one supply share its rails; the numbers go on", () => {
+    const machine = soundMachine(`supply CTRL 24 V DC { rails L+ M }
+push-button PB1
+relay CR1
+pilot-light LT1
+ladder "One" supply CTRL {
+  rung: PB1 -> CR1
+}
+ladder "Two" supply CTRL {
+  rung: CR1 -> LT1
+}
+`);
+    expect(laddersOf(machine).flatMap(({ rungs }) => rungs.map(({ path }) => written(machine, path)))).toEqual([
+      "L+ PB1 1 -> CR1 M",
+      "L+ CR1 2 -> LT1 M",
+    ]);
+  });
+
+  test("several supplies have rails of their own, and no number stands twice", () => {
+    const machine = soundMachine(`transformer T1 primary 400 V secondary 230 V
+power-supply G1 primary 230 V secondary 24 V DC
+supply MAIN 230 V AC { rails 1 2 from T1 fuse FU1 2 A }
+supply CTRL 24 V DC { rails L+ M from G1 }
+push-button PB1
+relay CR1
+horn HN1
+ladder "Control" supply CTRL {
+  rung: PB1 -> CR1
+}
+ladder "Loads" supply MAIN {
+  rung: CR1 -> HN1
+}
+`);
+    expect(machine.potentials.map(({ rail, number }) => [rail, number.value])).toEqual([
+      ["L+", "L+"],
+      ["M", "M"],
+      ["1", "1"],
+      ["2", "2"],
+      [undefined, "3"],
+      [undefined, "4"],
+    ]);
   });
 
   test("a point keeps its number wherever it is used", () => {

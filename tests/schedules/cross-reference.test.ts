@@ -82,6 +82,30 @@ describe("the cross-reference", () => {
     expect(rows.map(({ coil }) => coil)).toEqual(["PB2", "PB1", "LS1", "LS3", "LS2", "LS4"]);
     expect(rows[0]).toMatchObject({ kind: "push-button", text: "Stop", contacts: [{ type: "NC", terminals: "11-12", line: 201 }] });
   });
+
+  test("names each coil of a device that has several, each with all contacts, and each point of a controller's card", () => {
+    const machine = soundMachine(
+      ladder(
+        "rung: PB1 -> KL1.set\nrung: PB1 -> KL1.reset\nrung: KL1 -> I0.5\nrung: Q0.1 -> I0.6\nrung: Q0.2 -> LT1",
+        "push-button PB1\nlatching-relay KL1 poles 1 no 1 nc\ninput-card I0 8 points\noutput-card Q0 8 points\npilot-light LT1",
+      ),
+    );
+    const contacts = [{ type: "NO", terminals: "13-14", sheet: 2, line: 203 }];
+    const spare = [{ type: "NC", terminals: "21-22" }];
+    expect(crossReference(machine, placed(machine))).toMatchObject([
+      { coil: "KL1.set", device: "KL1", line: 201, contacts, spare },
+      { coil: "KL1.reset", device: "KL1", line: 202, contacts, spare },
+      { coil: "I0.5", line: 203 },
+      { coil: "I0.6", line: 204 },
+      { coil: "LT1", line: 205 },
+    ]);
+    const switches = switchReference(machine, placed(machine));
+    expect(switches.map(({ coil, contacts: those }) => [coil, those.map(({ line }) => line)])).toEqual([
+      ["PB1", [201, 202]],
+      ["Q0.1", [204]],
+      ["Q0.2", [205]],
+    ]);
+  });
 });
 
 describe("wire numbers by line", () => {

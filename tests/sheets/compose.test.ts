@@ -27,6 +27,20 @@ function reference(made: Made, to: Reference["to"]): Reference {
   throw new Error(to);
 }
 
+test("the cross-reference shows declared contacts that no rung uses as spare", () => {
+  const made = handMade();
+  const [row] = made.rows;
+  if (!row) throw new Error("no row");
+  row.spare = [
+    { type: "NO", terminals: "43-44" },
+    { type: "NC", timed: true, terminals: "55-56" },
+  ];
+  const set = compose(made);
+  const last = set.sheets.at(-1)?.number ?? 0;
+  expect(said(set, last).join(" ")).toContain("43-44  spare");
+  expect(said(set, last).join(" ")).toContain("55-56 timed  spare");
+});
+
 describe("references", () => {
   const set = compose(handMade());
 
