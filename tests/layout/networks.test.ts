@@ -121,11 +121,11 @@ ${written.join("\n")}
 }
 
 /** What is wrong with the drawing of a network; nothing where its points happen to join the rails. */
-function faultsOf(given: { rungs: readonly string[]; paper: string }): string[] {
+function faultsOf(given: { rungs: readonly string[]; paper: string }, convention: Convention): string[] {
   const bridges = given.rungs.filter((path) => !path.includes("->")).length;
   let laid: ReturnType<typeof ladderOf>;
   try {
-    laid = ladderOf(textOf(given));
+    laid = ladderOf(textOf(given), convention);
   } catch (fault) {
     if (/rails/.test(String(fault))) return [];
     throw fault;
@@ -134,11 +134,18 @@ function faultsOf(given: { rungs: readonly string[]; paper: string }): string[] 
   return faults(laid, bridges);
 }
 
-test("any network is drawn whole and reads back as it was written", () => {
-  fc.assert(
-    fc.property(drawing, (given) => {
-      expect(faultsOf(given)).toEqual([]);
-    }),
-    { numRuns: 60 },
-  );
-}, 60_000);
+type Convention = "north-american" | "international";
+const conventions: Convention[] = ["north-american", "international"];
+
+test.each(conventions)(
+  "any network is drawn whole and reads back as it was written, %s",
+  (convention) => {
+    fc.assert(
+      fc.property(drawing, (given) => {
+        expect(faultsOf(given, convention)).toEqual([]);
+      }),
+      { numRuns: 60 },
+    );
+  },
+  60_000,
+);
