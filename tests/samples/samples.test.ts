@@ -7,6 +7,7 @@ import type { Box } from "../../src/drawing/geometry.js";
 import { layOut } from "../../src/layout/lay-out.js";
 import type { CircuitSheet } from "../../src/layout/placement.js";
 import type { Machine } from "../../src/machine/model.js";
+import { printedName } from "../../src/machine/walk.js";
 import { nodeWorld } from "../../src/node-world.js";
 import { writePdf } from "../../src/output/pdf.js";
 import { writeSvg } from "../../src/output/svg.js";
@@ -26,9 +27,13 @@ test("there are samples of both media", () => {
   expect(new Set(media)).toEqual(new Set(["pneumatic", "hydraulic"]));
 });
 
-describe.each(samples)("%s", async (path) => {
+const conventions = ["north-american", "international"] as const;
+const drawn = samples.flatMap((path) => conventions.map((convention) => ({ path, convention })));
+
+describe.each(drawn)("$path, $convention", async ({ path, convention }) => {
   const world = memoryWorld({ [path]: readText(path) });
-  const compiled = (await compile(path, world)) as Required<Compiled>;
+  const compiled = (await compile(path, world, undefined, { convention })) as Required<Compiled>;
+  const printed = (name: string) => printedName(name, convention);
   const { machine, layout, rows, set } = compiled;
   if (!set) throw new Error(compiled.diagnostics.map(({ at, message }) => `${path}:${at.line}: ${message}`).join("\n"));
   const svg = await writeSvg(set, world);
@@ -63,12 +68,13 @@ describe.each(samples)("%s", async (path) => {
 
   test("the cross-reference lists each device once", () => {
     const circuits = new Set(layout.sheets.map(({ number }) => number));
+    const names = new Set([...machine.devices.keys()].map(printed));
     const heads = set.sheets
       .filter(({ number }) => !circuits.has(number))
       .flatMap(({ marks }) => marks.flatMap((mark) => (mark.kind === "text" && mark.bold ? [mark.text] : [])))
-      .filter((text) => machine.devices.has(text));
+      .filter((text) => names.has(text));
     const used = [...machine.devices.values()].filter(({ contacts, loads }) => contacts.length + loads.length > 0).map(({ name }) => name);
-    expect(heads.sort()).toEqual(used.sort());
+    expect(heads.sort()).toEqual(used.map(printed).sort());
   });
 
   test.each(layout.sheets)("sheet $number, $title, holds to the facts of a good sheet", (sheet) => {
@@ -93,10 +99,12 @@ describe.each(samples)("%s", async (path) => {
     expect(groups.flatMap(({ pins }) => pins).length).toBeGreaterThan(0);
   });
 
-  test("loads stand in one column", () => {
+  test("loads stand in one column, or in one row", () => {
     const loads = new Set(usesOf(machine).flatMap((use) => (use.kind === "load" ? [use.id] : [])));
     for (const sheet of layout.sheets.filter(({ kind }) => kind === "ladder")) {
-      const columns = sheet.symbols.filter(({ part }) => loads.has(part)).map((placed) => middle(facts.symbolBox(placed)).toFixed(2));
+      const columns = sheet.symbols
+        .filter(({ part }) => loads.has(part))
+        .map((placed) => middle(facts.symbolBox(placed), convention).toFixed(2));
       expect(new Set(columns).size, sheet.title).toBeLessThanOrEqual(1);
     }
   });
@@ -157,18 +165,19 @@ describe.each(samples)("%s", async (path) => {
   test.skipIf(!have("pdftotext"))("every designation can be searched for in the PDF", () => {
     const words = new Set(pdfToText(pdf).split(/[\s,()]+/));
     const names = [...machine.devices.values()].filter(({ contacts, loads }) => contacts.length + loads.length > 0).map(({ name }) => name);
-    expect([...names, ...machine.components.keys()].filter((name) => !words.has(name))).toEqual([]);
+    const components = [...machine.components.keys()].map((name) => (machine.devices.has(name) ? printed(name) : name));
+    expect([...names.map(printed), ...components].filter((name) => !words.has(name))).toEqual([]);
   });
 
   test("drawn twice it is the same to the byte", async () => {
-    const again = await compile(path, memoryWorld({ [path]: readText(path) }));
+    const again = await compile(path, memoryWorld({ [path]: readText(path) }), undefined, { convention });
     if (!again.set) throw new Error("not drawn");
     expect(await writeSvg(again.set, nodeWorld)).toEqual(svg);
     expect(Buffer.compare(await writePdf(again.set, nodeWorld), pdf)).toBe(0);
   });
 
   test("keeps its arrangement", async () => {
-    const name = path.replace(/^samples\/|\.sprung$/g, "");
+    const name = path.replace(/^samples\/|\.sprung$/g, "") + (convention === "international" ? ".international" : "");
     await expect(`${outlineOfSheets(layout.sheets, compiled)}\n`).toMatchFileSnapshot(`expected/${name}.txt`);
   });
 });
@@ -183,7 +192,9 @@ function outlineOfSheets(sheets: readonly CircuitSheet[], { layout, set }: Requi
       const row = place.line === undefined ? place.zone : String(place.line);
       rows.set(row, [...(rows.get(row) ?? []), part]);
     }
-    const lines = [...rows].sort(([a], [b]) => (a < b ? -1 : 1)).map(([row, parts]) => `  ${row}  ${parts.join("  ")}`);
+    const lines = [...rows]
+      .sort(([a], [b]) => Number(a) - Number(b) || (a < b ? -1 : 1))
+      .map(([row, parts]) => `  ${row}  ${parts.join("  ")}`);
     return [`sheet ${sheet.number}, ${sheet.kind}: ${sheet.title}`, ...lines].join("\n");
   });
   const others = set.sheets.filter(({ number }) => sheets.every((sheet) => sheet.number !== number));
@@ -209,8 +220,9 @@ function nodesByPin(machine: Machine): Map<string, number> {
   return nodes;
 }
 
-function middle({ x, width }: Box): number {
-  return x + width / 2;
+/** Across the rails: along x in a ladder of level rungs, along y in one of upright paths. */
+function middle({ x, y, width, height }: Box, convention: (typeof conventions)[number]): number {
+  return convention === "international" ? y + height / 2 : x + width / 2;
 }
 
 function meet(a: Box, b: Box): boolean {
