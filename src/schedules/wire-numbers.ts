@@ -13,7 +13,7 @@ function letterOf(index: number): string {
 
 /**
  * The number of every wire, by potential. Rails and running numbers are as built. In a drawing numbered by line, each wire gets
- * the number of the line on which it first appears and a letter, `102A`; these are written into the machine's potentials and
+ * the number of the line on which it first appears and a letter, `102A`, or of its sheet and path and a count, `3.4.1`; these are written into the machine's potentials and
  * into the texts that were holding the room for them on the sheets.
  */
 export function numberWires(machine: Machine, layout: Layout): ReadonlyMap<NodeId, string> {
@@ -26,18 +26,22 @@ export function numberWires(machine: Machine, layout: Layout): ReadonlyMap<NodeI
 
 function numberByLine(machine: Machine, layout: Layout): void {
   const given = new Set(machine.potentials.filter(({ rail }) => rail !== undefined).map(({ id }) => id));
-  const used = new Map<number, number>();
+  const { convention, lineNumbers } = machine.drawing;
+  // Paths that are numbered from 1 on every sheet need it said: 3.4.1 is the first wire that begins in path 4 of sheet 3.
+  const bySheet = convention === "international" && lineNumbers === "by-sheet";
+  const used = new Map<string, number>();
   for (const { path } of laddersOf(machine).flatMap(({ rungs }) => rungs)) {
     for (const { id, from, to } of usesOf(path)) {
-      const line = layout.places.get(id)?.line;
-      if (line === undefined) continue;
+      const place = layout.places.get(id);
+      if (place?.line === undefined) continue;
+      const line = bySheet ? `${place.sheet}.${place.line}` : String(place.line);
       for (const node of [from, to]) {
         const potential = machine.potentials[node];
         if (!potential || given.has(node)) continue;
         given.add(node);
         const index = used.get(line) ?? 0;
         used.set(line, index + 1);
-        potential.number = { value: `${line}${letterOf(index)}`, by: "line" };
+        potential.number = { value: bySheet ? `${line}.${index + 1}` : line + letterOf(index), by: "line" };
       }
     }
   }

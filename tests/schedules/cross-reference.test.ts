@@ -124,6 +124,14 @@ describe("wire numbers by line", () => {
     expect(machine.potentials[2]?.number).toEqual({ value: "201A", by: "line" });
   });
 
+  test("name sheet and path where these are numbered from 1 on every sheet, and never give a number twice", () => {
+    const machine = soundMachine(text);
+    machine.drawing.convention = "international";
+    const numbers = [...numberWires(machine, placed(machine)).values()];
+    expect(numbers).toEqual(["L+", "M", "2.201.1", "2.201.2", "2.202.1", "2.202.2", "2.202.3"]);
+    expect(new Set(numbers).size).toBe(numbers.length);
+  });
+
   test("fill the room held for them", () => {
     const machine = soundMachine(text);
     const layout = placed(machine);
