@@ -1,10 +1,33 @@
 import { describe, expect, test } from "vitest";
+import { compile } from "../../src/compile.js";
+import { deviceRoles } from "../../src/machine/kinds.js";
+import { diagnosticsOf } from "../support/announced.js";
+import { memoryWorld } from "../support/memory-world.js";
+import { readText } from "../support/sources.js";
 import { device, firstFluid, firstLadder, ladder, machineOf, soundMachine } from "./machine-of.js";
 
 /** What is read of one declaration. */
 function read(declaration: string) {
   return device(soundMachine(declaration), declaration.split(/\s+/)[1] as string);
 }
+
+describe("a drawing with every electrical kind", () => {
+  const text = readText("tests/machine/every-kind.sprung");
+  test("has each of them", () => {
+    const kinds = new Set([...soundMachine(text).devices.values()].map(({ kind }) => kind));
+    expect(Object.keys(deviceRoles).filter((kind) => !kinds.has(kind as never))).toEqual([]);
+  });
+  test("is faultless", () => {
+    const told = diagnosticsOf(text).map(({ code, at, message }) => `${at.line}: ${code} ${message}`);
+    expect(told).toEqual([]);
+  });
+  test.each(["north-american", "international"])("is drawn in the %s convention", async (convention) => {
+    const drawing = `drawing "D" { convention ${convention} }\n${text}`;
+    const { set, diagnostics } = await compile("a.sprung", memoryWorld({ "a.sprung": drawing }));
+    expect(diagnostics).toEqual([]);
+    expect(set?.sheets.length).toBeGreaterThan(3);
+  });
+});
 
 describe("properties of each kind", () => {
   test.each([

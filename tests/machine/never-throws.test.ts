@@ -4,10 +4,17 @@ import { startOfCycle } from "../../src/behaviour/start-of-cycle.js";
 import { check } from "../../src/checks/check.js";
 import { parse } from "../../src/language/parse.js";
 import { buildMachine } from "../../src/machine/build.js";
+import { listNames } from "../../src/schedules/list-names.js";
+import { listMakers } from "../../src/schedules/lists.js";
 import { readText } from "../support/sources.js";
 
 /** Lines of sound drawings, cut up, joined again in any order, with words changed for others. */
-const lines = ["samples/tray-stamper.sprung", "samples/billet-shear.sprung", "tests/machine/fixtures/slips.sprung"]
+const lines = [
+  "samples/tray-stamper.sprung",
+  "samples/billet-shear.sprung",
+  "tests/machine/fixtures/slips.sprung",
+  "tests/machine/every-kind.sprung",
+]
   .flatMap((path) => readText(path).split("\n"))
   .filter((line) => line.trim() !== "" && !line.trim().startsWith("#"));
 const words = [...new Set(lines.flatMap((line) => line.split(/\s+/)))].filter((word) => word !== "");
@@ -40,7 +47,9 @@ test("whatever the text, there is a machine, and every finding has its place", (
       }
       // What is in the machine is whole: every use has its device, every port its node.
       for (const device of machine.devices.values())
-        for (const { device: name } of [...device.contacts, ...device.loads]) expect(name).toBe(device.name);
+        for (const { device: name } of [...device.contacts, ...device.loads, ...device.throughs, ...device.mains])
+          expect(name).toBe(device.name);
+      for (const name of listNames) expect(() => listMakers[name](machine, { sheets: [], places: new Map() })).not.toThrow();
       for (const circuit of machine.circuits) {
         if (circuit.kind !== "fluid") continue;
         const known = new Set(circuit.nodes.map(({ id }) => id));
