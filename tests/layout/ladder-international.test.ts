@@ -153,6 +153,21 @@ describe("a sheet of current paths", () => {
     expect(laid.sheets.map((sheet) => said(sheet, "line-number"))).toEqual([["1"], ["2"]]);
   });
 
+  test("stands in rows on a tall sheet, filled from above, and says between them where the rails go on", () => {
+    const laid = drawn(Array.from({ length: 30 }, (_, i) => `rung: /PB2 (PB1 | LS1) -> ${i === 0 ? "CR1" : "LT1"}`).join("\n"), "paper A2");
+    expect(faults(laid)).toEqual([]);
+    const [sheet] = laid.sheets as [CircuitSheet];
+    const heights = [...new Set(railsOf(sheet).map(({ points }) => points[0]?.y as number))];
+    expect(heights).toHaveLength(4);
+    const numbers = sheet.texts.filter(({ role }) => role === "line-number");
+    expect(numbers.map(({ text }) => Number(text))).toEqual(numbers.map((_, index) => index + 1));
+    const rows = [...new Set(numbers.map(({ at }) => at.y))];
+    expect(rows).toHaveLength(2);
+    const below = numbers.findIndex(({ at }) => at.y === rows[1]);
+    expect(said(sheet, "note").filter((note) => note === `/1.${below + 1}`)).toHaveLength(2);
+    expect(said(sheet, "note").filter((note) => note === `/1.${below}`)).toHaveLength(2);
+  });
+
   test.each(["A4", "A3", "A2", "A1", "A0", "ANSI-A", "ANSI-B", "ANSI-C", "ANSI-D", "ANSI-E"])("keeps within %s", (paper) => {
     const laid = drawn(
       `

@@ -173,7 +173,20 @@ describe("a ladder sheet", () => {
     expect(laid.sheets.map(lineNumbers)).toEqual([["1"], ["2"]]);
   });
 
-  test.each(["A4", "A3", "A1", "ANSI-A", "ANSI-B", "ANSI-D"])("keeps within %s", (paper) => {
+  test("stands in two columns on a wide sheet, filled from the left, and says between them where the rails go on", () => {
+    const laid = drawn(Array.from({ length: 30 }, (_, i) => `rung: /PB2 (PB1 | LS1) -> ${i === 0 ? "CR1" : "LT1"}`).join("\n"), "paper A1");
+    expect(faults(laid)).toEqual([]);
+    const [sheet] = laid.sheets as [CircuitSheet];
+    const numbers = sheet.texts.filter(({ role }) => role === "line-number");
+    expect(numbers.map(({ text }) => Number(text))).toEqual(numbers.map((_, index) => 101 + index));
+    expect(new Set(numbers.map(({ at }) => at.x)).size).toBe(2);
+    const right = numbers.find(({ at }) => at.x > (numbers[0]?.at.x as number)) as (typeof numbers)[number];
+    const notes = sheet.texts.filter(({ role }) => role === "note").map(({ text }) => text);
+    expect(notes.filter((note) => note === `to line ${right.text}`)).toHaveLength(2);
+    expect(notes.filter((note) => note === `from line ${Number(right.text) - 1}`)).toHaveLength(2);
+  });
+
+  test.each(["A4", "A3", "A2", "A1", "A0", "ANSI-A", "ANSI-B", "ANSI-C", "ANSI-D", "ANSI-E"])("keeps within %s", (paper) => {
     expect(
       faults(
         drawn(

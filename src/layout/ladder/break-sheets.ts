@@ -3,13 +3,15 @@ import type { Arrangement, LinePitch } from "./arrangement.js";
 import type { MeasuredRung } from "./measure-rungs.js";
 import { type ColumnNeeds, leastSpan, needsOfLoads, noNeeds, withNeeds } from "./set-columns.js";
 
-/** The rungs of one sheet with the distance of every line from the first line's room, across. */
+/** The rungs between one pair of rails, with the distance of every line from the first line's room, across. */
 export interface RungSheet {
   /** Index of its first rung. */
   first: number;
   rungs: { rung: MeasuredRung; lines: Mm[] }[];
   /** The author's title for it. */
   title?: string;
+  /** The author asks for a new sheet here. */
+  asked: boolean;
   /** All room its lines take. */
   depth: Mm;
   /** Rungs that share their columns, from one of the sheet's rungs on, with what they ask of them. */
@@ -42,15 +44,15 @@ export function breakSheets(
   let sheet: RungSheet | undefined;
   let below: Mm = 0;
   const pitch = arrangement.lines;
-  const open = (first: number, title: string | undefined) => {
-    sheet = { first, rungs: [], depth: 0, groups: [{ from: 0, needs: noNeeds() }], ...(title === undefined ? {} : { title }) };
+  const open = (first: number, title: string | undefined, asked = false) => {
+    sheet = { first, asked, rungs: [], depth: 0, groups: [{ from: 0, needs: noNeeds() }], ...(title === undefined ? {} : { title }) };
     sheets.push(sheet);
     below = 0;
     return sheet;
   };
   rungs.forEach((rung, index) => {
     const wanted = asked.get(index);
-    if (!sheet || (wanted && sheet.rungs.length > 0)) sheet = open(index, wanted?.title);
+    if (!sheet || (wanted && sheet.rungs.length > 0)) sheet = open(index, wanted?.title, wanted !== undefined);
     else if (wanted?.title !== undefined) sheet.title = wanted.title;
     let placed = stack(rung, sheet.depth, below, pitch);
     const wide = (needs: ColumnNeeds) => leastSpan(needs, arrangement.columns) > room.span;

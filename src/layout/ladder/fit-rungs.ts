@@ -18,6 +18,8 @@ export interface FittedRungs {
   arrangement: Arrangement;
   /** The author's sheet breaks, before the rungs as they are now. */
   breaks: { before: number; title?: string }[];
+  /** No rung was cut, and no symbol drawn smaller. */
+  whole: boolean;
 }
 
 /** The smaller module of the series, 1.8 mm to 2.5 mm (ISO 81714-1, from memory). */
@@ -65,7 +67,7 @@ export function fitRungs(
     };
     const joined = joinWiresAgain(joinPoints(folded, points), split.nodeOf);
     const measured = measureRungs(joined, new Set(rails), arrangement, (index) => tight.has(origin[index] as number));
-    const fitted = { joined, measured, arrangement, breaks };
+    const fitted = { joined, measured, arrangement, breaks, whole: limits.size === 0 && scale === 1 };
     const next = new Map(limits);
     const wideRungs = new Set<number>();
     let wide = 0;
@@ -93,7 +95,8 @@ export function fitRungs(
         });
       }
     });
-    if ((wide === 0 && tall === 0) || round === rounds) return fitted;
+    if (wide === 0 && tall === 0) return fitted;
+    if (round === rounds) return { ...fitted, whole: false };
     const loose = [...wideRungs].filter((index) => !tight.has(index));
     if (loose.length > 0) {
       for (const index of loose) tight.add(index);

@@ -125,7 +125,7 @@ function dress(use: DeviceUse, device: Device | undefined, symbol: Symbol, width
   texts.push(...labels.texts.map((text) => ({ ...text, at: { x: text.at.x + shift.x, y: text.at.y + shift.y } })));
 
   const nameRise = name.height + (names.length - 1) * wrappedPitch(name.height);
-  const chart = chartPositions(use, device, width);
+  const chart = chartPositions(use, device, lowLabel);
   const chartRise = chart ? chart.height + lineGap : 0;
   const underRise = chartRise + under.reduce((sum, { height }) => sum + lineGap + height, 0);
   const beyond = left(-name.height / 2, name.height / 2) > bareReach;

@@ -1,3 +1,4 @@
+import type { Box } from "../../drawing/geometry.js";
 import type { PartId } from "../../drawing/marks.js";
 import type { DeviceUse, LadderCircuit, Machine, NodeId } from "../../machine/model.js";
 import { laddersOf } from "../../machine/walk.js";
@@ -14,6 +15,7 @@ import { planInternational } from "./plan-international.js";
 import { planNorthAmerican } from "./plan-north-american.js";
 import { prepareSymbol } from "./prepare-symbol.js";
 import { leastSpan, setColumns } from "./set-columns.js";
+import { mostLadders, roomsFor, type Slot, shareSlots } from "./share-sheet.js";
 
 /** The numbers a ladder's first sheet and first line get. */
 export interface Numbering {
@@ -48,68 +50,80 @@ export function layOutLadder(
   if (rungs.length === 0) return { sheets: [], places: [], nextLine: numbering.line };
   const prepared = (use: DeviceUse) =>
     nameThirdLead(prepareSymbol(symbolOf(use), use), machine.devices.get(use.device), circuit.supply.rails);
-  const plan = (machine.drawing.convention === "international" ? planInternational : planNorthAmerican)({
-    circuit,
-    machine,
-    symbolOf: prepared,
-    symbols,
-    room: page.area,
-  });
+  const { convention } = machine.drawing;
+  const planFor = convention === "international" ? planInternational : planNorthAmerican;
+  const elsewhere = pointsElsewhere(circuit, machine);
 
   // 1. Every part has a column and a line on the grid, shared points are joined or end in a reference, every text is
-  //    measured, and no rung needs more than a sheet offers.
-  const offer = { span: plan.span, depth: Math.min(plan.first, plan.next) };
-  const { joined, measured, arrangement, breaks } = fitRungs(circuit, rungs, rails, offer, plan.arrange, pointsElsewhere(circuit, machine));
-  // 2. Every rung is whole on one sheet; line numbers are known.
-  const broken = breakSheets(
+  //    measured, and no rung needs more than its ladder has. A large sheet holds several ladders if no rung suffers.
+  const fitOn = (perSheet: number) => {
+    const rooms = roomsFor(page.area, perSheet, convention);
+    const plan = planFor({ circuit, machine, symbolOf: prepared, symbols, room: rooms[0] as Box });
+    const offer = { span: plan.span, depth: Math.min(plan.first, plan.next) };
+    return { rooms, plan, ...fitRungs(circuit, rungs, rails, offer, plan.arrange, elsewhere) };
+  };
+  let perSheet = mostLadders(page.area, convention);
+  let fitted = fitOn(perSheet);
+  while (perSheet > 1 && !fitted.whole) fitted = fitOn(--perSheet);
+  const { rooms, plan, joined, measured, arrangement, breaks } = fitted;
+  // 2. Every rung is whole in one ladder; the ladders have their places, line numbers are known.
+  const ladders = breakSheets(
     measured,
     breaks,
     { depth: plan.next, first: plan.first, span: plan.span },
     arrangement,
     linkedRungs(joined.links),
   );
-  const firstLines = numberLines(broken, machine, numbering);
-  // 3. Every sheet is set down in millimetres.
+  const slots = shareSlots(ladders, perSheet);
+  const ends = numberLines(ladders, slots, machine, numbering);
+  // 3. Every ladder is set down in millimetres.
   const places: [PartId, Place][] = [];
-  const linksOf = shareLinks(joined.links, broken);
-  const sheets = broken.map((sheet, index) => {
-    const out = emptySheet("ladder", circuit.id, numbering.sheet + index, sheet.title ?? circuit.title);
+  const linksOf = shareLinks(joined.links, ladders);
+  const sheets: CircuitSheet[] = [];
+  ladders.forEach((ladder, index) => {
+    const slot = slots[index] as Slot;
+    if (slot.place === 0) sheets.push(emptySheet("ladder", circuit.id, numbering.sheet + slot.sheet, ladder.title ?? circuit.title));
+    const out = sheets.at(-1) as CircuitSheet;
     const first = index === 0;
-    const span = Math.max(plan.span, ...sheet.groups.map(({ needs }) => leastSpan(needs, arrangement.columns)));
+    const span = Math.max(plan.span, ...ladder.groups.map(({ needs }) => leastSpan(needs, arrangement.columns)));
     const corner = plan.origin(first);
-    const origin = { x: page.area.x + corner.x, y: page.area.y + corner.y };
-    const ends = plan.rails(first, sheet.depth);
+    const room = rooms[slot.place] as Box;
+    const origin = { x: room.x + corner.x, y: room.y + corner.y };
+    const reach = plan.rails(first, ladder.depth);
     places.push(
       ...drawLadder(
         {
           circuit,
-          sheet,
+          sheet: ladder,
           span,
-          groups: sheet.groups.map(({ from, needs }) => ({ from, columns: setColumns(needs, span, arrangement.columns) })),
+          groups: ladder.groups.map(({ from, needs }) => ({ from, columns: setColumns(needs, span, arrangement.columns) })),
           arrangement,
           rails,
           origin,
-          railFrom: ends.from,
-          railTo: ends.to,
-          firstLine: firstLines[index] as number,
+          railFrom: reach.from,
+          railTo: reach.to,
+          firstLine: (ends[index] as LineEnds).first,
           links: linksOf[index] ?? [],
           zoneOf: (point) => page.zoneOf(point),
         },
         out,
       ),
     );
+    const railEnd = (other: number, line: "first" | "last"): RailEnd => {
+      const there = slots[other] as Slot;
+      return { line: (ends[other] as LineEnds)[line], ...(there.sheet === slot.sheet ? {} : { sheet: numbering.sheet + there.sheet }) };
+    };
     plan.finish(out, {
       first,
       origin,
       span,
-      rails: ends,
-      ...(first ? {} : { comesFrom: endOf(broken, firstLines, index - 1, numbering) }),
-      ...(index < broken.length - 1 ? { goesTo: startOf(firstLines, index + 1, numbering) } : {}),
+      rails: reach,
+      ...(first ? {} : { comesFrom: railEnd(index - 1, "last") }),
+      ...(index < ladders.length - 1 ? { goesTo: railEnd(index + 1, "first") } : {}),
     });
-    return out;
   });
-  const lines = broken.at(-1)?.rungs.reduce((sum, { lines }) => sum + lines.length, 0) ?? 0;
-  return { sheets, places, nextLine: (firstLines.at(-1) ?? numbering.line) + lines };
+  const lines = ladders.reduce((sum, { rungs }) => sum + rungs.reduce((own, { lines }) => own + lines.length, 0), 0);
+  return { sheets, places, nextLine: machine.drawing.lineNumbers === "running" ? numbering.line + lines : numbering.line };
 }
 
 function railNodes(circuit: LadderCircuit, machine: Machine): [NodeId, NodeId] {
@@ -144,23 +158,22 @@ function linkedRungs(links: readonly Link[]): (rung: number) => boolean {
   return (rung) => joined.has(rung);
 }
 
-/** The number of the first line of each sheet. */
-function numberLines(sheets: readonly RungSheet[], machine: Machine, numbering: Numbering): number[] {
-  let running = numbering.line;
-  // A rung's number says its sheet too, a path's is written behind that of its sheet.
-  const bySheet = (sheet: number) => (machine.drawing.convention === "international" ? 1 : sheet * 100 + 1);
-  return sheets.map((sheet, index) => {
-    const first = machine.drawing.lineNumbers === "running" ? running : bySheet(numbering.sheet + index);
-    running += sheet.rungs.reduce((sum, { lines }) => sum + lines.length, 0);
-    return first;
-  });
+/** The numbers of the first and the last line of a ladder. */
+interface LineEnds {
+  first: number;
+  last: number;
 }
 
-const startOf = (firstLines: readonly number[], index: number, numbering: Numbering): RailEnd => ({
-  sheet: numbering.sheet + index,
-  line: firstLines[index] as number,
-});
-const endOf = (sheets: readonly RungSheet[], firstLines: readonly number[], index: number, numbering: Numbering): RailEnd => ({
-  sheet: numbering.sheet + index,
-  line: (firstLines[index] as number) + (sheets[index] as RungSheet).rungs.reduce((sum, { lines }) => sum + lines.length, 0) - 1,
-});
+/** Numbers the lines of every ladder, from the beginning of each sheet or on through all. */
+function numberLines(ladders: readonly RungSheet[], slots: readonly Slot[], { drawing }: Machine, numbering: Numbering): LineEnds[] {
+  // A rung's number says its sheet too, a path's is written behind that of its sheet.
+  const bySheet = (sheet: number) => (drawing.convention === "international" ? 1 : sheet * 100 + 1);
+  let next = numbering.line;
+  return ladders.map(({ rungs }, index) => {
+    const { sheet, place } = slots[index] as Slot;
+    if (drawing.lineNumbers === "by-sheet" && place === 0) next = bySheet(numbering.sheet + sheet);
+    const first = next;
+    next += rungs.reduce((sum, { lines }) => sum + lines.length, 0);
+    return { first, last: next - 1 };
+  });
+}
