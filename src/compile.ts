@@ -5,8 +5,8 @@ import type { Diagnostic } from "./language/diagnostic.js";
 import { readDrawing } from "./language/read-drawing.js";
 import { layOut } from "./layout/lay-out.js";
 import type { Layout } from "./layout/placement.js";
-import { buildMachine } from "./machine/build.js";
-import type { DrawingInfo, Machine } from "./machine/model.js";
+import { buildMachine, type Overrides } from "./machine/build.js";
+import type { Machine } from "./machine/model.js";
 import { crossReference } from "./schedules/cross-reference.js";
 import type { CrossReferenceRow } from "./schedules/rows.js";
 import { numberWires } from "./schedules/wire-numbers.js";
@@ -32,9 +32,6 @@ export interface Compiled extends Examined {
   set?: DrawingSet;
 }
 
-/** What the caller decides instead of the drawing's text. */
-export type Overrides = Partial<Pick<DrawingInfo, "convention">>;
-
 /** Called as each phase begins, with what it does in a word or two, for showing progress. */
 export type Told = (phase: string) => void;
 
@@ -48,9 +45,7 @@ export async function examine(path: string, world: World, told: Told = () => {},
   const { tree, sources, diagnostics: readFindings } = await readDrawing(path, world);
 
   // 2. Syntax tree → machine: every name resolved, every unit converted.
-  const built = buildMachine(tree);
-  const { diagnostics: buildFindings } = built;
-  const machine = { ...built.machine, drawing: { ...built.machine.drawing, ...overrides } };
+  const { machine, diagnostics: buildFindings } = buildMachine(tree, overrides);
 
   // 3. Machine → its state at the start of the cycle, which is the state drawn.
   const start = startOfCycle(machine);

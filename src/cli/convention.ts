@@ -1,5 +1,5 @@
 import { InvalidArgumentError } from "commander";
-import type { Overrides } from "../compile.js";
+import type { Overrides } from "../machine/build.js";
 import { conventions } from "../machine/drawing.js";
 import type { DrawingInfo } from "../machine/model.js";
 

@@ -6,6 +6,7 @@ import { symbolForDevice } from "../symbols/choose.js";
 import type { SymbolLibrary } from "../symbols/library.js";
 import { layOutLadder } from "./ladder/lay-out-ladder.js";
 import type { CircuitSheet, Layout, PageArea, Place } from "./placement.js";
+import { layOutPower } from "./power/lay-out-power.js";
 
 /**
  * Sets every circuit down in millimetres: sheets in the order of the circuits, numbered on through the set, and the place of
@@ -40,12 +41,11 @@ export async function layOut(
       diagnostics.push(...laid.diagnostics);
       for (const [part, place] of laid.places) places.set(part, place);
     } else {
-      diagnostics.push({
-        code: "not-yet-supported",
-        severity: "error",
-        message: "Power circuits are checked, but not yet drawn.",
-        at: circuit.at,
-      });
+      const laid = layOutPower(circuit, machine, symbols, page, numbering);
+      line = laid.nextLine;
+      sheets.push(...laid.sheets);
+      diagnostics.push(...laid.diagnostics);
+      for (const [part, place] of laid.places) places.set(part, place);
     }
   }
   return { sheets, places, diagnostics };

@@ -15,7 +15,7 @@ export interface PageArea {
 
 /** A circuit sheet with everything in place. References inside it are not yet worded: room is kept for them. */
 export interface CircuitSheet {
-  kind: "ladder" | "fluid";
+  kind: "ladder" | "fluid" | "power";
   circuit: PartId;
   /** 1-based number in the whole set. */
   number: number;
@@ -94,7 +94,7 @@ export function rowPitch(height: Mm): Mm {
 }
 
 export type ReferenceTo =
-  /** Under a contact: where its coil is, `(201)`. */
+  /** Under a contact: where its coil is, `(201)`; under that of an overload, where it stands in the power circuit. */
   | { to: "coil"; device: string }
   /** At a coil: the lines of its contacts, normally closed ones underlined. */
   | { to: "contacts"; device: string }
@@ -106,6 +106,12 @@ export type ReferenceTo =
   | { to: "valve"; device: string }
   /** At a solenoid or switch on a fluid sheet: the ladder line of its coil or contacts, `(204)`. */
   | { to: "ladder-line"; device: string }
+  /** At a motor in a power circuit: the pump or compressor it drives and where that is drawn, `P1 3/B2`. */
+  | { to: "driven"; device: string }
+  /** At the end of a branch that feeds a ladder: the rail and where the ladder begins, `L+ 2/201`. */
+  | { to: "rails"; supply: string; rail: string }
+  /** At the head of a ladder's rails: what they come from and where that is drawn, `G1 1/105`. */
+  | { to: "source"; supply: string }
   /** At a point that goes on elsewhere: name, sheet and line. */
   | {
       to: "point";

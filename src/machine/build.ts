@@ -35,9 +35,12 @@ import { readValve } from "./valve.js";
  * wire and fluid line part of its node. There is always a machine; what could not be understood is missing from it and has its
  * diagnostic. Never throws for bad input.
  */
-export function buildMachine(tree: Tree): { machine: Machine; diagnostics: Diagnostic[] } {
-  return new MachineBuilder(tree).build();
+export function buildMachine(tree: Tree, overrides: Overrides = {}): { machine: Machine; diagnostics: Diagnostic[] } {
+  return new MachineBuilder(tree, overrides).build();
 }
+
+/** What the caller decides instead of the drawing's text. */
+export type Overrides = Partial<Pick<DrawingInfo, "convention">>;
 
 class MachineBuilder {
   private readonly report = new Report();
@@ -52,9 +55,12 @@ class MachineBuilder {
   private readonly fluids: CircuitDraft[] = [];
   private readonly sequences: SequenceBlock[] = [];
 
-  constructor(private readonly tree: Tree) {
+  constructor(
+    private readonly tree: Tree,
+    overrides: Overrides,
+  ) {
     const blocks = tree.statements.filter((statement): statement is DrawingBlock => statement.kind === "drawing");
-    this.info = readDrawingInfo(blocks, tree.file, this.report);
+    this.info = { ...readDrawingInfo(blocks, tree.file, this.report), ...overrides };
   }
 
   build(): { machine: Machine; diagnostics: Diagnostic[] } {

@@ -323,7 +323,7 @@ export interface PowerFeed {
   id: PartId;
   /** As they come in: phases, neutral, protective conductor. */
   conductors: Conductor[];
-  path: (MainUse | PowerParallel | PowerPoint)[];
+  path: MainUse[];
   /** Behind the path: the busbars. */
   bus: Conductor[];
   at: SourceRange;

@@ -29,6 +29,11 @@ export function isReturn(phase: string): boolean {
   return /^(N|M|L-|X2|-)$/.test(phase);
 }
 
+/** Live conductors first, then what the current comes back on: the order of poles. */
+export function inTrackOrder<One extends { phase: string }>(conductors: readonly One[]): One[] {
+  return [...conductors.filter(({ phase }) => !isReturn(phase)), ...conductors.filter(({ phase }) => isReturn(phase))];
+}
+
 export const withoutReturn = (conductors: readonly Conductor[]): Conductor[] => conductors.filter(({ phase }) => !isReturn(phase));
 
 /**
@@ -39,7 +44,7 @@ export const withoutReturn = (conductors: readonly Conductor[]): Conductor[] => 
  */
 export function conductorsThrough({ kind, ways }: Device, conductors: readonly Conductor[]): Conductor[] | undefined {
   const live = withoutReturn(conductors);
-  const all = [...live, ...conductors.filter(({ phase }) => isReturn(phase))];
+  const all = inTrackOrder(conductors);
   if (kind === "terminal-strip" || kind === "plug") return [...conductors];
   if (ways !== undefined) return ways < live.length ? undefined : all.slice(0, ways);
   const isolates = kind === "disconnect" || kind === "contactor";

@@ -19,6 +19,7 @@ import type { Names } from "./names.js";
 import {
   conductorsThrough,
   conversionTerminals,
+  inTrackOrder,
   isEarth,
   leadsOf,
   motorTerminals,
@@ -141,8 +142,14 @@ export class PowerBuilder {
     this.points.clear();
     if (written) {
       const work = this.work(feed.id, current, written.incomplete);
-      const live = conductors.filter(({ phase }) => !isEarth(phase));
-      const behind = this.readPath(this.elements(written.path.items), live, feed.path, work);
+      for (const item of written.path.items) {
+        if (item.kind === "reference") continue;
+        this.report.error("feed-not-in-series", item.at, "In a feed things stand in series; what divides is a branch.");
+      }
+      const live = inTrackOrder(conductors.filter(({ phase }) => !isEarth(phase)));
+      const path: PowerBranch["path"] = [];
+      const behind = this.readPath(this.elements(written.path.items.filter(({ kind }) => kind === "reference")), live, path, work);
+      feed.path = path.filter((item) => item.kind === "main");
       const bus = (phase: string) => behind.find((one) => one.phase === phase);
       feed.bus = conductors.map((one) => bus(one.phase) ?? one);
       if (behind.length > 0 && live.some(({ phase }) => !bus(phase))) {
@@ -260,7 +267,7 @@ export class PowerBuilder {
     const before = [...items.slice(0, arrow ?? items.length)];
     const behind = arrow === undefined ? [] : items.slice(arrow);
     const source = this.readStart(before, statement, circuit, branch, work);
-    branch.conductors = this.chosen(statement.conductors, source, branch, circuit);
+    branch.conductors = inTrackOrder(this.chosen(statement.conductors, source, branch, circuit));
     const elements = this.elements(before);
     const at = this.readPath(elements, branch.conductors, branch.path, work);
     this.readEnd(behind, at, statement.path, branch, work);
@@ -898,7 +905,7 @@ export class PowerBuilder {
     };
     for (const { feed, branches } of this.circuits) {
       for (const one of [...feed.conductors, ...feed.bus]) renumber(one);
-      feed.path.forEach(visit);
+      for (const use of feed.path) visit(use);
       for (const { conductors, path, end } of branches) {
         conductors.forEach(renumber);
         path.forEach(visit);

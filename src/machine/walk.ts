@@ -5,6 +5,7 @@ import type {
   LadderCircuit,
   LoadUse,
   Machine,
+  MainUse,
   ParallelPath,
   RungElement,
   SeriesPath,
@@ -50,4 +51,9 @@ export function printedName(designation: string, convention: DrawingInfo["conven
 /** What a load is called where its coils are told apart: `KL1.set`, else as `designationOf`. */
 export function coilOf(load: LoadUse): string {
   return load.coil === undefined ? designationOf(load) : `${load.device}.${load.coil}`;
+}
+
+/** The terminals of what stands in a power circuit, pole by pole: `1-2 3-4 5-6`. */
+export function polesOf({ ins, outs }: MainUse): string {
+  return ins.map(({ terminal }, index) => [terminal, outs[index]?.terminal ?? ""].filter((one) => one !== "").join("-")).join(" ");
 }

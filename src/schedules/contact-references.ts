@@ -1,6 +1,7 @@
 import type { Layout } from "../layout/placement.js";
 import type { ContactUse, Device } from "../machine/model.js";
 import { sparePoles } from "../machine/terminals.js";
+import { polesOf } from "../machine/walk.js";
 import type { ContactReference, SpareContact } from "./rows.js";
 
 /** Contacts by their terminals and where they stand; one that stands on no sheet is left out. */
@@ -10,6 +11,14 @@ export function contactReferences(contacts: readonly ContactUse[], layout: Layou
     if (!place) return [];
     const printed = terminals.value.join("-");
     return [{ type: form, ...(timed && { timed }), terminals: printed === "-" ? "" : printed, sheet: place.sheet, line: place.line ?? 0 }];
+  });
+}
+
+/** Main contacts, and what else of a device stands in power circuits: all poles of one use together. */
+export function mainReferences({ mains }: Device, layout: Layout): ContactReference[] {
+  return mains.flatMap((main) => {
+    const place = layout.places.get(main.id);
+    return place ? [{ type: "main", terminals: polesOf(main), sheet: place.sheet, line: place.line ?? 0 }] : [];
   });
 }
 

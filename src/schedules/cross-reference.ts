@@ -1,7 +1,7 @@
 import type { Layout, Place } from "../layout/placement.js";
 import type { ContactUse, Device, DeviceUse, Machine } from "../machine/model.js";
 import { coilOf, designationOf, laddersOf, usesOf } from "../machine/walk.js";
-import { contactReferences, spareContacts } from "./contact-references.js";
+import { contactReferences, mainReferences, spareContacts } from "./contact-references.js";
 import type { CrossReferenceRow } from "./rows.js";
 
 /**
@@ -62,7 +62,7 @@ function rowOf(name: string, device: Device, contacts: readonly ContactUse[], pl
     text: device.text ?? "",
     sheet: place.sheet,
     line: place.line ?? 0,
-    contacts: contactReferences(contacts, layout),
+    contacts: [...mainReferences(device, layout), ...contactReferences(contacts, layout)],
     ...(spare.length > 0 && { spare }),
     ...(device.valve && valve && { valve: { name: device.valve.name, sheet: valve.sheet, zone: valve.zone } }),
   };

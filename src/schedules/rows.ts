@@ -20,7 +20,8 @@ export interface CrossReferenceRow {
 }
 
 export interface ContactReference {
-  type: "NO" | "NC";
+  /** `main`: main contacts in a power circuit, all poles of one use together. */
+  type: "main" | "NO" | "NC";
   timed?: boolean;
   terminals: string;
   sheet: number;

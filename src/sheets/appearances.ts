@@ -1,8 +1,8 @@
 import type { Box, Point } from "../drawing/geometry.js";
 import type { PartId } from "../drawing/marks.js";
-import type { Layout, Place } from "../layout/placement.js";
+import type { CircuitSheet, Layout, Place } from "../layout/placement.js";
 import type { ContactUse, Device, Machine } from "../machine/model.js";
-import { coilOf } from "../machine/walk.js";
+import { coilOf, laddersOf, polesOf } from "../machine/walk.js";
 import type { ContactReference, CrossReferenceRow } from "../schedules/rows.js";
 
 /** Something drawn, and where. */
@@ -24,6 +24,12 @@ export interface Appearances {
   rows: ReadonlyMap<string, CrossReferenceRow>;
   /** A device's coil, lamp or other load; of several the first, or the one named: `KL1.reset`, `I0.5`. */
   loadOf(name: string): Appearance | undefined;
+  /** A device in a power circuit: main contacts, poles, a motor. */
+  mainsOf(device: string): Appearance[];
+  /** What a supply's rails come from, at the end of its branch. */
+  sourceOf(supply: string): Appearance | undefined;
+  /** The first rungs of the ladders that a supply feeds. */
+  headsOf(supply: string): Appearance[];
   /** A device's contacts in drawing order. */
   contactsOf(device: string): (Appearance & { contact: ContactUse })[];
   /** On a fluid sheet: a solenoid at its valve, a switch at the cam that works it or the line that it senses. */
@@ -33,9 +39,9 @@ export interface Appearances {
   /** The contact a row of the cross-reference speaks of. */
   contactOf(device: string, reference: ContactReference): PartId | undefined;
   /** The device of which a part is a contact or a load in a rung. */
-  deviceOf(part: PartId): { device: string; use: "contact" | "load" } | undefined;
+  deviceOf(part: PartId): { device: string; use: "contact" | "load" | "main" } | undefined;
   /** The ends of a point on all sheets of a kind. */
-  pointEnds(kind: "ladder" | "fluid", point: string): readonly PointEnd[];
+  pointEnds(kind: CircuitSheet["kind"], point: string): readonly PointEnd[];
 }
 
 /** Looks up every appearance once. */
@@ -64,6 +70,14 @@ export function findAppearances(
       if (!byReference.has(key)) byReference.set(key, part);
     }
   }
+  for (const { name, mains } of machine.devices.values()) {
+    for (const main of mains) {
+      const place = layout.places.get(main.id);
+      if (!place) continue;
+      const key = referenceKey(name, { type: "main", terminals: polesOf(main), sheet: place.sheet, line: place.line ?? 0 });
+      if (!byReference.has(key)) byReference.set(key, main.id);
+    }
+  }
   const contactsOf = (device: string) => placed.get(device) ?? [];
   const component = (name: string) => at(machine.components.get(name)?.id);
   const fluidSideOf = (name: string) => {
@@ -76,16 +90,27 @@ export function findAppearances(
     const [first] = loads;
     if (first) coils.set(name, first.id);
   }
-  const uses = new Map<PartId, { device: string; use: "contact" | "load" }>();
+  const uses = new Map<PartId, { device: string; use: "contact" | "load" | "main" }>();
   for (const device of machine.devices.values()) {
     for (const { id } of device.contacts) uses.set(id, { device: device.name, use: "contact" });
     for (const { id } of device.loads) uses.set(id, { device: device.name, use: "load" });
+    for (const { id } of device.mains) uses.set(id, { device: device.name, use: "main" });
   }
   return {
     machine,
     layout,
     rows: new Map(rows.map((row) => [row.device ?? row.coil, row])),
     loadOf: (name) => at(coils.get(name)),
+    mainsOf: (device) => (machine.devices.get(device)?.mains ?? []).flatMap(({ id }) => at(id) ?? []),
+    sourceOf: (supply) => {
+      const fed = machine.supplies.find(({ name }) => name === supply);
+      return at(machine.devices.get(fed?.from ?? "")?.mains[0]?.id) ?? at(fed?.branch);
+    },
+    headsOf: (supply) =>
+      laddersOf(machine).flatMap((ladder) => {
+        const head = ladder.supply.name === supply ? at(ladder.rungs[0]?.id) : undefined;
+        return head ? [head] : [];
+      }),
     contactsOf,
     fluidSideOf,
     component,
@@ -120,6 +145,7 @@ function onValve(device: Device | undefined, at: (part: PartId) => Appearance | 
 function cams(layout: Layout, zoneOf: (point: Point) => string): Map<string, Appearance> {
   const found = new Map<string, Appearance>();
   for (const sheet of layout.sheets) {
+    if (sheet.kind !== "fluid") continue;
     for (const { text, part, at, height } of sheet.texts) {
       if (typeof text === "string" || text.to !== "ladder-line" || part === undefined || found.has(text.device)) continue;
       const place = layout.places.get(part) ?? placeless(sheet.number, at, height, zoneOf);

@@ -48,7 +48,12 @@ function symbolLinks({ part, symbol, at, turn }: PlacedSymbol, appearances: Appe
   const contactOrLoad = appearances.deviceOf(part);
   if (contactOrLoad === undefined) return [];
   const { device, use } = contactOrLoad;
-  const to = (use === "contact" ? appearances.loadOf(device) : undefined) ?? appearances.fluidSideOf(device);
+  // Main contacts lead to their coil, an overload to its contacts and its contacts to it, a motor to the pump it drives.
+  const to =
+    (use === "load" ? undefined : appearances.loadOf(device)) ??
+    (use === "main" ? appearances.contactsOf(device)[0] : undefined) ??
+    appearances.fluidSideOf(device) ??
+    (use === "contact" ? appearances.mainsOf(device)[0] : undefined);
   if (!to || to.part === part) return [];
   const { box } = turnSymbol(symbol, turn);
   return [{ kind: "link", box: movedBox(box, at), to: to.part }];

@@ -54,7 +54,7 @@ const plain = ({ pieces }: Wording) => pieces.map((piece) => piece.text).join(""
 function wordingsOf(reference: Reference, sheet: CircuitSheet, appearances: Appearances): Wording[] {
   switch (reference.to) {
     case "coil":
-      return bracketed(appearances.loadOf(reference.device), sheet, appearances);
+      return bracketed(appearances.loadOf(reference.device) ?? appearances.mainsOf(reference.device)[0], sheet, appearances);
     case "switch-place": {
       const device = appearances.machine.devices.get(reference.device);
       return named(device ? operatorOf(device) : undefined, appearances.fluidSideOf(reference.device), appearances);
@@ -71,9 +71,38 @@ function wordingsOf(reference: Reference, sheet: CircuitSheet, appearances: Appe
       return contactPlace(reference, sheet, appearances);
     case "point":
       return elsewhere(reference, sheet, appearances);
+    case "driven": {
+      const { device } = reference;
+      const driven = [...appearances.machine.components.values()].find(({ drivenBy }) => drivenBy === device);
+      return named(driven?.name, driven?.name === undefined ? undefined : appearances.component(driven.name), appearances);
+    }
+    case "rails":
+      return railHeads(reference, sheet, appearances);
+    case "source": {
+      const supply = appearances.machine.supplies.find(({ name }) => name === reference.supply);
+      const source = appearances.sourceOf(reference.supply);
+      return source ? placed(supply?.from, source, sheet, appearances) : [];
+    }
     case "contacts":
       return [{ pieces: contactPieces(reference.device, sheet, appearances) }];
   }
+}
+
+/** Something on a sheet with lines and where it stands there: `G1 1/105`, on this sheet `G1 105`, without room for the name only the place. */
+function placed(name: string | undefined, { part, place }: Appearance, sheet: CircuitSheet, { machine }: Appearances): Wording[] {
+  const { convention } = machine.drawing;
+  const near = convention === "north-american" && place.sheet === sheet.number;
+  const where =
+    place.line === undefined ? zonePlace(place, convention) : near ? String(place.line) : linePlace(place.sheet, place.line, convention);
+  return [...(name === undefined ? [] : [`${nameOf(name, machine)} ${where}`]), where].map((text) => ({ pieces: [{ text, to: part }] }));
+}
+
+/** Where the ladders begin whose rail this is: `L+ 2/201`. */
+function railHeads({ supply, rail }: Reference & { to: "rails" }, sheet: CircuitSheet, appearances: Appearances): Wording[] {
+  const [first] = appearances.headsOf(supply);
+  if (!first) return [{ pieces: [{ text: rail }] }];
+  const [full] = placed(undefined, first, sheet, appearances);
+  return full ? [{ pieces: full.pieces.map((piece) => ({ ...piece, text: `${rail} ${piece.text}` })) }] : [];
 }
 
 function bracketed(found: Appearance | undefined, sheet: CircuitSheet, appearances: Appearances): Wording[] {
@@ -86,7 +115,8 @@ function bracketed(found: Appearance | undefined, sheet: CircuitSheet, appearanc
 const brackets = ({ machine }: Appearances): [string, string] => (machine.drawing.convention === "international" ? ["", ""] : ["(", ")"]);
 
 function contactPlace({ device, contact }: Reference & { to: "contact-place" }, sheet: CircuitSheet, appearances: Appearances): Wording[] {
-  const found = appearances.contactsOf(device).find(({ part }) => part === contact);
+  const main = appearances.mainsOf(device).find(({ part }) => part === contact);
+  const found = main ?? appearances.contactsOf(device).find(({ part }) => part === contact);
   return found ? [{ pieces: [{ text: lineName(found.place, sheet, appearances), to: found.part }] }] : [];
 }
 
@@ -102,6 +132,8 @@ function named(name: string | undefined, found: Appearance | undefined, { machin
 function ladderLines(device: string, sheet: CircuitSheet, appearances: Appearances): Wording[] {
   const load = appearances.loadOf(device);
   if (load) return bracketed(load, sheet, appearances);
+  // A motor is worked by no line of a ladder, but fed by one of a power circuit.
+  if (appearances.contactsOf(device).length === 0) return bracketed(appearances.mainsOf(device)[0], sheet, appearances);
   const contacts = appearances.contactsOf(device);
   const [open, close] = brackets(appearances);
   const wordings: Wording[] = [];

@@ -81,7 +81,12 @@ function standing(kind: DeviceKind, use: PowerUse, get: (name: string) => Symbol
     case "rectifier":
       return get("rectifier");
     case "heater":
-      return poles("heater");
+      // Between two conductors stands one, between three stand three.
+      return use.conductors > 2 ? poles("heater") : gangPoles(get("heater"), get("heater"), 1);
+    case "pilot-light":
+    case "horn":
+    case "bell":
+      return gangPoles(get(kind), get(kind), 1);
     default:
       return undefined;
   }

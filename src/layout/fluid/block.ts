@@ -92,8 +92,8 @@ function round(value: number): number {
   return whole === 0 ? 0 : whole;
 }
 
-/** A component with the way electrical names at it are printed, where that is not as they are. */
-export type DrawnComponent = FluidComponent & { printed?: (name: string) => string };
+/** A component with the way electrical names at it are printed, where that is not as they are, and whether a power circuit feeds it. */
+export type DrawnComponent = FluidComponent & { printed?: (name: string) => string; fed?: boolean };
 
 /** A designation at a component as it is printed: its own, that of a solenoid or of a switch. */
 export function printedOn(component: DrawnComponent, name: string): string {
@@ -127,7 +127,7 @@ export function addText(block: Block, text: BlockText): void {
   block.full = union([block.full, textExtent(text)]);
 }
 
-/** Room for the ladder lines of a pressure switch, mm, how many of them a row takes, and how many rows they take. */
+/** Room for the ladder lines of a pressure switch or the line of a motor in its power circuit, mm, how many of them a row takes, and how many rows they take. */
 const switchRoom: Mm = 16;
 const switchOneRow = 2;
 const switchRows = 2;
@@ -138,7 +138,7 @@ export function addWords(block: Block, side: Side, usesOf: (device: string) => n
   if (side === "none") return;
   const { kind, name } = block.component;
   const lines: { role: PlacedText["role"]; text: string | Reference }[] = wordsOf(block.component);
-  if (isSensorKind(kind) && name !== undefined) {
+  if ((isSensorKind(kind) || block.component.fed) && name !== undefined) {
     const rows = usesOf(name) > switchOneRow ? { rows: switchRows } : {};
     lines.push({ role: "reference", text: { to: "ladder-line", device: name, room: switchRoom, ...rows } });
   }

@@ -33,8 +33,12 @@ const attempts = 4;
 
 /** The circuit with its components told how the electrical names at them are printed. */
 function withPrintedNames(circuit: FluidCircuit, { devices, drawing }: Machine): FluidCircuit {
+  const isFed = (name: string | undefined) => name !== undefined && (devices.get(name)?.mains.length ?? 0) > 0;
   const printed = (name: string) => (devices.has(name) ? printedName(name, drawing.convention) : name);
-  return { ...circuit, components: circuit.components.map((component): DrawnComponent => ({ ...component, printed })) };
+  return {
+    ...circuit,
+    components: circuit.components.map((component): DrawnComponent => ({ ...component, printed, fed: isFed(component.name) })),
+  };
 }
 
 /**

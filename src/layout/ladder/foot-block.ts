@@ -1,7 +1,7 @@
 import type { Mm, Point } from "../../drawing/geometry.js";
 import { measureText } from "../../drawing/text.js";
 import { wrapName } from "../../drawing/wrap-name.js";
-import type { ContactUse, Device, Machine } from "../../machine/model.js";
+import type { ContactUse, Device, Machine, MainUse } from "../../machine/model.js";
 import { sparePoles } from "../../machine/terminals.js";
 import type { PlacedText } from "../placement.js";
 import type { Block, MarginEntry } from "./arrangement.js";
@@ -38,7 +38,12 @@ export function footBlock({ title, load }: MarginEntry, machine: Machine, deepes
       text: { to: "valve", device: device.name, room },
     });
     bottom += usual * 0.3 + blockGap;
-  } else if (load && device && device.loads[0]?.id === load.id && device.contacts.length + sparePoles(device).length > 0) {
+  } else if (
+    load &&
+    device &&
+    device.loads[0]?.id === load.id &&
+    device.contacts.length + device.mains.length + sparePoles(device).length > 0
+  ) {
     const table = contactTable(device, bottom, deepest - bottom - wordsRise - blockGap);
     texts.push(...table.texts.map((text) => ({ ...part, ...text })));
     strokes.push(...table.strokes.map((path) => ({ ...part, role: "table", path, width: 0.18 })));
@@ -85,14 +90,15 @@ const rowPitch: Mm = 2.9;
 const headHeight: Mm = 4.6;
 const pad: Mm = 0.8;
 
-/** The contacts of a coil: those that make on the left, those that break on the right, each with its terminals and its place; spare ones have a dash. */
+/** The contacts of a coil: main contacts, those that make, those that break, each with its terminals and its place; spare ones have a dash. */
 function contactTable(device: Device, top: Mm, deepest: Mm): ContactTable {
   const texts: ContactTable["texts"] = [];
   const strokes: ContactTable["strokes"] = [];
   const spare = sparePoles(device).map(({ form, terminals }) => ({ form, terminals, id: undefined }));
+  const mains = device.mains.map((main) => ({ form: "main" as const, terminals: mainsOf(main), id: main.id }));
   const used = device.contacts.map(({ form, terminals, id }) => ({ form, terminals: terminals.value, id }));
-  const columns = (["NO", "NC"] as const)
-    .map((form) => ({ form, contacts: [...used, ...spare].filter((contact) => contact.form === form).sort(byTerminal) }))
+  const columns = (["main", "NO", "NC"] as const)
+    .map((form) => ({ form, contacts: [...mains, ...used, ...spare].filter((contact) => contact.form === form).sort(byTerminal) }))
     .filter(({ contacts }) => contacts.length > 0)
     .map((column) => {
       const terminals = Math.max(...column.contacts.map((contact) => measureText(written(contact), height)));
@@ -137,12 +143,17 @@ const gap: Mm = 1.2;
 const placeRoom: Mm = measureText("/88.88", height);
 
 /** The sign of a make or break contact at the head of its column. */
-function contactSign(form: ContactUse["form"], { x, y }: Point): Point[][] {
+function contactSign(form: ContactUse["form"] | "main", { x, y }: Point): Point[][] {
   const at = (dx: Mm, dy: Mm): Point => ({ x: x + dx, y: y + dy });
+  // Three poles side by side stand for main contacts.
+  if (form === "main") return [-1.6, 0, 1.6].flatMap((by) => contactSign("NO", at(by, 0)));
   const lower = [at(0, 1.9), at(0, 0.9), form === "NO" ? at(-0.9, -0.9) : at(0.8, -1.1)];
   const upper = form === "NO" ? [at(0, -1.9), at(0, -0.9)] : [at(0, -1.9), at(0, -0.9), at(0.9, -0.9)];
   return [lower, upper];
 }
+
+/** From the first terminal to the last: `1-6`. */
+const mainsOf = ({ ins, outs }: MainUse): [string, string] => [ins[0]?.terminal ?? "", outs.at(-1)?.terminal ?? ""];
 
 interface TableContact {
   terminals: readonly [string, string];

@@ -86,6 +86,18 @@ export function supplyWords(circuit: LadderCircuit): string {
   return `${circuit.supply.name}  ${voltsOf(circuit)}`;
 }
 
+/** Behind those words: what the rails come from and where that is drawn, if a power circuit feeds them and there is room. */
+export function sourceOf({ supply }: LadderCircuit, room: Mm): Omit<PlacedText, "at"> | undefined {
+  if (supply.branch === undefined || room < leastSource) return undefined;
+  const text = { to: "source", supply: supply.name, room: Math.min(room, mostSource) } as const;
+  return { role: "reference", anchor: "start", height: noteHeight, text };
+}
+
+/** From the words to the reference, and its room at the least and at the most, mm. */
+export const sourceGap: Mm = 3;
+const leastSource: Mm = 12;
+const mostSource: Mm = 32;
+
 export interface RailNaming {
   head: RailHead;
   /** Where the live rail crosses the first line's room. */
@@ -132,7 +144,11 @@ export function nameRails(sheet: CircuitSheet, circuit: LadderCircuit, naming: R
     const volts = voltsOf(circuit);
     const named = supplyWords(circuit);
     const free = span - 2 * inset;
-    say(span / 2, foot, "middle", noteHeight, "note", measureText(named, noteHeight) <= free ? named : fitText(volts, noteHeight, free));
+    const words = measureText(named, noteHeight) <= free ? named : fitText(volts, noteHeight, free);
+    say(span / 2, foot, "middle", noteHeight, "note", words);
+    const behind = measureText(words, noteHeight) / 2 + sourceGap;
+    const source = sourceOf(circuit, free / 2 - behind);
+    if (source) sheet.texts.push({ ...source, at: { x: origin.x + span / 2 + behind, y: origin.y + foot } });
   } else {
     say(inset, foot, "start", noteHeight, "note", `from ${naming.comesFrom}`);
     say(span - inset, foot, "end", noteHeight, "note", `from ${naming.comesFrom}`);

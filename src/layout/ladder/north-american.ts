@@ -246,7 +246,7 @@ function marginBlock({ title, load }: MarginEntry, machine: Machine, margin: Mar
     const to: ReferenceTo | undefined =
       device.kind === "solenoid"
         ? { to: "valve", device: device.name }
-        : device.contacts.length > 0
+        : device.contacts.length + device.mains.length > 0
           ? { to: "contacts", device: device.name }
           : undefined;
     if (to) {
@@ -277,7 +277,7 @@ function marginBlock({ title, load }: MarginEntry, machine: Machine, margin: Mar
     });
   });
   // A long contact list is set in up to three rows.
-  const listed = device && device.contacts.length > 2 ? 4.8 : usual;
+  const listed = device && device.contacts.length + device.mains.length > 2 ? 4.8 : usual;
   const boxes = around(texts.map(roomOf));
   return {
     texts,

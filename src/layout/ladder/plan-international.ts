@@ -5,7 +5,7 @@ import { usesOf } from "../../machine/walk.js";
 import type { CircuitSheet, PlacedText } from "../placement.js";
 import { depthOf } from "./foot-block.js";
 import { brokenRoom, international, pathNumberRise } from "./international.js";
-import { supplyWords } from "./name-rails.js";
+import { sourceGap, sourceOf, supplyWords } from "./name-rails.js";
 import type { FinishedLadder, Plan, PlanGiven } from "./plan.js";
 import { fuseBlock, setFuse } from "./supply-fuse.js";
 import { textHeight } from "./under-words.js";
@@ -94,7 +94,11 @@ export function planInternational({ circuit, machine, symbolOf, symbols, room: {
     const [live] = circuit.supply.rails;
     const x = behindFuse === undefined ? origin.x + rails.from : behindFuse + 1 + measureText(live, nameHeight) + 4;
     const room = origin.x + rails.to - x;
-    say({ x, y: origin.y - overRail }, "start", noteHeight, "note", fitText(supplyWords(circuit), noteHeight, room));
+    const words = fitText(supplyWords(circuit), noteHeight, room);
+    say({ x, y: origin.y - overRail }, "start", noteHeight, "note", words);
+    const behind = measureText(words, noteHeight) + sourceGap;
+    const source = sourceOf(circuit, room - behind);
+    if (source) sheet.texts.push({ ...source, at: { x: x + behind, y: origin.y - overRail } });
   }
 }
 

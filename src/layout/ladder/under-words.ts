@@ -70,7 +70,11 @@ export function underWords(
       return [...words(device.text), ...words(settings, "value"), ...place];
     }
     default:
-      return words(device.text);
+      // An overload, or a breaker with contacts of its own, is worked by what flows in the power circuit.
+      return [
+        ...words(device.text),
+        ...(device.mains.length > 0 ? [reference({ to: "coil", device: device.name }, longest[convention].coil, usual)] : []),
+      ];
   }
 }
 
