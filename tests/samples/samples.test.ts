@@ -52,7 +52,7 @@ describe.each(drawn)("$path, $convention", async ({ path, convention }) => {
   });
 
   test("every contact, load and component is drawn once and has its place", () => {
-    const parts = [...usesOf(machine).map(({ id }) => id), ...componentsOf(machine).map(({ id }) => id)];
+    const parts = [...usesOf(machine), ...mainsOf(machine), ...componentsOf(machine)].map(({ id }) => id);
     expect(new Set(parts).size).toBe(parts.length);
     const drawn = layout.sheets.flatMap(({ symbols }) => symbols.map(({ part }) => part));
     expect(parts.filter((part) => !layout.places.has(part))).toEqual([]);
@@ -62,7 +62,7 @@ describe.each(drawn)("$path, $convention", async ({ path, convention }) => {
   test("every device stands in the cross-reference or on a fluid sheet, and every coil with all its contacts", () => {
     for (const device of machine.devices.values()) {
       const row = rows.find(({ coil }) => coil === device.name);
-      if (device.loads.length > 0) expect(row?.contacts.length, device.name).toBe(device.contacts.length);
+      if (device.loads.length > 0) expect(row?.contacts.length, device.name).toBe(device.contacts.length + device.mains.length);
     }
   });
 
@@ -209,6 +209,10 @@ function componentsOf({ circuits }: Machine) {
   return circuits.flatMap((circuit) => (circuit.kind === "fluid" ? circuit.components : []));
 }
 
+function mainsOf({ devices }: Machine) {
+  return [...devices.values()].flatMap(({ mains }) => mains);
+}
+
 /** The fluid node of each joined port, by `part.port`. */
 function nodesByPin(machine: Machine): Map<string, number> {
   const nodes = new Map<string, number>();
@@ -217,6 +221,10 @@ function nodesByPin(machine: Machine): Map<string, number> {
   }
   // The pins of a contact or load: `in` on the live side, `out` on the return side.
   for (const { id, from, to } of usesOf(machine)) nodes.set(`${id}.in`, from).set(`${id}.out`, to);
+  for (const { id, ins, outs, second = [] } of mainsOf(machine)) {
+    for (const [index, { node }] of ins.entries()) nodes.set(`${id}.in-${index + 1}`, node);
+    for (const [index, { node }] of [...outs, ...second].entries()) nodes.set(`${id}.out-${index + 1}`, node);
+  }
   return nodes;
 }
 
