@@ -75,14 +75,13 @@ function standing(kind: DeviceKind, use: PowerUse, get: (name: string) => Symbol
       if (use.conductors > 2) return get("motor-3ph");
       return get(use.current === "DC" ? "motor-dc" : "motor-1ph");
     case "transformer":
-      return get("transformer-control");
+      return get(use.conductors > 2 ? "transformer-3ph" : "transformer-control");
     case "power-supply":
-      return get("power-supply-dc");
+      return get(use.conductors > 2 ? "power-supply-dc-3ph" : "power-supply-dc");
     case "rectifier":
-      return get("rectifier");
+      return get(use.conductors > 2 ? "rectifier-3ph" : "rectifier");
     case "heater":
-      // Between two conductors stands one, between three stand three.
-      return use.conductors > 2 ? poles("heater") : gangPoles(get("heater"), get("heater"), 1);
+      return poles("heater");
     case "pilot-light":
     case "horn":
     case "bell":

@@ -21,6 +21,7 @@ function declared(count: number): string {
       `heater HT${i} 2 kW`,
       `pilot-light LT${i} white`,
       `transformer T${i} primary 400 V secondary 230 V 400 VA`,
+      `rectifier V${i} secondary 24 V DC 10 A`,
       `power-supply G${i} primary 230 V secondary 24 V DC 10 A`,
     ].join("\n");
   return [
@@ -51,6 +52,8 @@ const forms: ((i: number) => string[])[] = [
   (i) => [`branch "Lamp" L2 N: F${i} -> LT${i}`],
   (i) => [`branch "Transformer" L1 L3: F${i} T${i} Q${i} G${i} @d${i}`, `branch "Lamp" : @d${i} KB${i} -> LT${i}`],
   (i) => [`branch "Bypass and reverse": F${i} (KA${i} | KB${i}) OL${i} (KC${i} | Q${i}) -> M${i}`],
+  (i) => [`branch "Three phases": F${i} T${i} Q${i} G${i} @t${i}`, `branch "Lamp": @t${i} KB${i} -> LT${i}`],
+  (i) => [`branch "Rectifier": F${i} V${i} KA${i} @v${i}`, `branch "Heating": @v${i} -> HT${i}`],
   (i) => [`branch "Terminals": F${i} KA${i} X1:${3 * i}-${3 * i + 2} -> M${i}`],
 ];
 

@@ -98,10 +98,10 @@ function terminalTexts(use: MainUse, symbol: Symbol, shift: Point): PlacedText[]
     const at = { x: shift.x + spot.x, y: shift.y + spot.y };
     const pin = symbol.ports.find(({ name }) => name === port);
     if (!pin) return [];
-    // Clear of the symbol's body: right of the end of an upright lead; of a load, whose leads are short, before the end of a level one.
+    // Clear of the symbol's body: right of the end of an upright lead; where leads are short, before the end of a level one.
     if (pin.direction === "up") at.y = shift.y + pin.y + 0.3;
     else if (pin.direction === "down") at.y = shift.y + pin.y + 1.5;
-    else if (use.role === "load") {
+    else if (use.role !== "through") {
       const before = pin.direction === "left";
       at.x = shift.x + pin.x + (before ? -0.3 : 0.3);
       return [{ part: use.id, role: "terminal", at, anchor: before ? "end" : "start", height: small, text: terminal }];

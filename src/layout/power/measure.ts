@@ -228,13 +228,21 @@ function dressed(use: MainUse, { machine, symbols, arrangement, scale }: PowerGi
   const device = machine.devices.get(use.device) as Device;
   const symbol = symbolForPower(
     device,
-    { conductors: use.ins.length, flow: arrangement.flow, current: use.current, sixLead: use.second !== undefined },
+    {
+      conductors: hangsBetween(use, device) ? 1 : use.ins.length,
+      flow: arrangement.flow,
+      current: use.current,
+      sixLead: use.second !== undefined,
+    },
     machine.drawing.convention,
     symbols,
   );
   if (!symbol) throw new Error(`There is no symbol for ${device.kind} in a power circuit.`);
   return arrangement.dress(use, scaleSymbol(symbol, scale), scale);
 }
+
+/** Loads of two leads other than motors hang between two conductors, as a single pole on the first of them. */
+const hangsBetween = ({ role, ins }: MainUse, { kind }: Device): boolean => role === "load" && ins.length === 2 && kind !== "motor";
 
 /** Runs in one band of a gap that overlap across lie on levels one behind the other, in the order planned. */
 function allotLevels(plan: Plan, spotAt: (spot: Spot) => Mm): Map<Run, number> {
