@@ -4,7 +4,7 @@ import type { Diagnostic } from "../language/diagnostic.js";
 import type { Device, DeviceUse, DrawingInfo, Machine } from "../machine/model.js";
 import { symbolForDevice } from "../symbols/choose.js";
 import type { SymbolLibrary } from "../symbols/library.js";
-import { layOutLadder } from "./ladder/lay-out-ladder.js";
+import { type LadderLayout, layOutLadder } from "./ladder/lay-out-ladder.js";
 import type { CircuitSheet, Layout, PageArea, Place } from "./placement.js";
 import { layOutPower } from "./power/lay-out-power.js";
 
@@ -25,11 +25,25 @@ export async function layOut(
   const sheets: CircuitSheet[] = [];
   const places = new Map<PartId, Place>();
   const diagnostics: Diagnostic[] = [];
+  // The last ladder on each supply: its rails may go on in a later one.
+  const ladders = new Map<string, LadderLayout>();
   let line = 1;
   for (const circuit of machine.circuits) {
     const numbering = { sheet: sheets.length + 1, line };
     if (circuit.kind === "ladder") {
-      const laid = layOutLadder(circuit, machine, symbolOf, symbols, page, numbering);
+      const before = ladders.get(circuit.supply.name);
+      const laid = layOutLadder(
+        circuit,
+        machine,
+        symbolOf,
+        symbols,
+        page,
+        before?.ends ? { ...numbering, follows: before.ends } : numbering,
+      );
+      if (laid.begins) {
+        before?.finish(laid.begins);
+        ladders.set(circuit.supply.name, laid);
+      }
       line = laid.nextLine;
       sheets.push(...laid.sheets);
       for (const [part, place] of laid.places) places.set(part, place);
@@ -48,5 +62,6 @@ export async function layOut(
       for (const [part, place] of laid.places) places.set(part, place);
     }
   }
+  for (const laid of ladders.values()) laid.finish();
   return { sheets, places, diagnostics };
 }

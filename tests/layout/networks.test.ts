@@ -1,5 +1,14 @@
 import fc from "fast-check";
-import { expect, test } from "vitest";
+import { describe, expect, test } from "vitest";
+import { startOfCycle } from "../../src/behaviour/start-of-cycle.js";
+import { parse } from "../../src/language/parse.js";
+import { layOut } from "../../src/layout/lay-out.js";
+import type { CircuitSheet } from "../../src/layout/placement.js";
+import { buildMachine } from "../../src/machine/build.js";
+import { nodeWorld } from "../../src/node-world.js";
+import { pageArea } from "../../src/sheets/page.js";
+import { openSymbols } from "../../src/symbols/library.js";
+import { crossings, portsOf } from "../support/facts.js";
 import { faults, ladderOf } from "../support/ladder.js";
 
 /*
@@ -135,17 +144,127 @@ function faultsOf(given: { rungs: readonly string[]; paper: string }, convention
 }
 
 type Convention = "north-american" | "international";
-const conventions: Convention[] = ["north-american", "international"];
 
-test.each(conventions)(
+test.each<Convention>(["north-american", "international"])(
   "any network is drawn whole and reads back as it was written, %s",
   (convention) => {
     fc.assert(
       fc.property(drawing, (given) => {
         expect(faultsOf(given, convention)).toEqual([]);
       }),
-      { numRuns: 60 },
+      { numRuns: 12 },
     );
   },
   60_000,
 );
+
+const drawn = (rungs: string, convention: Convention = "north-american") =>
+  ladderOf(
+    `drawing "Network" { paper A3 }
+supply CTRL 24 V DC { rails L+ M }
+${declared}diode D1\ndiode D2\nrelay CR2\nrelay CR3\npilot-light LT1 red
+ladder "Control" supply CTRL {
+${rungs}
+}`,
+    convention,
+  );
+
+const symbolOf = (sheet: CircuitSheet, part: string) => {
+  const found = sheet.symbols.find((symbol) => symbol.part.startsWith(part));
+  if (!found) throw new Error(`${part} is not on sheet ${sheet.number}`);
+  return found;
+};
+const references = (sheets: readonly CircuitSheet[]) =>
+  sheets.flatMap(({ texts }) => texts.flatMap(({ text }) => (typeof text !== "string" && text.to === "point" ? [text.point] : [])));
+
+describe("what current passes through", () => {
+  test("terminals leave contacts under each other and take less room than they do", () => {
+    const laid = drawn("rung: X1:1 PB1 X1:2 X22:1 LS1 -> CR1\nrung: PB1 CR1 -> CR2");
+    expect(faults(laid)).toEqual([]);
+    const [sheet] = laid.sheets as [CircuitSheet];
+    expect(symbolOf(sheet, "PB1:13").at.x).toBe(symbolOf(sheet, "PB1:23").at.x);
+    expect(symbolOf(sheet, "LS1").at.x).toBe(symbolOf(sheet, "CR1:13").at.x);
+    const steps = ["X1:2", "X22:1"].map((part) => symbolOf(sheet, part).at.x);
+    expect((steps[1] as number) - (steps[0] as number)).toBeLessThan(15);
+    // The wire keeps its number through a terminal, so it is written once.
+    const numbers = sheet.texts.filter(({ role, at }) => role === "wire-number" && at.y < symbolOf(sheet, "X1:2").at.y);
+    expect(new Set(numbers.map(({ text }) => text)).size).toBe(numbers.length);
+  });
+
+  test("what is joined behind a terminal is drawn behind it", () => {
+    const laid = drawn("rung: PB1 @a X1:1 @b LS1 -> CR1\nrung: @b CR1 -> CR2");
+    expect(faults(laid)).toEqual([]);
+    const [sheet] = laid.sheets as [CircuitSheet];
+    const begins = Math.min(...portsOf(symbolOf(sheet, "CR1:13")).map(({ at }) => at.x));
+    expect(begins).toBeGreaterThan(symbolOf(sheet, "X1:1").at.x);
+  });
+
+  test.each<Convention>(["north-american", "international"])(
+    "a diode stands beside its coil, its cathode where the text puts it, %s",
+    (convention) => {
+      const laid = drawn("rung: PB1 -> (CR1 | D1:K-A)\nrung: LS1 -> (CR2 | D2:A-K)", convention);
+      expect(faults(laid)).toEqual([]);
+      const [sheet] = laid.sheets as [CircuitSheet];
+      const along = (part: string) => symbolOf(sheet, part).at[convention === "international" ? "y" : "x"];
+      expect(along("D1")).toBeCloseTo(along("CR1:A1"), 3);
+      expect(["D1", "D2"].map((part) => symbolOf(sheet, part).symbol.name)).toEqual([`${convention}/diode-turned`, `${convention}/diode`]);
+    },
+  );
+});
+
+describe("a bridge", () => {
+  const bridged = (bridge: string) => drawn(`rung: PB1 @a LS1 @b PS1 -> CR1\nrung: ${bridge}\nrung: CR1 -> CR2`);
+
+  test.each(["@a /DS1 @b", "@b /DS1 @a", "@a /DS1 PRS1 /OL1 @b", "@b (/DS1 | CR2 CR3) X1:1 @a"])(
+    "between two points of one rung is wired without a crossing: %s",
+    (bridge) => {
+      const laid = bridged(bridge);
+      expect(faults(laid)).toEqual([]);
+      expect(references(laid.sheets)).toEqual([]);
+    },
+  );
+
+  test("read from its end keeps its terminals", () => {
+    const [sheet] = bridged("@b /DS1 @a").sheets as [CircuitSheet];
+    const printed = sheet.texts
+      .filter(({ role, part }) => role === "terminal" && part?.startsWith("DS1"))
+      .sort((one, other) => one.at.x - other.at.x);
+    expect(printed.map(({ text }) => text)).toEqual(["12", "11"]);
+  });
+
+  test.each([
+    ["rung: PB1 @a LS1 -> CR1\nrung: /PB1 @b PS1 -> CR2\nrung: @b CR1 @a"],
+    ["rung: (PB1 @a LS1 | /PB1 @b PS1) -> CR1\nrung: @a CR2 @b\nrung: CR1 -> CR2"],
+  ])("over the rung between its points crosses one wire rather than refer twice", (rungs) => {
+    const laid = drawn(rungs);
+    expect(faults(laid, 1)).toEqual([]);
+    expect(laid.sheets.flatMap(crossings)).toHaveLength(1);
+    expect(references(laid.sheets)).toEqual([]);
+  });
+
+  test("that would cross more refers at both ends", () => {
+    const laid = drawn("rung: PB1 @a LS1 -> CR1\nrung: /PB1 @b PS1 -> CR2\nrung: CR1 CR2 -> CR3\nrung: DS1 CR3 -> LT1\nrung: @a PRS1 @b");
+    expect(faults(laid)).toEqual([]);
+    expect(references(laid.sheets).sort()).toEqual(["a", "a", "b", "b"]);
+  });
+});
+
+test("the rails of a second ladder on the same supply go on from the first, with no second fuse, and its points refer", async () => {
+  const { tree } = parse(
+    `supply CTRL 24 V DC { rails L+ M fuse FU1 4 A }
+supply OTHER 24 V DC { rails L2+ M }
+push-button PB1\nrelay CR1\nrelay CR2\nrelay CR3
+ladder "One" supply CTRL { rung: PB1 @run -> CR1 }
+ladder "Two" supply OTHER { rung: CR1 -> CR2 }
+ladder "Three" supply CTRL { rung: @run CR2 -> CR3 }`,
+    "test.sprung",
+  );
+  const { machine } = buildMachine(tree);
+  const { sheets } = await layOut(machine, startOfCycle(machine), openSymbols(nodeWorld), pageArea);
+  const notes = sheets.map(({ texts }) => texts.filter(({ role }) => role === "note").map(({ text }) => text));
+  expect(notes[0]).toContain("to sheet 3, line 301");
+  expect(notes[2]).toContain("from sheet 1, line 101");
+  expect(notes[1]?.some((note) => String(note).includes("sheet"))).toBe(false);
+  expect(sheets.filter(({ symbols }) => symbols.some(({ part }) => part === "FU1"))).toHaveLength(1);
+  expect(sheets.map((sheet) => references([sheet]))).toEqual([["run"], [], ["run"]]);
+});

@@ -48,7 +48,11 @@ export function ladderOf(text: string, convention?: Machine["drawing"]["conventi
   const start = startOfCycle(machine);
   const symbolOf = (use: DeviceUse) =>
     symbolForDevice(use, machine.devices.get(use.device) as Device, start, machine.drawing.convention, library);
-  const again = () => layOutLadder(circuit, machine, symbolOf, library, page, { sheet: 1, line: 1 });
+  const again = () => {
+    const laid = layOutLadder(circuit, machine, symbolOf, library, page, { sheet: 1, line: 1 });
+    laid.finish();
+    return laid;
+  };
   const laid = again();
   return { machine, circuit, sheets: laid.sheets, places: new Map(laid.places), page, again };
 }

@@ -26,7 +26,7 @@ export interface FittedRungs {
 const smallModule = 0.72;
 
 /** More than anybody draws; each round cuts what was still too large. */
-const rounds = 16;
+const rounds = 40;
 
 /**
  * Places and measures the rungs. Where many are wider than the sheet the symbols take the smaller module; a rung that is

@@ -1,5 +1,5 @@
 import type { NodeId, ParallelPath, PointUse, Rung, RungElement, SeriesPath } from "../../machine/model.js";
-import { contactWidth, type Gap, heightOf, type Item, lastLoad, placeOfLoad, returnWidth, widthOfItem } from "./place-parts.js";
+import { contactWidth, type Gap, heightOf, type Item, lastLoad, placeOfLoad, returnWidth, widthOf, widthOfItem } from "./place-parts.js";
 
 /** What one rung may take on a sheet: columns before its loads, columns behind them, and lines. */
 export interface RungLimits {
@@ -70,9 +70,11 @@ class Cutter {
     const at = lastLoad(whole.path);
     if (at < 0 || returnWidth(whole.path) <= room) return whole;
     const load = whole.path.items[at] as Item;
-    const own = load.kind === "parallel" ? this.narrowBehind(load, whole, room) : [load as RungElement];
     const { items } = whole.path;
     const after = items.slice(at + 1);
+    // Whatever lies behind the bracket needs one column at the least, for its arrow.
+    const left = room - Math.min(widthOf({ ...whole.path, items: after }), 1);
+    const own = load.kind === "parallel" ? this.narrowBehind(load, whole, left) : [load as RungElement];
     const inside = Math.max(0, ...own.map((item) => returnWidth(seriesOf([item as Item]))));
     const kept = this.fitting(after, room - inside);
     const head = [...items.slice(0, at), ...own, ...after.slice(0, kept)];
@@ -148,8 +150,7 @@ class Cutter {
       const own = long > arrowsOfGap && !head.some(isGap) ? [this.elsewhere(whole, head, branch.from, tail[0]?.from ?? branch.to)] : head;
       const [inner, ...after] = tail;
       if (inner?.kind !== "parallel") return { ...branch, items: [...own, ...tail] };
-      const left = Math.max(room - Math.min(long, arrowsOfGap), 1);
-      return { ...branch, items: [...own, ...this.narrow(inner, whole, left), ...after] };
+      return { ...branch, items: [...own, ...this.narrow(inner, whole, room - Math.min(long, arrowsOfGap)), ...after] };
     });
     return this.besides(parallel, narrowed, whole, without(parallel.branches, branches));
   }
@@ -161,9 +162,9 @@ class Cutter {
       const at = lastLoad(branch);
       if (at < 0 || returnWidth(branch) <= room) return branch;
       const load = branch.items[at] as Items[number];
-      const own = load.kind === "parallel" ? this.narrowBehind(load, whole, room) : [load];
       const tail = branch.items.slice(at + 1);
       const long = tail.reduce((sum, item) => sum + widthOfItem(item), 0);
+      const own = load.kind === "parallel" ? this.narrowBehind(load, whole, room - Math.min(long, arrowsOfGap)) : [load];
       const after = long > arrowsOfGap && !tail.some(isGap) ? [this.elsewhere(whole, tail, tail[0]?.from ?? branch.to, branch.to)] : tail;
       return { ...branch, items: [...branch.items.slice(0, at), ...own, ...after] };
     });
@@ -173,9 +174,7 @@ class Cutter {
   /** The branches of a bracket that fit where they are; if none does, the smallest. */
   private keptOf(parallel: ParallelPath, tooWide: (branch: SeriesPath) => boolean, size: (branch: SeriesPath) => number): SeriesPath[] {
     const kept = parallel.branches.filter((branch) => !tooWide(branch));
-    return kept.some(isLoaded) || !parallel.branches.some(isLoaded)
-      ? kept
-      : parallel.branches.filter((branch) => kept.includes(branch) || branch === smallest(parallel.branches.filter(isLoaded), size));
+    return kept.length > 0 ? kept : [smallest(parallel.branches, size)];
   }
 
   /** Takes a stretch to lines of its own and leaves two arrows in its place. */
@@ -256,8 +255,8 @@ function without(branches: readonly SeriesPath[], kept: readonly SeriesPath[]): 
   return branches.filter((branch) => !kept.includes(branch));
 }
 
-function smallest(branches: readonly SeriesPath[], size: (branch: SeriesPath) => number): SeriesPath | undefined {
-  return branches.reduce<SeriesPath | undefined>((least, branch) => (least && size(least) <= size(branch) ? least : branch), undefined);
+function smallest(branches: readonly SeriesPath[], size: (branch: SeriesPath) => number): SeriesPath {
+  return branches.reduce((least, branch) => (size(branch) < size(least) ? branch : least));
 }
 
 /** How many columns an item takes before the load column. */

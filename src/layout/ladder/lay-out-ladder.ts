@@ -22,6 +22,8 @@ export interface Numbering {
   sheet: number;
   /** With line numbers running on, the first one. */
   line: number;
+  /** Where the ladder before it on the same supply ends: its rails go on here. */
+  follows?: RailEnd;
 }
 
 export interface LadderLayout {
@@ -29,6 +31,11 @@ export interface LadderLayout {
   places: [PartId, Place][];
   /** The line number after the last. */
   nextLine: number;
+  /** Where its rails begin and end. */
+  begins?: RailEnd;
+  ends?: RailEnd;
+  /** To be called once it is known where the rails go on behind the last sheet: names them there. */
+  finish(goesTo?: RailEnd): void;
 }
 
 /**
@@ -47,7 +54,7 @@ export function layOutLadder(
 ): LadderLayout {
   const rails = railNodes(circuit, machine);
   const { rungs } = circuit;
-  if (rungs.length === 0) return { sheets: [], places: [], nextLine: numbering.line };
+  if (rungs.length === 0) return { sheets: [], places: [], nextLine: numbering.line, finish: () => {} };
   const prepared = (use: DeviceUse) =>
     nameThirdLead(prepareSymbol(symbolOf(use), use), machine.devices.get(use.device), circuit.supply.rails);
   const { convention } = machine.drawing;
@@ -70,7 +77,7 @@ export function layOutLadder(
   const ladders = breakSheets(
     measured,
     breaks,
-    { depth: plan.next, first: plan.first, span: plan.span },
+    { depth: plan.next, first: numbering.follows ? plan.next : plan.first, span: plan.span },
     arrangement,
     linkedRungs(joined.links),
   );
@@ -79,12 +86,13 @@ export function layOutLadder(
   // 3. Every ladder is set down in millimetres.
   const places: [PartId, Place][] = [];
   const linksOf = shareLinks(joined.links, ladders);
+  let finish: LadderLayout["finish"] = () => {};
   const sheets: CircuitSheet[] = [];
   ladders.forEach((ladder, index) => {
     const slot = slots[index] as Slot;
     if (slot.place === 0) sheets.push(emptySheet("ladder", circuit.id, numbering.sheet + slot.sheet, ladder.title ?? circuit.title));
     const out = sheets.at(-1) as CircuitSheet;
-    const first = index === 0;
+    const first = index === 0 && !numbering.follows;
     const span = Math.max(plan.span, ...ladder.groups.map(({ needs }) => leastSpan(needs, arrangement.columns)));
     const corner = plan.origin(first);
     const room = rooms[slot.place] as Box;
@@ -113,17 +121,20 @@ export function layOutLadder(
       const there = slots[other] as Slot;
       return { line: (ends[other] as LineEnds)[line], ...(there.sheet === slot.sheet ? {} : { sheet: numbering.sheet + there.sheet }) };
     };
-    plan.finish(out, {
-      first,
-      origin,
-      span,
-      rails: reach,
-      ...(first ? {} : { comesFrom: railEnd(index - 1, "last") }),
-      ...(index < ladders.length - 1 ? { goesTo: railEnd(index + 1, "first") } : {}),
-    });
+    const comesFrom = index === 0 ? numbering.follows : railEnd(index - 1, "last");
+    const railed = { first, origin, span, rails: reach, ...(comesFrom ? { comesFrom } : {}) };
+    if (index < ladders.length - 1) plan.finish(out, { ...railed, goesTo: railEnd(index + 1, "first") });
+    else finish = (goesTo) => plan.finish(out, { ...railed, ...(goesTo ? { goesTo } : {}) });
   });
   const lines = ladders.reduce((sum, { rungs }) => sum + rungs.reduce((own, { lines }) => own + lines.length, 0), 0);
-  return { sheets, places, nextLine: machine.drawing.lineNumbers === "running" ? numbering.line + lines : numbering.line };
+  return {
+    sheets,
+    places,
+    nextLine: machine.drawing.lineNumbers === "running" ? numbering.line + lines : numbering.line,
+    begins: { sheet: numbering.sheet, line: (ends[0] as LineEnds).first },
+    ends: { sheet: numbering.sheet + sheets.length - 1, line: (ends.at(-1) as LineEnds).last },
+    finish,
+  };
 }
 
 function railNodes(circuit: LadderCircuit, machine: Machine): [NodeId, NodeId] {
