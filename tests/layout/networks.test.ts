@@ -111,7 +111,7 @@ const rung = fc.oneof(
 
 const drawing = fc.record({
   rungs: fc.array(rung, { minLength: 1, maxLength: 7 }),
-  paper: fc.constantFrom("A4", "A3", "A3", "A2", "ANSI-A"),
+  paper: fc.constantFrom("A3", "A2", "A1", "ANSI-C", "ANSI-E"),
 });
 
 function textOf({ rungs, paper }: { rungs: readonly string[]; paper: string }): string {
@@ -152,7 +152,7 @@ test.each<Convention>(["north-american", "international"])(
       fc.property(drawing, (given) => {
         expect(faultsOf(given, convention)).toEqual([]);
       }),
-      { numRuns: 12 },
+      { numRuns: 20, seed: 2 },
     );
   },
   60_000,

@@ -14,17 +14,29 @@ export interface Ending {
   last?: boolean;
 }
 
+interface Sited {
+  rung: number;
+  site: PointSite;
+}
+
 /** One connected part of a point's wire within a rung; joined by links, several become one. */
 interface Island {
-  sites: { rung: number; site: PointSite }[];
+  sites: Sited[];
   within?: Island;
 }
 
 /**
- * An ending for every part of every point that is drawn in more than one part, and for every rung that starts or ends in the open.
+ * An ending for every part of every point that is drawn in more than one part, for every letter where a rung was cut, and for
+ * every rung that starts or ends in the open.
+ * @param letters points made by cutting rungs
  * @param abroad points that are drawn in other circuits too
  */
-export function findEndings(grids: readonly RungGrid[], links: readonly Link[], abroad: ReadonlySet<string>): Ending[] {
+export function findEndings(
+  grids: readonly RungGrid[],
+  links: readonly Link[],
+  letters: ReadonlySet<string>,
+  abroad: ReadonlySet<string>,
+): Ending[] {
   const byNode = new Map<NodeId, Island[]>();
   const byPart = new Map<string, Island>();
   const partsOfRung = new Map<string, Piece[][]>();
@@ -61,21 +73,27 @@ export function findEndings(grids: readonly RungGrid[], links: readonly Link[], 
     arrives.has(`${rung} ${node} ${boundary}`) || leaves.has(`${rung} ${node} ${boundary}`);
   const endings: Ending[] = [];
   for (const [node, parts] of islands) {
-    for (const { sites } of parts) {
-      const elsewhere = parts.length > 1 || sites.some(({ site }) => abroad.has(site.point));
+    const named = parts.filter(({ sites }) => sites.some(({ site }) => !letters.has(site.point)));
+    for (const part of parts) {
+      const { sites } = part;
+      const elsewhere = named.some((other) => other !== part) || sites.some(({ site }) => abroad.has(site.point));
       // Wire that only goes on down from where a rung begins comes from elsewhere, if it is drawn there at all.
-      const comes = ({ rung, site }: (typeof sites)[number]) =>
-        elsewhere && site.open === "start" && !arrives.has(`${rung} ${node} ${site.boundary}`);
+      const comes = ({ rung, site }: Sited) => elsewhere && site.open === "start" && !arrives.has(`${rung} ${node} ${site.boundary}`);
       const open = sites.filter((place) => place.site.open && (place.site.cut || !isJoined(place.rung, place.site) || comes(place)));
       for (const { rung, site } of open)
         endings.push({ rung, node, point: site.point, line: site.line, kind: site.open as "start" | "end", boundary: site.boundary });
-      if (open.length > 0 || !elsewhere) continue;
+      const hang = ({ rung, site }: Sited) => {
+        // A rail says itself where it goes on.
+        if (site.boundary === 0 || site.boundary === returnRail) return;
+        const line = bottomOfPart(grids[rung] as RungGrid, node, site);
+        endings.push({ rung, node, point: site.point, line, kind: "drop", boundary: site.boundary });
+      };
+      const ended = new Set(open.map(({ site }) => site.point));
+      for (const place of sites) if (letters.has(place.site.point) && !place.site.open && !ended.has(place.site.point)) hang(place);
+      const own = sites.filter(({ site }) => !letters.has(site.point));
       // The lowest place, because no upright goes on down from there.
-      const lowest = sites.reduce((low, next) => (next.rung > low.rung ? next : low));
-      // A rail says itself where it goes on.
-      if (lowest.site.boundary === 0 || lowest.site.boundary === returnRail) continue;
-      const line = bottomOfPart(grids[lowest.rung] as RungGrid, node, lowest.site);
-      endings.push({ rung: lowest.rung, node, point: lowest.site.point, line, kind: "drop", boundary: lowest.site.boundary });
+      const lowest = own.reduce<Sited | undefined>((low, next) => (low && next.rung <= low.rung ? low : next), undefined);
+      if (lowest && elsewhere && !own.some(({ site }) => ended.has(site.point))) hang(lowest);
     }
   }
   return endings.sort((a, b) => a.rung - b.rung || a.line - b.line || a.boundary - b.boundary);

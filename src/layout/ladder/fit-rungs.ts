@@ -6,7 +6,7 @@ import { foldRungs, noLimits, type RungLimits } from "./fold-rungs.js";
 import { boundaryOf, loadColumn, type RungGrid, stride } from "./grid.js";
 import { type Joined, joinPoints } from "./join-points.js";
 import { type MeasuredRung, measureRungs } from "./measure-rungs.js";
-import { returnWidth } from "./place-parts.js";
+import { bearsLoad, returnWidth } from "./place-parts.js";
 import { alongRails } from "./reverse-rung.js";
 import { leastSpan, needsOfLoads, noNeeds, withNeeds } from "./set-columns.js";
 import { joinWiresAgain, splitWires } from "./split-wires.js";
@@ -63,7 +63,10 @@ export function fitRungs(
       barriers: new Set(breaks.map(({ before }) => before)),
       letters,
       abroad,
-      columnsOf: (index: number) => limitsOf(origin[index] as number).columns,
+      columnsOf: (index: number) => {
+        const { columns, plain } = limitsOf(origin[index] as number);
+        return bearsLoad((folded[index] as Rung).path) ? columns : plain;
+      },
     };
     const joined = joinWiresAgain(joinPoints(folded, points), split.nodeOf);
     const measured = measureRungs(joined, new Set(rails), arrangement, (index) => tight.has(origin[index] as number));
@@ -126,13 +129,14 @@ export function fitRungs(
 function narrower({ grid }: MeasuredRung, known: RungLimits, lowered: RungLimits, behind: Mm, along: Mm, span: Mm): RungLimits {
   const returns = returnWidth(grid.rung.path);
   const most = span * behindShare;
-  if (returns > 0 && known.returns > 1 && (behind > most || known.columns === 1)) {
+  if (returns > 0 && known.returns > 0 && (behind > most || known.columns === 1)) {
     const share = Math.floor((returns * most) / behind);
-    return { ...lowered, returns: Math.max(1, Math.min(lowered.returns, known.returns - 1, Math.max(returns - 1, 1), share)) };
+    return { ...lowered, returns: Math.max(0, Math.min(lowered.returns, Math.ceil(known.returns) - 1, Math.ceil(returns) - 1, share)) };
   }
   const columns = columnsOf(grid);
   const share = Math.floor((columns * (span - behind)) / Math.max(along - behind, 1));
-  return { ...lowered, columns: Math.max(1, Math.min(lowered.columns, known.columns - 1, Math.max(columns - 1, 1), share)) };
+  const limit = bearsLoad(grid.rung.path) ? "columns" : "plain";
+  return { ...lowered, [limit]: Math.max(1, Math.min(lowered[limit], known[limit] - 1, Math.max(columns - 1, 1), share)) };
 }
 
 /** The share of a sheet's width that loads and what lies behind them may take in a rung that is too wide. */

@@ -1,16 +1,19 @@
-import type { NodeId, ParallelPath, PointUse, Rung, RungElement, SeriesPath } from "../../machine/model.js";
+import type { NodeId, ParallelPath, PointUse, Rung, RungElement, RungEnd, SeriesPath } from "../../machine/model.js";
+import { elementsOf } from "../../machine/walk.js";
 import { contactWidth, type Gap, heightOf, type Item, lastLoad, placeOfLoad, returnWidth, widthOf, widthOfItem } from "./place-parts.js";
 
-/** What one rung may take on a sheet: columns before its loads, columns behind them, and lines. */
+/** What one rung may take on a sheet: columns before its loads, columns behind them, columns of a piece without loads, and lines. */
 export interface RungLimits {
   columns: number;
   returns: number;
+  plain: number;
   lines: number;
 }
 
 export const noLimits: RungLimits = {
   columns: Number.POSITIVE_INFINITY,
   returns: Number.POSITIVE_INFINITY,
+  plain: Number.POSITIVE_INFINITY,
   lines: Number.POSITIVE_INFINITY,
 };
 
@@ -53,6 +56,10 @@ class Cutter {
   /** What goes on on lines of its own behind the piece that was cut last. */
   readonly more: Rung[] = [];
   private pieces = 1;
+  /** The point by which each wire of the piece is known. */
+  private names = new Map<NodeId, string>();
+  /** The wires whose point stays in the piece whatever else leaves it. */
+  private placed = new Set<NodeId>();
 
   constructor(
     private readonly rung: Rung,
@@ -61,6 +68,11 @@ class Cutter {
   ) {}
 
   cut(piece: Rung): Rung {
+    this.names = new Map();
+    this.placed = new Set(piece.path.items.flatMap((item) => (item.kind === "point" ? [item.from] : [])));
+    for (const element of elementsOf(piece.path))
+      if (element.kind === "point" && !this.names.has(element.from)) this.names.set(element.from, element.point);
+    for (const end of [piece.start, piece.end]) if (end.kind === "point") this.names.set(end.node, end.point);
     return this.cutTall(this.cutWide(this.cutBehind(piece)));
   }
 
@@ -73,7 +85,7 @@ class Cutter {
     const { items } = whole.path;
     const after = items.slice(at + 1);
     // Whatever lies behind the bracket needs one column at the least, for its arrow.
-    const left = room - Math.min(widthOf({ ...whole.path, items: after }), 1);
+    const left = Math.max(room - Math.min(widthOf({ ...whole.path, items: after }), 1), 0);
     const own = load.kind === "parallel" ? this.narrowBehind(load, whole, left) : [load as RungElement];
     const inside = Math.max(0, ...own.map((item) => returnWidth(seriesOf([item as Item]))));
     const kept = this.fitting(after, room - inside);
@@ -98,25 +110,31 @@ class Cutter {
   private cutWide(given: Rung): Rung {
     let whole = given;
     // What begins with an arrow gives a column to it; an arrow at the end stands where the load would.
-    const room = Math.max(this.limits.columns - (whole.start.kind === "rail" ? 0 : 1), 1);
-    if (contactWidth(whole.path) <= room) return whole;
+    const arrow = whole.start.kind === "rail" ? 0 : 1;
+    const loadRoom = Math.max(this.limits.columns - arrow, 1);
+    const plainRoom = Math.max(this.limits.plain - arrow, 1);
+    const fits = ({ path }: Rung) => contactWidth(path) <= (isLoaded(path) ? loadRoom : plainRoom);
+    if (fits(whole)) return whole;
     let kept = 0;
     for (let width = 0; kept < whole.path.items.length; kept++) {
       let item = whole.path.items[kept] as Item;
-      if (isLoad(item) && width >= 1) break;
-      if (item.kind === "parallel" && headWidth(item) > room && (width < 1 || room - width >= arrowsOfGap)) {
+      // Loads before the last stand among the contacts.
+      const loaded = kept === lastLoad(whole.path);
+      if (width >= 1 && isLoaded(seriesOf([item]))) break;
+      const room = loaded ? loadRoom : plainRoom;
+      if (item.kind === "parallel" && headWidth(item, loaded) > room && (width < 1 || room - width >= arrowsOfGap)) {
         // It fits on no line as it is: what stands in its long branches goes to lines of their own.
-        const narrowed = this.narrow(item, whole, Math.max(room - width, 1));
+        const narrowed = this.narrow(item, loaded, whole, Math.max(room - width, 1));
         whole = withItems(whole, [...whole.path.items.slice(0, kept), ...narrowed, ...whole.path.items.slice(kept + 1)]);
         kept += narrowed.findIndex(({ kind }) => kind === "parallel");
         item = whole.path.items[kept] as Item;
       }
-      if (isLoad(item)) break;
+      if (loaded) break;
       // One part at least, or a bracket narrowed to two arrows, so that every cut gets on.
-      if (width > 0 && width + headWidth(item) > room) break;
-      width += headWidth(item);
+      if (width > 0 && width + widthOfItem(item) > plainRoom) break;
+      width += widthOfItem(item);
     }
-    if (kept === 0 || contactWidth(whole.path) <= room) return whole;
+    if (kept === 0 || fits(whole)) return whole;
     const { items } = whole.path;
     while (kept < items.length && items[kept]?.kind === "point") kept++;
     if (items.slice(0, kept).every(({ kind }) => kind === "point")) return whole;
@@ -127,30 +145,30 @@ class Cutter {
   private goOn(whole: Rung, head: Items, rest: Items): Rung {
     const node = rest[0]?.from;
     if (node === undefined) return withItems(whole, head);
-    const letter = this.letters();
-    this.more.unshift({ ...this.continued(whole, letter, node), end: whole.end, path: seriesOf(rest, node, whole.path.to) });
-    return {
-      ...whole,
-      end: { kind: "point", point: letter, node, at: whole.at },
-      path: seriesOf(head, whole.path.from, node),
-    };
+    const cut: RungEnd = { kind: "point", point: this.nameOf(node), node, at: whole.at };
+    this.more.unshift({ ...this.continued(whole), start: cut, end: whole.end, path: seriesOf(rest, node, whole.path.to) });
+    return { ...whole, end: cut, path: seriesOf(head, whole.path.from, node) };
   }
 
-  /** Makes a bracket fit before the loads: branches with loads go to lines of their own, of others what stands in them. */
-  private narrow(parallel: ParallelPath, whole: Rung, room: number): Items {
-    const tooWide = (branch: SeriesPath) => isLoaded(branch) && contactWidth(branch, true) > room;
-    const branches = this.keptOf(parallel, tooWide, (branch) => contactWidth(branch, true));
+  /**
+   * Makes a bracket fit before the loads: branches of a bracket of loads go to lines of their own, of others what stands in them.
+   * @param loaded the loads of its branches stand in the load column
+   */
+  private narrow(parallel: ParallelPath, loaded: boolean, whole: Rung, room: number): Items {
+    const size = (branch: SeriesPath) => (loaded ? contactWidth(branch, true) : widthOf(branch));
+    const branches = this.keptOf(parallel, (branch) => loaded && size(branch) > room, size);
     const narrowed = branches.map((branch) => {
-      if (contactWidth(branch, isLoad(parallel)) <= room) return branch;
-      const at = placeOfLoad(branch, isLoad(parallel));
+      if (size(branch) <= room) return branch;
+      const at = loaded ? placeOfLoad(branch, true) : -1;
       const head = at < 0 ? branch.items : branch.items.slice(0, at);
       const tail = at < 0 ? [] : branch.items.slice(at);
       const long = head.reduce((sum, item) => sum + widthOfItem(item), 0);
       // Two arrows are no shorter than two contacts.
-      const own = long > arrowsOfGap && !head.some(isGap) ? [this.elsewhere(whole, head, branch.from, tail[0]?.from ?? branch.to)] : head;
+      const cut = long > arrowsOfGap && !head.some(isGap);
+      const own = cut ? [this.elsewhere(whole, head, branch.from, tail[0]?.from ?? branch.to)] : head;
       const [inner, ...after] = tail;
       if (inner?.kind !== "parallel") return { ...branch, items: [...own, ...tail] };
-      return { ...branch, items: [...own, ...this.narrow(inner, whole, room - Math.min(long, arrowsOfGap)), ...after] };
+      return { ...branch, items: [...own, ...this.narrow(inner, true, whole, room - Math.min(long, arrowsOfGap)), ...after] };
     });
     return this.besides(parallel, narrowed, whole, without(parallel.branches, branches));
   }
@@ -164,7 +182,7 @@ class Cutter {
       const load = branch.items[at] as Items[number];
       const tail = branch.items.slice(at + 1);
       const long = tail.reduce((sum, item) => sum + widthOfItem(item), 0);
-      const own = load.kind === "parallel" ? this.narrowBehind(load, whole, room - Math.min(long, arrowsOfGap)) : [load];
+      const own = load.kind === "parallel" ? this.narrowBehind(load, whole, Math.max(room - Math.min(long, arrowsOfGap), 0)) : [load];
       const after = long > arrowsOfGap && !tail.some(isGap) ? [this.elsewhere(whole, tail, tail[0]?.from ?? branch.to, branch.to)] : tail;
       return { ...branch, items: [...branch.items.slice(0, at), ...own, ...after] };
     });
@@ -181,7 +199,8 @@ class Cutter {
   private elsewhere(whole: Rung, items: Items, from: NodeId, to: NodeId): RungElement {
     const [out, back] = [this.letters(), this.letters()];
     this.more.push({
-      ...this.continued(whole, out, from),
+      ...this.continued(whole),
+      start: { kind: "point", point: out, node: from, at: whole.at },
       end: { kind: "point", point: back, node: to, at: whole.at },
       path: seriesOf(items, from, to),
     });
@@ -216,27 +235,34 @@ class Cutter {
     const [one] = rest;
     if (!one) return [item];
     const { from, to } = parallel;
-    const fromRail = whole.start.kind === "rail" && whole.start.node === from;
-    const toRail = whole.end.kind === "rail" && whole.end.node === to;
-    const [out, back] = [fromRail ? "" : this.letters(), toRail ? "" : this.letters()];
-    this.more.push({
-      ...this.continued(whole, out, from),
-      ...(fromRail ? { start: whole.start } : {}),
-      end: toRail ? whole.end : { kind: "point", point: back, node: to, at: whole.at },
-      path: rest.length === 1 ? one : seriesOf([{ ...parallel, branches: [...rest] }], from, to),
-    });
-    const point = (name: string, node: NodeId): PointUse[] =>
-      name === "" ? [] : [{ kind: "point", id: `${whole.id}/${name}`, point: name, from: node, to: node, rung: whole.id, at: whole.at }];
-    return [...point(out, from), item, ...point(back, to)];
+    const endAt = (node: NodeId, end: RungEnd, made: PointUse[]): RungEnd => {
+      if (end.node === node) return end;
+      if (!this.placed.has(node)) {
+        this.placed.add(node);
+        const point = this.nameOf(node);
+        made.push({ kind: "point", id: `${whole.id}/${point}`, point, from: node, to: node, rung: whole.id, at: whole.at });
+      }
+      return { kind: "point", point: this.nameOf(node), node, at: whole.at };
+    };
+    const before: PointUse[] = [];
+    const behind: PointUse[] = [];
+    const start = endAt(from, whole.start, before);
+    const end = endAt(to, whole.end, behind);
+    const path = rest.length === 1 ? one : seriesOf([{ ...parallel, branches: [...rest] }], from, to);
+    this.more.push({ ...this.continued(whole), start, end, path });
+    return [...before, item, ...behind];
   }
 
-  private continued(whole: Rung, letter: string, node: NodeId): Omit<Rung, "end" | "path"> {
+  /** The point by which a wire of the piece is known: its own, or a letter. */
+  private nameOf(node: NodeId): string {
+    const name = this.names.get(node) ?? this.letters();
+    this.names.set(node, name);
+    return name;
+  }
+
+  private continued(whole: Rung): Pick<Rung, "id" | "at"> {
     this.pieces++;
-    return {
-      id: `${this.rung.id}/part${this.pieces}`,
-      start: { kind: "point", point: letter, node, at: whole.at },
-      at: whole.at,
-    };
+    return { id: `${this.rung.id}/part${this.pieces}`, at: whole.at };
   }
 }
 
@@ -260,13 +286,12 @@ function smallest(branches: readonly SeriesPath[], size: (branch: SeriesPath) =>
 }
 
 /** How many columns an item takes before the load column. */
-function headWidth(item: Item): number {
-  return isLoad(item) ? contactWidth(seriesOf([item])) : widthOfItem(item);
+function headWidth(item: Item, loaded: boolean): number {
+  return loaded ? contactWidth(seriesOf([item])) : widthOfItem(item);
 }
 
 const isGap = (item: Item) => item.kind === "gap";
 const isLoaded = (path: SeriesPath) => lastLoad(path) >= 0;
-const isLoad = (item: Item) => lastLoad(seriesOf([item])) >= 0;
 
 /** A, B … Z, A2, B2 …, without names that are in use. */
 function lettersExcept(taken: ReadonlySet<string>): () => string {

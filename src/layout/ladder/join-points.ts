@@ -86,7 +86,7 @@ export function joinPoints(rungs: readonly Rung[], shared: SharedPoints): Joined
     }
     open = next;
   });
-  const endings = findEndings(grids, links, shared.abroad).map((ending): Ending => {
+  const endings = findEndings(grids, links, letters, shared.abroad).map((ending): Ending => {
     const last = ending.kind === "end" && ending.boundary === grids[ending.rung]?.end && lastOnLine.has(ending.rung);
     return last ? { ...ending, last } : ending;
   });

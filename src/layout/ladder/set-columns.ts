@@ -22,6 +22,8 @@ export interface ColumnNeeds {
   spans: Map<number, Mm>;
   /** Texts behind the last of a line: from their boundary, as far as the return rail at most. */
   ends: Map<number, Mm>;
+  /** Texts that hang at a boundary: how far they reach to either side. */
+  drops: Map<number, Mm>;
   contacts: number;
   returns: number;
 }
@@ -34,6 +36,7 @@ export function noNeeds(): ColumnNeeds {
     behind: new Map(),
     spans: new Map(),
     ends: new Map(),
+    drops: new Map(),
     contacts: 0,
     returns: 0,
   };
@@ -49,6 +52,7 @@ export function needsOfLoads(needs: ColumnNeeds): ColumnNeeds {
     behind: shared(needs.behind),
     spans: shared(needs.spans),
     ends: new Map(),
+    drops: shared(needs.drops),
     contacts: 0,
     returns: needs.returns,
   };
@@ -68,6 +72,7 @@ export function withNeeds(
     behind: new Map(others.behind),
     spans: new Map(others.spans),
     ends: new Map(others.ends),
+    drops: new Map(others.drops),
   };
   const widen = (map: Map<number, Mm>, key: number, by: Mm) => map.set(key, Math.max(map.get(key) ?? 0, by));
   const reach = (boundary: number) => {
@@ -96,8 +101,10 @@ export function withNeeds(
     const text = arrangement.ending(kind, point);
     const along = lead + endingSize.head + endingSize.gap + text.along + 1.5;
     if (kind === "start") widen(needs.spans, boundary - 1, along);
-    else if (kind === "drop") widen(needs.ends, boundary, text.along + beside);
-    else if (kind === "end" && last) widen(needs.ends, boundary, along);
+    else if (kind === "drop") {
+      widen(needs.ends, boundary, text.along + beside);
+      widen(needs.drops, boundary, text.along + beside);
+    } else if (kind === "end" && last) widen(needs.ends, boundary, along);
     else if (kind === "end") {
       widen(needs.spans, afterWide(boundary) - 1, along);
       reach(afterWide(boundary));
@@ -110,7 +117,7 @@ export function withNeeds(
 const beside: Mm = 1.2;
 
 /** The least widths of columns that meet the needs. */
-function leastColumns({ bodies, labels, before, behind, spans, contacts, returns }: ColumnNeeds, pitch: ColumnPitch) {
+function leastColumns({ bodies, labels, before, behind, spans, drops, contacts, returns }: ColumnNeeds, pitch: ColumnPitch) {
   // Narrow columns in which nothing stands have no width: the boundaries on both sides of them are one place.
   const isEmpty = (column: number) => !isWideColumn(column) && !bodies.has(column) && !spans.has(column);
   const first = (boundary: number) => {
@@ -131,8 +138,10 @@ function leastColumns({ bodies, labels, before, behind, spans, contacts, returns
     const overhang = Math.min(roomBehind(column), roomBefore(column + 1));
     return Math.max(body, (labels.get(column) ?? 0) + beside - overhang);
   };
+  // What hangs at a boundary keeps clear of uprights on the next.
+  const clear = (column: number) => Math.max(drops.get(column) ?? 0, drops.get(column + 1) ?? 0);
   const advance = (column: number) =>
-    isEmpty(column) ? 0 : Math.max(roomBehind(column) + 2 * half(column) + roomBefore(column + 1), spans.get(column) ?? 0);
+    isEmpty(column) ? 0 : Math.max(roomBehind(column) + 2 * half(column) + roomBefore(column + 1), spans.get(column) ?? 0, clear(column));
   return {
     roomBefore,
     roomBehind,
