@@ -1,3 +1,4 @@
+import type { Point } from "../../src/drawing/geometry.js";
 import type { CircuitSheet, PlacedSymbol } from "../../src/layout/placement.js";
 import { netlistOf, portsOf } from "./facts.js";
 
@@ -17,9 +18,10 @@ export interface DrawnNetwork {
 
 /**
  * Reads a ladder back from its sheets: what wires, dots and pins join by geometry, and over sheets what carries the same name: the
- * rails, and the points that references name. The live rail is the left one, or the upper one.
+ * rails, by the names at their heads, and the points that references name.
+ * @param rails the names of the live and of the return rail
  */
-export function drawnNetwork(sheets: readonly CircuitSheet[]): DrawnNetwork {
+export function drawnNetwork(sheets: readonly CircuitSheet[], rails: readonly [string, string]): DrawnNetwork {
   const parents: number[] = [];
   const find = (node: number): number => {
     let root = node;
@@ -37,22 +39,25 @@ export function drawnNetwork(sheets: readonly CircuitSheet[]): DrawnNetwork {
 
   for (const sheet of sheets) {
     const groups = netlistOf(sheet).map((group) => ({ ...group, number: add() }));
-    const rails = sheet.wires.filter(({ role }) => role === "rail");
-    const places = rails.map(({ points: [first] }) => (first?.x ?? 0) + (first?.y ?? 0));
+    const heads = sheet.texts.filter(({ role }) => role === "rail");
     for (const group of groups)
-      for (const wire of group.wires)
-        if (wire.role === "rail") {
-          const place = (wire.points[0]?.x ?? 0) + (wire.points[0]?.y ?? 0);
-          join(group.number, place === Math.min(...places) ? live : back);
-        }
+      for (const { points: corners } of group.wires.filter(({ role }) => role === "rail")) {
+        const away = ({ at }: (typeof heads)[number]) => Math.min(...corners.map((corner) => Math.hypot(corner.x - at.x, corner.y - at.y)));
+        const head = heads.toSorted((one, other) => away(one) - away(other))[0]?.text;
+        if (head !== rails[0] && head !== rails[1]) throw new Error(`a rail is called ${head}`);
+        join(group.number, head === rails[0] ? live : back);
+      }
     for (const { path, part } of sheet.strokes.filter(({ role }) => role === "continuation")) {
       const label = sheet.texts.find((text) => text.role === "reference" && text.part === part);
       if (!label || typeof label.text === "string" || label.text.to !== "point") throw new Error(`${part} names no point`);
       const { point } = label.text;
-      const there = groups.find(({ wires }) =>
-        wires.some(({ points: corners }) =>
-          corners.some((corner) => path.some((end) => Math.hypot(end.x - corner.x, end.y - corner.y) < 0.02)),
-        ),
+      const touches = (place: Point) => path.some((end) => Math.hypot(end.x - place.x, end.y - place.y) < 0.02);
+      // An arrow ends a wire, or stands right at a pin.
+      const pins = sheet.symbols.flatMap((placed) =>
+        portsOf(placed).flatMap(({ name, at }) => (touches(at) ? [`${placed.part}.${name}`] : [])),
+      );
+      const there = groups.find(
+        ({ wires, ports }) => wires.some(({ points: corners }) => corners.some(touches)) || pins.some((pin) => ports.includes(pin)),
       );
       if (!there) throw new Error(`${part} meets no wire`);
       const known = points.get(point);
