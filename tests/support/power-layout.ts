@@ -52,6 +52,7 @@ export function powerFaults({ laid: { sheets, places, diagnostics }, circuit, pa
         ...slantedWires(sheet),
         ...outside(sheet, page.area),
         ...wiresOnWires(sheet),
+        ...bareMeetings(sheet),
       ].map((fault) => `sheet ${sheet.number}: ${fault}`),
     ),
     ...usesIn(circuit).flatMap(({ id }) =>
@@ -76,6 +77,25 @@ function wiresOnWires(sheet: CircuitSheet): string[] {
     }
   }
   return [...new Set(found)];
+}
+
+/** Wire that ends in the middle of a busbar without a dot. */
+function bareMeetings(sheet: CircuitSheet): string[] {
+  const bars = sheet.wires.filter(({ role }) => role === "rail");
+  const same = (a: { x: number; y: number }, b: { x: number; y: number }) => Math.hypot(a.x - b.x, a.y - b.y) < 0.02;
+  return sheet.wires.flatMap(({ part, role, node, points }) =>
+    [points[0], points.at(-1)].flatMap((end) => {
+      if (role === "rail" || !end) return [];
+      const on = bars.some(({ node: other, points: [a, b] }) => {
+        if (other !== node || !a || !b || same(a, end) || same(b, end)) return false;
+        const level = Math.abs(a.y - b.y) < 0.02;
+        return level
+          ? Math.abs(end.y - a.y) < 0.02 && end.x > a.x && end.x < b.x
+          : Math.abs(end.x - a.x) < 0.02 && end.y > a.y && end.y < b.y;
+      });
+      return on && !sheet.dots.some(({ at }) => same(at, end)) ? [`${part} meets a busbar without a dot`] : [];
+    }),
+  );
 }
 
 /** The pins of a use as they are drawn, with the node each belongs to. What hangs between two conductors has them at its two ends. */

@@ -258,6 +258,8 @@ class PowerDrawer {
     }
     feed.bus.forEach(({ phase }, index) => {
       const one = open.get(phase);
+      // Where a busbar begins before what comes in, they meet in a dot.
+      if (one && measured.busFrom(index) < one.across - 0.01) this.dot(one.node, measured.busAt(index), one.across);
       if (one) this.piece(one.node, { along: one.along, across: one.across }, { along: measured.busAt(index), across: one.across });
     });
     this.place(
