@@ -12,7 +12,7 @@ export function wrapName(name: string, height: Mm, width: Mm, most: number, bold
   const wide = (text: string) => measureText(text.trimEnd(), height, bold) > width + tolerance;
   const lines: string[] = [];
   let line = "";
-  for (let piece of drawn.match(/(?:^-)?[^\s\-_/]*(?:[\s\-_/]+|$)/g) ?? []) {
+  for (let piece of piecesOf(drawn, (text) => !wide(text))) {
     if (!wide(line + piece)) {
       line += piece;
       continue;
@@ -33,6 +33,18 @@ export function wrapName(name: string, height: Mm, width: Mm, most: number, bold
   if (line !== "") lines.push(line);
   const kept = lines.length <= most ? lines : [...lines.slice(0, most - 1), fitText(lines.slice(most - 1).join(""), height, width, bold)];
   return kept.map((text) => text.trim()).filter((text) => text !== "");
+}
+
+/** What a name may be broken into; a number keeps its unit beside it where both together have room. */
+function piecesOf(name: string, fits: (text: string) => boolean): string[] {
+  const pieces: string[] = [];
+  for (const piece of name.match(/(?:^-)?[^\s\-_/]*(?:[\s\-_/]+|$)/g) ?? []) {
+    const before = pieces.at(-1);
+    if (before !== undefined && /\d\s$/.test(before) && /^[A-Za-z°µΩ%][\w²³]{0,3}([\s/]|$)/.test(piece) && fits(before + piece))
+      pieces[pieces.length - 1] = before + piece;
+    else pieces.push(piece);
+  }
+  return pieces;
 }
 
 /** A name in at most `most` lines: at the first height, or at the next where it would be shortened at that. */

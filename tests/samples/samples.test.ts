@@ -6,8 +6,8 @@ import { textBox } from "../../src/drawing/extent.js";
 import type { Box } from "../../src/drawing/geometry.js";
 import { layOut } from "../../src/layout/lay-out.js";
 import type { CircuitSheet } from "../../src/layout/placement.js";
-import type { Machine } from "../../src/machine/model.js";
-import { printedName } from "../../src/machine/walk.js";
+import type { DeviceUse, Machine } from "../../src/machine/model.js";
+import { designationOf, printedName } from "../../src/machine/walk.js";
 import { nodeWorld } from "../../src/node-world.js";
 import { writePdf } from "../../src/output/pdf.js";
 import { writeSvg } from "../../src/output/svg.js";
@@ -60,20 +60,24 @@ describe.each(drawn)("$path, $convention", async ({ path, convention }) => {
   });
 
   test("every device stands in the cross-reference or on a fluid sheet, and every coil with all its contacts", () => {
-    for (const device of machine.devices.values()) {
-      const row = rows.find(({ coil }) => coil === device.name);
-      if (device.loads.length > 0) expect(row?.contacts.length, device.name).toBe(device.contacts.length + device.mains.length);
+    for (const { name, loads, contacts, mains } of machine.devices.values()) {
+      for (const load of loads) {
+        const row = rows.find(({ coil }) => coil === coilName(load));
+        expect(row?.contacts.length, name).toBe(contacts.length + mains.length);
+      }
     }
   });
 
-  test("the cross-reference lists each device once", () => {
+  test("the cross-reference lists each device, each of several coils and each point of a card once", () => {
     const circuits = new Set(layout.sheets.map(({ number }) => number));
-    const names = new Set([...machine.devices.keys()].map(printed));
+    const used = [
+      ...new Set([...machine.devices.values()].flatMap(({ loads, contacts }) => (loads.length > 0 ? loads : contacts).map(coilName))),
+    ];
+    const names = new Set(used.map(printed));
     const heads = set.sheets
       .filter(({ number }) => !circuits.has(number))
       .flatMap(({ marks }) => marks.flatMap((mark) => (mark.kind === "text" && mark.bold ? [mark.text] : [])))
       .filter((text) => names.has(text));
-    const used = [...machine.devices.values()].filter(({ contacts, loads }) => contacts.length + loads.length > 0).map(({ name }) => name);
     expect(heads.sort()).toEqual(used.map(printed).sort());
   });
 
@@ -104,7 +108,7 @@ describe.each(drawn)("$path, $convention", async ({ path, convention }) => {
     for (const sheet of layout.sheets.filter(({ kind }) => kind === "ladder")) {
       const columns = sheet.symbols
         .filter(({ part }) => loads.has(part))
-        .map((placed) => middle(facts.symbolBox(placed), convention).toFixed(2));
+        .map((placed) => middle(facts.portsOf(placed), convention).toFixed(2));
       expect(new Set(columns).size, sheet.title).toBeLessThanOrEqual(1);
     }
   });
@@ -164,7 +168,7 @@ describe.each(drawn)("$path, $convention", async ({ path, convention }) => {
 
   test.skipIf(!have("pdftotext"))("every designation can be searched for in the PDF", () => {
     const words = new Set(pdfToText(pdf).split(/[\s,()]+/));
-    const names = [...machine.devices.values()].filter(({ contacts, loads }) => contacts.length + loads.length > 0).map(({ name }) => name);
+    const names = [...new Set(usesOf(machine).map(designationOf))];
     const components = [...machine.components.keys()].map((name) => (machine.devices.has(name) ? printed(name) : name));
     expect([...names.map(printed), ...components].filter((name) => !words.has(name))).toEqual([]);
   });
@@ -201,8 +205,13 @@ function outlineOfSheets(sheets: readonly CircuitSheet[], { layout, set }: Requi
   return [...circuits, ...others.map(({ number, title }) => `sheet ${number}: ${title}`)].join("\n");
 }
 
-function usesOf({ devices }: Machine) {
-  return [...devices.values()].flatMap(({ contacts, loads }) => [...contacts, ...loads]);
+function usesOf({ devices }: Machine): DeviceUse[] {
+  return [...devices.values()].flatMap(({ contacts, loads, throughs }) => [...contacts, ...loads, ...throughs]);
+}
+
+/** What a row of the cross-reference is headed with. */
+function coilName(use: DeviceUse): string {
+  return use.kind === "load" && use.coil !== undefined ? `${use.device}.${use.coil}` : designationOf(use);
 }
 
 function componentsOf({ circuits }: Machine) {
@@ -228,9 +237,10 @@ function nodesByPin(machine: Machine): Map<string, number> {
   return nodes;
 }
 
-/** Across the rails: along x in a ladder of level rungs, along y in one of upright paths. */
-function middle({ x, y, width, height }: Box, convention: (typeof conventions)[number]): number {
-  return convention === "international" ? y + height / 2 : x + width / 2;
+/** Along the current, the middle between the pins. */
+function middle(ports: ReturnType<typeof facts.portsOf>, convention: (typeof conventions)[number]): number {
+  const along = ports.map(({ at }) => (convention === "international" ? at.y : at.x));
+  return (Math.min(...along) + Math.max(...along)) / 2;
 }
 
 function meet(a: Box, b: Box): boolean {

@@ -27,14 +27,43 @@ export interface SheetRoom {
 }
 
 /**
+ * Shares the rungs out over sheets, as `fillSheets` does; where the last sheet before the end or before a break of the
+ * author's would be nearly empty, it and the sheet before it share their rungs evenly.
+ */
+export function breakSheets(
+  rungs: readonly MeasuredRung[],
+  breaks: readonly { before: number; title?: string }[],
+  room: SheetRoom,
+  arrangement: Arrangement,
+  linked: (rung: number) => boolean,
+): RungSheet[] {
+  const filled = fillSheets(rungs, breaks, room, arrangement, linked);
+  const evened = filled.flatMap((last, index): { before: number; shared: true }[] => {
+    const full = filled[index - 1];
+    const ends = index === filled.length - 1 || filled[index + 1]?.asked;
+    if (!full || !ends || last.asked || last.depth >= room.depth * nearlyEmpty) return [];
+    const half = (full.depth + last.depth) / 2;
+    const first = full.rungs.findIndex(({ lines }) => (lines.at(-1) as Mm) > half);
+    return first > 0 ? [{ before: full.first + first, shared: true }] : [];
+  });
+  if (evened.length === 0) return filled;
+  const shared = fillSheets(rungs, [...breaks, ...evened], room, arrangement, linked);
+  // Room on the first sheet is less than on others: what was shared out must not take more sheets for that.
+  return shared.length > filled.length ? filled : shared;
+}
+
+/** A sheet of which less than this share is used looks forgotten. */
+const nearlyEmpty = 0.25;
+
+/**
  * Shares the rungs out over sheets: each rung whole on one sheet, a new sheet where the author asks and where the next rung
  * has no room left. Rungs keep to the same columns as long as these go into the sheet's width; where they do not, the rungs from
  * there on have columns of their own. Distances between lines grow with what stands on them.
  * @param linked whether wire joins a rung to one before it, so that both must keep to the same columns
  */
-export function breakSheets(
+function fillSheets(
   rungs: readonly MeasuredRung[],
-  breaks: readonly { before: number; title?: string }[],
+  breaks: readonly { before: number; title?: string; shared?: true }[],
   room: SheetRoom,
   arrangement: Arrangement,
   linked: (rung: number) => boolean,
@@ -52,7 +81,8 @@ export function breakSheets(
   };
   rungs.forEach((rung, index) => {
     const wanted = asked.get(index);
-    if (!sheet || (wanted && sheet.rungs.length > 0)) sheet = open(index, wanted?.title, wanted !== undefined);
+    if (!sheet || (wanted && sheet.rungs.length > 0))
+      sheet = open(index, wanted?.shared ? sheet?.title : wanted?.title, wanted !== undefined && !wanted.shared);
     else if (wanted?.title !== undefined) sheet.title = wanted.title;
     let placed = stack(rung, sheet.depth, below, pitch);
     const wide = (needs: ColumnNeeds) => leastSpan(needs, arrangement.columns) > room.span;

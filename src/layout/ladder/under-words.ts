@@ -53,7 +53,8 @@ export function underWords(
   const words = (text: string | undefined, role: "function" | "value" = "function"): SymbolWords[] =>
     wrapName(text ?? "", small, room.words, mostLines).map((line) => ({ role, words: line, height: small }));
   if (use.kind === "load") return words(loadWords(use, device, convention), "value");
-  if (use.kind === "through") return [...words(device.text), ...words(device.values.join(" "), "value")];
+  // What a strip or a plug is for stands in the lists, not at each of its terminals.
+  if (use.kind === "through") return [...(use.pin === undefined ? words(device.text) : []), ...words(device.values.join(" "), "value")];
   const operator = device.place?.cylinder ?? device.senses?.component ?? device.senses?.point;
   const place = operator ? [reference({ to: "switch-place", device: device.name }, `${operator} ${longest[convention].zone}`, small)] : [];
   if (deviceRoles[device.kind].load) return [reference({ to: "coil", device: device.name }, longest[convention].coil, usual)];
