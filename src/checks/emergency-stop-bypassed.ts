@@ -1,5 +1,6 @@
 import { deviceRoles } from "../machine/kinds.js";
-import type { Device, LoadUse } from "../machine/model.js";
+import type { Device, LoadUse, MainUse } from "../machine/model.js";
+import { mainsIn, motorsOf, waysToMotor, wholePowersOf } from "./power-ways.js";
 import { rule, type Subject } from "./rule.js";
 import { hintOnly } from "./safety.js";
 import { whatStaysOn } from "./settle.js";
@@ -29,9 +30,21 @@ export const emergencyStopBypassed = rule<{ stop: string; load?: string }>({
         suspects.has(load) && networks.states.canBe([...pressed, { subject: load.device, value: "on", holds: true }], true) === true,
     );
     if (bypassing.length > 1 && bypassing.length === movers.length) return [{ stop: stop.name, at: stop.contacts[0]?.at ?? stop.at }];
-    return bypassing.map((load) => ({ stop: stop.name, load: load.device, at: load.at }));
+    return [...bypassing, ...motorsAlwaysOn(subject)].map(({ device, at }) => ({ stop: stop.name, load: device, at }));
   },
 });
+
+/** Motors that no contactor stands before, in their branch or in the feed. */
+function motorsAlwaysOn({ machine }: Subject): MainUse[] {
+  const isContactor = ({ device }: MainUse) => machine.devices.get(device)?.kind === "contactor";
+  return wholePowersOf(machine).flatMap((circuit) =>
+    [...mainsIn(circuit.feed.path)].some(isContactor)
+      ? []
+      : motorsOf(machine, circuit).flatMap(({ motor }) =>
+          waysToMotor(circuit, motor)?.some((way) => !way.some(isContactor)) ? [motor] : [],
+        ),
+  );
+}
 
 function isStop({ kind }: Device): boolean {
   return kind === "emergency-stop" || kind === "cable-pull";

@@ -16,7 +16,10 @@ import { emergencyStopNormallyOpen } from "./emergency-stop-normally-open.js";
 import { fuseOnReturnSide } from "./fuse-on-return-side.js";
 import { holdWithoutStop } from "./hold-without-stop.js";
 import { loadNotFed } from "./load-not-fed.js";
+import { loadVoltageUnlikeSupply } from "./load-voltage-unlike-supply.js";
+import { motorUnguarded } from "./motor-unguarded.js";
 import { opposedCoilsNotInterlocked } from "./opposed-coils-not-interlocked.js";
+import { overloadNotStopping } from "./overload-not-stopping.js";
 import { overloadOpensNothing } from "./overload-opens-nothing.js";
 import { pointUsedOnce } from "./point-used-once.js";
 import { polesExceeded } from "./poles-exceeded.js";
@@ -61,12 +64,15 @@ export const rules: readonly RunnableRule[] = [
   fuseOnReturnSide,
   diodeAcrossAcLoad,
   diodeTurnedRound,
-  overloadOpensNothing,
+  loadVoltageUnlikeSupply,
   pointUsedOnce,
   // electrical, hints on safety
   emergencyStopNormallyOpen,
   emergencyStopBypassed,
   holdWithoutStop,
+  overloadOpensNothing,
+  overloadNotStopping,
+  motorUnguarded,
   // across
   solenoidWithoutValve,
   valveCoilNeverDriven,

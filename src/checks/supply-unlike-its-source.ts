@@ -9,13 +9,15 @@ export const supplyUnlikeItsSource = rule<{ supply: string; has: string; source:
       const source = from === undefined ? undefined : machine.devices.get(from);
       const gives = source?.conversion?.secondary;
       if (!source || !gives || !voltage) return [];
-      if (voltage.value === gives.voltage.value && current === (gives.current ?? current)) return [];
+      // A transformer passes alternating current alone.
+      const kind = gives.current ?? (source.kind === "transformer" ? "AC" : undefined);
+      if (voltage.value === gives.voltage.value && current === (kind ?? current)) return [];
       return [
         {
           supply: name,
           has: `${voltage.text} ${current}`,
           source: source.name,
-          gives: gives.current ? `${gives.voltage.text} ${gives.current}` : gives.voltage.text,
+          gives: kind ? `${gives.voltage.text} ${kind}` : gives.voltage.text,
           at,
           seeAlso: [{ message: `${source.name} is declared here.`, at: source.at }],
         },
