@@ -1,6 +1,6 @@
 import type { Layout } from "../layout/placement.js";
 import type { Machine } from "../machine/model.js";
-import { contactReferences, spareContacts } from "./contact-references.js";
+import { contactReferences, mainReferences, spareContacts } from "./contact-references.js";
 import type { ContactReference, SpareContact } from "./rows.js";
 
 /** A device with all its contacts. */
@@ -15,17 +15,20 @@ export interface ContactRow {
   spare: SpareContact[];
 }
 
-/** Every device that has contacts in the drawing or is declared to have any, as declared. Outputs of a controller are none. */
+/** Every device that has contacts in the drawing or is declared to have any, as declared, main contacts first. Outputs of a controller are none. */
 export function contactList(machine: Machine, layout: Layout): ContactRow[] {
   return [...machine.devices.values()]
     .filter(({ kind }) => kind !== "output-card")
-    .filter(({ contacts, poles }) => contacts.length > 0 || (poles && poles.no + poles.nc > 0))
+    .filter(
+      ({ kind, contacts, mains, poles }) =>
+        contacts.length > 0 || (kind === "contactor" && mains.length > 0) || (poles && poles.no + poles.nc > 0),
+    )
     .map((device) => ({
       device: device.name,
       kind: device.kind,
       text: device.text ?? "",
       ...(device.poles && { declared: { ...device.poles } }),
-      used: contactReferences(device.contacts, layout),
+      used: [...(device.kind === "contactor" ? mainReferences(device, layout) : []), ...contactReferences(device.contacts, layout)],
       spare: spareContacts(device),
     }));
 }

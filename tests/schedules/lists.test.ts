@@ -145,6 +145,16 @@ describe("the list of contacts", () => {
     expect(of("PB2")).toEqual(["NC  11-12 1 101"]);
     expect(records.some(([device]) => device === "Q0")).toBe(false);
   });
+
+  // Main contacts 1-2, 3-4, 5-6: EN 50005.
+  test("has the main contacts of a contactor before its others", async () => {
+    const { records } = (await lists(readText("samples/bark-mill.sprung"))).contacts;
+    expect(records.filter(([device]) => device === "KM1").map((record) => record.slice(4).join(" "))).toEqual([
+      "main  1-2 3-4 5-6 1 101",
+      "NO  13-14 4 405",
+      "NO  23-24 4 408",
+    ]);
+  });
 });
 
 test("a power circuit is joined pole by pole, and a supply's fuse parts its rail from where it comes from", () => {
