@@ -1,11 +1,14 @@
 import { fedLoads } from "../behaviour/conduction.js";
 import type { DeviceKind, LoadUse } from "../machine/model.js";
+import { ableToPullIn } from "./pull-in.js";
 import { rule } from "./rule.js";
 import { hintOnly } from "./safety.js";
-import { type Closes, whatComesOn, whatStaysOn } from "./settle.js";
+import { type Closes, whatStaysOn } from "./settle.js";
 
 /** What drops out with its coil. */
 const follows: ReadonlySet<DeviceKind> = new Set<DeviceKind>(["relay", "contactor", "timer"]);
+/** Stands for the coil of a contact that stays open. */
+const neverIn = "";
 /** Relays looked into; a drawing with one slip has one. */
 const mostLookedInto = 100;
 
@@ -23,7 +26,10 @@ export const holdWithoutStop = rule<{ coil: string }>({
     const kindOf = (name: string) => machine.devices.get(name)?.kind;
     const closes: Closes = ({ device, form }, on) => form === "NO" && on.has(device) && follows.has(kindOf(device) ?? "horn");
     const kept = whatStaysOn(networks, closes);
-    const always = whatComesOn(networks, closes);
+    // What comes in with the supply holds nothing: it follows from closed paths, or from relays that do.
+    const always = ableToPullIn(networks.wiring, ({ device, form }) =>
+      form === "NO" && follows.has(kindOf(device) ?? "horn") ? device : neverIn,
+    );
     const on = new Set([...kept].map(({ device }) => device));
     const holdsItself = (load: LoadUse) => {
       const own = fedLoads(networks.wiring, (contact) => contact.device !== load.device && closes(contact, on));
@@ -34,7 +40,7 @@ export const holdWithoutStop = rule<{ coil: string }>({
     return [...kept]
       .filter((load) => {
         const device = machine.devices.get(load.device);
-        return device && follows.has(device.kind) && !always.has(load) && device.contacts.some(({ form }) => form === "NO");
+        return device && follows.has(device.kind) && !always.has(load.device) && device.contacts.some(({ form }) => form === "NO");
       })
       .slice(0, mostLookedInto)
       .filter(holdsItself)

@@ -20,17 +20,6 @@ export function whatStaysOn({ wiring, loads }: Networks, closes: Closes): Set<Lo
   }
 }
 
-/** What becomes energized when nothing has been, relays pulling in one after another. `closes` as in `whatStaysOn`. */
-export function whatComesOn({ wiring }: Networks, closes: Closes): Set<LoadUse> {
-  let on = new Set<LoadUse>();
-  for (;;) {
-    const devices = devicesOf(on);
-    const fed = fedLoads(wiring, (contact) => closes(contact, devices));
-    if (fed.size === on.size) return fed;
-    on = fed;
-  }
-}
-
 function devicesOf(loads: Iterable<LoadUse>): Set<string> {
   return new Set([...loads].map(({ device }) => device));
 }

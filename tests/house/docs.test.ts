@@ -1,6 +1,7 @@
 import { existsSync } from "node:fs";
 import { join } from "node:path";
 import { describe, expect, test } from "vitest";
+import { rules } from "../../src/checks/rules.js";
 import { run } from "../../src/cli/run.js";
 import { examine } from "../../src/compile.js";
 import { parse } from "../../src/language/parse.js";
@@ -75,6 +76,15 @@ test("commands in console blocks are understood", async () => {
       expect(await run([script, "--help"], memoryWorld()), line).toBe(0);
     }
   }
+});
+
+test("every design rule stands in the README once", () => {
+  const rows = [...readText("README.md").matchAll(/^\| `([a-z-]+)` \| /gm)].map((match) => match[1]).filter((code) => code?.includes("-"));
+  for (const { code } of rules)
+    expect(
+      rows.filter((row) => row === code),
+      code,
+    ).toHaveLength(1);
 });
 
 test("every command stands in the README with all its options", async () => {

@@ -194,6 +194,14 @@ describe("terminals the author pins", () => {
   test("a changeover may share its common terminal", () => {
     expect(terminals("relay K1", ["K1:11-14", "/K1:11-12"]).codes).toEqual([]);
   });
+  // EN 50005: a delayed changeover is 15-16-18, its common terminal 15.
+  test("a timer's delayed changeover is 15-16-18", () => {
+    expect(terminals("timer T1 on-delay 1 s", ["/T1:15-16", "T1:15-18", "T1.inst"])).toMatchObject({
+      codes: [],
+      numbers: ["15-16", "15-18", "23-24"],
+    });
+    expect(terminals("timer T1 on-delay 1 s", ["T1:15-16"]).codes).toEqual(["terminals-unlike-contact"]);
+  });
   test.each([
     [["K1:13-14", "K1:13-14"], ["terminals-twice"]],
     [
