@@ -268,3 +268,14 @@ ladder "Three" supply CTRL { rung: @run CR2 -> CR3 }`,
   expect(sheets.filter(({ symbols }) => symbols.some(({ part }) => part === "FU1"))).toHaveLength(1);
   expect(sheets.map((sheet) => references([sheet]))).toEqual([["run"], [], ["run"]]);
 });
+
+test("a wire with two points goes by one of them wherever it breaks off", () => {
+  const laid = drawn("rung: PB1 @p LS1 -> CR1\nrung: CR1 CR2 CR3 -> CR2\nrung: @p @q PS1 -> CR3\nrung: CR1 -> LT1\nrung: @q DS1 -> CR1");
+  const names = references(laid.sheets);
+  expect(faults(laid)).toEqual([]);
+  for (const name of names) expect(names.filter((other) => other === name).length).toBeGreaterThan(1);
+});
+
+test("a bracket whose branches begin with points of the rail stands on the rail", () => {
+  expect(faults(drawn("rung: (@p PB1 | @q LS1) -> CR1"))).toEqual([]);
+});

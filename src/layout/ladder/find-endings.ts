@@ -74,6 +74,7 @@ export function findEndings(
   const endings: Ending[] = [];
   for (const [node, parts] of islands) {
     const named = parts.filter(({ sites }) => sites.some(({ site }) => !letters.has(site.point)));
+    const nameOf = sharedName(named, letters, abroad);
     for (const part of parts) {
       const { sites } = part;
       const elsewhere = named.some((other) => other !== part) || sites.some(({ site }) => abroad.has(site.point));
@@ -81,12 +82,19 @@ export function findEndings(
       const comes = ({ rung, site }: Sited) => elsewhere && site.open === "start" && !arrives.has(`${rung} ${node} ${site.boundary}`);
       const open = sites.filter((place) => place.site.open && (place.site.cut || !isJoined(place.rung, place.site) || comes(place)));
       for (const { rung, site } of open)
-        endings.push({ rung, node, point: site.point, line: site.line, kind: site.open as "start" | "end", boundary: site.boundary });
+        endings.push({
+          rung,
+          node,
+          point: nameOf(site.point),
+          line: site.line,
+          kind: site.open as "start" | "end",
+          boundary: site.boundary,
+        });
       const hang = ({ rung, site }: Sited) => {
         // A rail says itself where it goes on.
         if (site.boundary === 0 || site.boundary === returnRail) return;
         const line = bottomOfPart(grids[rung] as RungGrid, node, site);
-        endings.push({ rung, node, point: site.point, line, kind: "drop", boundary: site.boundary });
+        endings.push({ rung, node, point: nameOf(site.point), line, kind: "drop", boundary: site.boundary });
       };
       const ended = new Set(open.map(({ site }) => site.point));
       for (const place of sites) if (letters.has(place.site.point) && !place.site.open && !ended.has(place.site.point)) hang(place);
@@ -97,6 +105,19 @@ export function findEndings(
     }
   }
   return endings.sort((a, b) => a.rung - b.rung || a.line - b.line || a.boundary - b.boundary);
+}
+
+/** A wire may have several points: wherever it breaks off it goes by the one that most of its parts have. */
+function sharedName(parts: readonly Island[], letters: ReadonlySet<string>, abroad: ReadonlySet<string>): (point: string) => string {
+  const count = new Map<string, number>();
+  for (const { sites } of parts) {
+    for (const point of new Set(sites.map(({ site }) => site.point))) {
+      if (!letters.has(point)) count.set(point, (count.get(point) ?? 0) + 1);
+    }
+  }
+  const most = Math.max(0, ...count.values());
+  const [common] = [...count].find(([, times]) => times === most) ?? [];
+  return (point) => (common === undefined || letters.has(point) || abroad.has(point) ? point : common);
 }
 
 interface Piece {

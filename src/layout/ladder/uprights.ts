@@ -82,6 +82,7 @@ function boundariesAlong(from: number, to: number): number[] {
 /** Joins places of one point in different branches of a rung where they lie straight above each other. */
 export function joinWithin(grid: RungGrid): void {
   for (const [index, site] of grid.sites.entries()) {
+    if (site.boundary === 0 || site.boundary === returnRail) continue;
     const below = grid.sites
       .slice(index + 1)
       .find((other) => other.node === site.node && other.boundary === site.boundary && other.line > site.line);
