@@ -28,7 +28,7 @@ export interface SheetRoom {
 
 /**
  * Shares the rungs out over sheets, as `fillSheets` does; where the last sheet before the end or before a break of the
- * author's would be nearly empty, it and the sheet before it share their rungs evenly.
+ * author's would be nearly empty, it takes over the last rungs of the sheet before it, up to half of all that stands on both.
  */
 export function breakSheets(
   rungs: readonly MeasuredRung[],
@@ -43,7 +43,8 @@ export function breakSheets(
     const ends = index === filled.length - 1 || filled[index + 1]?.asked;
     if (!full || !ends || last.asked || last.depth >= room.depth * nearlyEmpty) return [];
     const half = (full.depth + last.depth) / 2;
-    const first = full.rungs.findIndex(({ lines }) => (lines.at(-1) as Mm) > half);
+    // What is joined by wire stays together, and rather on the fuller sheet.
+    const first = full.rungs.findIndex(({ lines }, rung) => (lines.at(-1) as Mm) > half && !linked(full.first + rung));
     return first > 0 ? [{ before: full.first + first, shared: true }] : [];
   });
   if (evened.length === 0) return filled;
