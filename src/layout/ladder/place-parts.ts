@@ -60,9 +60,11 @@ export function placeRung(rung: Rung, ends: RungEnds): RungGrid {
     const before = advance(head, line, { boundary: from }, from, undefined);
     let lines = before.lines;
     if (load.kind === "parallel") {
-      run(line, before.stop, { boundary: before.boundary }, load.from);
+      // Loads with nothing before them part close to where they stand.
+      const fork = isBare(load) ? loadColumn : before.boundary;
+      run(line, before.stop, { boundary: fork }, load.from);
       const join = after.some((item) => item.kind !== "point") ? Math.max(loadColumn + 1, ...load.branches.map(reach.returnEnd)) : to;
-      lines = Math.max(lines, placeBranches(load, line, before.boundary, join, "beside loads"));
+      lines = Math.max(lines, placeBranches(load, line, fork, join, "beside loads"));
       return Math.max(lines, follow(after, load.to, series.to, line, { boundary: join }, join, to));
     }
     const cell = put(load as Cell["use"], line, loadColumn);
@@ -179,6 +181,14 @@ export function reachOf(rung: Rung, wishes?: Wishes): Reach {
     return end(series.items.slice(at + 1), inside);
   };
   return { endOf, end, contactEnd: (series, boundary) => contactEnd(series, boundary), returnEnd };
+}
+
+/** Whether every branch begins with a load, or with what stands beside one. */
+function isBare({ branches }: ParallelPath): boolean {
+  return branches.every((branch) => {
+    const [first] = branch.items;
+    return placeOfLoad(branch, true) === 0 && (first?.kind !== "parallel" || isBare(first));
+  });
 }
 
 /** The share of a contact's column that a terminal takes. */
