@@ -279,3 +279,20 @@ test("a wire with two points goes by one of them wherever it breaks off", () => 
 test("a bracket whose branches begin with points of the rail stands on the rail", () => {
   expect(faults(drawn("rung: (@p PB1 | @q LS1) -> CR1"))).toEqual([]);
 });
+
+describe.each(["north-american", "international"] as const)("points behind loads, %s", (convention) => {
+  test.each([
+    ["what ends there stays clear of the return rail", "rung: @p0 LS1 -> LT1 @p2\n rung: @p0 LS1 @p2 PB1 @p0\n rung: PB1 -> LT2 @p2"],
+    ["a load that begins there has its wire to its own pin", "rung: PB1 -> LT1 @mid\n rung: @mid LS1\n rung: @mid -> LT2"],
+    ["loads in parallel part where they stand", "rung: PB1 (LS1 | CR1) -> (CR1 | LT1 | LT2)\n rung: LS1 @a -> (LT2 | (LT1 | LT2) | CR1)"],
+  ])("%s", (_, rungs) => {
+    expect(
+      faults(
+        ladderOf(
+          `relay CR1\n push-button PB1\n limit-switch LS1\n pilot-light LT1\n pilot-light LT2\n ladder "A" {\n ${rungs}\n}`,
+          convention,
+        ),
+      ),
+    ).toEqual([]);
+  });
+});

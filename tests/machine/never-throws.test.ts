@@ -58,7 +58,7 @@ test("whatever the text, there is a machine, and every finding has its place", (
           for (const { node } of ports) if (node !== undefined) expect(known.has(node)).toBe(true);
       }
     }),
-    { numRuns: 200 },
+    { numRuns: 200, seed: 1 },
   );
 });
 

@@ -98,7 +98,9 @@ export function joinPoints(rungs: readonly Rung[], shared: SharedPoints): Joined
     const cutStart = rung.start.kind === "point" && letters.has(rung.start.point);
     const cutEnd = rung.end.kind === "point" && letters.has(rung.end.point);
     const above = rung.start.kind === "point" && !cutStart ? reachable.get(rung.start.node) : undefined;
-    const from = above && reachOf(rung).contactEnd(rung.path, above.boundary) <= limit ? above : undefined;
+    // A wire that comes down behind the loads can begin nothing that has a load.
+    const within = above !== undefined && (above.boundary < loadColumn || !bearsLoad(rung.path));
+    const from = within && reachOf(rung).contactEnd(rung.path, above.boundary) <= limit ? above : undefined;
     const to = rung.end.kind === "point" && !cutEnd ? reachable.get(rung.end.node) : undefined;
     const endsFor = (wishes?: Wishes): RungEnds => {
       const wished = ({ node }: Rung["start"]) => wishes?.any.get(node) ?? 0;

@@ -84,8 +84,11 @@ export function withNeeds(
     widen(needs.labels, cell.column, label);
     reach(cell.column + 1);
   }
+  // What joins other wires behind the loads stands clear of the return rail.
+  const clear = (boundary: number) => reach(boundary > loadColumn ? afterWide(boundary) : boundary);
+  if (grid.rung.end.kind === "point") clear(grid.end);
   for (const [boundary, point] of passes) {
-    reach(boundary);
+    clear(boundary);
     // Should a sheet end here, the wire's reference stands beside it.
     if (boundary < loadColumn) widen(needs.ends, boundary, arrangement.broken("foot", point).along + beside);
   }
