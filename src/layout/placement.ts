@@ -96,6 +96,8 @@ export function rowPitch(height: Mm): Mm {
 export type ReferenceTo =
   /** Under a contact: where its coil is, `(201)`; under that of an overload, where it stands in the power circuit. */
   | { to: "coil"; device: string }
+  /** Under a contact of a switch: where its other contacts are, but for those it is linked with, `(205)`. */
+  | { to: "sisters"; device: string; from: PartId; linked?: readonly PartId[] }
   /** At a coil: the lines of its contacts, normally closed ones underlined. */
   | { to: "contacts"; device: string }
   /** In the table under a coil: where one of its contacts is, `/2.4`. */

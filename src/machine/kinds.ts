@@ -48,6 +48,12 @@ export const deviceRoles: Record<
   "output-card": { contacts: true, load: false },
 };
 
+/** Buttons and switches: what works one of their contacts works them all. */
+export function isSwitchKind(kind: DeviceKind): boolean {
+  const { contacts, load } = deviceRoles[kind];
+  return contacts && !load && kind !== "overload" && kind !== "output-card";
+}
+
 /** The circuits each fluid component belongs in. */
 export const fluidMedia: Record<FluidKind, readonly Medium[]> = {
   tank: ["hydraulic"],

@@ -24,6 +24,8 @@ export interface Appearances {
   rows: ReadonlyMap<string, CrossReferenceRow>;
   /** A device's coil, lamp or other load; of several the first, or the one named: `KL1.reset`, `I0.5`. */
   loadOf(name: string): Appearance | undefined;
+  /** All of its loads, in drawing order. */
+  loadsOf(device: string): Appearance[];
   /** A device in a power circuit: main contacts, poles, a motor. */
   mainsOf(device: string): Appearance[];
   /** What a supply's rails come from, at the end of its branch. */
@@ -101,6 +103,7 @@ export function findAppearances(
     layout,
     rows: new Map(rows.map((row) => [row.device ?? row.coil, row])),
     loadOf: (name) => at(coils.get(name)),
+    loadsOf: (device) => (machine.devices.get(device)?.loads ?? []).flatMap(({ id }) => at(id) ?? []),
     mainsOf: (device) => (machine.devices.get(device)?.mains ?? []).flatMap(({ id }) => at(id) ?? []),
     sourceOf: (supply) => {
       const fed = machine.supplies.find(({ name }) => name === supply);

@@ -54,7 +54,12 @@ const plain = ({ pieces }: Wording) => pieces.map((piece) => piece.text).join(""
 function wordingsOf(reference: Reference, sheet: CircuitSheet, appearances: Appearances): Wording[] {
   switch (reference.to) {
     case "coil":
-      return bracketed(appearances.loadOf(reference.device) ?? appearances.mainsOf(reference.device)[0], sheet, appearances);
+      return coilLines(reference.device, sheet, appearances);
+    case "sisters": {
+      const { device, from, linked = [] } = reference;
+      const others = appearances.contactsOf(device).filter(({ part }) => part !== from && !linked.includes(part));
+      return listed(others, sheet, appearances);
+    }
     case "switch-place": {
       const device = appearances.machine.devices.get(reference.device);
       return named(device ? operatorOf(device) : undefined, appearances.fluidSideOf(reference.device), appearances);
@@ -105,12 +110,6 @@ function railHeads({ supply, rail }: Reference & { to: "rails" }, sheet: Circuit
   return full ? [{ pieces: full.pieces.map((piece) => ({ ...piece, text: `${rail} ${piece.text}` })) }] : [];
 }
 
-function bracketed(found: Appearance | undefined, sheet: CircuitSheet, appearances: Appearances): Wording[] {
-  if (!found) return [];
-  const [open, close] = brackets(appearances);
-  return [{ pieces: [{ text: `${open}${lineName(found.place, sheet, appearances)}${close}`, to: found.part }] }];
-}
-
 /** North-american practice sets a line that is spoken of in brackets; international places begin with a slash and need none. */
 const brackets = ({ machine }: Appearances): [string, string] => (machine.drawing.convention === "international" ? ["", ""] : ["(", ")"]);
 
@@ -128,25 +127,35 @@ function named(name: string | undefined, found: Appearance | undefined, { machin
   return [...(printed === undefined ? [] : [`${printed} ${where}`]), where].map((text) => ({ pieces: [{ text, to: found.part }] }));
 }
 
+/** Where its coils are; what has none is worked by what flows in a power circuit. */
+function coilLines(device: string, sheet: CircuitSheet, appearances: Appearances): Wording[] {
+  const loads = appearances.loadsOf(device);
+  return listed(loads.length > 0 ? loads : appearances.mainsOf(device).slice(0, 1), sheet, appearances);
+}
+
 /** `(204)`; for a switch with several contacts `(203, 207)`, as many as there is room for. */
 function ladderLines(device: string, sheet: CircuitSheet, appearances: Appearances): Wording[] {
   const load = appearances.loadOf(device);
-  if (load) return bracketed(load, sheet, appearances);
-  // A motor is worked by no line of a ladder, but fed by one of a power circuit.
-  if (appearances.contactsOf(device).length === 0) return bracketed(appearances.mainsOf(device)[0], sheet, appearances);
   const contacts = appearances.contactsOf(device);
+  if (load) return listed([load], sheet, appearances);
+  // A motor is worked by no line of a ladder, but fed by one of a power circuit.
+  return listed(contacts.length > 0 ? contacts : appearances.mainsOf(device).slice(0, 1), sheet, appearances);
+}
+
+/** `(204)`, or several, `(203, 207)`, as many as there is room for. */
+function listed(found: readonly Appearance[], sheet: CircuitSheet, appearances: Appearances): Wording[] {
   const [open, close] = brackets(appearances);
   const wordings: Wording[] = [];
-  for (let shown = contacts.length; shown > 0; shown--) {
-    const end = shown < contacts.length ? `, …${close}` : close;
-    const pieces = contacts.slice(0, shown).map(({ part, place }, index): Piece => {
+  for (let shown = found.length; shown > 0; shown--) {
+    const end = shown < found.length ? `, …${close}` : close;
+    const pieces = found.slice(0, shown).map(({ part, place }, index): Piece => {
       const line = lineName(place, sheet, appearances);
       return { text: `${index === 0 ? open : ""}${line}${index === shown - 1 ? end : ", "}`, to: part };
     });
     wordings.push({ pieces });
   }
-  const [first] = contacts;
-  if (first && contacts.length > 1) {
+  const [first] = found;
+  if (first && found.length > 1) {
     const line = lineName(first.place, sheet, appearances);
     for (const text of [`${open}${line}…${close}`, `${open}${line}${close}`]) wordings.push({ pieces: [{ text, to: first.part }] });
   }
@@ -309,7 +318,7 @@ function rowMarks(text: PlacedText, pieces: Piece[], height: Mm, drop: Mm): Mark
     const at = text.rotated ? { x: text.at.x + drop, y: text.at.y - along } : { x: text.at.x + along, y: text.at.y + drop };
     along += width;
     if (piece.text.trim() === "") continue;
-    const mark: Mark & { kind: "text" } = { ...common, at, text: piece.text, anchor: "start" };
+    const mark: Mark & { kind: "text" } = { ...common, at, text: piece.text.trimEnd(), anchor: "start" };
     if (text.rotated) mark.rotated = true;
     if (piece.underline) mark.underline = true;
     marks.push(mark);

@@ -12,7 +12,7 @@ import { footBlock } from "./foot-block.js";
 import { endingSize } from "./measure-rungs.js";
 import { heightBeyond, reachInBand } from "./reach-in-band.js";
 import { scaleSymbol } from "./scale-symbol.js";
-import { around, roomOf } from "./text-box.js";
+import { around, hang, roomOf } from "./text-box.js";
 import { designationWords, mostLines, type SymbolWords, textHeight, underWords } from "./under-words.js";
 import { wrapOwnTexts } from "./wrap-own-texts.js";
 
@@ -119,12 +119,20 @@ function dress(use: DeviceUse, device: Device | undefined, symbol: Symbol, width
     });
 
   const name = wrapNameAt([textHeight.usual, textHeight.small], designationWords(use, "international"), width, mostLines);
-  const names = name.lines.map((words): SymbolWords => ({ role: "designation", words, height: name.height }));
+  // A controller's box, half as high as its pins lie apart, has room for it inside.
+  const address = symbol.spots.address ? designationWords(use, "international") : "";
+  const inside = [textHeight.usual, textHeight.small].find(
+    (height) => address !== "" && height / 2 + hang(address, height) + 0.4 <= reach / 2 && measureText(address, height) <= box.width - 1.5,
+  );
+  if (inside !== undefined) {
+    texts.push({ part: use.id, role: "designation", at: { x: 0, y: inside / 2 }, anchor: "middle", height: inside, text: address });
+  }
+  const names = inside ? [] : name.lines.map((words): SymbolWords => ({ role: "designation", words, height: name.height }));
   const labels = positionLabels(use, device, symbol, width);
   const under = [...labels.legend, ...underWords(use, device, { words: width, references: width }, "international")];
   texts.push(...labels.texts.map((text) => ({ ...text, at: { x: text.at.x + shift.x, y: text.at.y + shift.y } })));
 
-  const nameRise = name.height + (names.length - 1) * wrappedPitch(name.height);
+  const nameRise = inside ? 0 : name.height + (names.length - 1) * wrappedPitch(name.height);
   const chart = chartPositions(use, device, lowLabel);
   const chartRise = chart ? chart.height + lineGap : 0;
   const underRise = chartRise + under.reduce((sum, { height }) => sum + lineGap + height, 0);

@@ -9,6 +9,7 @@ import { breakSheets, type RungSheet } from "./break-sheets.js";
 import { drawLadder } from "./draw-ladder.js";
 import { fitRungs, pointsOf } from "./fit-rungs.js";
 import type { Link } from "./grid.js";
+import { linkContacts } from "./link-contacts.js";
 import { nameThirdLead } from "./name-third-lead.js";
 import type { RailEnd } from "./plan.js";
 import { planInternational } from "./plan-international.js";
@@ -126,6 +127,8 @@ export function layOutLadder(
     if (index < ladders.length - 1) plan.finish(out, { ...railed, goesTo: railEnd(index + 1, "first") });
     else finish = (goesTo) => plan.finish(out, { ...railed, ...(goesTo ? { goesTo } : {}) });
   });
+  // 4. What one hand works is joined.
+  for (const sheet of sheets) linkContacts(sheet, machine.devices, convention === "international" ? "right" : "down");
   const lines = ladders.reduce((sum, { rungs }) => sum + rungs.reduce((own, { lines }) => own + lines.length, 0), 0);
   return {
     sheets,

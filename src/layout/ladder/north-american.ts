@@ -10,7 +10,7 @@ import { endingSize } from "./measure-rungs.js";
 import { reachInBand } from "./reach-in-band.js";
 import { scaleSymbol } from "./scale-symbol.js";
 import { around, hang, roomOf } from "./text-box.js";
-import { designationWords, mostLines, textHeight, underWords } from "./under-words.js";
+import { designationWords, mostLines, type SymbolWords, textHeight, underWords, widthOf } from "./under-words.js";
 import { wrapOwnTexts } from "./wrap-own-texts.js";
 
 /** Widths beside the return rail, mm. */
@@ -148,15 +148,21 @@ function dress(use: DeviceUse, machine: Machine, symbol: Symbol, scale: number, 
     texts.push(...chart.texts.map((text) => ({ ...text, at: { x: text.at.x - chart.width / 2, y: text.at.y + baseline } })));
     baseline += chart.height + textHeight.small * 0.45 + 0.3;
   }
-  for (const { role, words, height } of underWords(
-    use,
-    device,
-    { words: Math.min(2 * reach + 4, width), references: width },
-    "north-american",
-  )) {
-    baseline += height;
-    texts.push({ part: use.id, role, at: { x: 0, y: baseline }, anchor: "middle", height, text: words });
-    baseline += height * 0.45 + 0.3;
+  const under = underWords(use, device, { words: Math.min(2 * reach + 4, width), references: width }, "north-american");
+  for (let index = 0; index < under.length; index++) {
+    const line = under[index] as SymbolWords;
+    const next = under[index + 1];
+    const total = next?.follows ? widthOf(line) + followGap + widthOf(next) : 0;
+    const together = next !== undefined && total > 0 && total <= Math.min(2 * reach + 4, width) && next.height === line.height;
+    baseline += line.height;
+    const set = ({ role, words, height }: SymbolWords, x: Mm, anchor: PlacedText["anchor"]) =>
+      texts.push({ part: use.id, role, at: { x, y: baseline }, anchor, height, text: words });
+    if (together) {
+      set(line, -total / 2, "start");
+      set(next, -total / 2 + widthOf(line) + followGap, "start");
+      index++;
+    } else set(line, 0, "middle");
+    baseline += line.height * 0.45 + 0.3;
   }
   const all = around([box, ...texts.map(roomOf)]);
   return {
@@ -173,8 +179,9 @@ function dress(use: DeviceUse, machine: Machine, symbol: Symbol, scale: number, 
   };
 }
 
-/** Between a symbol and a text over or under it. */
+/** Between a symbol and a text over or under it, and between two texts on one line. */
 const clearance: Mm = 0.8;
+const followGap: Mm = 1;
 
 /** A designation stands in a coil's circle or a controller's box if it has room there. */
 function insideWords(use: DeviceUse, device: Device | undefined, scale: number): { words: string; height: Mm } | undefined {

@@ -33,8 +33,12 @@ export function heightBeyond(symbol: Symbol, shift: Point, x: Mm): { top: Mm; bo
 /** Fine enough that no line passes a 2 mm band between two of its points. */
 const steps = 24;
 
-function pointsAlong(path: readonly Segment[]): Point[] {
-  const points: Point[] = [];
+const pointsAlong = (path: readonly Segment[]): Point[] => polylinesOf(path).flat();
+
+/** A path as runs of points, curves in short straight steps. */
+export function polylinesOf(path: readonly Segment[]): Point[][] {
+  const runs: Point[][] = [];
+  let points: Point[] = [];
   let at: Point = { x: 0, y: 0 };
   let start = at;
   const line = (to: Point) => {
@@ -52,11 +56,14 @@ function pointsAlong(path: readonly Segment[]): Point[] {
     at = { x: c.x, y: c.y };
   };
   for (const s of path) {
-    if (s.op === "M") start = at = { x: s.x, y: s.y };
-    else if (s.op === "L") line({ x: s.x, y: s.y });
+    if (s.op === "M") {
+      start = at = { x: s.x, y: s.y };
+      points = [];
+      runs.push(points);
+    } else if (s.op === "L") line({ x: s.x, y: s.y });
     else if (s.op === "C") curve(s);
     else if (s.op === "A") arcCurves(at, s).forEach(curve);
     else line(start);
   }
-  return points;
+  return runs;
 }

@@ -1,7 +1,7 @@
 import type { Mm } from "../../drawing/geometry.js";
 import { measureText } from "../../drawing/text.js";
 import { wrapName } from "../../drawing/wrap-name.js";
-import { deviceRoles } from "../../machine/kinds.js";
+import { deviceRoles, isSwitchKind } from "../../machine/kinds.js";
 import type { Device, DeviceUse, DrawingInfo, LoadUse } from "../../machine/model.js";
 import { designationOf, printedName } from "../../machine/walk.js";
 import type { PlacedText, Reference, ReferenceTo } from "../placement.js";
@@ -17,7 +17,12 @@ export interface SymbolWords {
   role: PlacedText["role"];
   words: string | Reference;
   height: Mm;
+  /** It may stand behind the line before it where there is room. */
+  follows?: boolean;
 }
+
+/** The width of words, or of the room kept for a reference. */
+export const widthOf = ({ words, height }: SymbolWords): Mm => (typeof words === "string" ? measureText(words, height) : words.room);
 
 type Convention = DrawingInfo["convention"];
 
@@ -57,26 +62,45 @@ export function underWords(
   if (use.kind === "through") return [...(use.pin === undefined ? words(device.text) : []), ...words(device.values.join(" "), "value")];
   const operator = device.place?.cylinder ?? device.senses?.component ?? device.senses?.point;
   const place = operator ? [reference({ to: "switch-place", device: device.name }, `${operator} ${longest[convention].zone}`, small)] : [];
-  if (deviceRoles[device.kind].load) return [reference({ to: "coil", device: device.name }, longest[convention].coil, usual)];
+  const { load, coils } = deviceRoles[device.kind];
+  const { coil } = longest[convention];
+  if (load) return [reference({ to: "coil", device: device.name }, coils ? `${coil}, ${coil}` : coil, coils ? small : usual)];
+  // What a cylinder or a fluid works is looked up there: its mark names all of its contacts.
+  const sisters = isSwitchKind(device.kind) && !operator ? Math.min(device.contacts.length - 1, mostSisters) : 0;
+  const others =
+    sisters > 0
+      ? [{ ...reference({ to: "sisters", device: device.name, from: use.id }, sisterRoom(sisters, convention), small), follows: true }]
+      : [];
   switch (device.kind) {
     case "limit-switch":
     case "proximity-switch":
-      return [...words(device.text), ...place];
+      return [...words(device.text), ...place, ...others];
     case "pressure-switch":
     case "vacuum-switch":
     case "flow-switch":
     case "level-switch":
     case "temperature-switch": {
       const settings = [device.senses?.rising?.text, device.senses?.falling?.text].filter((text) => text !== undefined).join(" / ");
-      return [...words(device.text), ...words(settings, "value"), ...place];
+      return [...words(device.text), ...words(settings, "value"), ...place, ...others];
     }
     default:
       // An overload, or a breaker with contacts of its own, is worked by what flows in the power circuit.
       return [
         ...words(device.text),
+        ...others,
         ...(device.mains.length > 0 ? [reference({ to: "coil", device: device.name }, longest[convention].coil, usual)] : []),
       ];
   }
+}
+
+/** So many other contacts of a switch are told of under each; the cross-reference has them all. */
+const mostSisters = 3;
+
+/** The longest that the lines of so many contacts get. */
+function sisterRoom(count: number, convention: Convention): string {
+  const one = convention === "international" ? "/88.88" : "8888";
+  const all = Array.from({ length: count }, () => one).join(", ");
+  return convention === "international" ? all : `(${all})`;
 }
 
 /** What a load says of itself beside its name: its delay, its count, which of its coils it is, its rating. */
