@@ -312,13 +312,15 @@ function rowMarks(text: PlacedText, pieces: Piece[], height: Mm, drop: Mm): Mark
   const common = { kind: "text", role: text.role, height, ...(text.part === undefined ? {} : { part: text.part }) } as const;
   const total = measureText(plain({ pieces }), height);
   const before = text.anchor === "start" ? 0 : text.anchor === "middle" ? total / 2 : total;
-  let along = -before;
+  // Each piece begins where the one before it ends, to the last digit.
+  let { x, y } = text.rotated ? { x: text.at.x + drop, y: text.at.y + before } : { x: text.at.x - before, y: text.at.y + drop };
   for (const piece of pieces) {
     const width = measureText(piece.text, height);
-    const at = text.rotated ? { x: text.at.x + drop, y: text.at.y - along } : { x: text.at.x + along, y: text.at.y + drop };
-    along += width;
+    const at = { x, y };
+    if (text.rotated) y -= width;
+    else x += width;
     if (piece.text.trim() === "") continue;
-    const mark: Mark & { kind: "text" } = { ...common, at, text: piece.text.trimEnd(), anchor: "start" };
+    const mark: Mark & { kind: "text" } = { ...common, at, text: piece.text, anchor: "start" };
     if (text.rotated) mark.rotated = true;
     if (piece.underline) mark.underline = true;
     marks.push(mark);
