@@ -142,11 +142,14 @@ function ladderLines(device: string, sheet: CircuitSheet, appearances: Appearanc
   return listed(contacts.length > 0 ? contacts : appearances.mainsOf(device).slice(0, 1), sheet, appearances);
 }
 
+/** More lines than this have room beside no symbol. */
+const mostListed = 16;
+
 /** `(204)`, or several, `(203, 207)`, as many as there is room for. */
 function listed(found: readonly Appearance[], sheet: CircuitSheet, appearances: Appearances): Wording[] {
   const [open, close] = brackets(appearances);
   const wordings: Wording[] = [];
-  for (let shown = found.length; shown > 0; shown--) {
+  for (let shown = Math.min(found.length, mostListed); shown > 0; shown--) {
     const end = shown < found.length ? `, …${close}` : close;
     const pieces = found.slice(0, shown).map(({ part, place }, index): Piece => {
       const line = lineName(place, sheet, appearances);
