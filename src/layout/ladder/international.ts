@@ -76,7 +76,8 @@ export function international({ machine, symbolOf, scale, deepestFoot }: Interna
       // Outside the rails, where these are named too.
       at: { x: end === "foot" ? endingSize.gap : -endingSize.head - endingSize.gap, y: endingHeight / 2 },
       anchor: end === "foot" ? "start" : "end",
-      along: 0,
+      // Clear of the lower rail's own name.
+      along: endingHeight / 2 + railNameRise,
       across: 0,
       fromRailEnd: 0,
     }),
@@ -86,6 +87,8 @@ export function international({ machine, symbolOf, scale, deepestFoot }: Interna
 
 /** From the upper rail to the numbers of the paths, mm: the names of the rail stand between. */
 export const pathNumberRise: Mm = 6.4;
+/** How far the name of the lower rail stands over it, with what keeps a text clear of it, mm. */
+const railNameRise: Mm = 2.3;
 /** Beside the ends of the rails, for what goes on elsewhere, mm. */
 export const brokenRoom: Mm = 15;
 
