@@ -43,8 +43,10 @@ export function breakSheets(
     const ends = index === filled.length - 1 || filled[index + 1]?.asked;
     if (!full || !ends || last.asked || last.depth >= room.depth * nearlyEmpty) return [];
     const half = (full.depth + last.depth) / 2;
-    // What is joined by wire stays together, and rather on the fuller sheet.
-    const first = full.rungs.findIndex(({ lines }, rung) => (lines.at(-1) as Mm) > half && !linked(full.first + rung));
+    // What is joined by wire stays together where it can, rather on the fuller sheet.
+    const behindHalf = ({ lines }: RungSheet["rungs"][number]) => (lines.at(-1) as Mm) > half;
+    const apart = full.rungs.findIndex((rung, at) => behindHalf(rung) && !linked(full.first + at));
+    const first = apart > 0 || !linked(last.first) ? apart : full.rungs.findIndex(behindHalf);
     return first > 0 ? [{ before: full.first + first, shared: true }] : [];
   });
   if (evened.length === 0) return filled;
